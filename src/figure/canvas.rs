@@ -1,0 +1,202 @@
+//! The sheet while it is being drawn: items by layer, what labels must keep clear of, labels wanted.
+
+use super::drawing::{Fill, Ink, Item, P2, Path, Piece, Span, Stroke};
+use super::place::{Candidate, Want};
+use super::rect::{Bounds, Rect};
+use super::text::{TextWidth, Words};
+
+/// Layers from the bottom up.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord)]
+pub(super) enum Layer {
+    /// Outlines, lead and extension lines.
+    Aid,
+    /// Runs.
+    Weld,
+    /// Arrows, dimensions, centroid, check points.
+    Mark,
+}
+
+/// How bad it is for a label to stand on something.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub(super) enum Keep {
+    /// Never: runs, arrows, marks, dimension lines.
+    Off,
+    /// If there is no better place: lead and extension lines, outlines.
+    OffIfPossible,
+}
+
+/// Something that labels keep clear of.
+#[derive(Clone, Copy, Debug)]
+pub(super) struct Obstacle {
+    /// Its box.
+    pub(super) rect: Rect,
+    /// How strictly.
+    pub(super) keep: Keep,
+}
+
+/// The sheet.
+pub(super) struct Canvas<'a> {
+    pub(super) fonts: &'a dyn TextWidth,
+    pub(super) items: Vec<(Layer, Item)>,
+    pub(super) obstacles: Vec<Obstacle>,
+    pub(super) wants: Vec<Want>,
+    pub(super) remarks: Vec<String>,
+    /// Boxes of the runs alone.
+    pub(super) welds: Vec<Rect>,
+    /// How many runs there are.
+    pub(super) runs: usize,
+    /// The room on the page (mm).
+    pub(super) room: P2,
+}
+
+impl<'a> Canvas<'a> {
+    pub(super) fn new(fonts: &'a dyn TextWidth, room: P2) -> Self {
+        Self {
+            fonts,
+            items: vec![],
+            obstacles: vec![],
+            wants: vec![],
+            remarks: vec![],
+            welds: vec![],
+            runs: 0,
+            room,
+        }
+    }
+
+    /// Adds an item that labels need not mind.
+    pub(super) fn draw(&mut self, layer: Layer, item: Item) {
+        self.items.push((layer, item));
+    }
+
+    /// Adds an item together with the boxes of its strokes.
+    pub(super) fn draw_kept(&mut self, layer: Layer, item: Item, keep: Keep) {
+        let rects = strokes(&item);
+        if layer == Layer::Weld {
+            self.welds.extend(&rects);
+        }
+        self.obstacles
+            .extend(rects.into_iter().map(|rect| Obstacle { rect, keep }));
+        self.items.push((layer, item));
+    }
+
+    /// Adds several items that nothing may stand on.
+    pub(super) fn mark(&mut self, items: impl IntoIterator<Item = Item>) {
+        for item in items {
+            self.draw_kept(Layer::Mark, item, Keep::Off);
+        }
+    }
+
+    /// Adds a straight line that nothing may stand on.
+    pub(super) fn line(&mut self, a: P2, b: P2, stroke: Stroke) {
+        self.mark([Item::Path(Path::through(&[a, b], stroke))]);
+    }
+
+    /// Adds a thin straight line that labels avoid if they can.
+    pub(super) fn aid(&mut self, a: P2, b: P2, stroke: Stroke) {
+        let item = Item::Path(Path::through(&[a, b], stroke));
+        self.draw_kept(Layer::Aid, item, Keep::OffIfPossible);
+    }
+
+    /// Measures a label.
+    pub(super) fn words(&self, spans: Vec<Span>) -> Words {
+        Words::new(spans, self.fonts)
+    }
+
+    /// Asks for a label at the best of some places.
+    pub(super) fn want(&mut self, rank: u8, words: Words, anchor: P2, candidates: Vec<Candidate>) {
+        self.wants.push(Want {
+            rank,
+            words,
+            anchor,
+            candidates,
+        });
+    }
+
+    /// Bounds of all that is drawn so far.
+    pub(super) fn bounds(&self) -> Bounds {
+        let mut bounds = Bounds::empty();
+        self.items
+            .iter()
+            .for_each(|(_, item)| item.bound(&mut bounds));
+        bounds
+    }
+
+    /// Whether a box is clear of all that must not be covered.
+    pub(super) fn is_clear(&self, rect: &Rect) -> bool {
+        !self
+            .obstacles
+            .iter()
+            .any(|o| o.keep == Keep::Off && o.rect.overlaps(rect))
+    }
+}
+
+/// Boxes that cover the strokes of an item; a curve is covered chord by chord.
+pub(super) fn strokes(item: &Item) -> Vec<Rect> {
+    match item {
+        Item::Path(path) => {
+            let half = path.stroke.map_or(0.05, |s| s.width / 2.0);
+            let points = flattened(path);
+            points
+                .windows(2)
+                .map(|w| Rect::line(w[0], w[1], half))
+                .collect()
+        }
+        Item::Circle {
+            centre,
+            radius,
+            stroke,
+            ..
+        } => {
+            let half = radius + stroke.map_or(0.0, |s| s.width / 2.0);
+            vec![Rect::upright(*centre, half, half)]
+        }
+        Item::Label(label) => vec![label.rect()],
+    }
+}
+
+/// The path as a polyline, eight chords a curve.
+fn flattened(path: &Path) -> Vec<P2> {
+    let mut points = vec![path.start];
+    let mut from = path.start;
+    for piece in &path.pieces {
+        match *piece {
+            Piece::Line(p) => {
+                points.push(p);
+                from = p;
+            }
+            Piece::Cubic(a, b, p) => {
+                for i in 1..=8 {
+                    let t = f64::from(i) / 8.0;
+                    let w = 1.0 - t;
+                    points.push(
+                        from * (w * w * w)
+                            + a * (3.0 * w * w * t)
+                            + b * (3.0 * w * t * t)
+                            + p * (t * t * t),
+                    );
+                }
+                from = p;
+            }
+        }
+    }
+    if path.closed {
+        points.push(path.start);
+    }
+    points
+}
+
+/// Boxes of an item's strokes if labels must keep off it: everything but labels, thin aids
+/// (extension lines, leads, outlines) and white shapes without outline.
+#[must_use]
+pub fn firm_strokes(item: &Item) -> Vec<Rect> {
+    let thin = |s: &Stroke| s.ink != Ink::Black || s.width < 0.35 * super::PT;
+    let firm = match item {
+        Item::Path(path) => path
+            .stroke
+            .as_ref()
+            .map_or(path.fill == Fill::Black, |s| !thin(s)),
+        Item::Circle { .. } => true,
+        Item::Label(_) => false,
+    };
+    if firm { strokes(item) } else { Vec::new() }
+}

@@ -1,0 +1,180 @@
+//! Dimension lines with their extension lines, oblique ticks and text.
+
+use super::canvas::Canvas;
+use super::drawing::{P2, Span, Stroke, Style};
+use super::place::{Candidate, around, dearer, rank, reading_angle};
+use super::rect::{Bounds, Rect, square};
+use super::scene::{Axis, Dimension};
+use super::shape::{break_mark, tick};
+use super::view::{View, unit};
+
+/// From what is drawn to the first dimension line, and from line to line (mm).
+const STEP: f64 = 6.5;
+/// Free to either side of a dimension line (mm).
+const BAND: f64 = 3.2;
+/// Gap between the point and its extension line (mm).
+const GAP: f64 = 1.6;
+/// How far an extension line passes the dimension line (mm).
+const PAST: f64 = 1.2;
+
+/// A dimension with its ends as drawn.
+pub(super) struct Placed<'a> {
+    /// As asked for.
+    pub(super) dimension: &'a Dimension,
+    /// Ends on the sheet.
+    pub(super) ends: [P2; 2],
+    /// Whether an end is a load point: such dimensions stand on the other side.
+    pub(super) to_load: bool,
+    /// Bounds of the runs.
+    pub(super) group: Bounds,
+    /// Whether it is not to scale.
+    pub(super) broken: bool,
+}
+
+/// A way of setting the dimension line off.
+#[derive(Clone, Copy)]
+struct Way {
+    out: P2,
+    feet: [P2; 2],
+    cost: f64,
+}
+
+/// Draws a dimension outside all that stands beside it.
+pub(super) fn draw_dimension(canvas: &mut Canvas<'_>, view: &View, placed: &Placed<'_>) {
+    let d = view.direction(placed.dimension.axis);
+    let ways = ways(canvas, view, placed);
+    let Some(way) = ways.into_iter().min_by(|a, b| a.cost.total_cmp(&b.cost)) else {
+        canvas.remarks.push(format!(
+            "the dimension {} lies along the line of sight",
+            placed.dimension.text
+        ));
+        return;
+    };
+    let [a, b] = way.feet;
+    for (foot, end) in [(a, placed.ends[0]), (b, placed.ends[1])] {
+        if (foot - end).dot(&way.out) > GAP {
+            canvas.aid(
+                end + way.out * GAP,
+                foot + way.out * PAST,
+                Stroke::black(0.3),
+            );
+        }
+    }
+    canvas.line(a, b, Stroke::black(0.4));
+    canvas.mark([tick(a, unit(d)), tick(b, unit(d))]);
+    if placed.broken {
+        canvas.mark(break_mark(a + (b - a) * 0.78, unit(b - a)));
+    }
+    want_text(canvas, placed, a, b, way.out);
+}
+
+/// The ways that the view offers: along another axis, to either side; none for a dimension along
+/// the line of sight.
+fn ways(canvas: &Canvas<'_>, view: &View, placed: &Placed<'_>) -> Vec<Way> {
+    let axis = placed.dimension.axis;
+    if view.direction(axis).norm() < 1e-9 {
+        return Vec::new();
+    }
+    let others = Axis::ALL
+        .into_iter()
+        .filter(|o| *o != axis && view.direction(*o).norm() > 1e-9);
+    others
+        .flat_map(|other| [1.0, -1.0].map(|sign| unit(view.direction(other) * sign)))
+        .map(|out| way(canvas, view, placed, out))
+        .collect()
+}
+
+/// Carries the line outward along `out` until it is clear, and rates the way: short, crossing
+/// little, on the wished side, away from the group.
+fn way(canvas: &Canvas<'_>, view: &View, placed: &Placed<'_>, out: P2) -> Way {
+    let d = unit(view.direction(placed.dimension.axis));
+    let normal = if square(d).dot(&out) > 0.0 {
+        square(d)
+    } else {
+        -square(d)
+    };
+    let ends = placed.ends;
+    let furthest = ends[0].dot(&normal).max(ends[1].dot(&normal));
+    let border = placed.group.span(&normal)[1];
+    let base = if view.flat {
+        furthest.max(border)
+    } else {
+        furthest
+    };
+    let at_level =
+        |level: f64| ends.map(|p| p + out * ((level - p.dot(&normal)) / out.dot(&normal)));
+    let clear =
+        |feet: &[P2; 2]| canvas.is_clear(&Rect::line(feet[0], feet[1], BAND).lengthened(1.0));
+    let levels = (0..80).map(|i| base + STEP + 0.5 * f64::from(i));
+    let feet = levels
+        .map(at_level)
+        .find(clear)
+        .unwrap_or_else(|| at_level(base + STEP));
+    let crossings = feet.iter().zip(&ends).filter(|(foot, end)| {
+        let line = Rect::line(*end + out * 2.5, **foot, 0.1);
+        (*foot - *end).dot(&out) > 2.5 && !canvas.is_clear(&line)
+    });
+    let middle = (ends[0] + ends[1]) / 2.0;
+    let inward = !view.flat && out.dot(&(middle - placed.group.centre())) < 0.0;
+    let against = out.dot(&wish(d, placed.to_load)) < 0.0;
+    let reach = (feet[0] - ends[0]).norm().max((feet[1] - ends[1]).norm());
+    let cost = reach
+        + 8.0 * f64::from(u8::try_from(crossings.count()).unwrap_or(u8::MAX))
+        + if inward { 12.0 } else { 0.0 }
+        + if against {
+            if view.flat { 60.0 } else { 6.0 }
+        } else {
+            0.0
+        };
+    Way { out, feet, cost }
+}
+
+/// The side where the line is looked for: below and to the left; above and to the right for
+/// dimensions that lead to a load.
+fn wish(d: P2, to_load: bool) -> P2 {
+    let own = if d.x.abs() > 0.5 {
+        P2::new(-0.1, 1.0)
+    } else {
+        P2::new(-1.0, 0.1)
+    };
+    if to_load { -own } else { own }
+}
+
+fn want_text(canvas: &mut Canvas<'_>, placed: &Placed<'_>, a: P2, b: P2, out: P2) {
+    let words = canvas.words(vec![Span::new(placed.dimension.text.clone(), Style::Plain)]);
+    let d = unit(b - a);
+    let angle = reading_angle(d);
+    let (along, up) = super::drawing::Label::directions(angle);
+    let size = words.size();
+    let lift = 0.7 + size[1] / 2.0;
+    let mut places = Vec::new();
+    for (part, cost) in [(0.5, 0.0), (0.4, 1.0), (0.6, 1.0), (0.3, 2.0), (0.7, 2.0)] {
+        let on = a + (b - a) * part;
+        places.push(Candidate {
+            centre: on + up * lift,
+            angle,
+            cost,
+        });
+        places.push(Candidate {
+            centre: on - up * lift,
+            angle,
+            cost: cost + 3.0,
+        });
+    }
+    // A span too short for its text: beside either end, on the line's own prolongation.
+    let length = (b - a).norm();
+    let beyond = length / 2.0 + 1.8 + size[0] / 2.0;
+    let middle = (a + b) / 2.0;
+    for (side, cost) in [(1.0, 6.0), (-1.0, 6.5)] {
+        places.push(Candidate {
+            centre: middle + along * (side * beyond),
+            angle,
+            cost,
+        });
+    }
+    if size[0] + 1.6 > length {
+        places.drain(..10);
+    }
+    places.extend(dearer(around(middle, 2.0, size, out), 9.0));
+    canvas.want(rank::DIMENSION, words, middle, places);
+}

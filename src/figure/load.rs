@@ -1,0 +1,406 @@
+//! Loads: their points, arrows and turning arrows, and the lead from the centroid.
+
+use super::canvas::{Canvas, Keep, Layer};
+use super::drawing::{Fill, Ink, Item, P2, Path, Span, Stroke, Style};
+use super::place::{Candidate, around, beside, dearer, rank};
+use super::rect::{Bounds, Rect};
+use super::scene::{Axis, Component, Load};
+use super::shape::{break_mark, circle, end_on, open_head, turning_arrow};
+use super::view::{View, unit};
+use crate::quantity::real::{atan2, cos, sin};
+
+/// Length of an arrow (mm).
+const ARROW: f64 = 13.0;
+/// Where an arrow starts, from the middle of the point's mark (mm).
+const START: f64 = 2.2;
+/// Between a force's head and the moment's arrow that follows on the same line (mm).
+const GAP: f64 = 2.0;
+/// Radius of a turning arrow (mm).
+const TURN: f64 = 6.5;
+/// Radius of a load point's mark (mm).
+const POINT: f64 = 1.3;
+/// Sweeps of a turning arrow, 200° and, where arrows leave no such opening, 120° (rad).
+const SWEEPS: [f64; 2] = [
+    200.0 * std::f64::consts::PI / 180.0,
+    120.0 * std::f64::consts::PI / 180.0,
+];
+/// A load point further outside the group than this many times the group's size is drawn nearer.
+const FAR: f64 = 2.0;
+/// A load point nearer than this to the centroid shares its mark and letters (mm).
+pub(super) const AT_CENTROID: f64 = 1.0;
+/// Where it is drawn instead, in the same measure, and the least distance on the sheet (mm).
+const NEARER: f64 = 0.6;
+const LEAST: f64 = 26.0;
+
+/// Where a load point is drawn.
+#[derive(Clone, Copy, Debug)]
+pub(super) struct Spot {
+    /// On the sheet.
+    pub(super) at: P2,
+    /// Whether that is nearer than to scale.
+    pub(super) broken: bool,
+}
+
+/// Finds the spot of a point on the sheet: its place to scale, or, where that is far out, a nearer
+/// one on the same line from `centre`.
+pub(super) fn spot(at: P2, group: &Bounds, centre: P2) -> Spot {
+    let d = at - centre;
+    let distance = d.norm();
+    let size = group.size().norm().max(1e-9);
+    let inside = exit(group, centre, unit(d));
+    if distance - inside <= FAR * size {
+        return Spot { at, broken: false };
+    }
+    let shown = inside + (NEARER * size).max(LEAST);
+    if shown >= distance {
+        Spot { at, broken: false }
+    } else {
+        Spot {
+            at: centre + unit(d) * shown,
+            broken: true,
+        }
+    }
+}
+
+/// How far it is from a point inside upright bounds to their border along a unit vector.
+fn exit(bounds: &Bounds, from: P2, d: P2) -> f64 {
+    let reach = |i: usize| {
+        let edge = if d[i] > 0.0 {
+            bounds.max[i]
+        } else {
+            bounds.min[i]
+        };
+        if d[i].abs() < 1e-9 {
+            f64::INFINITY
+        } else {
+            ((edge - from[i]) / d[i]).max(0.0)
+        }
+    };
+    let least = reach(0).min(reach(1));
+    if least.is_finite() { least } else { 0.0 }
+}
+
+/// Draws a load at its spot; `centre` is where its lead starts.
+pub(super) fn draw_load(canvas: &mut Canvas<'_>, view: &View, load: &Load, spot: Spot, centre: P2) {
+    draw_lead(canvas, load, spot, centre);
+    let end_on_force = nonzero(&load.force).find(|c| faces_reader(view, c.axis));
+    let quiet = quiet_direction(&arrow_directions(view, load), spot.at - centre);
+    draw_point(canvas, load, spot.at, centre, quiet, end_on_force);
+    let mut used: Vec<(P2, f64)> = Vec::new();
+    for component in nonzero(&load.force).filter(|c| !faces_reader(view, c.axis)) {
+        draw_arrow(canvas, view, component, spot.at, Kind::Force, &mut used);
+    }
+    for component in nonzero(&load.moment).filter(|c| !faces_reader(view, c.axis)) {
+        draw_arrow(canvas, view, component, spot.at, Kind::Moment, &mut used);
+    }
+    if let Some(turn) = nonzero(&load.moment).find(|c| faces_reader(view, c.axis)) {
+        let mut busy: Vec<P2> = used.iter().map(|(d, _)| *d).collect();
+        if (centre - spot.at).norm() > TURN {
+            busy.push(unit(centre - spot.at));
+        }
+        draw_turn(canvas, turn, spot.at, &busy);
+    }
+}
+
+/// Directions on the sheet of the arrows that a load will have.
+fn arrow_directions(view: &View, load: &Load) -> Vec<P2> {
+    nonzero(&load.force)
+        .chain(nonzero(&load.moment))
+        .map(|c| view.direction(c.axis) * c.value.signum())
+        .filter(|d| d.norm() > 1e-9)
+        .collect()
+}
+
+/// The direction of the compass furthest from all arrows and from the lead, where the letters of a
+/// load point are told apart best; the first of equals, from the upper right on.
+fn quiet_direction(arrows: &[P2], from_centre: P2) -> P2 {
+    let mut busy = arrows.to_vec();
+    if from_centre.norm() > TURN {
+        busy.push(-unit(from_centre));
+    }
+    let eighth = std::f64::consts::FRAC_PI_4;
+    let mut found = (P2::zeros(), f64::INFINITY);
+    for i in 1..9 {
+        let turn = eighth * f64::from(i);
+        let d = P2::new(cos(turn), -sin(turn));
+        let nearest = busy.iter().map(|b| b.dot(&d)).fold(-1.0, f64::max);
+        if nearest < found.1 - 1e-9 {
+            found = (d, nearest);
+        }
+    }
+    found.0
+}
+
+fn nonzero(components: &[Component]) -> impl Iterator<Item = &Component> {
+    components.iter().filter(|c| c.value.abs() > 0.0)
+}
+
+fn faces_reader(view: &View, axis: Axis) -> bool {
+    view.direction(axis).norm() < 1e-9
+}
+
+/// `F_y = −4200 N`.
+fn symbol(kind: Kind, component: &Component) -> Vec<Span> {
+    let letter = match kind {
+        Kind::Force => "F",
+        Kind::Moment => "M",
+    };
+    vec![
+        Span::new(letter, Style::Italic),
+        Span::new(component.axis.letter(), Style::Sub),
+        Span::new(format!(" = {}", component.text), Style::Plain),
+    ]
+}
+
+/// Whether an arrow is a force's or a moment's.
+#[derive(Clone, Copy, PartialEq, Eq)]
+enum Kind {
+    Force,
+    Moment,
+}
+
+/// The thin dashed line from the centroid to the load point, broken if it is not to scale.
+fn draw_lead(canvas: &mut Canvas<'_>, load: &Load, spot: Spot, centre: P2) {
+    let d = unit(spot.at - centre);
+    let length = (spot.at - centre).norm();
+    if length < 8.0 {
+        return;
+    }
+    let (a, b) = (centre + d * 3.0, spot.at - d * START);
+    canvas.aid(a, b, Stroke::grey(0.4).dashed());
+    if !spot.broken {
+        return;
+    }
+    let middle = centre + d * (length * 0.72);
+    canvas.mark(break_mark(middle, d));
+    canvas
+        .remarks
+        .push(format!("the distance to {} is broken", load.label));
+    if !load.distance.is_empty() {
+        let words = canvas.words(vec![Span::new(load.distance.clone(), Style::Plain)]);
+        let mut places = beside(
+            middle - d * 6.0,
+            middle + d * 6.0,
+            1.0,
+            words.size(),
+            -P2::y(),
+            true,
+        );
+        places.extend(dearer(around(middle, 2.4, words.size(), -P2::y()), 5.0));
+        canvas.want(rank::DIMENSION, words, middle, places);
+    }
+}
+
+/// The point's mark and letter: a small circle, or the end of a force along the line of sight. At
+/// the centroid its letter stands with the centroid's.
+fn draw_point(
+    canvas: &mut Canvas<'_>,
+    load: &Load,
+    at: P2,
+    centre: P2,
+    quiet: P2,
+    end: Option<&Component>,
+) {
+    let at_centroid = (at - centre).norm() < AT_CENTROID;
+    if let Some(force) = end {
+        canvas.mark(end_on(at, 1.7, force.value > 0.0, Stroke::black(0.9)));
+        let words = canvas.words(symbol(Kind::Force, force));
+        let mut places = around(at, 2.4, words.size(), quiet);
+        places.extend(dearer(around(at, 5.0, words.size(), quiet), 3.0));
+        canvas.want(rank::LETTER, words, at, places);
+    } else if !at_centroid {
+        canvas.mark([circle(at, POINT, Stroke::grey(0.6), Fill::White)]);
+    }
+    let letters = if at_centroid {
+        format!("C, {}", load.label)
+    } else {
+        load.label.clone()
+    };
+    let mut spans = vec![Span::new(letters, Style::Italic)];
+    if !load.aside.is_empty() {
+        spans.push(Span::new(format!(", {}", load.aside), Style::Plain));
+    }
+    let words = canvas.words(spans);
+    let mut places = around(at, 2.4, words.size(), quiet);
+    for (clear, cost) in [(3.6, 3.0), (5.5, 5.0)] {
+        places.extend(dearer(around(at, clear, words.size(), quiet), cost));
+    }
+    canvas.want(rank::LETTER, words, at, places);
+}
+
+/// An arrow along an axis; a moment has two heads.
+fn draw_arrow(
+    canvas: &mut Canvas<'_>,
+    view: &View,
+    component: &Component,
+    at: P2,
+    kind: Kind,
+    used: &mut Vec<(P2, f64)>,
+) {
+    let d = view.direction(component.axis) * component.value.signum();
+    let start = arrow_start(canvas, at, d, used);
+    let (a, tip) = (at + d * start, at + d * (start + ARROW));
+    used.push(if start > 0.0 {
+        (d, start + ARROW)
+    } else {
+        (-d, -start)
+    });
+    let stroke = Stroke::black(1.1);
+    let mut parts = vec![
+        Item::Path(Path::through(&[a, tip], stroke)),
+        open_head(tip, d, stroke),
+    ];
+    if kind == Kind::Moment {
+        parts.push(open_head(tip - d * 2.0, d, stroke));
+    }
+    for part in &parts {
+        canvas.draw(Layer::Mark, halo(part));
+    }
+    canvas.mark(parts);
+    let words = canvas.words(symbol(kind, component));
+    let places = arrow_places([a, tip], d, words.size());
+    canvas.want(rank::LOAD, words, (a + tip) / 2.0, places);
+}
+
+/// Where an arrow starts, measured from the point along its direction: at the point; or beyond an
+/// arrow on the same line; or behind the point, with its head at it. The first that crosses no run.
+fn arrow_start(canvas: &Canvas<'_>, at: P2, d: P2, used: &[(P2, f64)]) -> f64 {
+    let end = |d: P2| {
+        used.iter()
+            .filter(|(e, _)| e.dot(&d) > 0.99)
+            .map(|(_, end)| end + GAP)
+            .fold(START, f64::max)
+    };
+    let (ahead, behind) = (end(d), -end(-d) - ARROW);
+    let crosses = |start: f64| {
+        let rect = Rect::line(at + d * start, at + d * (start + ARROW), 1.0);
+        canvas.welds.iter().any(|w| w.overlaps(&rect))
+    };
+    if ahead > START && crosses(ahead) && !crosses(behind) {
+        behind
+    } else {
+        ahead
+    }
+}
+
+/// A white line under a stroke, so that it can be told from a run that it crosses.
+fn halo(item: &Item) -> Item {
+    let Item::Path(path) = item else {
+        return item.clone();
+    };
+    let stroke = path.stroke.map(|s| Stroke {
+        width: s.width + 0.9,
+        ink: Ink::White,
+        dashed: false,
+    });
+    Item::Path(Path {
+        stroke,
+        ..path.clone()
+    })
+}
+
+/// Places beside an arrow's shaft and around its head.
+fn arrow_places([a, tip]: [P2; 2], d: P2, size: [f64; 2]) -> Vec<Candidate> {
+    let toward = if d.y.abs() < 0.2 { -P2::y() } else { P2::x() };
+    let mut places = beside(a, tip, 1.6, size, toward, false);
+    places.extend(dearer(around(tip, 1.2, size, d), 1.0));
+    places.extend(dearer(around(tip, 3.5, size, d), 4.0));
+    places.extend(dearer(beside(a, tip, 4.5, size, toward, false), 5.0));
+    places
+}
+
+/// A turning arrow about the point, in the widest opening between the arrows.
+fn draw_turn(canvas: &mut Canvas<'_>, component: &Component, at: P2, busy: &[P2]) {
+    let sense = component.value.signum();
+    let (wide, narrow) = (
+        opening(busy, sense, SWEEPS[0]),
+        opening(busy, sense, SWEEPS[1]),
+    );
+    let ((from, crossed), sweep) = if wide.1 > 0 {
+        (narrow, SWEEPS[1])
+    } else {
+        (wide, SWEEPS[0])
+    };
+    let (from, sweep) = if crossed > 0 {
+        (wide.0, SWEEPS[0])
+    } else {
+        (from, sweep)
+    };
+    let stroke = Stroke::black(1.1);
+    canvas.mark(turning_arrow(at, TURN, from, sense * sweep, stroke));
+    let middle = from + sense * sweep / 2.0;
+    let out = P2::new(cos(middle), -sin(middle));
+    let words = canvas.words(symbol(Kind::Moment, component));
+    let mut places = around(at, TURN + 1.6, words.size(), out);
+    places.extend(dearer(around(at, TURN + 4.0, words.size(), out), 4.0));
+    places.extend(dearer(around(at, TURN + 9.0, words.size(), out), 8.0));
+    canvas.want(rank::TURN, words, at + out * TURN, places);
+}
+
+/// The start angle, in steps of 15°, at which the arc crosses the fewest of the busy directions and
+/// keeps its ends furthest from them; and how many it crosses.
+fn opening(busy: &[P2], sense: f64, sweep: f64) -> (f64, usize) {
+    let turn = std::f64::consts::TAU;
+    let mut found = (0.0, usize::MAX, f64::NEG_INFINITY);
+    for i in 0..24 {
+        let from = turn / 24.0 * f64::from(i);
+        let clear: Vec<f64> = busy
+            .iter()
+            .map(|d| ((atan2(-d.y, d.x) - from) * sense).rem_euclid(turn))
+            .map(|after| (after - sweep).min(turn - after))
+            .collect();
+        // An arrow nearer to the arc's end than a head is wide counts as crossed.
+        let crossed = clear.iter().filter(|c| **c < 0.2).count();
+        let space: f64 = clear.iter().map(|c| c.clamp(0.0, 0.5)).sum();
+        if crossed < found.1 || (crossed == found.1 && space > found.2 + 1e-9) {
+            found = (from, crossed, space);
+        }
+    }
+    (found.0, found.1)
+}
+
+/// The outline of the attached part, thin and grey.
+pub(super) fn draw_outline(canvas: &mut Canvas<'_>, points: &[P2]) {
+    let item = Item::Path(Path::through(points, Stroke::grey(0.4)));
+    canvas.draw_kept(Layer::Aid, item, Keep::OffIfPossible);
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    /// Source: the rule stated above: 200° fit between two arrows a right angle apart.
+    #[test]
+    fn a_turning_arrow_crosses_no_arrow_where_there_is_room() {
+        let busy = [P2::new(1.0, 0.0), P2::new(0.0, 1.0)];
+        for sense in [1.0, -1.0] {
+            let (from, crossed) = opening(&busy, sense, SWEEPS[0]);
+            assert_eq!(crossed, 0, "there is room for 200°");
+            for d in busy {
+                let turn = std::f64::consts::TAU;
+                let after = ((atan2(-d.y, d.x) - from) * sense).rem_euclid(turn);
+                assert!(
+                    after > SWEEPS[0],
+                    "the arc from {from} passes over an arrow"
+                );
+            }
+        }
+    }
+
+    /// Source: geometry: from the middle of a 4 by 2 box it is 2 to the right and √2 at 45°.
+    #[test]
+    fn the_border_is_found_from_inside() {
+        let mut bounds = Bounds::empty();
+        bounds.add(P2::new(-2.0, -1.0), 0.0);
+        bounds.add(P2::new(2.0, 1.0), 0.0);
+        let diagonal = P2::new(1.0, 1.0).normalize();
+        assert!(
+            (exit(&bounds, P2::zeros(), P2::x()) - 2.0).abs() < 1e-12,
+            "to the right"
+        );
+        assert!(
+            (exit(&bounds, P2::zeros(), diagonal) - 2.0_f64.sqrt()).abs() < 1e-12,
+            "at 45°"
+        );
+    }
+}

@@ -1,0 +1,486 @@
+//! The worked calculation: every value of a note, with its formula, its place and its printed digits.
+//!
+//! **Invariant**: no number reaches a page except through an [`Entry`].
+
+use super::digits::Printed;
+use super::eval::{Look, evaluate};
+use super::node::Node;
+use super::symbol::Symbol;
+use super::table::Table;
+use super::{FormulaError, Problem, dimension, parse};
+use crate::quantity::{Dim, Given, UnitSet, real};
+use crate::source::Place;
+use std::collections::{BTreeMap, BTreeSet};
+
+/// Significant digits that every value starts with.
+pub(super) const START_DIGITS: usize = 4;
+
+/// Digits within which a converted input is printed exactly, such as 7.9375 mm for 5/16 in.
+const CONVERTED_DIGITS: usize = 8;
+
+/// Values under this share of the natural size of their dimension print 0: far above rounding noise
+/// of double precision, far below what a joint can feel.
+const FLOOR: f64 = 1e-9;
+
+/// A value of the ledger.
+#[derive(Clone, Copy, PartialEq, Eq, PartialOrd, Ord, Debug)]
+pub struct Value(pub(super) usize);
+
+/// Where a line comes from, for the checker's margin.
+#[derive(Clone, PartialEq, Debug)]
+pub enum Origin {
+    /// A document and clause.
+    Clause(String),
+    /// Geometry, statics, or a numbered part of the published method.
+    Method(String),
+    /// A place in a user's file.
+    Input(Place),
+}
+
+/// What a line rests on that somebody has still to verify.
+pub type Mark = String;
+
+/// What a name stands for in a formula.
+#[derive(Clone, PartialEq, Debug)]
+pub enum Bound {
+    /// A value of the ledger.
+    Value(Value),
+    /// A word, the key of a table.
+    Word(String),
+}
+
+/// A set to sum over.
+#[derive(Clone, PartialEq, Debug, Default)]
+pub struct SumSet {
+    /// Index letter on the page.
+    pub index: String,
+    /// Symbol of each column, without index.
+    pub symbols: BTreeMap<String, Symbol>,
+    /// Members in print order: the value of each column.
+    pub members: Vec<BTreeMap<String, Value>>,
+}
+
+/// What the names of formulas stand for.
+#[derive(Clone, PartialEq, Debug, Default)]
+pub struct Env {
+    /// Quantities and words by name.
+    pub names: BTreeMap<String, Bound>,
+    /// Sets by name.
+    pub sets: BTreeMap<String, SumSet>,
+    /// Tables by name.
+    pub tables: BTreeMap<String, Table>,
+}
+
+impl Env {
+    /// Binds a name to a value.
+    pub fn bind(&mut self, name: &str, value: Value) {
+        self.names.insert(name.to_owned(), Bound::Value(value));
+    }
+
+    /// The part of the environment that one formula uses.
+    fn used_by(&self, node: &Node) -> Self {
+        let mut used = Self::default();
+        node.walk(&mut |node| match &node.kind {
+            super::node::Kind::Name(name) => {
+                if let Some(bound) = self.names.get(name) {
+                    used.names.insert(name.clone(), bound.clone());
+                }
+            }
+            super::node::Kind::Sum { set, .. } => {
+                if let Some(known) = self.sets.get(set) {
+                    used.sets.insert(set.clone(), known.clone());
+                }
+            }
+            super::node::Kind::Lookup { table, .. } => {
+                if let Some(known) = self.tables.get(table) {
+                    used.tables.insert(table.clone(), known.clone());
+                }
+            }
+            _ => {}
+        });
+        used
+    }
+}
+
+/// What kind of line an entry is.
+#[derive(Clone, PartialEq, Debug)]
+pub enum Kind {
+    /// An input as typed, in the printing set.
+    Given(Given),
+    /// An input in another unit: its conversion is a line of its own.
+    Converted {
+        /// The input as typed.
+        given: Given,
+        /// The conversion.
+        node: Node,
+    },
+    /// A formula: its printed numbers replay to its printed value.
+    Step {
+        /// The tree.
+        node: Node,
+        /// The text.
+        text: String,
+        /// The names that it uses.
+        env: Env,
+    },
+    /// A value found by a method, followed by steps that verify it.
+    Found {
+        /// The method.
+        method: String,
+    },
+    /// A bound that holds: the value itself is noise and is never printed.
+    Bound {
+        /// The value must be at most this.
+        limit: f64,
+    },
+}
+
+/// A value with all that the page says of it.
+#[derive(Clone, PartialEq, Debug)]
+pub struct Entry {
+    /// Stable id.
+    pub id: String,
+    /// Symbol.
+    pub symbol: Symbol,
+    /// One line saying what it is.
+    pub says: String,
+    /// What kind of line it is.
+    pub kind: Kind,
+    /// The value in the printing set; rad for angles.
+    pub value: f64,
+    /// Its dimension.
+    pub dim: Dim,
+    /// Where it comes from.
+    pub origin: Origin,
+    /// What of it is still to be verified.
+    pub mark: Option<Mark>,
+    /// Whether the sign of the result is always printed (margins).
+    pub signed: bool,
+    /// What the checker's margin calls it, such as `step 12` or `table 2`; empty until the note is laid out.
+    pub no: String,
+    /// The id that links lead to: its own, or that of the table row it stands in.
+    pub anchor: String,
+    /// Significant digits it is printed with.
+    pub(super) digits: usize,
+}
+
+/// What is needed to add a line.
+#[derive(Clone, Debug)]
+pub struct Draft<'a> {
+    /// Stable id: letters, digits, `.` and `-`.
+    pub id: String,
+    /// Symbol.
+    pub symbol: Symbol,
+    /// One line saying what it is.
+    pub says: String,
+    /// Plain algebra.
+    pub formula: &'a str,
+    /// Where it comes from.
+    pub origin: Origin,
+    /// The declared dimension; the formula's own if `None`.
+    pub dim: Option<Dim>,
+}
+
+/// The worked calculation of one note.
+#[derive(Clone, Debug)]
+pub struct Ledger {
+    units: UnitSet,
+    /// Natural sizes of force and length, for the floors.
+    scales: (f64, f64),
+    entries: Vec<Entry>,
+}
+
+impl Ledger {
+    /// An empty ledger; `force` and `length` are the natural sizes of the joint, for the floors under
+    /// which values print 0.
+    #[must_use]
+    pub fn new(units: UnitSet, force: f64, length: f64) -> Self {
+        Self { units, scales: (force, length), entries: Vec::new() }
+    }
+
+    /// The printing set.
+    #[must_use]
+    pub const fn units(&self) -> UnitSet {
+        self.units
+    }
+
+    /// An entry.
+    #[must_use]
+    pub fn get(&self, value: Value) -> &Entry {
+        &self.entries[value.0]
+    }
+
+    /// An entry, to number it or mark it.
+    pub fn get_mut(&mut self, value: Value) -> &mut Entry {
+        &mut self.entries[value.0]
+    }
+
+    /// Every value, in the order of its making.
+    pub fn values(&self) -> impl Iterator<Item = Value> + use<> {
+        (0..self.entries.len()).map(Value)
+    }
+
+    /// The value with an id.
+    #[must_use]
+    pub fn find(&self, id: &str) -> Option<Value> {
+        self.entries.iter().position(|entry| entry.id == id).map(Value)
+    }
+
+    /// The absolute floor of a dimension, under which a value prints 0.
+    #[must_use]
+    pub fn floor(&self, dim: Dim) -> f64 {
+        let part = |scale: f64, twelfths: i16| real::power(scale, f64::from(twelfths) / 12.0);
+        FLOOR * part(self.scales.0, dim.force) * part(self.scales.1, dim.length)
+    }
+
+    fn push(&mut self, entry: Entry) -> Value {
+        self.entries.push(entry);
+        Value(self.entries.len() - 1)
+    }
+
+    /// Adds an input; another unit than the printing set's makes a conversion line.
+    pub fn given(&mut self, id: String, symbol: Symbol, says: String, given: &Given, origin: Origin) -> Value {
+        let kind = if given.is_converted() {
+            let node = parse(&conversion_text(given)).expect("a conversion is plain arithmetic");
+            Kind::Converted { given: given.clone(), node }
+        } else {
+            Kind::Given(given.clone())
+        };
+        self.push(Entry {
+            anchor: id.clone(),
+            id,
+            symbol,
+            says,
+            kind,
+            value: given.value,
+            dim: given.dim,
+            origin,
+            mark: None,
+            signed: false,
+            no: String::new(),
+            digits: START_DIGITS,
+        })
+    }
+
+    /// Adds a step: parses its formula, checks its dimension, evaluates it.
+    ///
+    /// # Errors
+    ///
+    /// [`FormulaError`] with the formula's text and place.
+    pub fn step(&mut self, draft: Draft<'_>, env: &Env) -> Result<Value, FormulaError> {
+        let node = parse(draft.formula)?;
+        let look = EntryLook { ledger: self, env, printed: false, shift: None };
+        let dim = dimension(&node, draft.formula, &look)?;
+        if let Some(wanted) = draft.dim
+            && wanted != dim
+        {
+            let problem = Problem::Declared { found: dim.word(), wanted: wanted.word() };
+            return Err(FormulaError { text: draft.formula.to_owned(), span: 0..draft.formula.len(), problem });
+        }
+        let value = evaluate(&node, draft.formula, &look)?;
+        let env = env.used_by(&node);
+        Ok(self.push(Entry {
+            anchor: draft.id.clone(),
+            id: draft.id,
+            symbol: draft.symbol,
+            says: draft.says,
+            kind: Kind::Step { node, text: draft.formula.to_owned(), env },
+            value,
+            dim,
+            origin: draft.origin,
+            mark: None,
+            signed: false,
+            no: String::new(),
+            digits: START_DIGITS,
+        }))
+    }
+
+    /// Adds a value found by a method; steps that verify it should follow.
+    pub fn found(&mut self, draft: Draft<'_>, value: f64, dim: Dim) -> Value {
+        self.push(Entry {
+            anchor: draft.id.clone(),
+            id: draft.id,
+            symbol: draft.symbol,
+            says: draft.says,
+            kind: Kind::Found { method: draft.formula.to_owned() },
+            value,
+            dim,
+            origin: draft.origin,
+            mark: None,
+            signed: false,
+            no: String::new(),
+            digits: START_DIGITS,
+        })
+    }
+
+    /// Adds a bound: `value` is at most `limit`; only the bound is printed.
+    pub fn bound(&mut self, draft: Draft<'_>, value: f64, limit: f64) -> Value {
+        self.push(Entry {
+            anchor: draft.id.clone(),
+            id: draft.id,
+            symbol: draft.symbol,
+            says: draft.says,
+            kind: Kind::Bound { limit },
+            value,
+            dim: Dim::NONE,
+            origin: draft.origin,
+            mark: None,
+            signed: false,
+            no: String::new(),
+            digits: START_DIGITS,
+        })
+    }
+
+    /// The number as it is printed everywhere; degrees for an angle.
+    #[must_use]
+    pub fn printed(&self, value: Value) -> Printed {
+        let entry = self.get(value);
+        let shown = if entry.dim == Dim::ANGLE { entry.value.to_degrees() } else { entry.value };
+        match &entry.kind {
+            Kind::Given(given) => {
+                let typed_degrees = given.unit.as_deref().is_none_or(|unit| unit != "rad");
+                if typed_degrees {
+                    Printed::typed(&given.number, given.typed)
+                } else {
+                    Printed::of(shown, entry.digits, CONVERTED_DIGITS, 0.0)
+                }
+            }
+            Kind::Converted { .. } => Printed::of(shown, entry.digits, CONVERTED_DIGITS, 0.0),
+            Kind::Step { .. } | Kind::Found { .. } => {
+                Printed::of(shown, entry.digits, entry.digits, self.floor(entry.dim))
+            }
+            Kind::Bound { limit } => Printed::of(*limit, 1, 1, 0.0),
+        }
+    }
+
+    /// The number that the printed text stands for, in the printing set; rad for an angle.
+    #[must_use]
+    pub fn printed_value(&self, value: Value) -> f64 {
+        let printed = self.printed(value).value();
+        if self.get(value).dim == Dim::ANGLE { printed.to_radians() } else { printed }
+    }
+
+    /// The values that a line's numbers come from, in the order of its formula, each once.
+    #[must_use]
+    pub fn uses(&self, value: Value) -> Vec<Value> {
+        let Kind::Step { node, env, .. } = &self.get(value).kind else { return Vec::new() };
+        let mut uses = Vec::new();
+        let mut add = |used: Value| {
+            if !uses.contains(&used) {
+                uses.push(used);
+            }
+        };
+        let mut in_sum: Vec<&SumSet> = Vec::new();
+        node.walk(&mut |node| match &node.kind {
+            super::node::Kind::Sum { set, .. } => in_sum.extend(env.sets.get(set)),
+            super::node::Kind::Name(name) => {
+                if let Some(Bound::Value(used)) = env.names.get(name) {
+                    add(*used);
+                }
+                for set in &in_sum {
+                    set.members.iter().filter_map(|member| member.get(name)).for_each(|used| add(*used));
+                }
+            }
+            _ => {}
+        });
+        uses
+    }
+
+    /// Everything still to be verified that a value rests on, directly or through its operands.
+    #[must_use]
+    pub fn marks_behind(&self, value: Value) -> BTreeSet<Mark> {
+        let mut marks = BTreeSet::new();
+        let mut seen = BTreeSet::new();
+        let mut open = vec![value];
+        while let Some(next) = open.pop() {
+            if seen.insert(next) {
+                marks.extend(self.get(next).mark.clone());
+                open.extend(self.uses(next));
+            }
+        }
+        marks
+    }
+}
+
+/// The conversion of an input as plain arithmetic, such as `(-4.2)*10^3`.
+fn conversion_text(given: &Given) -> String {
+    let number = match given.number.trim().rsplit_once(' ') {
+        Some((whole, fraction)) if fraction.contains('/') && !whole.ends_with('/') => {
+            let sign = if whole.starts_with('-') { "-" } else { "" };
+            format!("{sign}({} + {fraction})", whole.trim_start_matches('-'))
+        }
+        _ => Printed::typed(&given.number, given.typed).algebra(),
+    };
+    let number = if given.number.contains('/') && !number.contains('(') { given.number.clone() } else { number };
+    let mut text = number;
+    for factor in &given.conversion.factors {
+        let sign = if factor.power < 0 && factor.number != 10.0 { "/" } else { "*" };
+        let power = if factor.number == 10.0 { factor.power } else { factor.power.abs() };
+        text.push_str(sign);
+        match power {
+            1 => text.push_str(&format!("{}", factor.number)),
+            power if power < 0 => text.push_str(&format!("{}^(-{})", factor.number, -power)),
+            power => text.push_str(&format!("{}^{power}", factor.number)),
+        }
+    }
+    text
+}
+
+/// Names looked up in the ledger, by full values or by printed ones.
+pub(super) struct EntryLook<'a> {
+    pub(super) ledger: &'a Ledger,
+    pub(super) env: &'a Env,
+    /// Whether names give their printed values.
+    pub(super) printed: bool,
+    /// A value moved by an amount, to see what its rounding does.
+    pub(super) shift: Option<(Value, f64)>,
+}
+
+impl EntryLook<'_> {
+    /// The value of the ledger that a name stands for.
+    pub(super) fn resolve(&self, name: &str, member: Option<(&str, usize)>) -> Option<Value> {
+        let in_set = member.and_then(|(set, index)| self.env.sets.get(set)?.members.get(index)?.get(name));
+        in_set.copied().or_else(|| match self.env.names.get(name)? {
+            Bound::Value(value) => Some(*value),
+            Bound::Word(_) => None,
+        })
+    }
+}
+
+impl Look for EntryLook<'_> {
+    fn units(&self) -> UnitSet {
+        self.ledger.units
+    }
+
+    fn dim(&self, name: &str, set: Option<&str>) -> Option<Dim> {
+        self.resolve(name, set.map(|set| (set, 0))).map(|value| self.ledger.get(value).dim)
+    }
+
+    fn value(&self, name: &str, member: Option<(&str, usize)>) -> Option<f64> {
+        let value = self.resolve(name, member)?;
+        let plain = if self.printed { self.ledger.printed_value(value) } else { self.ledger.get(value).value };
+        let moved = self.shift.filter(|(shifted, _)| *shifted == value).map_or(0.0, |(_, by)| by);
+        Some(plain + moved)
+    }
+
+    fn word(&self, name: &str) -> Option<&str> {
+        match self.env.names.get(name)? {
+            Bound::Word(word) => Some(word),
+            Bound::Value(_) => None,
+        }
+    }
+
+    fn members(&self, set: &str) -> Option<usize> {
+        self.env.sets.get(set).map(|set| set.members.len())
+    }
+
+    fn table(&self, name: &str) -> Option<&Table> {
+        self.env.tables.get(name)
+    }
+
+    fn known(&self) -> Vec<&str> {
+        let names = self.env.names.keys().map(String::as_str);
+        let columns = self.env.sets.values().flat_map(|set| set.symbols.keys().map(String::as_str));
+        names.chain(columns).chain(self.env.sets.keys().map(String::as_str)).collect()
+    }
+}

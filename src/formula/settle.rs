@@ -1,0 +1,143 @@
+//! How many digits each value is printed with.
+//!
+//! Every value starts with four significant digits. A line whose printed operands do not give its
+//! printed result, to one unit in the last digit, has the operand raised whose half-unit error moves
+//! the result most; that operand is then printed with the new digits everywhere. Repeated to a bound.
+
+use super::ledger::{EntryLook, Kind, Ledger, Value};
+use super::{FormulaError, Problem, evaluate};
+use crate::quantity::{Dim, real};
+use std::collections::VecDeque;
+
+/// No value is printed with more digits than this; beyond, the note refuses.
+const MOST_DIGITS: usize = 13;
+
+impl Ledger {
+    /// Raises printed digits until every step replays.
+    ///
+    /// # Errors
+    ///
+    /// [`Problem::Unsettled`] if a line needs an operand beyond the bound of 13 digits.
+    pub fn settle(&mut self) -> Result<(), FormulaError> {
+        let users = self.users();
+        let mut queue: VecDeque<Value> = self.values().collect();
+        let mut waiting = vec![true; queue.len()];
+        while let Some(value) = queue.pop_front() {
+            waiting[value.0] = false;
+            while let Some(raised) = self.raise_for(value)? {
+                for other in users[raised.0].iter().copied().chain([raised]) {
+                    if other != value && !waiting[other.0] {
+                        waiting[other.0] = true;
+                        queue.push_back(other);
+                    }
+                }
+            }
+        }
+        Ok(())
+    }
+
+    /// For each value, the lines whose formulas use it.
+    fn users(&self) -> Vec<Vec<Value>> {
+        let mut users = vec![Vec::new(); self.values().count()];
+        for value in self.values() {
+            for used in self.uses(value) {
+                users[used.0].push(value);
+            }
+        }
+        users
+    }
+
+    /// The miss of a replay in units of the last printed digit; `None` for a line that has no formula.
+    ///
+    /// # Errors
+    ///
+    /// [`FormulaError`] if the printed numbers do not evaluate.
+    pub fn replay_miss(&self, value: Value) -> Result<Option<f64>, FormulaError> {
+        let Kind::Step { node, text, env } = &self.get(value).kind else { return Ok(None) };
+        let look = EntryLook { ledger: self, env, printed: true, shift: None };
+        let replayed = self.shown(value, evaluate(node, text, &look)?);
+        let printed = self.printed(value);
+        let unit = if printed.is_zero() { self.unit_of_zero(value) } else { self.unit(value) };
+        Ok(Some((replayed - printed.value()).abs() / unit))
+    }
+
+    /// The value as printed: degrees for an angle.
+    fn shown(&self, value: Value, number: f64) -> f64 {
+        if self.get(value).dim == Dim::ANGLE { number.to_degrees() } else { number }
+    }
+
+    /// One unit in the last digit that the value is held to: the printed one, or the digits assigned
+    /// where trailing zeros were dropped.
+    fn unit(&self, value: Value) -> f64 {
+        let printed = self.printed(value);
+        let size = printed.value().abs();
+        let digits = i32::try_from(self.get(value).digits).unwrap_or(i32::MAX);
+        #[expect(clippy::cast_possible_truncation, reason = "the power of ten of a double fits")]
+        let power = libm::floor(libm::log10(size) + 1e-12) as i32;
+        printed.unit_in_last().min(real::ten_to(power - digits + 1))
+    }
+
+    /// What counts as one unit where the result prints 0: a thousandth of the largest operand's effect,
+    /// and never over one half of a whole unit, so that nobody reads another digit than 0.
+    fn unit_of_zero(&self, value: Value) -> f64 {
+        let Kind::Step { node, text, env } = &self.get(value).kind else { return 1.0 };
+        let mut largest: f64 = 0.0;
+        for used in self.uses(value) {
+            let size = self.get(used).value;
+            let look = EntryLook { ledger: self, env, printed: false, shift: Some((used, size)) };
+            if let Ok(moved) = evaluate(node, text, &look) {
+                largest = largest.max(self.shown(value, moved).abs());
+            }
+        }
+        (1e-3 * largest).clamp(1e-300, 0.5)
+    }
+
+    /// Raises one operand of a line that does not replay; `None` once it does.
+    fn raise_for(&mut self, value: Value) -> Result<Option<Value>, FormulaError> {
+        let Some(miss) = self.replay_miss(value)? else { return Ok(None) };
+        // A hair over one unit is rounding of the replay itself.
+        if miss <= 1.0 + 1e-6 {
+            return Ok(None);
+        }
+        let mut worst: Option<(f64, Value)> = None;
+        for used in self.uses(value) {
+            if !self.can_rise(used) {
+                continue;
+            }
+            let effect = self.effect_of_rounding(value, used);
+            if worst.is_none_or(|(known, _)| effect > known) {
+                worst = Some((effect, used));
+            }
+        }
+        let Some((_, used)) = worst else {
+            let Kind::Step { text, .. } = &self.get(value).kind else { return Ok(None) };
+            return Err(FormulaError { text: text.clone(), span: 0..text.len(), problem: Problem::Unsettled });
+        };
+        self.get_mut(used).digits += 1;
+        Ok(Some(used))
+    }
+
+    /// Whether more digits would change what is printed of a value.
+    fn can_rise(&self, value: Value) -> bool {
+        let entry = self.get(value);
+        let computed = match entry.kind {
+            Kind::Step { .. } | Kind::Found { .. } | Kind::Converted { .. } => true,
+            Kind::Given(_) => entry.dim == Dim::ANGLE,
+            Kind::Bound { .. } => false,
+        };
+        let shown = self.shown(value, entry.value);
+        computed && entry.digits < MOST_DIGITS && (self.printed(value).value() - shown).abs() > 1e-14 * shown.abs()
+    }
+
+    /// How far half a unit in the last digit of `used` moves the result of `value`.
+    fn effect_of_rounding(&self, value: Value, used: Value) -> f64 {
+        let Kind::Step { node, text, env } = &self.get(value).kind else { return 0.0 };
+        let half = 0.5 * self.printed(used).unit_in_last();
+        let half = if self.get(used).dim == Dim::ANGLE { half.to_radians() } else { half };
+        let at = |shift: f64| {
+            let look = EntryLook { ledger: self, env, printed: true, shift: Some((used, shift)) };
+            evaluate(node, text, &look).unwrap_or(f64::INFINITY)
+        };
+        (at(half) - at(-half)).abs()
+    }
+}

@@ -1,0 +1,192 @@
+//! Reads a joint file into [`Joint`], all faults in one go.
+//!
+//! This file reads the head of the note and hands its sections on: values with units, parts and
+//! other lists of words, the weld, its pattern, the loads.
+
+mod load;
+mod part;
+mod path;
+mod pattern;
+mod size;
+mod value;
+mod weld;
+
+pub use value::{read_quantity, read_triple};
+
+use super::{FrameWords, Joint, Paper};
+use crate::quantity::UnitSet;
+use crate::source::{
+    Diagnostic, FaultBag, Faults, Fields, Item, Node, SourceFile, Told, Value, parse_yaml, read_map,
+};
+use std::sync::Arc;
+
+/// Reads a joint file.
+///
+/// # Errors
+///
+/// All faults of the file, in file order: those of YAML alone if there are any, else those of
+/// the joint.
+pub fn read_joint(file: &Arc<SourceFile>) -> Result<Joint, Faults> {
+    read_joint_node(&parse_yaml(file)?)
+}
+
+/// Reads a joint from its tree, which may hold entries of a project file beside its own.
+///
+/// # Errors
+///
+/// All faults, ordered by file and place.
+pub fn read_joint_node(root: &Node) -> Result<Joint, Faults> {
+    let faults = FaultBag::new();
+    let joint = read_map(root, "a joint file", &faults).and_then(read_root);
+    Ok(faults.close(joint)?.0)
+}
+
+/// What the sections of a joint file need of each other.
+#[derive(Clone, Copy)]
+struct Context<'a> {
+    /// The printing set; N, mm where it could not be read, so that reading goes on.
+    set: UnitSet,
+    /// Names of the parts, faulty ones too.
+    parts: &'a [&'a str],
+}
+
+fn read_root(mut fields: Fields<'_>) -> Option<Joint> {
+    let note = fields.required("note", Item::line);
+    let title = fields.required("title", Item::line);
+    let revision = fields.required("revision", Item::line);
+    let date = fields.required("date", value::read_date);
+    let drawing = fields.optional("drawing", Item::line);
+    let item = fields.optional("item", Item::line);
+    let purpose = fields.optional("purpose", Item::text);
+    let units = fields.required("units", read_units);
+    let set = units
+        .as_ref()
+        .map_or(UnitSet::NewtonMillimetre, |told| told.value);
+    let paper = fields.optional("paper", |item| {
+        item.word(&[("A4", Paper::A4), ("US Letter", Paper::UsLetter)])
+    });
+    let frame = fields.required("frame", read_frame);
+    let names = part_names(&fields);
+    let context = Context { set, parts: &names };
+    let parts = fields.required("parts", |item| part::read_parts(item, set));
+    let filler = fields.optional("filler", |item| part::read_filler(item, set));
+    let weld = fields.required("weld", |item| weld::read_weld(item, context));
+    let loads = fields.required("loads", |item| load::read_loads(item, set));
+    let checks = fields.required("checks", part::read_checks);
+    let assumptions = fields.optional_list("assumptions", part::read_assumption);
+    let cautions = fields.optional_list("cautions", Item::text);
+    let excluded = fields.optional_list("excluded", part::read_exclusion);
+    let changes = fields.optional_list("changes", part::read_change);
+    let signatures = match fields.take("signatures") {
+        Some(item) => item.list(Item::line),
+        None => note.as_ref().map(usual_signatures),
+    };
+    fields.finish();
+    Some(Joint {
+        note: note?,
+        title: title?,
+        revision: revision?,
+        date: date?,
+        drawing,
+        item,
+        purpose,
+        units: units?,
+        paper: paper.map(|told| told.value).unwrap_or_default(),
+        frame: frame?,
+        parts: parts?,
+        filler,
+        weld: weld?,
+        loads: loads?,
+        checks: checks?,
+        assumptions,
+        cautions,
+        excluded,
+        changes,
+        signatures: signatures?,
+    })
+}
+
+/// The names under `parts`, whatever their entries hold.
+fn part_names<'a>(fields: &Fields<'a>) -> Vec<&'a str> {
+    match fields.peek("parts").map(|item| &item.node.value) {
+        Some(Value::Map(entries)) => entries.iter().map(|(key, _)| key.value.as_str()).collect(),
+        _ => Vec::new(),
+    }
+}
+
+/// The roles that sign where the file names none.
+fn usual_signatures(note: &Told<String>) -> Vec<Told<String>> {
+    ["prepared", "checked", "approved"]
+        .map(|role| note.clone().map(|_| role.to_owned()))
+        .into()
+}
+
+fn read_units(item: Item<'_>) -> Option<Told<UnitSet>> {
+    let mut fields = item.fields("`units`")?;
+    let force = fields.required("force", Item::raw);
+    let length = fields.required("length", Item::raw);
+    fields.finish();
+    let (force, length) = (force?, length?);
+    if let Some(set) = UnitSet::from_names(&force.value, &length.value) {
+        return Some(Told {
+            value: set,
+            place: item.place().clone(),
+        });
+    }
+    let sets: Vec<String> = UnitSet::ALL
+        .iter()
+        .map(|set| format!("{} and {}", set.force(), set.length()))
+        .collect();
+    item.refuse_with(
+        "unknown-units",
+        format!("{} and {} make no printing set", force.value, length.value),
+        format!(
+            "a note is printed in {}; single values may still carry any unit",
+            sets.join(", ")
+        ),
+    )
+}
+
+fn read_frame(item: Item<'_>) -> Option<FrameWords> {
+    let mut fields = item.fields("`frame`")?;
+    let origin = fields.required("origin", Item::line);
+    let axes = ["x", "y", "z"].map(|axis| fields.optional(axis, Item::line));
+    fields.finish();
+    Some(FrameWords {
+        origin: origin?,
+        axes,
+    })
+}
+
+/// Refuses names that stand twice; `what` says what they name, such as `runs`.
+fn check_distinct<'a>(
+    names: impl Iterator<Item = &'a Told<String>>,
+    what: &str,
+    faults: &FaultBag,
+) {
+    let mut seen = std::collections::BTreeMap::new();
+    for name in names {
+        if let Some(first) = seen.insert(name.value.as_str(), name) {
+            let message = format!("`{}` names two {what}", name.value);
+            let (line, _) = first.place.line_column();
+            faults.push(
+                Diagnostic::error("name-taken", message, &name.place)
+                    .help(format!("the first is in line {line}")),
+            );
+        }
+    }
+}
+
+/// The fault of a name that stands for nothing, with the nearest that does.
+fn unknown_name(code: &'static str, what: &str, name: &Told<String>, known: &[&str]) -> Diagnostic {
+    let fault = Diagnostic::error(
+        code,
+        format!("`{}` is no {what} of this file", name.value),
+        &name.place,
+    );
+    if known.is_empty() {
+        return fault.help(format!("the file names no {what}"));
+    }
+    let listed: Vec<String> = known.iter().map(|word| format!("`{word}`")).collect();
+    fault.help(format!("named are: {}", listed.join(", ")))
+}

@@ -1,0 +1,192 @@
+//! Values with units, dates and points, each with the fault texts a user needs.
+
+use crate::joint::{GivenAt, Triple};
+use crate::quantity::{Dim, Given, GivenError, UnitError, UnitSet};
+use crate::source::{Item, Told};
+use chrono::NaiveDate;
+
+/// Reads a quantity of the dimension; a bare number takes the printing set's own unit.
+pub fn read_quantity(item: Item<'_>, dim: Dim, set: UnitSet) -> Option<GivenAt> {
+    let text = item.raw()?;
+    match Given::parse(&text.value, dim, set) {
+        Ok(value) => Some(Told {
+            value,
+            place: text.place,
+        }),
+        Err(error) => refuse_quantity(item, &text.value, &error, dim, set),
+    }
+}
+
+fn refuse_quantity<T>(
+    item: Item<'_>,
+    text: &str,
+    error: &GivenError,
+    dim: Dim,
+    set: UnitSet,
+) -> Option<T> {
+    let usual = advice(dim, set);
+    let (code, message, help) = match error {
+        GivenError::NotANumber(_) if text.contains(['"', '″', '\'']) => (
+            "not-a-number",
+            format!("`{text}` is not a number"),
+            "inches are written `in`, feet `ft`".to_owned(),
+        ),
+        GivenError::NotANumber(_) => ("not-a-number", format!("`{text}` is not a number"), usual),
+        GivenError::NotFinite(_) => ("not-a-number", error.to_string(), usual),
+        GivenError::Comma(_) => (
+            "decimal-comma",
+            format!("`{text}` has a decimal comma"),
+            format!("write `{}`", text.replace(',', ".")),
+        ),
+        GivenError::Unit(UnitError::Mass(_)) => (
+            "mass-for-force",
+            error.to_string(),
+            "write the force, in N, kN, kgf, lbf or kip".to_owned(),
+        ),
+        GivenError::Unit(UnitError::Unknown(_) | UnitError::Malformed(_)) => {
+            ("unknown-unit", error.to_string(), usual)
+        }
+        GivenError::Kind { .. } => ("wrong-kind", format!("`{}`: {error}", item.name), usual),
+        GivenError::BareAngle(_) => ("unit-missing", error.to_string(), usual),
+    };
+    item.refuse_with(code, message, help)
+}
+
+/// How a quantity of the dimension is written.
+fn advice(dim: Dim, set: UnitSet) -> String {
+    let own = set.label(dim);
+    let example = match (dim, set.is_inch()) {
+        (Dim::NONE, _) => {
+            return "write a plain number, as in `1.25`, or a percentage, as in `5 %`".to_owned();
+        }
+        (Dim::ANGLE, _) => return "write an angle with its unit, as in `90 deg`".to_owned(),
+        (Dim::LENGTH, false) => "6 mm",
+        (Dim::LENGTH, true) => "1/4 in",
+        (Dim::FORCE, false) => "4.2 kN",
+        (Dim::FORCE, true) => "4.2 kip",
+        (Dim::MOMENT, false) => "4.2 kN m",
+        (Dim::MOMENT, true) => "4.2 kip in",
+        (Dim::STRESS, false) => "355 MPa",
+        (Dim::STRESS, true) => "50 ksi",
+        _ => return format!("write {} in {own}, or with its unit", dim.word()),
+    };
+    format!(
+        "write {} in {own}, or with its unit, as in `{example}`",
+        dim.word()
+    )
+}
+
+/// Reads a quantity above zero.
+pub(super) fn read_positive(item: Item<'_>, dim: Dim, set: UnitSet) -> Option<GivenAt> {
+    let given = read_quantity(item, dim, set)?;
+    if given.value.value > 0.0 {
+        Some(given)
+    } else {
+        refuse_range(item, &given.value, set, &["above 0"])
+    }
+}
+
+/// Reads a quantity of zero or more.
+pub(super) fn read_not_negative(item: Item<'_>, dim: Dim, set: UnitSet) -> Option<GivenAt> {
+    let given = read_quantity(item, dim, set)?;
+    if given.value.value >= 0.0 {
+        Some(given)
+    } else {
+        refuse_range(item, &given.value, set, &["0", "or more"])
+    }
+}
+
+/// Refuses a quantity; the bounds name the first limit before and the words after its unit.
+pub(super) fn refuse_range<T>(
+    item: Item<'_>,
+    given: &Given,
+    set: UnitSet,
+    bounds: &[&str],
+) -> Option<T> {
+    let unit = given.unit.clone().unwrap_or_else(|| set.label(given.dim));
+    let limit = match bounds {
+        [limit, after] => format!("{} {after}", with_unit(limit, &unit)),
+        _ => with_unit(&bounds.concat(), &unit),
+    };
+    let message = format!(
+        "`{}` is {}, but must be {limit}",
+        item.name,
+        with_unit(&given.number, &unit)
+    );
+    item.refuse_with("out-of-range", message, advice(given.dim, set))
+}
+
+fn with_unit(number: &str, unit: &str) -> String {
+    if unit.is_empty() {
+        number.to_owned()
+    } else {
+        format!("{number} {unit}")
+    }
+}
+
+/// Reads a point or vector of two or three components; the third is 0 where it is left out.
+pub fn read_triple(item: Item<'_>, dim: Dim, set: UnitSet) -> Option<Triple> {
+    let items = item.items()?;
+    if !matches!(items.len(), 2 | 3) {
+        return refuse_count(item, items.len(), "two or three");
+    }
+    triple(item, &items, dim, set)
+}
+
+/// Reads a vector of three components, where two would leave open which axis is meant.
+pub(super) fn read_full_triple(item: Item<'_>, dim: Dim, set: UnitSet) -> Option<Triple> {
+    let items = item.items()?;
+    if items.len() != 3 {
+        return refuse_count(item, items.len(), "three");
+    }
+    triple(item, &items, dim, set)
+}
+
+fn triple(item: Item<'_>, items: &[Item<'_>], dim: Dim, set: UnitSet) -> Option<Triple> {
+    let read: Vec<Option<GivenAt>> = items
+        .iter()
+        .map(|part| read_quantity(*part, dim, set))
+        .collect();
+    let mut parts = [zero(dim), zero(dim), zero(dim)];
+    for (part, given) in parts.iter_mut().zip(read) {
+        *part = given?.value;
+    }
+    Some(Triple {
+        parts,
+        place: item.place().clone(),
+    })
+}
+
+fn refuse_count<T>(item: Item<'_>, count: usize, wanted: &str) -> Option<T> {
+    let message = format!("`{}` takes {wanted} components, but has {count}", item.name);
+    let help = if count > 3 {
+        "decimals take a point: `1.5`, not `1,5`"
+    } else {
+        "write `[x, y, z]`"
+    };
+    item.refuse_with("wrong-count", message, help)
+}
+
+/// A component left out.
+pub(super) fn zero(dim: Dim) -> Given {
+    Given::stated("0", 0.0, dim)
+}
+
+/// Reads a date of the form `2026-05-04`.
+pub(super) fn read_date(item: Item<'_>) -> Option<Told<NaiveDate>> {
+    let text = item.raw()?;
+    let date = NaiveDate::parse_from_str(&text.value, "%Y-%m-%d")
+        .ok()
+        .filter(|_| text.value.len() == 10);
+    match date {
+        Some(value) => Some(Told {
+            value,
+            place: text.place,
+        }),
+        None => item.refuse_with(
+            "bad-date",
+            format!("`{}` is no date", text.value),
+            "write year, month and day as in `2026-05-04`",
+        ),
+    }
+}

@@ -1,0 +1,152 @@
+//! The way from a joint as told to the outcome of every check: runs, properties, stresses, margins.
+
+use crate::criteria::{Asked, Ground, Library, assess};
+use crate::joint::Joint;
+use crate::load::{Action, FrameError, actions};
+use crate::solve::{Field, Resistance, Unresisted};
+use crate::source::{Diagnostic, Faults};
+use crate::weld::{LineProperties, Run, V3, WeldError, lay_runs, line_properties};
+
+/// Everything computed of one joint.
+#[derive(Debug)]
+pub struct Calculation<'a> {
+    /// The joint as told.
+    pub joint: &'a Joint,
+    /// Runs with their effective throats.
+    pub runs: Vec<Run>,
+    /// Properties of the group.
+    pub properties: LineProperties,
+    /// Cases as actions in the joint frame.
+    pub actions: Vec<Action>,
+    /// How the group resists.
+    pub resistance: Resistance,
+    /// The stress field of each case, or why it has none.
+    pub fields: Vec<Result<Field, Unresisted>>,
+    /// What each check asked for gave.
+    pub outcomes: Vec<Outcome>,
+}
+
+/// What a check asked for gave.
+#[derive(Clone, Debug)]
+pub enum Outcome {
+    /// Numbers.
+    Assessed(Asked),
+    /// No number, and why.
+    Refused(Refusal),
+}
+
+/// A check for which mechanics or the clause gives no number.
+#[derive(Clone, Debug)]
+pub struct Refusal {
+    /// Name of the sheet.
+    pub clause: String,
+    /// Why there is no number.
+    pub reason: String,
+    /// What would help.
+    pub help: String,
+}
+
+/// Faults of an assessment that are no mistakes of the file: a clause that does not apply.
+const REFUSALS: [&str; 5] =
+    ["ends-mismatch", "run-not-checked", "outside-validity", "outside-table", "weld-not-taken"];
+
+impl<'a> Calculation<'a> {
+    /// Computes a joint.
+    ///
+    /// # Errors
+    ///
+    /// [`Faults`] with their places, if the joint file asks for what cannot be laid out or checked.
+    pub fn of(joint: &'a Joint, library: &Library) -> Result<Self, Faults> {
+        let runs = lay_runs(joint).map_err(|faults| Faults(faults.0.into_iter().map(weld_fault).collect()))?;
+        let properties = line_properties(&runs);
+        let actions = actions(&joint.loads).map_err(|fault| Faults(vec![frame_fault(&fault)]))?;
+        let resistance = Resistance::new(&runs, &properties);
+        let fields: Vec<_> = actions.iter().map(|action| resistance.field_of(action)).collect();
+        let mut calculation = Self { joint, runs, properties, actions, resistance, fields, outcomes: Vec::new() };
+        calculation.outcomes = calculation.assess_all(library)?;
+        Ok(calculation)
+    }
+
+    /// Whether all runs lie in one plane z = const with normals +z, so that two coordinates tell all.
+    #[must_use]
+    pub fn is_planar(&self) -> bool {
+        let flat = |run: &Run| (run.normal - V3::z()).norm() < 1e-12;
+        let height = self.properties.centroid.z;
+        let near = 1e-9 * self.properties.size;
+        let at_height = |run: &Run| {
+            [0.0, 0.25, 0.5, 1.0].iter().all(|p| (run.path.point(*p).z - height).abs() <= near)
+        };
+        self.runs.iter().all(|run| flat(run) && at_height(run))
+    }
+
+    /// The first case that the group cannot resist, and why.
+    #[must_use]
+    pub fn unresisted(&self) -> Option<(usize, Unresisted)> {
+        self.fields.iter().enumerate().find_map(|(case, field)| field.as_ref().err().map(|why| (case, *why)))
+    }
+
+    fn assess_all(&self, library: &Library) -> Result<Vec<Outcome>, Faults> {
+        let mut outcomes = Vec::new();
+        let mut faults = Vec::new();
+        for (index, check) in self.joint.checks.iter().enumerate() {
+            let mut alone = self.joint.clone();
+            alone.checks = vec![check.clone()];
+            let strength = library.find(&check.clause.value).is_some_and(|sheet| !sheet.checks.is_empty());
+            if let (true, Some((case, why))) = (strength, self.unresisted()) {
+                outcomes.push(Outcome::Refused(self.no_path(check.clause.value.clone(), case, &why)));
+                continue;
+            }
+            let stress = |case: usize, run: usize, p: f64| match &self.fields[case] {
+                Ok(field) => field.at(self.runs[run].path.point(p)),
+                Err(_) => V3::zeros(),
+            };
+            let ground = Ground { joint: &alone, runs: &self.runs, stress: &stress };
+            match assess(&ground, library) {
+                Ok(assessment) => outcomes.extend(assessment.asked.into_iter().map(|mut asked| {
+                    asked.index = index;
+                    Outcome::Assessed(asked)
+                })),
+                Err(found) if found.0.iter().all(|fault| REFUSALS.contains(&fault.code)) => {
+                    let reasons: Vec<&str> = found.0.iter().map(|fault| fault.message.as_str()).collect();
+                    let help: Vec<&str> =
+                        found.0.iter().flat_map(|fault| fault.help.iter().map(String::as_str)).collect();
+                    outcomes.push(Outcome::Refused(Refusal {
+                        clause: check.clause.value.clone(),
+                        reason: reasons.join("; "),
+                        help: help.join("; "),
+                    }));
+                }
+                Err(found) => faults.extend(found.0),
+            }
+        }
+        if faults.is_empty() { Ok(outcomes) } else { Err(Faults(faults)) }
+    }
+
+    fn no_path(&self, clause: String, case: usize, why: &Unresisted) -> Refusal {
+        let name = &self.joint.loads.cases[case].name.value;
+        let help = match why {
+            Unresisted::AboutLine { .. } => {
+                "weld a second line away from the first, or let another part carry this moment and take it out of the case"
+            }
+            Unresisted::OnPoint { .. } | Unresisted::NoArea => "give the group runs of length that can resist a moment",
+            Unresisted::Inaccurate { .. } => "spread the runs: the group is too nearly a line for this moment",
+        };
+        Refusal { clause, reason: format!("case {name}: {why}"), help: help.to_owned() }
+    }
+}
+
+/// A fault of the weld at its place.
+fn weld_fault(fault: WeldError) -> Diagnostic {
+    let told = Diagnostic::error(fault.kind.code(), fault.to_string(), &fault.place);
+    match fault.kind.help() {
+        Some(help) => told.help(help),
+        None => told,
+    }
+}
+
+/// A fault of a load's frame at its place.
+fn frame_fault(fault: &FrameError) -> Diagnostic {
+    let (FrameError::NotOrthonormal { place, .. } | FrameError::LeftHanded { place, .. }) = fault;
+    Diagnostic::error("bad-frame", fault.to_string(), place)
+        .help("write three unit vectors, square to each other, right-handed")
+}

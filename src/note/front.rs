@@ -1,0 +1,251 @@
+//! What stands before the calculation: purpose, inputs and sources, assumptions, axes, materials.
+
+use super::builder::{Builder, Cell, Line, Sheet, number_column, word_column};
+use super::doc::{Align, Block, Column, FigureRef, Item, Text};
+use super::points::ends;
+use super::text::{emph, piece, plain, symbol};
+use crate::formula::{Origin, Symbol};
+use crate::joint::{Part, SizeSpec};
+use crate::quantity::Dim;
+use crate::weld::{End, Segment};
+
+/// Name of the drawing's file in the folder of the note.
+pub const FIGURE: &str = "figure";
+
+impl Builder<'_> {
+    /// What the note is for.
+    pub(super) fn purpose(&mut self) {
+        self.part("purpose", "Purpose");
+        if let Some(purpose) = &self.joint.purpose {
+            self.para(plain(&purpose.value));
+        }
+        let item = self.joint.item.as_ref().map(|item| format!(" of the {}", item.value)).unwrap_or_default();
+        let [attached, base] = self.runs[0].joins;
+        let name = |index: usize| self.joint.parts[index].name.value.clone();
+        let text = format!(
+            "This note substantiates the weld group{item} that joins {} to {}, by the elastic line method: the weld as \
+             a line of its effective throat, the parts rigid against it.",
+            name(attached),
+            name(base)
+        );
+        self.para(plain(&text));
+    }
+
+    /// Where the inputs come from, and the unit set.
+    pub(super) fn inputs(&mut self) {
+        self.part("inputs", "Inputs and their sources");
+        let file = self.joint.note.place.file.name.rsplit('/').next().unwrap_or_default().to_owned();
+        let units = self.joint.units.value;
+        let mut text = vec![piece("All inputs stand in "), emph(&file), piece(", which travels inside the PDF")];
+        if let Some(drawing) = &self.joint.drawing {
+            text.push(piece(&format!("; geometry by drawing {}", drawing.value)));
+        }
+        text.push(piece(&format!(
+            ". Every number below is in {}, {} and {}; an input told in another unit is converted on a line of its own. \
+             Numbers stand as a checker keys them: the printed numbers of a line give its printed result, to one unit \
+             in the last digit.",
+            units.force(),
+            units.length(),
+            units.stress()
+        )));
+        self.para(text);
+    }
+
+    /// Assumptions of the user, the clauses and the method; open items are marked.
+    pub(super) fn assumptions(&mut self, of_sheets: &[(String, String)]) -> Vec<String> {
+        self.part("assumptions", "Assumptions");
+        let mut items = Vec::new();
+        let mut open = Vec::new();
+        for assumption in &self.joint.assumptions {
+            let label = format!("A{}", items.len() + 1);
+            if assumption.to_be_verified {
+                open.push(label.clone());
+            }
+            items.push(Item {
+                label,
+                text: plain(&assumption.says.value),
+                mark: assumption.to_be_verified.then(|| "to be verified".to_owned()),
+                source: Some(assumption.says.place.short()),
+            });
+        }
+        for (says, source) in of_sheets {
+            let label = format!("A{}", items.len() + 1);
+            items.push(Item { label, text: plain(says), mark: None, source: Some(source.clone()) });
+        }
+        if !items.is_empty() {
+            self.items(items);
+        }
+        open
+    }
+
+    /// Axes, the drawing, and the group as told.
+    pub(super) fn geometry(&mut self) {
+        self.part("geometry", "Axes and geometry");
+        let frame = &self.joint.frame;
+        let mut text = vec![piece(&format!("The origin is the {}", frame.origin.value.trim_end_matches('.')))];
+        let mut parted = ";";
+        for (axis, words) in super::points::AXES.iter().zip(&frame.axes) {
+            if let Some(words) = words {
+                text.push(piece(&format!("{parted} ")));
+                text.push(symbol(&Symbol::of(axis, &[])));
+                text.push(piece(&format!(" {}", words.value)));
+                parted = ",";
+            }
+        }
+        text.push(piece(". "));
+        if self.planar {
+            text.push(piece("The group lies in one faying plane, "));
+            text.push(symbol(&Symbol::of("x", &[])));
+            text.push(piece(" and "));
+            text.push(symbol(&Symbol::of("y", &[])));
+            text.push(piece(" in it, "));
+            text.push(symbol(&Symbol::of("z", &[])));
+            text.push(piece(" out of the base toward the attached part."));
+        } else {
+            text.push(piece("The group stands in space; each run has its own faying normal."));
+        }
+        self.para(text);
+        self.block(Block::Figure(FigureRef { name: FIGURE.to_owned(), caption: Vec::new(), alt: String::new() }));
+        if !self.points.is_empty() {
+            self.point_table();
+        }
+        self.told_runs();
+    }
+
+    /// The runs as told.
+    fn told_runs(&mut self) {
+        let columns = vec![
+            word_column("", 0),
+            word_column("run", 3),
+            word_column("weld", 3),
+            word_column("from", 0),
+            word_column("to", 0),
+            word_column("ends", 3),
+        ];
+        let rows = (0..self.runs.len())
+            .map(|index| {
+                let run = &self.runs[index];
+                let [from, to] = ends(&run.told);
+                let number = |at| self.point_at(at).map_or_else(|| "–".to_owned(), |point| point.number.to_string());
+                let cells = vec![
+                    Cell::Text(plain(&(index + 1).to_string())),
+                    Cell::Text(plain(&run.name)),
+                    Cell::Text(plain(&self.weld_words(index))),
+                    Cell::Text(plain(&number(from))),
+                    Cell::Text(plain(&number(to))),
+                    Cell::Text(plain(&end_words(run.ends))),
+                ];
+                Line { id: format!("run.{}", self.slugs[index]), cells, strong: false }
+            })
+            .collect();
+        self.table(Sheet { id: "runs".to_owned(), caption: plain("Runs as told"), columns, rows, foot: None });
+    }
+
+    /// A run's weld in words, sizes as typed.
+    pub(super) fn weld_words(&self, index: usize) -> String {
+        let run = &self.runs[index];
+        let spec = &self.joint.weld.runs[run.spec];
+        let length = self.joint.units.value.length();
+        let typed = |given: &crate::quantity::Given| match &given.unit {
+            Some(_) => given.text(),
+            None => format!("{} {length}", given.number),
+        };
+        let mut words = match &spec.size {
+            SizeSpec::Fillet { leg, .. } => format!("fillet, leg {}", typed(&leg.value)),
+            SizeSpec::Unequal { on_base, on_attached } => {
+                format!("fillet, legs {} on base, {} on attached", typed(&on_base.value), typed(&on_attached.value))
+            }
+            SizeSpec::Throat { throat, .. } => format!("fillet, throat {}", typed(&throat.value)),
+            SizeSpec::Partial { throat } => format!("partial penetration, throat {}", typed(&throat.value)),
+            SizeSpec::Complete { .. } => "complete penetration".to_owned(),
+        };
+        if let Some(gap) = &spec.gap {
+            words.push_str(&format!(", gap {}", typed(&gap.value)));
+        }
+        if matches!(run.told, Segment::Arc { .. }) {
+            words.push_str(", on an arc");
+        }
+        words
+    }
+
+    /// Materials with their strengths and sources.
+    pub(super) fn materials(&mut self) {
+        self.part("materials", "Materials and allowables");
+        let units = self.joint.units.value;
+        let stress = |base: &str, index: &str| number_column(symbol(&Symbol::of(base, &[index])), units.stress());
+        let columns = vec![
+            word_column("part", 2),
+            word_column("material", 2),
+            number_column(symbol(&Symbol::of("t", &["p"])), units.length()),
+            stress("f", "y"),
+            stress("f", "u"),
+            Column { head: plain("source"), unit: Vec::new(), align: Align::Left, share: 4 },
+        ];
+        let parts: Vec<Part> = self.joint.parts.clone();
+        let mut rows = Vec::new();
+        for part in &parts {
+            let mut cells = vec![Cell::Text(plain(&part.name.value)), Cell::Text(plain(&part.material.value))];
+            for (name, symbol, says, given) in [
+                ("thickness", Symbol::of("t", &["p"]), "Thickness", &part.thickness),
+                ("f_y", Symbol::of("f", &["y"]), "Yield strength", &part.f_y),
+                ("f_u", Symbol::of("f", &["u"]), "Ultimate strength", &part.f_u),
+            ] {
+                let Some(given) = given else {
+                    cells.push(Cell::Text(plain("–")));
+                    continue;
+                };
+                let id = format!("part.{}.{name}", super::text::slug(&part.name.value));
+                let says = format!("{says} of {}", part.name.value);
+                let value = self.input(id, symbol, &says, &given.value, Origin::Input(given.place.clone()));
+                let unsure = part.to_be_verified || part.source.is_none();
+                if unsure && given.value.dim == Dim::STRESS {
+                    self.ledger.get_mut(value).mark = Some(format!("strengths of {}", part.name.value));
+                }
+                cells.push(self.cell(value));
+            }
+            cells.push(Cell::Text(source_words(part.source.as_ref().map(|s| s.value.as_str()), part.to_be_verified)));
+            rows.push(Line { id: format!("part.{}", super::text::slug(&part.name.value)), cells, strong: false });
+        }
+        self.table(Sheet { id: "parts".to_owned(), caption: plain("Parts joined"), columns, rows, foot: None });
+        self.filler();
+    }
+
+    fn filler(&mut self) {
+        let Some(filler) = self.joint.filler.clone() else { return };
+        let mut text = vec![piece(&format!("Filler metal {}; source: ", filler.name.value))];
+        text.extend(source_words(filler.source.as_ref().map(|s| s.value.as_str()), filler.to_be_verified));
+        text.push(piece("."));
+        self.para(text);
+        if let Some(given) = &filler.f_u {
+            let symbol = Symbol::of("f", &["u", "w"]);
+            let says = format!("Ultimate strength of the filler metal {}", filler.name.value);
+            let origin = Origin::Input(given.place.clone());
+            let value = self.input("filler.f_u".to_owned(), symbol, &says, &given.value, origin);
+            if filler.to_be_verified || filler.source.is_none() {
+                self.ledger.get_mut(value).mark = Some("strength of the filler metal".to_owned());
+            }
+            self.show(value);
+        }
+    }
+}
+
+/// A source in words, with the mark of one that is missing or open.
+fn source_words(source: Option<&str>, to_be_verified: bool) -> Text {
+    match (source, to_be_verified) {
+        (Some(source), false) => plain(source),
+        (Some(source), true) => vec![piece(source), super::text::strong(" (to be verified)")],
+        (None, _) => vec![super::text::strong("no source: to be verified")],
+    }
+}
+
+/// What both ends of a run do, in words.
+fn end_words(ends: [End; 2]) -> String {
+    let word = |end: End| match end {
+        End::Continuous => "continuous",
+        End::Full => "full size",
+        End::Stop { leg: true, .. } => "stop, less one leg",
+        End::Stop { leg: false, .. } => "stop, less one throat",
+    };
+    let [start, end] = ends.map(word);
+    if start == end { format!("both {start}") } else { format!("{start}; {end}") }
+}

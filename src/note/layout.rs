@@ -1,0 +1,251 @@
+//! From the note under construction to the document: settles digits, numbers steps, fills cells.
+
+use super::builder::{Builder, Cell, Line, Piece, Sheet};
+use super::doc::{Block, Item, Row, Section, Step, Table, Text};
+use super::text::{number, piece, plain};
+use crate::formula::{FormulaError, Kind, Ledger, Origin, Printed, Value};
+use crate::quantity::Dim;
+
+impl Builder<'_> {
+    /// Gives every value that a shown line uses a place: what stands nowhere yet is listed in `part`.
+    pub(super) fn place_the_rest(&mut self, part: &str) {
+        let mut open: Vec<Value> = self.placed.iter().copied().collect();
+        let mut missing: Vec<Value> = Vec::new();
+        while let Some(value) = open.pop() {
+            for used in self.ledger.uses(value) {
+                if self.placed.insert(used) {
+                    missing.push(used);
+                    open.push(used);
+                }
+            }
+        }
+        // Inputs in another unit are echoed and converted on a line of their own.
+        missing.sort_unstable();
+        if let Some(part) = self.parts.iter_mut().find(|known| known.id == part) {
+            part.pieces.extend(missing.into_iter().map(Piece::Step));
+        }
+    }
+
+    /// A conversion stands in a cell as its result only: list its line in `part` as well.
+    pub(super) fn converted_in_cells(&self) -> Vec<Value> {
+        let mut found = Vec::new();
+        for piece in self.parts.iter().flat_map(|part| &part.pieces) {
+            if let Piece::Table(sheet) = piece {
+                for cell in sheet.rows.iter().chain(&sheet.foot).flat_map(|row| &row.cells) {
+                    if let Cell::Own(value) = cell
+                        && matches!(self.ledger.get(*value).kind, Kind::Converted { .. })
+                        && !found.contains(value)
+                    {
+                        found.push(*value);
+                    }
+                }
+            }
+        }
+        found
+    }
+
+    /// Moves the home of values from their cells to steps of `part`.
+    pub(super) fn show_conversions(&mut self, part: &str) {
+        let converted = self.converted_in_cells();
+        if converted.is_empty() {
+            return;
+        }
+        for piece in self.parts.iter_mut().flat_map(|part| &mut part.pieces) {
+            if let Piece::Table(sheet) = piece {
+                for cell in sheet.rows.iter_mut().chain(&mut sheet.foot).flat_map(|row| &mut row.cells) {
+                    if let Cell::Own(value) = cell
+                        && converted.contains(value)
+                    {
+                        *cell = Cell::Linked(*value);
+                    }
+                }
+            }
+        }
+        if let Some(part) = self.parts.iter_mut().find(|known| known.id == part) {
+            part.pieces.extend(converted.into_iter().map(Piece::Step));
+        }
+    }
+
+    /// Settles the digits and numbers everything in print order.
+    ///
+    /// # Errors
+    ///
+    /// [`FormulaError`] if the digits do not settle.
+    pub(super) fn settle_and_number(&mut self) -> Result<(), FormulaError> {
+        self.parts.retain(|part| !part.pieces.is_empty());
+        self.ledger.settle()?;
+        let (mut steps, mut tables) = (0, 0);
+        let pieces: Vec<&Piece> = self.parts.iter().flat_map(|part| &part.pieces).collect();
+        for piece in pieces {
+            match piece {
+                Piece::Block(_) => {}
+                Piece::Step(value) => {
+                    steps += 1;
+                    self.ledger.get_mut(*value).no = steps.to_string();
+                }
+                Piece::Table(sheet) => {
+                    tables += 1;
+                    for row in sheet.rows.iter().chain(&sheet.foot) {
+                        for cell in &row.cells {
+                            if let Cell::Own(value) = cell {
+                                let entry = self.ledger.get_mut(*value);
+                                entry.no = format!("table {tables}");
+                                entry.anchor.clone_from(&row.id);
+                            }
+                        }
+                    }
+                }
+            }
+        }
+        Ok(())
+    }
+
+    /// The sections of the document.
+    pub(super) fn sections(&mut self) -> Vec<Section> {
+        let parts = std::mem::take(&mut self.parts);
+        parts
+            .into_iter()
+            .map(|part| {
+                let blocks = part
+                    .pieces
+                    .into_iter()
+                    .map(|piece| match piece {
+                        Piece::Block(block) => block,
+                        Piece::Step(value) => Block::Step(self.step_block(value)),
+                        Piece::Table(sheet) => Block::Table(self.table_block(sheet)),
+                    })
+                    .collect();
+                Section { title: part.title, id: part.id, blocks }
+            })
+            .collect()
+    }
+
+    fn step_block(&self, value: Value) -> Step {
+        let entry = self.ledger.get(value);
+        let equation = self.ledger.equation(value);
+        let mut says = plain(&super::margins::capital(&entry.says));
+        if let Kind::Found { method } = &entry.kind {
+            says.push(piece(&format!(" ({method})")));
+        }
+        let uses = self.ledger.uses(value);
+        let mut source = vec![plain(&origin(&entry.origin))];
+        source.extend(self.used_lines(&uses));
+        let mut anchors: Vec<(String, String)> = Vec::new();
+        for used in &uses {
+            let used = self.ledger.get(*used);
+            let pair = (used.anchor.clone(), used.no.clone());
+            let same_table = pair.1.starts_with("table") && anchors.iter().any(|known| known.1 == pair.1);
+            if !same_table && !anchors.contains(&pair) {
+                anchors.push(pair);
+            }
+        }
+        Step {
+            id: entry.anchor.clone(),
+            no: entry.no.clone(),
+            says,
+            lines: equation
+                .lines
+                .into_iter()
+                .map(|line| super::doc::Line { typst: line.typst, words: line.words, continued: line.continued })
+                .collect(),
+            latex: equation.latex,
+            source,
+            mark: entry.mark.as_ref().map(|_| "to be verified".to_owned()),
+            uses: anchors,
+        }
+    }
+
+    /// Where the numbers of a line come from: `steps 5, 7–9` and `tables 1, 2`.
+    fn used_lines(&self, uses: &[Value]) -> Vec<Text> {
+        let (mut steps, mut tables) = (Vec::new(), Vec::new());
+        for used in uses {
+            let no = &self.ledger.get(*used).no;
+            match no.strip_prefix("table ") {
+                Some(table) => tables.extend(table.parse::<usize>().ok()),
+                None => steps.extend(no.parse::<usize>().ok()),
+            }
+        }
+        [("step", steps), ("table", tables)]
+            .into_iter()
+            .filter(|(_, numbers)| !numbers.is_empty())
+            .map(|(word, numbers)| plain(&ranges(word, numbers)))
+            .collect()
+    }
+
+    fn table_block(&self, sheet: Sheet) -> Table {
+        Table {
+            id: sheet.id,
+            caption: sheet.caption,
+            columns: sheet.columns,
+            rows: sheet.rows.into_iter().map(|row| self.row(row)).collect(),
+            foot: sheet.foot.map(|row| self.row(row)),
+        }
+    }
+
+    fn row(&self, line: Line) -> Row {
+        let cells = line
+            .cells
+            .into_iter()
+            .map(|cell| match cell {
+                Cell::Text(text) => text,
+                Cell::Own(value) => vec![self.number(value, false)],
+                Cell::Linked(value) => vec![self.number(value, true)],
+                Cell::Rounded { value, decimals, up } => {
+                    let entry = self.ledger.get(value);
+                    let link = (!entry.no.is_empty()).then(|| entry.anchor.clone());
+                    vec![number(&Printed::rounded(entry.value, decimals, up), entry.signed, link)]
+                }
+            })
+            .collect();
+        Row { cells, strong: line.strong, id: Some(line.id) }
+    }
+
+    fn number(&self, value: Value, linked: bool) -> super::doc::Inline {
+        let entry = self.ledger.get(value);
+        number(&self.ledger.printed(value), entry.signed, linked.then(|| entry.anchor.clone()))
+    }
+}
+
+/// The words of an origin for the checker's margin.
+pub(super) fn origin(origin: &Origin) -> String {
+    match origin {
+        Origin::Clause(clause) => clause.clone(),
+        Origin::Method(method) => method.clone(),
+        Origin::Input(place) => place.short(),
+    }
+}
+
+/// `step 5`, `steps 5, 7–9`.
+fn ranges(word: &str, mut numbers: Vec<usize>) -> String {
+    numbers.sort_unstable();
+    numbers.dedup();
+    let mut parts: Vec<String> = Vec::new();
+    let mut at = 0;
+    while at < numbers.len() {
+        let mut end = at;
+        while end + 1 < numbers.len() && numbers[end + 1] == numbers[end] + 1 {
+            end += 1;
+        }
+        match end - at {
+            0 => parts.push(numbers[at].to_string()),
+            1 => {
+                parts.push(numbers[at].to_string());
+                parts.push(numbers[end].to_string());
+            }
+            _ => parts.push(format!("{}–{}", numbers[at], numbers[end])),
+        }
+        at = end + 1;
+    }
+    let plural = if numbers.len() == 1 { "" } else { "s" };
+    format!("{word}{plural} {}", parts.join(", "))
+}
+
+/// A plain entry of a list.
+pub(super) fn item(label: &str, text: Text) -> Item {
+    Item { label: label.to_owned(), text, mark: None, source: None }
+}
+
+/// The plain unit of a value, for words and the trace.
+pub(super) fn unit(ledger: &Ledger, dim: Dim) -> String {
+    ledger.units().label(dim)
+}

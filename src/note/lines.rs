@@ -1,0 +1,448 @@
+//! Line properties: the tables that a checker expects, run by run, and the sums.
+//!
+//! Straight runs fill the columns by their formulas; an arc's own properties are steps before the
+//! tables, to which its cells link.
+
+use super::builder::{Builder, Cell, Line, Sheet, number_column, word_column};
+use super::points::{AXES, axes};
+use super::text::{math, piece, plain, symbol};
+use crate::formula::{Draft, Env, FormulaError, Math, Origin, SumSet, Symbol, Value};
+use crate::weld::Segment;
+
+/// A column of a property table.
+struct Property {
+    /// Name in formulas.
+    name: &'static str,
+    /// Symbol without the run's number.
+    symbol: Symbol,
+    /// Formula for a straight run; empty if the value is made elsewhere.
+    formula: String,
+    /// What it is, for the trace.
+    says: &'static str,
+}
+
+/// The pairs of axes of second moments, with the names of the line integrals.
+const PLANAR_PAIRS: [(&str, usize, usize); 3] = [("I_xx", 1, 1), ("I_yy", 0, 0), ("I_xy", 0, 1)];
+/// The pairs in space: the symmetric products t ∫ ρ_a ρ_b ds.
+const SPACE_PAIRS: [(&str, usize, usize); 6] =
+    [("S_xx", 0, 0), ("S_yy", 1, 1), ("S_zz", 2, 2), ("S_xy", 0, 1), ("S_yz", 1, 2), ("S_zx", 2, 0)];
+
+/// Names of the runs' own second moments, in the order of the pairs.
+pub(super) const OWN: [&str; 6] = ["own_0", "own_1", "own_2", "own_3", "own_4", "own_5"];
+/// Names of the transfer terms, in the order of the pairs.
+const MOVED: [&str; 6] = ["moved_0", "moved_1", "moved_2", "moved_3", "moved_4", "moved_5"];
+
+impl Builder<'_> {
+    /// The pairs that this group needs.
+    pub(super) fn pairs(&self) -> &'static [(&'static str, usize, usize)] {
+        if self.planar { &PLANAR_PAIRS } else { &SPACE_PAIRS }
+    }
+
+    /// The symbol of a second moment: I_xx, I_yy, I_xy in the plane, S_xx … in space.
+    pub(super) fn pair_symbol(name: &str) -> Symbol {
+        let (base, index) = name.split_once('_').expect("pairs are named base_index");
+        Symbol::of(base, &[&index[..1], &index[1..]])
+    }
+
+    /// All tables and sums, up to the second moments of the group.
+    pub(super) fn line_properties(&mut self) -> Result<(), FormulaError> {
+        self.bind_ends();
+        if self.is_trimmed() {
+            self.shortenings();
+        }
+        self.arcs()?;
+        self.lengths_table()?;
+        self.first_moments()?;
+        self.second_moments()?;
+        self.group_moments()
+    }
+
+    /// Whether any stop shortens a run.
+    pub(super) fn is_trimmed(&self) -> bool {
+        self.runs.iter().any(|run| run.path != run.told)
+    }
+
+    /// Binds each straight run's end coordinates and shortenings to the names of the columns.
+    fn bind_ends(&mut self) {
+        for index in 0..self.runs.len() {
+            let run = self.runs[index].clone();
+            if let Segment::Straight { a, b } = run.told {
+                for (letter, at) in [("a", a), ("b", b)] {
+                    let values = self.point_at(at).expect("every end has a point").values;
+                    for axis in 0..3 {
+                        self.run_values[index].insert(format!("{}_{letter}", AXES[axis]), values[axis]);
+                    }
+                }
+            }
+        }
+    }
+
+    pub(super) fn slug_id(&self, index: usize, name: &str) -> String {
+        format!("{}.{}", self.slugs[index], name.replace('_', "-"))
+    }
+
+    /// The environment of one run: its own values over those of the joint.
+    pub(super) fn run_env(&self, index: usize) -> Env {
+        let mut env = self.env.clone();
+        for (name, value) in &self.run_values[index] {
+            env.bind(name, *value);
+        }
+        env
+    }
+
+    /// Makes a value of a run and keeps it under `name`.
+    pub(super) fn run_step(
+        &mut self,
+        index: usize,
+        name: &str,
+        base: &Symbol,
+        says: &str,
+        formula: &str,
+    ) -> Result<Value, FormulaError> {
+        let env = self.run_env(index);
+        let draft = Draft {
+            id: self.slug_id(index, name),
+            symbol: base.with(&(index + 1).to_string()),
+            says: format!("{says}, run {}", index + 1),
+            formula,
+            origin: Origin::Method("geometry".to_owned()),
+            dim: None,
+        };
+        let value = self.ledger.step(draft, &env)?;
+        self.run_values[index].insert(name.to_owned(), value);
+        Ok(value)
+    }
+
+    /// The set `runs` with the given columns, for sums and heads.
+    fn run_set(&self, columns: &[(&str, Symbol)]) -> SumSet {
+        let symbols = columns.iter().map(|(name, symbol)| ((*name).to_owned(), symbol.clone())).collect();
+        SumSet { index: "i".to_owned(), symbols, members: self.run_values.clone() }
+    }
+
+    /// A table with a row for each run, or each straight run, and its formulas above it.
+    fn run_table(
+        &mut self,
+        id: &str,
+        caption: &str,
+        properties: &[Property],
+        straight_only: bool,
+    ) -> Result<(), FormulaError> {
+        for index in 0..self.runs.len() {
+            if straight_only && !self.is_straight(index) {
+                continue;
+            }
+            for property in properties {
+                if !property.formula.is_empty() && !self.run_values[index].contains_key(property.name) {
+                    self.run_step(index, property.name, &property.symbol, property.says, &property.formula)?;
+                }
+            }
+        }
+        self.column_formulas(properties)?;
+        let units = self.ledger.units();
+        let mut columns = vec![word_column("", 0), word_column("run", 1)];
+        for property in properties {
+            let value = self.run_values.iter().find_map(|values| values.get(property.name));
+            let unit = value.map(|value| units.text(self.ledger.get(*value).dim)).unwrap_or_default();
+            columns.push(number_column(symbol(&property.symbol), &unit));
+        }
+        let members: Vec<usize> = (0..self.runs.len()).filter(|index| !straight_only || self.is_straight(*index)).collect();
+        let mut rows = Vec::new();
+        for index in members {
+            let mut cells =
+                vec![Cell::Text(plain(&(index + 1).to_string())), Cell::Text(plain(&self.runs[index].name))];
+            for property in properties {
+                let value = self.run_values[index][property.name];
+                cells.push(self.cell(value));
+            }
+            rows.push(Line { id: format!("{id}.{}", self.slugs[index]), cells, strong: false });
+        }
+        self.table(Sheet { id: id.to_owned(), caption: plain(caption), columns, rows, foot: None });
+        Ok(())
+    }
+
+    /// Whether a run is straight.
+    pub(super) fn is_straight(&self, index: usize) -> bool {
+        matches!(self.runs[index].path, Segment::Straight { .. })
+    }
+
+    /// The formulas of the columns in one paragraph, as straight runs fill them.
+    fn column_formulas(&mut self, properties: &[Property]) -> Result<(), FormulaError> {
+        let Some(straight) = self.runs.iter().position(|run| matches!(run.path, Segment::Straight { .. })) else {
+            return Ok(());
+        };
+        let mut env = self.env.clone();
+        let names: Vec<(String, Symbol)> = self.run_values[straight]
+            .iter()
+            .map(|(name, value)| (name.clone(), column_symbol(name, &self.ledger.get(*value).symbol)))
+            .collect();
+        let columns: Vec<(&str, Symbol)> = names.iter().map(|(name, symbol)| (name.as_str(), symbol.clone())).collect();
+        let mut set = self.run_set(&columns);
+        set.members = vec![self.run_values[straight].clone()];
+        env.sets.insert("runs".to_owned(), set);
+        let mut text = Vec::new();
+        for property in properties.iter().filter(|property| !property.formula.is_empty()) {
+            if !text.is_empty() {
+                text.push(piece(";  "));
+            }
+            let formula = self.ledger.column_formula(&env, &property.symbol, &property.formula, "runs")?;
+            text.push(math(&inline(formula)));
+        }
+        if !text.is_empty() {
+            text.push(piece("."));
+            self.para(text);
+        }
+        Ok(())
+    }
+
+    /// Directions, lengths, areas and centroids.
+    fn lengths_table(&mut self) -> Result<(), FormulaError> {
+        let axes = axes(self.planar);
+        let trimmed = self.is_trimmed();
+        let mut properties: Vec<Property> = Vec::new();
+        for axis in axes {
+            properties.push(Property {
+                name: ["d_x", "d_y", "d_z"][*axis],
+                symbol: Symbol::of("d", &[AXES[*axis]]),
+                formula: format!("{0}_b - {0}_a", AXES[*axis]),
+                says: "Extent from start to end",
+            });
+        }
+        let squares: Vec<String> = axes.iter().map(|axis| format!("d_{}^2", AXES[*axis])).collect();
+        let root = format!("sqrt({})", squares.join(" + "));
+        if trimmed {
+            properties.push(Property {
+                name: "L_0",
+                symbol: Symbol::of("L", &["0"]),
+                formula: root,
+                says: "Length as told",
+            });
+        } else {
+            properties.push(Property { name: "L", symbol: Symbol::of("L", &[]), formula: root, says: "Length" });
+        }
+        let mut second: Vec<Property> = Vec::new();
+        second.push(Property { name: "t", symbol: Symbol::of("t", &[]), formula: String::new(), says: "Effective throat" });
+        if trimmed {
+            second.push(Property {
+                name: "L",
+                symbol: Symbol::of("L", &[]),
+                formula: "L_0 - e_a - e_b".to_owned(),
+                says: "Effective length: less its stops",
+            });
+        } else {
+            second.extend(properties.pop());
+        }
+        second.push(Property { name: "A", symbol: Symbol::of("A", &[]), formula: "t*L".to_owned(), says: "Throat area" });
+        for axis in axes {
+            let a = AXES[*axis];
+            let formula = if trimmed {
+                format!("{a}_a + d_{a}*(e_a + L/2)/L_0")
+            } else {
+                format!("({a}_a + {a}_b)/2")
+            };
+            second.push(Property {
+                name: ["x_m", "y_m", "z_m"][*axis],
+                symbol: Symbol::of(a, &["m"]),
+                formula,
+                says: "Centroid of the run",
+            });
+        }
+        if trimmed {
+            properties.push(Property { name: "e_a", symbol: Symbol::of("e", &["a"]), formula: String::new(), says: "Shortening at the start" });
+            properties.push(Property { name: "e_b", symbol: Symbol::of("e", &["b"]), formula: String::new(), says: "Shortening at the end" });
+        }
+        if (0..self.runs.len()).any(|index| self.is_straight(index)) {
+            self.run_table("extents", "Extents of the straight runs", &properties, true)?;
+        }
+        self.run_table("throats", "Throats, lengths, areas and centroids", &second, false)
+    }
+
+    /// What each stop takes off: one leg, one throat, or nothing.
+    fn shortenings(&mut self) {
+        for index in 0..self.runs.len() {
+            for (end, name) in ["e_a", "e_b"].into_iter().enumerate() {
+                let value = match self.runs[index].ends[end] {
+                    crate::weld::End::Stop { leg: true, .. } => {
+                        let values = &self.run_values[index];
+                        let of = |name: &str| values.get(name).copied();
+                        let size = |value: Value| self.ledger.get(value).value;
+                        // One leg of unequal ones is the larger.
+                        match (of("leg_base"), of("leg_attached")) {
+                            (Some(base), Some(attached)) if size(attached) > size(base) => Some(attached),
+                            (Some(base), _) => Some(base),
+                            (None, attached) => attached.or_else(|| of("t")),
+                        }
+                    }
+                    crate::weld::End::Stop { leg: false, .. } => self.run_values[index].get("t").copied(),
+                    crate::weld::End::Continuous | crate::weld::End::Full => None,
+                };
+                let value = value.unwrap_or_else(|| {
+                    let symbol = Symbol::of("e", &[&name[2..]]).with(&(index + 1).to_string());
+                    let id = self.slug_id(index, name);
+                    self.zero(id, symbol, "No shortening at this end", crate::quantity::Dim::LENGTH)
+                });
+                self.run_values[index].insert(name.to_owned(), value);
+            }
+        }
+    }
+
+    /// First moments and the centroid of the group.
+    fn first_moments(&mut self) -> Result<(), FormulaError> {
+        let axes = axes(self.planar);
+        self.sum_step("A", Symbol::of("A", &[]), "Area of all throats", &[("A", Symbol::of("A", &[]))], "sum(runs, A)")?;
+        for axis in axes {
+            let a = AXES[*axis];
+            let middle = format!("{a}_m");
+            let columns = [("A", Symbol::of("A", &[])), (middle.as_str(), Symbol::of(a, &["m"]))];
+            let says = format!("Centroid of the group, {a}");
+            let formula = format!("sum(runs, A*{middle})/A_w");
+            let name = format!("{a}_c");
+            self.sum_step(&name, Symbol::of(a, &["c"]), &says, &columns, &formula)?;
+        }
+        if self.planar {
+            self.plane_height()?;
+        }
+        Ok(())
+    }
+
+    /// The height of the faying plane: the z of every point.
+    fn plane_height(&mut self) -> Result<(), FormulaError> {
+        let value = match self.points.first() {
+            Some(point) => point.values[2],
+            None => self.zero("plane.z".to_owned(), Symbol::of("z", &["c"]), "Faying plane", crate::quantity::Dim::LENGTH),
+        };
+        self.env.bind("z_c", value);
+        Ok(())
+    }
+
+    /// A step that sums over the runs.
+    fn sum_step(
+        &mut self,
+        name: &str,
+        symbol: Symbol,
+        says: &str,
+        columns: &[(&str, Symbol)],
+        formula: &str,
+    ) -> Result<Value, FormulaError> {
+        let mut env = self.env.clone();
+        env.sets.insert("runs".to_owned(), self.run_set(columns));
+        let id = format!("group.{}", name.to_lowercase().replace('_', "-"));
+        let bound = if name == "A" { "A_w" } else { name };
+        let value = self.make(bound, id, symbol, says.to_owned(), formula, "statics", &env)?;
+        self.show(value);
+        Ok(value)
+    }
+
+    /// Own second moments, transfer terms, and their sums.
+    fn second_moments(&mut self) -> Result<(), FormulaError> {
+        let pairs = self.pairs();
+        let own: Vec<Property> = pairs
+            .iter()
+            .zip(OWN)
+            .map(|((name, p, q), own)| Property {
+                name: own,
+                symbol: Self::pair_symbol(name).with("0"),
+                formula: self.own_formula(*p, *q),
+                says: "Second moment about the run's own centroid",
+            })
+            .collect();
+        self.run_table("own", "Second moments of the runs about their own centroids", &own, false)?;
+        let transfer: Vec<Property> = pairs
+            .iter()
+            .zip(MOVED)
+            .map(|((name, p, q), moved)| {
+                let (a, b) = (AXES[*p], AXES[*q]);
+                let formula = if p == q {
+                    format!("A*({a}_m - {a}_c)^2")
+                } else {
+                    format!("A*({a}_m - {a}_c)*({b}_m - {b}_c)")
+                };
+                Property {
+                    name: moved,
+                    symbol: Symbol::of("T", &[&name[2..3], &name[3..4]]),
+                    formula,
+                    says: "Transfer to the centroid of the group",
+                }
+            })
+            .collect();
+        self.run_table("transfer", "Transfer terms to the centroid of the group", &transfer, false)?;
+        for (at, (name, ..)) in pairs.iter().enumerate() {
+            let (o, q) = (OWN[at], MOVED[at]);
+            let base = Self::pair_symbol(name);
+            let columns = [(o, base.with("0")), (q, Symbol::of("T", &[&name[2..3], &name[3..4]]))];
+            let says = match *name {
+                "I_xx" => "Second moment about x through the centroid".to_owned(),
+                "I_yy" => "Second moment about y through the centroid".to_owned(),
+                "I_xy" => "Product of inertia about the centroid".to_owned(),
+                other => format!("Line integral of {}·{} about the centroid", &other[2..3], &other[3..4]),
+            };
+            self.sum_step(name, base, &says, &columns, &format!("sum(runs, {o}) + sum(runs, {q})"))?;
+        }
+        Ok(())
+    }
+
+    fn own_formula(&self, p: usize, q: usize) -> String {
+        let (a, b) = (AXES[p], AXES[q]);
+        let product = if p == q { format!("d_{a}^2") } else { format!("d_{a}*d_{b}") };
+        if self.is_trimmed() {
+            format!("A*{product}*L^2/(12*L_0^2)")
+        } else {
+            format!("A*{product}/12")
+        }
+    }
+
+    /// J and the determinant in the plane; the tensor K in space.
+    fn group_moments(&mut self) -> Result<(), FormulaError> {
+        if self.planar {
+            self.step(Symbol::of("J", &[]), "Polar second moment about the centroid", "I_xx + I_yy", "statics")?;
+            return Ok(());
+        }
+        for (symbol, formula) in [
+            ("xx", "S_yy + S_zz"),
+            ("yy", "S_zz + S_xx"),
+            ("zz", "S_xx + S_yy"),
+            ("xy", "-S_xy"),
+            ("yz", "-S_yz"),
+            ("zx", "-S_zx"),
+        ] {
+            let symbol = Symbol::of("K", &[&symbol[..1], &symbol[1..]]);
+            let says = format!("Component {} of the inertia tensor about the centroid", symbol.plain());
+            self.step(symbol, &says, formula, "statics")?;
+        }
+        Ok(())
+    }
+}
+
+/// The symbol of a column: that of a run's value without the run's number or the point's.
+fn column_symbol(name: &str, value: &Symbol) -> Symbol {
+    let (base, index) = value.parts();
+    match name {
+        "t" | "L" | "A" => Symbol::of(name, &[]),
+        "leg_base" | "leg_attached" => Symbol::of("h", &[]),
+        _ if name.len() == 3 && name.ends_with(['a', 'b', 'm']) => Symbol::of(&name[..1], &[&name[2..]]),
+        _ => {
+            let kept: Vec<&str> = index[..index.len().saturating_sub(1)].iter().map(String::as_str).collect();
+            Symbol::of(base, &kept)
+        }
+    }
+}
+
+/// Fractions on the line, for running text.
+fn inline(formula: Math) -> Math {
+    match formula {
+        Math::Fraction(above, below) => {
+            let bracket = |math: Math| match math {
+                Math::Terms(_) | Math::Product(_) => Math::Bracket(Box::new(math)),
+                other => other,
+            };
+            let above = match *above {
+                sum @ Math::Terms(_) => Box::new(Math::Bracket(Box::new(sum))),
+                other => Box::new(other),
+            };
+            Math::Slash(above, Box::new(bracket(*below)))
+        }
+        Math::Relation(sign, left, right) => Math::Relation(sign, left, Box::new(inline(*right))),
+        Math::Product(factors) => Math::Product(factors.into_iter().map(inline).collect()),
+        Math::Terms(terms) => Math::Terms(terms.into_iter().map(|(minus, term)| (minus, inline(term))).collect()),
+        other => other,
+    }
+}

@@ -1,0 +1,218 @@
+//! Loads: the cases as told, the case that is worked, and its moment about the centroid.
+
+use super::builder::{Builder, Cell, Line, Sheet, number_column, word_column};
+use super::points::AXES;
+use super::text::{count, piece, plain, slug, symbol};
+use crate::formula::{Draft, FormulaError, Origin, Symbol, Value};
+use crate::joint::Case;
+use crate::load::Frame;
+use crate::quantity::{Dim, Given};
+
+/// Cases up to this number are listed in the note; the rest stand in the table of cases beside it.
+pub(super) const CASES_IN_NOTE: usize = 24;
+
+/// The values of a case in the joint frame.
+#[derive(Clone, Copy)]
+pub(super) struct CaseValues {
+    /// Force.
+    pub(super) force: [Value; 3],
+    /// Moment about the point of application.
+    pub(super) moment: [Value; 3],
+    /// Point of application.
+    pub(super) at: [Value; 3],
+    /// Moment about the centroid.
+    pub(super) about: [Value; 3],
+}
+
+impl Builder<'_> {
+    /// The list of cases.
+    pub(super) fn case_table(&mut self, first: &[usize]) {
+        let units = self.joint.units.value;
+        let (force, moment) = (units.text(Dim::FORCE), units.text(Dim::MOMENT));
+        let cases = &self.joint.loads.cases;
+        let shown: Vec<usize> = if cases.len() <= CASES_IN_NOTE {
+            (0..cases.len()).collect()
+        } else {
+            let mut chosen: Vec<usize> = first.iter().copied().take(CASES_IN_NOTE).collect();
+            chosen.sort_unstable();
+            chosen
+        };
+        let mut columns = vec![word_column("case", 0), word_column("level", 0)];
+        for axis in AXES {
+            columns.push(number_column(symbol(&Symbol::of("F", &[axis])), &force));
+        }
+        for axis in AXES {
+            columns.push(number_column(symbol(&Symbol::of("M", &[axis])), &moment));
+        }
+        let mut rows = Vec::new();
+        for index in shown {
+            let case = self.joint.loads.cases[index].clone();
+            let id = format!("case.{}-{}", index + 1, slug(&case.name.value));
+            let mut cells =
+                vec![Cell::Text(plain(&case.name.value)), Cell::Text(plain(case.level.value.word()))];
+            for (base, triple, says) in [("F", &case.force, "Force"), ("M", &case.moment, "Moment")] {
+                for axis in 0..3 {
+                    let value = self.case_input(index, &case, base, &triple.parts[axis], axis, says);
+                    cells.push(self.cell(value));
+                }
+            }
+            rows.push(Line { id, cells, strong: false });
+        }
+        let total = self.joint.loads.cases.len();
+        let caption = if rows.len() == total {
+            format!("Load cases as told, {} in all", total)
+        } else {
+            format!("Load cases as told: the {} that rank first of {total}; all stand in the table of cases", rows.len())
+        };
+        self.table(Sheet { id: "cases".to_owned(), caption: plain(&caption), columns, rows, foot: None });
+        self.describe_cases(first);
+    }
+
+    /// A line of words for each case that has some.
+    fn describe_cases(&mut self, first: &[usize]) {
+        let cases = self.joint.loads.cases.clone();
+        for index in first.iter().take(CASES_IN_NOTE) {
+            if let Some(says) = &cases[*index].says {
+                let name = &cases[*index].name.value;
+                self.para(vec![super::text::strong(name), piece(&format!(": {}.", says.value.trim_end_matches('.')))]);
+            }
+        }
+        let count = count(cases.len(), "case", "cases");
+        self.para(plain(&format!(
+            "Actions on the weld group from the attached part; moments about the point of application, by the right \
+             hand. The file holds {count}; {} run, none skipped. Components of one case are never mixed with another's.",
+            if cases.len() == 1 { "it was" } else { "all were" }
+        )));
+    }
+
+    /// A component of a case as told.
+    fn case_input(&mut self, index: usize, case: &Case, base: &str, given: &Given, axis: usize, says: &str) -> Value {
+        let frame = case.frame.as_ref().map_or(String::new(), |frame| format!(", in frame {}", frame.name.value));
+        let id = format!("case.{}-{}.{}{}", index + 1, slug(&case.name.value), base.to_lowercase(), AXES[axis]);
+        let mut symbol = Symbol::of(base, &[AXES[axis]]);
+        if base == "M" || case.frame.is_some() {
+            symbol = symbol.with(if case.frame.is_some() { "told" } else { "P" });
+        }
+        let says = format!("{says} along {} of case {}{frame}", AXES[axis], case.name.value);
+        let says = if base == "M" { says.replace("along", "about") } else { says };
+        self.input(id, symbol, &says, given, Origin::Input(case.force.place.clone()))
+    }
+
+    /// Works a case: into the joint frame if it has another, then about the centroid.
+    pub(super) fn work_case(&mut self, index: usize) -> Result<CaseValues, FormulaError> {
+        let case = self.joint.loads.cases[index].clone();
+        let tag = format!("case.{}-{}", index + 1, slug(&case.name.value));
+        let mut told = [[None; 3]; 3];
+        for axis in 0..3 {
+            told[0][axis] = Some(self.case_input(index, &case, "F", &case.force.parts[axis], axis, "Force"));
+            told[1][axis] = Some(self.case_input(index, &case, "M", &case.moment.parts[axis], axis, "Moment"));
+            let base = AXES[axis];
+            let part = if case.frame.is_some() { "told" } else { "P" };
+            let says = format!("Point of application of case {}, {base}", case.name.value);
+            let id = format!("{tag}.at-{base}");
+            let origin = Origin::Input(case.at.place.clone());
+            let value = self.input(id, Symbol::of(base, &[part]), &says, &case.at.parts[axis], origin);
+            self.show(value);
+            told[2][axis] = Some(value);
+        }
+        let told = told.map(|triple| triple.map(|value| value.expect("all nine are set")));
+        let [force, moment, at] = match &case.frame {
+            None => told,
+            Some(_) => self.turn_case(index, &tag, told)?,
+        };
+        let about = self.about_centroid(&tag, force, moment, at)?;
+        Ok(CaseValues { force, moment, at, about })
+    }
+
+    /// A case from its own frame into that of the joint: v = R v', p = o + R p'.
+    fn turn_case(&mut self, index: usize, tag: &str, told: [[Value; 3]; 3]) -> Result<[[Value; 3]; 3], FormulaError> {
+        let case = self.joint.loads.cases[index].clone();
+        let frame = case.frame.as_ref().expect("only cases with a frame are turned");
+        let turned = Frame::new(frame).expect("the frame was checked when the loads were laid out");
+        let mut env = self.env.clone();
+        for row in 0..3 {
+            let origin = Origin::Input(frame.origin.place.clone());
+            let says = format!("Origin of frame {}, {}", frame.name.value, AXES[row]);
+            let id = format!("{}.o-{}", slug(&frame.name.value), AXES[row]);
+            let value = self.input(id, Symbol::of("o", &[AXES[row]]), &says, &frame.origin.parts[row], origin);
+            self.show(value);
+            env.bind(&format!("o_{}", AXES[row]), value);
+            for column in 0..3 {
+                let symbol = Symbol::of("R", &[AXES[row], AXES[column]]);
+                let says = format!("Axis {} of frame {}, component {}", AXES[column], frame.name.value, AXES[row]);
+                let id = format!("{}.r-{}{}", slug(&frame.name.value), AXES[row], AXES[column]);
+                let exact = (frame.axes[column].parts[row].value - turned.r[(row, column)]).abs() < 1e-15;
+                let origin = Origin::Input(frame.axes[column].place.clone());
+                let value = if exact {
+                    self.input(id, symbol, &says, &frame.axes[column].parts[row], origin)
+                } else if let Some(known) = self.given.get(&id) {
+                    *known
+                } else {
+                    let formula = "axes as told, made exactly square and of unit length";
+                    let draft = Draft { id: id.clone(), symbol, says, formula, origin, dim: None };
+                    let value = self.ledger.found(draft, turned.r[(row, column)], Dim::NONE);
+                    self.given.insert(id, value);
+                    value
+                };
+                self.show(value);
+                env.bind(&format!("R_{row}{column}"), value);
+            }
+        }
+        let mut out = told;
+        for (kind, (base, what)) in
+            [("F", "Force"), ("M", "Moment at the point of application"), ("", "Point of application")].into_iter().enumerate()
+        {
+            for axis in 0..3 {
+                env.bind(["v_0", "v_1", "v_2"][axis], told[kind][axis]);
+            }
+            for axis in 0..3 {
+                let a = AXES[axis];
+                let turn = format!("R_{axis}0*v_0 + R_{axis}1*v_1 + R_{axis}2*v_2");
+                let formula = if base.is_empty() { format!("o_{a} + {turn}") } else { turn };
+                let symbol = match base {
+                    "F" => Symbol::of("F", &[a]),
+                    "M" => Symbol::of("M", &[a, "P"]),
+                    _ => Symbol::of(a, &["P"]),
+                };
+                let draft = Draft {
+                    id: format!("{tag}.joint-{}{a}", base.to_lowercase()),
+                    symbol,
+                    says: format!("{what} in the joint frame, {a}"),
+                    formula: &formula,
+                    origin: Origin::Method("statics".to_owned()),
+                    dim: None,
+                };
+                let value = self.ledger.step(draft, &env)?;
+                self.show(value);
+                out[kind][axis] = value;
+            }
+        }
+        Ok(out)
+    }
+
+    /// M_C = M + (P − C) × F.
+    fn about_centroid(&mut self, tag: &str, force: [Value; 3], moment: [Value; 3], at: [Value; 3]) -> Result<[Value; 3], FormulaError> {
+        let mut env = self.env.clone();
+        for axis in 0..3 {
+            env.bind(&format!("F_{}", AXES[axis]), force[axis]);
+            env.bind(&format!("M_{}P", AXES[axis]), moment[axis]);
+            env.bind(&format!("{}_P", AXES[axis]), at[axis]);
+        }
+        let mut about = moment;
+        for axis in 0..3 {
+            let [a, b, c] = [AXES[axis], AXES[(axis + 1) % 3], AXES[(axis + 2) % 3]];
+            let formula = format!("M_{a}P + ({b}_P - {b}_c)*F_{c} - ({c}_P - {c}_c)*F_{b}");
+            let draft = Draft {
+                id: format!("{tag}.moment-{a}"),
+                symbol: Symbol::of("M", &[a]),
+                says: format!("Moment about {a} through the centroid: the given moment and the force carried across"),
+                formula: &formula,
+                origin: Origin::Method("statics".to_owned()),
+                dim: None,
+            };
+            about[axis] = self.ledger.step(draft, &env)?;
+            self.show(about[axis]);
+        }
+        Ok(about)
+    }
+}

@@ -1,0 +1,35 @@
+//! The note: what a checker reads, as data.
+//!
+//! [`Calculation`] takes a joint as told to the outcome of every check; [`write_note`] works the
+//! governing results again as numbered steps of a ledger and lays out the document, the trace and
+//! the data of the drawing. Knows no file, no page and no typesetter.
+
+mod arcs;
+mod builder;
+mod calculation;
+mod cases;
+pub mod doc;
+mod front;
+mod identity;
+mod layout;
+mod lines;
+mod loads;
+mod margins;
+mod points;
+mod proofs;
+mod sketch;
+mod standing;
+mod stress;
+mod text;
+mod throats;
+mod trace;
+mod words;
+mod write;
+
+pub use calculation::{Calculation, Outcome, Refusal};
+pub use front::FIGURE;
+pub use identity::Identity;
+pub use sketch::{Sketch, SketchLoad, SketchRun};
+pub use standing::Standing;
+pub use trace::SCHEMA as TRACE_SCHEMA;
+pub use write::{Note, write_note};

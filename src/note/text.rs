@@ -1,0 +1,67 @@
+//! Small makers of running text.
+
+use super::doc::{Inline, Text};
+use crate::formula::{Math, Printed, Symbol};
+
+/// Plain text.
+pub(super) fn plain(text: &str) -> Text {
+    vec![piece(text)]
+}
+
+/// A piece of plain text.
+pub(super) fn piece(text: &str) -> Inline {
+    Inline::Plain { text: text.to_owned() }
+}
+
+/// A piece of emphasis.
+pub(super) fn emph(text: &str) -> Inline {
+    Inline::Emph { text: text.to_owned() }
+}
+
+/// A piece in bold.
+pub(super) fn strong(text: &str) -> Inline {
+    Inline::Strong { text: text.to_owned() }
+}
+
+/// Mathematics in running text.
+pub(super) fn math(math: &Math) -> Inline {
+    Inline::Math { typst: math.typst(), latex: math.latex(), words: math.words() }
+}
+
+/// A symbol in running text.
+pub(super) fn symbol(symbol: &Symbol) -> Inline {
+    math(&Math::Symbol(symbol.clone()))
+}
+
+/// A number split at its point, for cells.
+pub(super) fn number(printed: &Printed, signed: bool, step: Option<String>) -> Inline {
+    let sign = match (printed.negative, signed) {
+        (true, _) => "−",
+        (false, true) => "+",
+        (false, false) => "",
+    };
+    let (whole, decimals) = match printed.mantissa.split_once('.') {
+        Some((whole, decimals)) => (whole, format!(".{decimals}")),
+        None => (printed.mantissa.as_str(), String::new()),
+    };
+    Inline::Number { whole: format!("{sign}{whole}"), decimals, exponent: printed.exponent, step }
+}
+
+/// A short name for ids: lower-case letters and digits with single hyphens.
+pub(super) fn slug(text: &str) -> String {
+    let mut out = String::new();
+    for c in text.chars() {
+        if c.is_ascii_alphanumeric() {
+            out.push(c.to_ascii_lowercase());
+        } else if !out.is_empty() && !out.ends_with('-') {
+            out.push('-');
+        }
+    }
+    let out = out.trim_end_matches('-').to_owned();
+    if out.is_empty() { "x".to_owned() } else { out }
+}
+
+/// A count with its noun: `1 case`, `3 cases`.
+pub(super) fn count(number: usize, one: &str, many: &str) -> String {
+    format!("{number} {}", if number == 1 { one } else { many })
+}

@@ -1,0 +1,172 @@
+//! Steps from sizes as told to effective throats: one step for each size, not for each run.
+
+use super::builder::Builder;
+use crate::formula::{Env, FormulaError, Origin, Symbol, Value};
+use crate::joint::{RunSpec, SizeSpec};
+use crate::quantity::{Dim, Given};
+use crate::source::Told;
+use crate::weld::ThroatRule;
+use std::f64::consts::FRAC_PI_2;
+
+/// Letters that tell the sizes of a note apart.
+const LETTERS: &[u8] = b"abcdefghijklmnopqrstuvw";
+
+impl Builder<'_> {
+    /// Works out each distinct size, shows it, and gives every run its throat `t` and legs.
+    pub(super) fn throats(&mut self) -> Result<(), FormulaError> {
+        let mut sizes: Vec<(ThroatRule, Value, Vec<Value>)> = Vec::new();
+        let distinct = {
+            let mut rules: Vec<&ThroatRule> = Vec::new();
+            for run in self.runs {
+                if !rules.contains(&&run.rule) {
+                    rules.push(&run.rule);
+                }
+            }
+            rules.len()
+        };
+        for index in 0..self.runs.len() {
+            let run = &self.runs[index];
+            let known = sizes.iter().find(|(rule, ..)| *rule == run.rule).map(|(_, t, legs)| (*t, legs.clone()));
+            let (throat, legs) = match known {
+                Some(known) => known,
+                None => {
+                    let letter = LETTERS.get(sizes.len()).copied().unwrap_or(b'z') as char;
+                    let letter = if distinct == 1 { String::new() } else { letter.to_string() };
+                    let spec = &self.joint.weld.runs[run.spec];
+                    let (throat, legs) = self.size(spec, &run.rule.clone(), &letter)?;
+                    sizes.push((run.rule.clone(), throat, legs.clone()));
+                    (throat, legs)
+                }
+            };
+            self.run_values[index].insert("t".to_owned(), throat);
+            for (name, leg) in ["leg_base", "leg_attached"].iter().zip(&legs) {
+                self.run_values[index].insert((*name).to_owned(), *leg);
+            }
+        }
+        Ok(())
+    }
+
+    fn length_of(&mut self, base: &str, letter: &str, says: &str, given: &Told<Given>) -> Value {
+        let symbol = lettered(base, letter);
+        let id = format!("size.{}", symbol.plain().to_lowercase().replace('_', "-"));
+        let value = self.input(id, symbol, says, &given.value, Origin::Input(given.place.clone()));
+        self.show(value);
+        value
+    }
+
+    /// The throat of one size and the legs on base and attached part.
+    fn size(&mut self, spec: &RunSpec, rule: &ThroatRule, letter: &str) -> Result<(Value, Vec<Value>), FormulaError> {
+        let mut env = Env::default();
+        let mut formula;
+        let mut says = "Effective throat".to_owned();
+        let mut legs = Vec::new();
+        match (&spec.size, rule) {
+            (SizeSpec::Fillet { leg, .. }, ThroatRule::EqualLegs { angle, gap, .. }) => {
+                let h = self.length_of("h", letter, "Leg of the fillet, along both faces", leg);
+                env.bind("h", h);
+                legs = vec![h, h];
+                let leg = self.worked_leg(spec, *gap, letter, &mut env, "h");
+                if (angle - FRAC_PI_2).abs() < 1e-12 {
+                    says.push_str(", equal legs at a right angle");
+                    formula = format!("{leg}/sqrt(2)");
+                } else {
+                    self.angle(spec, letter, &mut env);
+                    says.push_str(", equal legs along faces at the angle between them");
+                    formula = format!("{leg}*cos(psi/2)");
+                }
+            }
+            (SizeSpec::Fillet { leg, .. }, ThroatRule::SquareLegs { gap, .. }) => {
+                let h = self.length_of("W", letter, "Leg of the fillet, square to the face", leg);
+                env.bind("W", h);
+                legs = vec![h, h];
+                let leg = self.worked_leg(spec, *gap, letter, &mut env, "W");
+                self.angle(spec, letter, &mut env);
+                says.push_str(", legs measured square to the faces");
+                formula = format!("{leg}/(2*sin(psi/2))");
+            }
+            (SizeSpec::Unequal { on_base, on_attached }, ThroatRule::UnequalLegs { gap, .. }) => {
+                let base = self.length_of("h", &format!("{letter}1"), "Leg on the base part", on_base);
+                let attached = self.length_of("h", &format!("{letter}2"), "Leg on the attached part", on_attached);
+                env.bind("h_1", base);
+                env.bind("h_2", attached);
+                legs = vec![base, attached];
+                let one = self.worked_leg(spec, *gap, letter, &mut env, "h_1");
+                let two = self.worked_leg(spec, *gap, letter, &mut env, "h_2");
+                says.push_str(", unequal legs at a right angle");
+                formula = format!("{one}*{two}/sqrt({one}^2 + {two}^2)");
+            }
+            (SizeSpec::Throat { throat, leg }, _) => {
+                let t = self.length_of("t", letter, "Effective throat as stated", throat);
+                if let Some(leg) = leg {
+                    let h = self.length_of("h", letter, "Leg of the fillet as stated", leg);
+                    legs = vec![h, h];
+                }
+                return Ok((t, legs));
+            }
+            (SizeSpec::Partial { throat }, _) => {
+                let says = "Effective throat of the partial penetration weld as stated";
+                return Ok((self.length_of("t", letter, says, throat), legs));
+            }
+            (_, ThroatRule::Complete { part, .. }) => {
+                let thickness = self.joint.parts[*part].thickness.clone();
+                let thickness = thickness.expect("complete penetration was laid out from this thickness");
+                let says = format!("Complete penetration: thickness of {}", self.joint.parts[*part].name.value);
+                return Ok((self.length_of("t", letter, &says, &thickness), legs));
+            }
+            _ => unreachable!("a rule follows from its size"),
+        }
+        if let Some((extra, record)) = &spec.penetration {
+            let says = format!("Deep-penetration allowance, qualified by {}", record.value);
+            let e = self.length_of("e", letter, &says, extra);
+            env.bind("e", e);
+            formula.push_str(" + e");
+        }
+        let symbol = lettered("t", letter);
+        let id = format!("size.{}", symbol.plain().replace('_', "-"));
+        let name = symbol.plain();
+        let value = self.make(&name, id, symbol, says, &formula, "geometry", &env)?;
+        self.show(value);
+        Ok((value, legs))
+    }
+
+    /// The angle between the faces.
+    fn angle(&mut self, spec: &RunSpec, letter: &str, env: &mut Env) {
+        let symbol = lettered("psi", letter);
+        let id = format!("size.{}", symbol.plain().replace('_', "-"));
+        let value = match &spec.between {
+            Some(given) => {
+                let origin = Origin::Input(given.place.clone());
+                self.input(id, symbol, "Dihedral angle between the faces", &given.value, origin)
+            }
+            None => {
+                let given = Given::stated("90", FRAC_PI_2, Dim::ANGLE);
+                let origin = Origin::Method("not told: a right angle".to_owned());
+                self.input(id, symbol, "Dihedral angle between the faces", &given, origin)
+            }
+        };
+        self.show(value);
+        env.bind("psi", value);
+    }
+
+    /// The leg as a formula reads it: less the root gap where the gap exceeds the free one.
+    fn worked_leg(&mut self, spec: &RunSpec, gap: f64, letter: &str, env: &mut Env, leg: &str) -> String {
+        match (&spec.gap, gap > 0.0) {
+            (Some(given), true) => {
+                if !env.names.contains_key("g") {
+                    let says = "Root gap over 1/16 in: taken off the leg in full";
+                    let value = self.length_of("g", letter, says, given);
+                    let mark = "fit-up rule for root gaps (AWS D1.1) recalled from memory".to_owned();
+                    self.ledger.get_mut(value).mark = Some(mark);
+                    env.bind("g", value);
+                }
+                format!("({leg} - g)")
+            }
+            _ => leg.to_owned(),
+        }
+    }
+}
+
+/// A symbol with the letter of its size, if the note has several sizes.
+fn lettered(base: &str, letter: &str) -> Symbol {
+    if letter.is_empty() { Symbol::of(base, &[]) } else { Symbol::of(base, &[letter]) }
+}

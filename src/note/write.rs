@@ -1,0 +1,542 @@
+//! The whole note of a calculation: its sections in the order of the trade.
+
+use super::builder::{Builder, Piece};
+use super::calculation::{Calculation, Outcome};
+use super::doc::{Block, Doc, FigureRef, Head, Item, Text, Verdict};
+use super::identity::Identity;
+use super::margins::{Check, Site, asked, capital, check_name, drawn, ranked};
+use super::sketch::Sketch;
+use super::standing::Standing;
+use super::stress::CaseTerms;
+use super::text::{count, piece, plain, slug, strong};
+use super::trace::{self, Trace};
+use super::words::words;
+use crate::criteria::{Asked, Ground, WorkError};
+use crate::formula::{Env, FormulaError, Ledger};
+use crate::joint::Paper;
+use crate::solve::closure::{Closure, close};
+use crate::source::{Diagnostic, Faults};
+use crate::weld::V3;
+use std::collections::{BTreeMap, BTreeSet};
+use thiserror::Error;
+
+/// A finished note.
+#[derive(Clone, Debug)]
+pub struct Note {
+    /// The document.
+    pub doc: Doc,
+    /// The data of its drawing.
+    pub sketch: Sketch,
+    /// Its digests.
+    pub identity: Identity,
+    /// How it stands.
+    pub standing: Standing,
+    pub(super) trace: Trace,
+}
+
+/// Why a note cannot be written.
+#[derive(Clone, PartialEq, Debug, Error)]
+pub(super) enum NoteError {
+    /// A formula of the worked calculation.
+    #[error(transparent)]
+    Formula(#[from] FormulaError),
+    /// A check that cannot be worked.
+    #[error(transparent)]
+    Work(#[from] WorkError),
+}
+
+/// Writes the note of a calculation.
+///
+/// # Errors
+///
+/// [`Faults`] at the joint's check if a value cannot be printed so that it replays, or the steps
+/// and the assessment disagree: then no note is better than a wrong one.
+pub fn write_note(calculation: &Calculation<'_>) -> Result<Note, Faults> {
+    compose(calculation).map_err(|fault| {
+        let place = &calculation.joint.note.place;
+        let message = format!("the note cannot be written: {fault}");
+        Faults(vec![Diagnostic::error("no-note", message, place)])
+    })
+}
+
+fn builder<'c>(calculation: &'c Calculation<'_>) -> Builder<'c> {
+    let size = calculation.properties.size.max(f64::MIN_POSITIVE);
+    let force = calculation
+        .actions
+        .iter()
+        .map(|action| {
+            let (force, moment) = action.about(calculation.properties.centroid);
+            force.norm().max(moment.norm() / size)
+        })
+        .fold(0.0, f64::max);
+    let mut slugs: Vec<String> = Vec::new();
+    for run in &calculation.runs {
+        let mut name = slug(&run.name);
+        while slugs.contains(&name) {
+            name.push('x');
+        }
+        slugs.push(name);
+    }
+    Builder {
+        joint: calculation.joint,
+        runs: &calculation.runs,
+        properties: &calculation.properties,
+        actions: &calculation.actions,
+        ledger: Ledger::new(calculation.joint.units.value, force.max(f64::MIN_POSITIVE), size),
+        env: Env::default(),
+        parts: Vec::new(),
+        slugs,
+        planar: calculation.is_planar(),
+        points: Vec::new(),
+        run_values: vec![BTreeMap::new(); calculation.runs.len()],
+        given: BTreeMap::new(),
+        placed: BTreeSet::new(),
+    }
+}
+
+fn compose(calculation: &Calculation<'_>) -> Result<Note, NoteError> {
+    let joint = calculation.joint;
+    let stress = |case: usize, run: usize, p: f64| match &calculation.fields[case] {
+        Ok(field) => field.at(calculation.runs[run].path.point(p)),
+        Err(_) => V3::zeros(),
+    };
+    let ground = Ground { joint, runs: &calculation.runs, stress: &stress };
+    let mut b = builder(calculation);
+    let mut checks = ranked(calculation);
+    let mut cases = CaseTerms::new();
+
+    b.purpose();
+    b.inputs();
+    let open = b.assumptions(&sheet_texts(calculation, |asked| &asked.sheet.assumptions));
+    b.number_points();
+    b.geometry();
+    b.materials();
+    b.part("loads", "Loads");
+    b.part("lines", "Line properties");
+    b.throats()?;
+    b.line_properties()?;
+    let sites = if checks.is_empty() { Vec::new() } else { b.work_stresses(calculation, &checks, &mut cases)? };
+    b.work_checks(calculation, &ground, &mut checks, &sites, &cases)?;
+    b.margin_table(calculation, &checks);
+    let order = b.case_margins(calculation);
+    b.refusals(calculation);
+    b.sizes(calculation, &ground)?;
+    loads_part(&mut b, calculation, &order);
+    let closure = second_opinions(&mut b, calculation, &checks, &sites)?;
+    coverage(&mut b, calculation);
+    cautions(&mut b, calculation);
+    closing(&mut b);
+
+    b.show_conversions("inputs");
+    b.place_the_rest("inputs");
+    b.show_conversions("inputs");
+    order_parts(&mut b);
+    b.settle_and_number()?;
+    count_replays(&mut b);
+
+    let standing = Standing::of(calculation);
+    let results = result_lines(calculation);
+    let sheets = sheet_lines(calculation);
+    let identity = Identity::of(joint, &b.ledger, &sheets, &results);
+    let verdict = verdict(&b, calculation, &checks, &open);
+    let governing = checks.first().map(|check| {
+        let case = &joint.loads.cases[check.governing.case].name.value;
+        (check.governing.position, format!("governs, {case}"))
+    });
+    let first_case = checks.first().map(|check| check.governing.case);
+    let sketch = b.sketch(first_case.and_then(|case| drawn(&cases, case)), governing);
+    let trace = whole_trace(&b, calculation, &checks, &identity, closure.as_ref());
+    let mut sections = b.sections();
+    identity_section(&mut sections, &identity);
+    let doc = Doc {
+        head: head(calculation),
+        verdict,
+        sections,
+        identity: identity.printed(),
+        state: "DRAFT — not signed".to_owned(),
+    };
+    Ok(Note { doc, sketch, identity, standing, trace })
+}
+
+fn head(calculation: &Calculation<'_>) -> Head {
+    let joint = calculation.joint;
+    Head {
+        note: joint.note.value.clone(),
+        title: joint.title.value.clone(),
+        revision: joint.revision.value.clone(),
+        date: joint.date.value.to_string(),
+        drawing: joint.drawing.as_ref().map(|drawing| drawing.value.clone()),
+        item: joint.item.as_ref().map(|item| item.value.clone()),
+        paper: match joint.paper {
+            Paper::A4 => "a4",
+            Paper::UsLetter => "us-letter",
+        },
+    }
+}
+
+/// Texts of the sheets used, each once, with the name of the sheet.
+fn sheet_texts(
+    calculation: &Calculation<'_>,
+    texts: impl Fn(&Asked) -> &Vec<crate::source::Told<String>>,
+) -> Vec<(String, String)> {
+    let mut out: Vec<(String, String)> = Vec::new();
+    for outcome in &calculation.outcomes {
+        if let Outcome::Assessed(asked) = outcome {
+            for text in texts(asked) {
+                if !out.iter().any(|(known, _)| *known == text.value) {
+                    out.push((text.value.clone(), asked.sheet.source.cited()));
+                }
+            }
+        }
+    }
+    out
+}
+
+/// The loads: the table of cases first, then the cases that were worked with the stresses.
+fn loads_part(b: &mut Builder<'_>, calculation: &Calculation<'_>, order: &[usize]) {
+    let all: Vec<usize> = (0..calculation.joint.loads.cases.len()).collect();
+    let first = if order.is_empty() { &all } else { order };
+    b.part("case-list", "Loads");
+    b.case_table(first);
+}
+
+/// Moves the list of cases to its place before the line properties.
+fn order_parts(b: &mut Builder<'_>) {
+    let take = |b: &mut Builder<'_>, id: &str| {
+        b.parts.iter_mut().find(|part| part.id == id).map(|part| std::mem::take(&mut part.pieces)).unwrap_or_default()
+    };
+    let pieces = take(b, "case-list");
+    if let Some(part) = b.parts.iter_mut().find(|part| part.id == "loads") {
+        part.pieces.extend(pieces);
+    }
+}
+
+/// Closure, the kernel, the handbook.
+fn second_opinions(
+    b: &mut Builder<'_>,
+    calculation: &Calculation<'_>,
+    checks: &[Check],
+    sites: &[Site],
+) -> Result<Option<Closure>, NoteError> {
+    b.part("opinions", "Second opinions");
+    let class = calculation.resistance.class;
+    if class.is_slender {
+        b.warn_nearly_collinear(class.ratio);
+    }
+    let mut closure = None;
+    if let (Some(check), Some(site)) = (checks.first(), sites.first()) {
+        let case = check.governing.case;
+        if let Ok(field) = &calculation.fields[case] {
+            let properties = &calculation.properties;
+            let found = close(&calculation.runs, &calculation.actions[case], properties.centroid, properties.size, |_, _, r| {
+                field.at(r)
+            });
+            b.closure(case, &found);
+            closure = Some(found);
+        }
+        if let Some(kernel) = Builder::kernel_stress(calculation, &check.governing) {
+            b.agreement(kernel, site.stress);
+        }
+    }
+    b.handbook()?;
+    b.replay_words(0);
+    Ok(closure)
+}
+
+/// Puts the number of lines with a formula into the words on replay.
+fn count_replays(b: &mut Builder<'_>) {
+    let count = b.ledger.values().filter(|value| b.ledger.formula_algebra(*value).is_some()).count();
+    let words = super::proofs::replay_text(count);
+    for part in b.parts.iter_mut().filter(|part| part.id == "opinions") {
+        if let Some(Piece::Block(Block::Para { text })) = part.pieces.last_mut() {
+            *text = plain(&words);
+        }
+    }
+}
+
+/// Failure paths: checked, excluded by the user, or not covered by this note.
+fn coverage(b: &mut Builder<'_>, calculation: &Calculation<'_>) {
+    b.part("coverage", "Failure paths");
+    let mut rows = Vec::new();
+    for (word, name) in ordered_paths() {
+        let by: Vec<String> = calculation
+            .outcomes
+            .iter()
+            .filter_map(|outcome| match outcome {
+                Outcome::Assessed(asked) if asked.sheet.covers.iter().any(|path| path.word() == word) => {
+                    Some(capital(&asked.sheet.name.value))
+                }
+                Outcome::Assessed(_) | Outcome::Refused(_) => None,
+            })
+            .collect();
+        let excluded = calculation.joint.excluded.iter().find(|exclusion| exclusion.path.value == word);
+        let (state, detail) = match (by.is_empty(), excluded) {
+            (false, _) => (plain("checked"), by.join("; ")),
+            (true, Some(exclusion)) => (plain("excluded"), exclusion.by.value.clone()),
+            (true, None) => (vec![strong("not covered")], "not checked in this note; to be checked elsewhere".to_owned()),
+        };
+        let cells = vec![
+            super::builder::Cell::Text(plain(&capital(&name))),
+            super::builder::Cell::Text(state),
+            super::builder::Cell::Text(plain(&detail)),
+        ];
+        rows.push(super::builder::Line { id: format!("path.{}", slug(&word)), cells, strong: false });
+    }
+    let columns = vec![
+        super::builder::word_column("failure path", 2),
+        super::builder::word_column("state", 0),
+        super::builder::word_column("by", 4),
+    ];
+    let caption = plain("Failure paths of the joint, and where each is looked at");
+    b.table(super::builder::Sheet { id: "paths".to_owned(), caption, columns, rows, foot: None });
+}
+
+/// Failure paths in the order of the sheets' words.
+fn ordered_paths() -> Vec<(String, String)> {
+    crate::criteria::FailurePath::WORDS
+        .iter()
+        .map(|(word, _)| ((*word).to_owned(), words().paths.get(*word).cloned().unwrap_or_else(|| (*word).to_owned())))
+        .collect()
+}
+
+/// The usual cautions, those of the sheets used, those of the user.
+fn cautions(b: &mut Builder<'_>, calculation: &Calculation<'_>) {
+    b.part("cautions", "Cautions");
+    let mut items: Vec<Item> = Vec::new();
+    let mut add = |text: &str, source: Option<String>| {
+        let label = format!("C{}", items.len() + 1);
+        items.push(Item { label, text: plain(text), mark: None, source });
+    };
+    for caution in &calculation.joint.cautions {
+        add(&caution.value, Some(caution.place.short()));
+    }
+    for (text, source) in sheet_texts(calculation, |asked| &asked.sheet.cautions) {
+        add(&text, Some(source));
+    }
+    for text in &words().cautions {
+        add(text, None);
+    }
+    b.items(items);
+}
+
+/// Change record and signatures.
+fn closing(b: &mut Builder<'_>) {
+    let joint = b.joint;
+    if !joint.changes.is_empty() {
+        b.part("changes", "Change record");
+        let rows = joint
+            .changes
+            .iter()
+            .enumerate()
+            .map(|(index, change)| super::builder::Line {
+                id: format!("change-{}", index + 1),
+                cells: [&change.revision.value, &change.date.value.to_string(), &change.says.value]
+                    .into_iter()
+                    .map(|text| super::builder::Cell::Text(plain(text)))
+                    .collect(),
+                strong: false,
+            })
+            .collect();
+        let columns = vec![
+            super::builder::word_column("issue", 0),
+            super::builder::word_column("date", 0),
+            super::builder::word_column("what changed", 1),
+        ];
+        let caption = plain("Issues of this note");
+        b.table(super::builder::Sheet { id: "issues".to_owned(), caption, columns, rows, foot: None });
+    }
+    b.part("signatures", "Signatures");
+    b.block(Block::Signatures { roles: joint.signatures.iter().map(|role| role.value.clone()).collect() });
+}
+
+/// The identity in words, before the signatures, which name it.
+fn identity_section(sections: &mut [super::doc::Section], identity: &Identity) {
+    if let Some(section) = sections.iter_mut().find(|section| section.id == "signatures") {
+        let text = vec![
+            piece("Calculation identity "),
+            strong(&identity.printed()),
+            piece(&format!(
+                ", over inputs, clause sheets and printed results; words {}. Written by Seamnote {}. A signature stands \
+                 for this identity only: a note that prints another one is unsigned.",
+                identity.printed_words(),
+                env!("CARGO_PKG_VERSION")
+            )),
+        ];
+        section.blocks.insert(0, Block::Para { text });
+    }
+}
+
+/// The verdict of the first page.
+fn verdict(b: &Builder<'_>, calculation: &Calculation<'_>, checks: &[Check], open: &[String]) -> Verdict {
+    let standing = Standing::of(calculation);
+    let Some(check) = checks.first() else {
+        let lines = vec![
+            plain("No strength check of this note has a number; the reasons stand under “Checks without a number”."),
+            plain(&standing.tally()),
+        ];
+        return Verdict { label: "no margin".to_owned(), figure: "none".to_owned(), lines };
+    };
+    let asked = asked(calculation, check.outcome);
+    let case = &b.joint.loads.cases[check.governing.case];
+    let spot = super::stress::Spot {
+        case: check.governing.case,
+        run: check.governing.run,
+        p: check.governing.s,
+        side: check.governing.side,
+    };
+    let part = check.governing.part.map(|turn| format!(", {}", turn.word())).unwrap_or_default();
+    let first: Text = vec![
+        piece(&format!("{}{part}, at ", capital(&check_name(asked, check.check)))),
+        super::text::emph(&b.place_words(spot)),
+        piece(", case "),
+        strong(&case.name.value),
+        piece(&format!(" ({}). ", case.level.value.word())),
+    ];
+    let mut first = first;
+    if let Some(margin) = check.worked.as_ref().and_then(|worked| worked.margin) {
+        let entry = b.ledger.get(margin);
+        first.push(super::doc::Inline::StepRef { id: entry.anchor.clone(), text: format!("Step {}", entry.no) });
+    }
+    let mut marks: BTreeSet<String> = open.iter().map(|label| format!("assumption {label}")).collect();
+    if let Some(worked) = &check.worked {
+        for value in [Some(worked.demand), Some(worked.capacity), worked.margin].into_iter().flatten() {
+            marks.extend(b.ledger.marks_behind(value));
+        }
+    }
+    let mut lines = vec![first, plain(&standing.tally())];
+    if marks.is_empty() {
+        lines.push(plain("No open item stands behind this margin."));
+    } else {
+        let list: Vec<String> = marks.into_iter().collect();
+        let verb = if list.len() == 1 { "stands" } else { "stand" };
+        lines.push(plain(&format!(
+            "{} {verb} behind this margin, to be verified: {}.",
+            capital(&count(list.len(), "open item", "open items")),
+            list.join("; ")
+        )));
+    }
+    Verdict { label: "least margin of safety".to_owned(), figure: standing.figure(), lines }
+}
+
+/// Canonical lines of the sheets used.
+fn sheet_lines(calculation: &Calculation<'_>) -> Vec<String> {
+    let mut lines = Vec::new();
+    for outcome in &calculation.outcomes {
+        if let Outcome::Assessed(asked) = outcome {
+            let sheet = &asked.sheet;
+            lines.push(format!("{}|{}", sheet.name.value, sheet.source.cited()));
+            lines.extend(sheet.steps.iter().map(|step| format!("{}={}", step.name.value, step.formula.value)));
+            lines.extend(sheet.checks.iter().map(|check| format!("{}|{:?}", check.demand, check.capacity)));
+            lines.extend(sheet.limits.iter().map(|limit| format!("{}|{:?}|{}", limit.value, limit.side, limit.bound)));
+        }
+    }
+    lines
+}
+
+/// Every outcome of every case, as printed.
+fn result_lines(calculation: &Calculation<'_>) -> Vec<String> {
+    super::cases::rows(calculation).into_iter().map(|row| row.join("|")).collect()
+}
+
+fn whole_trace(
+    b: &Builder<'_>,
+    calculation: &Calculation<'_>,
+    checks: &[Check],
+    identity: &Identity,
+    closure: Option<&Closure>,
+) -> Trace {
+    let joint = calculation.joint;
+    let properties = &calculation.properties;
+    let spot = |at: &crate::criteria::Governing| super::stress::Spot { case: at.case, run: at.run, p: at.s, side: at.side };
+    let cases = (0..joint.loads.cases.len())
+        .map(|case| {
+            let action = calculation.actions[case];
+            let (force, moment) = action.about(properties.centroid);
+            trace::TraceCase {
+                case: joint.loads.cases[case].name.value.clone(),
+                level: joint.loads.cases[case].level.value.word(),
+                force: trace::components(action.force),
+                moment: trace::components(action.moment),
+                at: trace::components(action.at),
+                at_centroid: trace::AtCentroid { force: trace::components(force), moment: trace::components(moment) },
+                checks: super::cases::of_case(calculation, case)
+                    .into_iter()
+                    .map(|(name, at)| trace::TraceCheck {
+                        check: name,
+                        point: b.place_words(spot(at)),
+                        position: trace::components(at.position),
+                        demand: at.demand,
+                        capacity: at.capacity,
+                        utilisation: Some(at.utilisation),
+                        margin: at.margin.value(),
+                        reason: at.margin.reason().map(str::to_owned),
+                    })
+                    .collect(),
+            }
+        })
+        .collect();
+    Trace {
+        note: joint.note.value.clone(),
+        revision: joint.revision.value.clone(),
+        identity: trace::TraceIdentity { calculation: identity.calculation.clone(), words: identity.words.clone() },
+        program: env!("CARGO_PKG_VERSION").to_owned(),
+        units: trace::Units::of(joint.units.value),
+        group: trace::Group {
+            area: properties.area,
+            centroid: trace::components(properties.centroid),
+            ixx: properties.i_xx(),
+            iyy: properties.i_yy(),
+            ixy: properties.i_xy(),
+            j: properties.j(),
+            tensor: trace::rows(&properties.tensor),
+        },
+        cases,
+        governing: checks.first().map(|check| trace::Governing {
+            check: check_name(asked(calculation, check.outcome), check.check),
+            case: joint.loads.cases[check.governing.case].name.value.clone(),
+            point: b.place_words(spot(&check.governing)),
+            margin: check.governing.margin.value(),
+        }),
+        closure: closure.map(|closure| trace::TraceClosure {
+            force_residual: closure.force_residual(),
+            moment_residual: closure.moment_residual(),
+        }),
+        steps: trace::steps(&b.ledger),
+    }
+}
+
+impl Note {
+    /// Completes the caption of the drawing once it is drawn.
+    pub fn set_caption(&mut self, view: &str, scale: &str, remarks: &[String]) {
+        let case = self.sketch.case.as_ref().map(|case| format!(", with case {case}")).unwrap_or_default();
+        let units = self.sketch.units;
+        let remarks = remarks.iter().map(|remark| format!(" {}.", capital(remark.trim_end_matches('.')))).collect::<String>();
+        let words = format!("The weld group, {view}{case}. Scale {scale}; lengths in {units}.{remarks}");
+        let runs: Vec<&str> = self.sketch.runs.iter().map(|run| run.text.as_str()).collect();
+        let alt = format!("Drawing of the weld group with its runs: {}. {words}", runs.join("; "));
+        for block in self.doc.sections.iter_mut().flat_map(|section| &mut section.blocks) {
+            if let Block::Figure(FigureRef { caption, alt: text, .. }) = block {
+                caption.clone_from(&plain(&words));
+                text.clone_from(&alt);
+            }
+        }
+    }
+
+    /// The trace as JSON text.
+    ///
+    /// # Panics
+    ///
+    /// Never: a trace holds only finite numbers and texts.
+    #[must_use]
+    pub fn trace_json(&self) -> String {
+        let mut text = serde_json::to_string_pretty(&self.trace).expect("a trace is plain data");
+        text.push('\n');
+        text
+    }
+
+    /// The table of all cases and checks as CSV (RFC 4180), the worst point of each.
+    #[must_use]
+    pub fn cases_csv(&self) -> String {
+        super::cases::csv(&self.trace)
+    }
+}

@@ -1,0 +1,138 @@
+//! Finds and reads joint files and clause sheets.
+
+use super::ProjectError;
+use crate::criteria::{Library, built_in, read_sheet};
+use crate::source::{Diagnostic, Faults, Place, SourceFile};
+use std::collections::BTreeMap;
+use std::fs;
+use std::path::{Path, PathBuf};
+use std::sync::Arc;
+
+/// Files of a project that are no joints.
+const NOT_JOINTS: [&str; 1] = ["project.yaml"];
+
+/// A user's file may have this many bytes: a thousand times the largest joint seen.
+const LARGEST: u64 = 8 * 1024 * 1024;
+
+/// A joint file found, and the folder of its project.
+#[derive(Clone, PartialEq, Eq, Debug)]
+pub struct JointFile {
+    /// The file.
+    pub path: PathBuf,
+    /// Its folder, whose `sheets` folder holds the user's own sheets.
+    pub folder: PathBuf,
+    /// Name of its folder of outputs: the file's name without extension.
+    pub stem: String,
+}
+
+fn file_error(path: &Path, what: impl Into<String>) -> ProjectError {
+    ProjectError::File { path: path.to_owned(), what: what.into() }
+}
+
+/// The joints under the given paths: a file as it is, of a folder every `.yaml` in it, in order.
+///
+/// # Errors
+///
+/// [`ProjectError::File`] if a path does not exist, holds no joint, or two joints would share one
+/// folder of outputs.
+pub fn find_joints(paths: &[PathBuf]) -> Result<Vec<JointFile>, ProjectError> {
+    let mut found = Vec::new();
+    for path in paths {
+        if path.is_dir() {
+            let before = found.len();
+            for entry in sorted(path)? {
+                let name = entry.file_name().and_then(|name| name.to_str()).unwrap_or_default();
+                if is_yaml(&entry) && entry.is_file() && !NOT_JOINTS.contains(&name) {
+                    found.push(joint_file(&entry));
+                }
+            }
+            if found.len() == before {
+                return Err(file_error(path, "holds no joint: joints are files that end in .yaml"));
+            }
+        } else if path.is_file() {
+            found.push(joint_file(path));
+        } else {
+            return Err(file_error(path, "there is no such file or folder"));
+        }
+    }
+    let mut stems: BTreeMap<&str, &Path> = BTreeMap::new();
+    for joint in &found {
+        if let Some(other) = stems.insert(&joint.stem, &joint.path) {
+            let what = format!(
+                "would write into the same folder of outputs as {}; rename one of the two",
+                other.display()
+            );
+            return Err(file_error(&joint.path, what));
+        }
+    }
+    Ok(found)
+}
+
+fn is_yaml(path: &Path) -> bool {
+    path.extension().is_some_and(|extension| extension == "yaml" || extension == "yml")
+}
+
+fn joint_file(path: &Path) -> JointFile {
+    let folder = path.parent().filter(|parent| !parent.as_os_str().is_empty()).unwrap_or(Path::new("."));
+    let stem = path.file_stem().and_then(|stem| stem.to_str()).unwrap_or("joint");
+    JointFile { path: path.to_owned(), folder: folder.to_owned(), stem: stem.to_owned() }
+}
+
+fn sorted(folder: &Path) -> Result<Vec<PathBuf>, ProjectError> {
+    let entries = fs::read_dir(folder).map_err(|fault| file_error(folder, fault.to_string()))?;
+    let mut paths = Vec::new();
+    for entry in entries {
+        paths.push(entry.map_err(|fault| file_error(folder, fault.to_string()))?.path());
+    }
+    paths.sort();
+    Ok(paths)
+}
+
+/// Reads a file as text with its name as the user would type it.
+///
+/// # Errors
+///
+/// [`ProjectError::File`] if it cannot be read or is too large; [`ProjectError::Faults`] at the
+/// first byte that is no UTF-8.
+pub fn read_joint_file(path: &Path) -> Result<Arc<SourceFile>, ProjectError> {
+    let size = fs::metadata(path).map_err(|fault| file_error(path, fault.to_string()))?.len();
+    if size > LARGEST {
+        return Err(file_error(path, format!("has {size} bytes, more than the {LARGEST} that are read")));
+    }
+    let bytes = fs::read(path).map_err(|fault| file_error(path, fault.to_string()))?;
+    let name = path.to_string_lossy().replace('\\', "/");
+    match String::from_utf8(bytes) {
+        Ok(text) => Ok(Arc::new(SourceFile { name, text })),
+        Err(fault) => {
+            let start = fault.utf8_error().valid_up_to();
+            let text = String::from_utf8_lossy(fault.as_bytes()).into_owned();
+            let file = Arc::new(SourceFile { name, text });
+            let place = Place { end: (start + 3).min(file.text.len()), file, start };
+            let fault = Diagnostic::error("not-utf8", "this byte is no UTF-8 text".to_owned(), &place)
+                .help("save the file as UTF-8");
+            Err(Faults(vec![fault]).into())
+        }
+    }
+}
+
+/// The built-in sheets and those in the `sheets` folder beside the joints.
+///
+/// # Errors
+///
+/// [`ProjectError`] if a sheet cannot be read, or two have one name.
+pub fn read_library(folder: &Path) -> Result<Library, ProjectError> {
+    let mut library = built_in().clone();
+    let sheets = folder.join("sheets");
+    if !sheets.is_dir() {
+        return Ok(library);
+    }
+    let mut faults = Vec::new();
+    for path in sorted(&sheets)?.into_iter().filter(|path| is_yaml(path)) {
+        let file = read_joint_file(&path)?;
+        let added = read_sheet(&file).and_then(|sheet| library.add(sheet));
+        if let Err(found) = added {
+            faults.extend(found.0);
+        }
+    }
+    if faults.is_empty() { Ok(library) } else { Err(Faults(faults).into()) }
+}

@@ -1,0 +1,357 @@
+//! The document as the templates see it: the data of [`Doc`] with the few lengths and groupings
+//! that the page needs (widths of columns, alignment of numbers, lines of equations, link targets).
+
+use std::collections::BTreeMap;
+
+use serde_json::{Value, json};
+
+use crate::note::doc::{Block, Doc, Head, Inline, Item, Line, Section, Step, Text};
+
+use super::columns::table_view;
+use super::error::RenderError;
+use super::faces::{Cut, text_width};
+use super::fit::{shorten, soften, wrapped_lines};
+
+/// Width of the text block (pt): 152 mm.
+pub const TEXT_WIDTH: f64 = 152.0 / 25.4 * 72.0;
+/// Width that an equation line has (pt): 141 mm.
+pub const EQUATION_WIDTH: f64 = 141.0 / 25.4 * 72.0;
+/// Width of the sources in the checker's margin (ems of their size): 20.5 mm at 7 pt.
+pub(super) const MARGIN_ROOM: f64 = 20.5 / 25.4 * 72.0 / 7.0;
+/// Size of the running head (pt).
+const HEAD_SIZE: f64 = 8.0;
+
+/// Drawings of a note by the name of their figure: typst expressions.
+pub type Drawings = BTreeMap<String, String>;
+
+/// Where links can lead, by id.
+pub(super) type Targets = BTreeMap<String, Target>;
+
+/// A place that links can lead to.
+#[derive(Clone, Debug)]
+pub(super) struct Target {
+    /// Its label in typst; a link to a step carries `step 12`, which readers of a screen hear.
+    label: String,
+    /// Its anchor in Markdown.
+    anchor: String,
+}
+
+/// Builds the view; without drawings, figures have no source.
+pub(super) fn view(doc: &Doc, drawings: Option<&Drawings>) -> Result<Value, RenderError> {
+    let targets = targets(doc);
+    let sections: Result<Vec<_>, _> = doc
+        .sections
+        .iter()
+        .map(|s| section(s, &targets, drawings))
+        .collect();
+    Ok(json!({
+        "head": head(&doc.head),
+        "verdict": {
+            "label": doc.verdict.label,
+            "figure": doc.verdict.figure,
+            "lines": texts(&doc.verdict.lines, &targets),
+        },
+        "sections": sections?,
+        "identity": doc.identity,
+        "state": doc.state,
+        "targets": targets.iter().map(|(id, t)| (id, &t.label)).collect::<BTreeMap<_, _>>(),
+    }))
+}
+
+/// Where links can lead: steps and rows by their ids, then tables and sections.
+fn targets(doc: &Doc) -> Targets {
+    let mut found = Targets::new();
+    let blocks = || doc.sections.iter().flat_map(|s| &s.blocks);
+    let mut add = |id: &str, kind: &str, label: &str| {
+        let target = Target {
+            label: format!("{kind} {label}"),
+            anchor: anchor(kind, id),
+        };
+        found.entry(id.to_owned()).or_insert(target);
+    };
+    for step in blocks().filter_map(Block::as_step) {
+        add(&step.id, "step", &step.no);
+    }
+    for table in blocks().filter_map(Block::as_table) {
+        let ids = table
+            .rows
+            .iter()
+            .chain(&table.foot)
+            .filter_map(|r| r.id.as_ref());
+        ids.for_each(|id| add(id, "row", id));
+    }
+    for table in blocks().filter_map(Block::as_table) {
+        add(&table.id, "table", &table.id);
+    }
+    for section in &doc.sections {
+        add(&section.id, "section", &section.id);
+    }
+    found
+}
+
+/// A name that HTML and links take as it is.
+fn anchor(kind: &str, id: &str) -> String {
+    let safe = |c: char| {
+        if c.is_ascii_alphanumeric() || c == '.' || c == '_' {
+            c
+        } else {
+            '-'
+        }
+    };
+    format!("{kind}-{}", id.chars().map(safe).collect::<String>())
+}
+
+/// Label and anchor of what a block itself is, under the keys of the templates.
+pub(super) fn own_target(id: &str, targets: &Targets) -> (String, String) {
+    let target = &targets[id];
+    (target.label.clone(), target.anchor.clone())
+}
+
+/// Particulars, with the running title cut to its line.
+fn head(head: &Head) -> Value {
+    let revision = shorten(&head.revision, Cut::Regular, 8.0);
+    let issue = format!("issue {revision} · {}", head.date);
+    let room = TEXT_WIDTH / HEAD_SIZE - text_width(&issue, Cut::Regular) - 1.5;
+    let number = shorten(&head.note, Cut::Bold, room / 2.0);
+    let rest = room - text_width(&number, Cut::Bold) - text_width(" · ", Cut::Regular);
+    let mut particulars = format!(
+        "Stress note {}, issue {}, {}",
+        head.note, head.revision, head.date
+    );
+    for part in head
+        .drawing
+        .iter()
+        .map(|d| format!("drawing {d}"))
+        .chain(head.item.clone())
+    {
+        particulars.push_str(" · ");
+        particulars.push_str(&part);
+    }
+    json!({
+        "note": head.note,
+        "number": number,
+        "title": head.title,
+        "running": shorten(&head.title, Cut::Regular, rest),
+        "issue": issue,
+        "date": head.date,
+        "day": day(&head.date),
+        "paper": head.paper,
+        "particulars": particulars,
+    })
+}
+
+/// Year, month and day of an ISO date; null if it is none.
+fn day(date: &str) -> Value {
+    let parts: Vec<Option<u16>> = date.split('-').map(|p| p.parse().ok()).collect();
+    match parts[..] {
+        [Some(year), Some(month), Some(day)] => json!({"year": year, "month": month, "day": day}),
+        _ => Value::Null,
+    }
+}
+
+fn section(
+    section: &Section,
+    targets: &Targets,
+    drawings: Option<&Drawings>,
+) -> Result<Value, RenderError> {
+    let blocks: Result<Vec<_>, _> = section
+        .blocks
+        .iter()
+        .map(|b| block(b, targets, drawings))
+        .collect();
+    Ok(json!({
+        "title": section.title,
+        "target": own_target(&section.id, targets).0,
+        "anchor": own_target(&section.id, targets).1,
+        "blocks": blocks?,
+    }))
+}
+
+fn block(
+    block: &Block,
+    targets: &Targets,
+    drawings: Option<&Drawings>,
+) -> Result<Value, RenderError> {
+    Ok(match block {
+        Block::Para { text: t } => json!({"kind": "para", "text": text(t, targets)}),
+        Block::Heading { text } => json!({"kind": "heading", "text": text}),
+        Block::Items { items } => {
+            let items: Vec<_> = items.iter().map(|i| item(i, targets)).collect();
+            json!({"kind": "items", "items": items})
+        }
+        Block::Step(s) => step(s, targets),
+        Block::Table(table) => table_view(table, targets),
+        Block::Figure(figure) => {
+            let lost = || RenderError::Internal(format!("no drawing named {}", figure.name));
+            let source = drawings
+                .map(|d| d.get(&figure.name).ok_or_else(lost))
+                .transpose()?;
+            json!({
+                "kind": "figure",
+                "name": figure.name,
+                "alt": figure.alt,
+                "caption": text(&figure.caption, targets),
+                "source": source,
+            })
+        }
+        Block::Signatures { roles } => json!({"kind": "signatures", "roles": roles}),
+    })
+}
+
+fn item(item: &Item, targets: &Targets) -> Value {
+    let source: Vec<Text> = item
+        .source
+        .iter()
+        .map(|s| vec![Inline::Plain { text: s.clone() }])
+        .collect();
+    json!({
+        "label": if item.label.is_empty() { "•" } else { &item.label },
+        "text": text(&item.text, targets),
+        "mark": item.mark,
+        "source": texts(&source, targets),
+        "source_lines": margin_lines(&source),
+    })
+}
+
+fn step(step: &Step, targets: &Targets) -> Value {
+    json!({
+        "kind": "step",
+        "target": own_target(&step.id, targets).0,
+        "anchor": own_target(&step.id, targets).1,
+        "no": step.no,
+        "says": text(&step.says, targets),
+        "mark": step.mark,
+        "source": texts(&step.source, targets),
+        "source_lines": margin_lines(&step.source),
+        "equations": equations(&step.lines),
+        "latex": step.latex,
+        "uses": step.uses.iter().map(|(id, no)| json!({
+            "no": no,
+            "link": id,
+            "anchor": targets.get(id).map(|t| &t.anchor),
+        })).collect::<Vec<_>>(),
+    })
+}
+
+/// Lines joined to equations: a line that is not continued begins a new one.
+fn equations(lines: &[Line]) -> Vec<Value> {
+    let mut grouped: Vec<(String, String)> = Vec::new();
+    for line in lines {
+        match grouped.last_mut() {
+            Some((words, typst)) if line.continued => {
+                words.push(' ');
+                words.push_str(&line.words);
+                typst.push_str(" \\\n    ");
+                typst.push_str(&line.typst);
+            }
+            _ => grouped.push((line.words.clone(), line.typst.clone())),
+        }
+    }
+    grouped
+        .into_iter()
+        .map(|(words, typst)| json!({"words": words, "typst": typst}))
+        .collect()
+}
+
+/// Texts with their numbers joined and their links named.
+fn texts(list: &[Text], targets: &Targets) -> Vec<Value> {
+    list.iter().map(|t| text(t, targets)).collect()
+}
+
+/// A text with its numbers joined and its links named.
+pub(super) fn text(pieces: &[Inline], targets: &Targets) -> Value {
+    pieces.iter().map(|p| piece(p, targets)).collect()
+}
+
+fn piece(piece: &Inline, targets: &Targets) -> Value {
+    let label = |id: &String| {
+        targets
+            .get(id)
+            .map_or_else(|| id.clone(), |t| t.label.clone())
+    };
+    let anchor = |id: &String| targets.get(id).map(|t| t.anchor.clone());
+    match piece {
+        Inline::Plain { text } => json!({"kind": "plain", "text": text}),
+        Inline::Emph { text } => json!({"kind": "emph", "text": text}),
+        Inline::Strong { text } => json!({"kind": "strong", "text": text}),
+        Inline::Aside { text } => json!({"kind": "aside", "text": text}),
+        Inline::Number {
+            whole,
+            decimals,
+            exponent,
+            step,
+        } => json!({
+            "kind": "number",
+            "printed": format!("{whole}{}", tail(decimals, *exponent)),
+            "link": step,
+            "step": step.as_ref().map(label),
+            "anchor": step.as_ref().and_then(anchor),
+        }),
+        Inline::Math {
+            typst,
+            latex,
+            words,
+        } => {
+            json!({"kind": "math", "typst": typst, "latex": latex, "words": words})
+        }
+        Inline::StepRef { id, text } => {
+            json!({
+                "kind": "step-ref",
+                "link": id,
+                "id": label(id),
+                "anchor": anchor(id),
+                "text": text,
+            })
+        }
+    }
+}
+
+/// What follows the whole digits of a number: decimals and power of ten.
+pub(super) fn tail(decimals: &str, exponent: Option<i32>) -> String {
+    let power = exponent
+        .map(|e| format!("×10{}", superscript(e)))
+        .unwrap_or_default();
+    format!("{decimals}{power}")
+}
+
+/// An integer in superior figures.
+fn superscript(n: i32) -> String {
+    let figures = ['⁰', '¹', '²', '³', '⁴', '⁵', '⁶', '⁷', '⁸', '⁹'];
+    let raise = |c: char| match c.to_digit(10) {
+        Some(d) => figures[d as usize],
+        None => '⁻',
+    };
+    n.to_string().chars().map(raise).collect()
+}
+
+/// The plain characters of a text, maths as its words.
+pub(super) fn plain(pieces: &[Inline]) -> String {
+    pieces.iter().map(plain_piece).collect()
+}
+
+fn plain_piece(piece: &Inline) -> String {
+    match piece {
+        Inline::Plain { text }
+        | Inline::Emph { text }
+        | Inline::Strong { text }
+        | Inline::Aside { text }
+        | Inline::StepRef { text, .. } => text.clone(),
+        Inline::Number {
+            whole,
+            decimals,
+            exponent,
+            ..
+        } => {
+            format!("{whole}{}", tail(decimals, *exponent))
+        }
+        Inline::Math { words, .. } => words.clone(),
+    }
+}
+
+/// How many lines the sources take in the margin.
+fn margin_lines(source: &[Text]) -> usize {
+    source
+        .iter()
+        .map(|t| wrapped_lines(&soften(&plain(t), MARGIN_ROOM), MARGIN_ROOM))
+        .sum()
+}

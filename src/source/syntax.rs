@@ -1,0 +1,193 @@
+//! Where the YAML parser stopped, told in the words of somebody who writes joint files.
+//!
+//! The parser names the rule it was at; what the user did is read from the text around.
+
+use super::{Diagnostic, Place, SourceFile};
+use std::sync::Arc;
+
+/// The point at which the parser stopped.
+pub(super) struct Stop<'a> {
+    pub(super) file: &'a Arc<SourceFile>,
+    /// Byte of the text.
+    pub(super) at: usize,
+    /// The parser's words.
+    pub(super) info: &'a str,
+    /// The innermost bracket still open, and its byte.
+    pub(super) bracket: Option<(char, usize)>,
+}
+
+impl Stop<'_> {
+    /// The fault, at the value that caused it where that can be told.
+    pub(super) fn fault(&self) -> Diagnostic {
+        let text = self.file.text.as_str();
+        let start = text[..self.at].rfind('\n').map_or(0, |n| n + 1);
+        let end = text[self.at..]
+            .find('\n')
+            .map_or(text.len(), |n| self.at + n);
+        let line = &text[start..end];
+        if self.info.contains("unknown anchor") {
+            return alias_fault(&self.point(end));
+        }
+        if let Some(tab) = leading_tab(text, start, end) {
+            let place = self.place(tab, tab + 1);
+            return Diagnostic::error("tab-indent", "a tab indents this line", &place)
+                .help("indent with spaces");
+        }
+        if let Some((from, to)) = colon_in_text(line, self.at - start) {
+            let place = self.place(start + from, start + to);
+            return Diagnostic::error(
+                "colon-in-text",
+                "a `: ` inside an unquoted text starts a new key",
+                &place,
+            )
+            .help("quote the text, as in `\"one: two\"`");
+        }
+        if text[self.at..].starts_with(['"', '\'']) && self.info.contains("quoted scalar") {
+            return self.quote_fault(&self.place(self.at, end));
+        }
+        match self.bracket {
+            Some((bracket, opened)) => self.bracket_fault(bracket, opened, &self.point(end)),
+            None => self.plain_fault(line, &self.point(end)),
+        }
+    }
+
+    fn place(&self, start: usize, end: usize) -> Place {
+        Place {
+            file: self.file.clone(),
+            start,
+            end,
+        }
+    }
+
+    /// The one character at the stop; nothing at the end of its line.
+    fn point(&self, line_end: usize) -> Place {
+        let width = self.file.text[self.at..line_end]
+            .chars()
+            .next()
+            .map_or(0, char::len_utf8);
+        self.place(self.at, self.at + width)
+    }
+
+    /// The fault of a quoted text that does not end, or holds a bad escape.
+    fn quote_fault(&self, place: &Place) -> Diagnostic {
+        if self.info.contains("escape") || self.info.contains("hexadecimal") {
+            return Diagnostic::error(
+                "yaml-syntax",
+                "this quoted text holds an unknown `\\` escape",
+                place,
+            )
+            .help("in single quotes a `\\` is a plain character");
+        }
+        Diagnostic::error(
+            "not-closed",
+            "the quote that opens here is not closed",
+            place,
+        )
+        .help("close it in the same line; a line below it that starts a key cannot be part of it")
+    }
+
+    /// The fault of a stop inside brackets: they are not closed if there stands something else
+    /// than `,` or the closing bracket, or a key in a line below.
+    fn bracket_fault(&self, bracket: char, opened: usize, point: &Place) -> Diagnostic {
+        let is_below = self.file.text[opened..self.at].contains('\n');
+        let opening = self.place(opened, opened + 1);
+        if self.info.contains("expected ',' or")
+            || (is_below && self.info.contains("placement of ':'"))
+        {
+            let closing = if bracket == '[' { ']' } else { '}' };
+            let (line, _) = point.line_column();
+            return Diagnostic::error(
+                "not-closed",
+                format!("the `{bracket}` that opens here is not closed"),
+                &opening,
+            )
+            .help(format!(
+                "a `,` or `{closing}` is missing before line {line}, where reading stopped"
+            ));
+        }
+        let (line, _) = opening.line_column();
+        Diagnostic::error(
+            "yaml-syntax",
+            format!("this is no YAML: {}", self.cause()),
+            point,
+        )
+        .help(format!("the `{bracket}` of line {line} is still open"))
+    }
+
+    /// The fault of a stop outside brackets.
+    fn plain_fault(&self, line: &str, point: &Place) -> Diagnostic {
+        if self.info.contains("misplaced bracket") {
+            return Diagnostic::error("yaml-syntax", "this bracket closes nothing", point)
+                .help("take it out, or quote the text it belongs to");
+        }
+        let of_indent = [
+            "expected key",
+            "'-' indicator",
+            "indentation",
+            "mapping values",
+        ];
+        if of_indent.iter().any(|words| self.info.contains(words)) {
+            let indent = line.len() - line.trim_start().len();
+            let (number, _) = point.line_column();
+            let message =
+                format!("line {number} is indented by {indent}, which fits no line above it");
+            return Diagnostic::error("yaml-syntax", message, point)
+                .help("the keys of one map start in one column, and so do the dashes of one list");
+        }
+        Diagnostic::error(
+            "yaml-syntax",
+            format!("this is no YAML: {}", self.cause()),
+            point,
+        )
+        .help("quote a text that starts with one of `@ % & * ! | > ? [ { ] } ,` or a backquote")
+    }
+
+    /// The parser's words, without what it was doing at the time.
+    fn cause(&self) -> String {
+        let cause = match self.info.split_once(", ") {
+            Some((doing, cause)) if doing.starts_with("while ") => cause,
+            _ => self.info,
+        };
+        cause.replace("did not find expected", "did not find the expected")
+    }
+}
+
+pub(super) fn alias_fault(place: &Place) -> Diagnostic {
+    Diagnostic::error("alias", "aliases (`*name`) are not taken", place)
+        .help("write the value out where it is used; quote a text that starts with `*`")
+}
+
+/// The byte of a tab that indents the line at fault or the next one.
+fn leading_tab(text: &str, line_start: usize, line_end: usize) -> Option<usize> {
+    let tab_of = |from: usize, line: &str| {
+        let indent = line.len() - line.trim_start_matches([' ', '\t']).len();
+        line[..indent].find('\t').map(|at| from + at)
+    };
+    let next_start = (line_end + 1).min(text.len());
+    let next = text[next_start..].split('\n').next().unwrap_or_default();
+    tab_of(line_start, &text[line_start..line_end]).or_else(|| tab_of(next_start, next))
+}
+
+/// The range of the unquoted text in which the parser met a colon, where that is what stopped it.
+///
+/// `at` is the byte of the colon in the line. There must be a key before the text in this line;
+/// otherwise the line itself is a key at the wrong indent.
+fn colon_in_text(line: &str, at: usize) -> Option<(usize, usize)> {
+    let is_colon = line[at..].starts_with(": ") || line[at..].trim_end() == ":";
+    let key_end = line.get(..at)?.rfind(": ")?;
+    if !is_colon {
+        return None;
+    }
+    let start = key_end + 2;
+    let start = start + (line[start..at].len() - line[start..at].trim_start().len());
+    if line[start..at].is_empty() || line[start..].starts_with(['"', '\'', '[', '{']) {
+        return None;
+    }
+    let stop = if line[..start].contains('{') {
+        line[at..].find([',', '}'])
+    } else {
+        line[at..].find(" #")
+    };
+    let end = stop.map_or(line.len(), |n| at + n);
+    Some((start, start + line[start..end].trim_end().len()))
+}

@@ -5,14 +5,19 @@ use std::path::PathBuf;
 
 /// Stress notes for welded joints, from joint files.
 #[derive(Parser, Debug)]
-#[command(name = "seamnote", version, about, after_help = "\
+#[command(
+    name = "seamnote",
+    version,
+    about,
+    after_help = "\
 Exit codes:
   0  everything asked for was done
   1  an input was refused, or an output could not be made
   2  the command line itself was wrong
   3  with --must-hold: a check does not hold, or gives no number
 
-For use by qualified engineers; local codes and licensed practice govern.")]
+For use by qualified engineers; local codes and licensed practice govern."
+)]
 pub struct Arguments {
     /// What to do.
     #[command(subcommand)]

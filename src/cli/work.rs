@@ -33,12 +33,22 @@ struct Result1 {
 #[must_use]
 pub fn run(arguments: &Arguments, colour: bool) -> Said {
     let (scope, job) = match &arguments.command {
-        Command::Write { scope, out, only } => (scope, Job::Write { out: out.clone(), kinds: kinds(only) }),
+        Command::Write { scope, out, only } => (
+            scope,
+            Job::Write {
+                out: out.clone(),
+                kinds: kinds(only),
+            },
+        ),
         Command::Vet { scope } => (scope, Job::Vet),
     };
     match prepare(scope) {
         Ok((joints, libraries)) => work(&joints, &libraries, scope, &job, colour),
-        Err(fault) => Said { err: complaint(&fault, colour), code: exit::REFUSED, ..Said::default() },
+        Err(fault) => Said {
+            err: complaint(&fault, colour),
+            code: exit::REFUSED,
+            ..Said::default()
+        },
     }
 }
 
@@ -72,37 +82,64 @@ fn kinds(only: &[OutputKind]) -> Kinds {
     }
 }
 
-fn work(joints: &[JointFile], libraries: &Libraries, scope: &ScopeArgs, job: &Job, colour: bool) -> Said {
+fn work(
+    joints: &[JointFile],
+    libraries: &Libraries,
+    scope: &ScopeArgs,
+    job: &Job,
+    colour: bool,
+) -> Said {
     let available = std::thread::available_parallelism().map_or(1, usize::from);
-    let threads = scope.threads.map_or(available, usize::from).min(joints.len()).max(1);
+    let threads = scope
+        .threads
+        .map_or(available, usize::from)
+        .min(joints.len())
+        .max(1);
     let workshop = match job {
         Job::Write { .. } => Some(Workshop::new()),
         Job::Vet => None,
     };
     let next = AtomicUsize::new(0);
-    let results: Mutex<BTreeMap<usize, Result<Result1, ProjectError>>> = Mutex::new(BTreeMap::new());
+    let results: Mutex<BTreeMap<usize, Result<Result1, ProjectError>>> =
+        Mutex::new(BTreeMap::new());
     std::thread::scope(|threads_of| {
         for _ in 0..threads {
             threads_of.spawn(|| {
                 loop {
                     let index = next.fetch_add(1, Ordering::Relaxed);
-                    let Some(joint) = joints.get(index) else { break };
+                    let Some(joint) = joints.get(index) else {
+                        break;
+                    };
                     let result = one(joint, &libraries[&joint.folder], job, workshop.as_ref());
-                    results.lock().expect("no worker panics while it holds the results").insert(index, result);
+                    results
+                        .lock()
+                        .expect("no worker panics while it holds the results")
+                        .insert(index, result);
                 }
             });
         }
     });
-    let results = results.into_inner().expect("no worker panics while it holds the results");
+    let results = results
+        .into_inner()
+        .expect("no worker panics while it holds the results");
     summary(joints, results, scope.must_hold, colour)
 }
 
-fn one(joint: &JointFile, library: &Library, job: &Job, workshop: Option<&Workshop>) -> Result<Result1, ProjectError> {
+fn one(
+    joint: &JointFile,
+    library: &Library,
+    job: &Job,
+    workshop: Option<&Workshop>,
+) -> Result<Result1, ProjectError> {
     match (job, workshop) {
         (Job::Write { out, kinds }, Some(workshop)) => {
             let produced = workshop.produce(joint, library, *kinds)?;
             let folder = written(&produced, joint, out)?;
-            Ok(said(&produced.note.standing, joint, &format!(" → {folder}")))
+            Ok(said(
+                &produced.note.standing,
+                joint,
+                &format!(" → {folder}"),
+            ))
         }
         _ => {
             let file = read_joint_file(&joint.path)?;
@@ -115,7 +152,10 @@ fn one(joint: &JointFile, library: &Library, job: &Job, workshop: Option<&Worksh
 
 fn said(standing: &Standing, joint: &JointFile, tail: &str) -> Result1 {
     let line = format!("{}  {}{tail}", joint.path.display(), standing.line());
-    Result1 { line, holds: standing.holds() }
+    Result1 {
+        line,
+        holds: standing.holds(),
+    }
 }
 
 fn summary(
@@ -141,11 +181,18 @@ fn summary(
         }
     }
     if !refused.is_empty() {
-        let names: Vec<String> = refused.iter().map(|path| path.display().to_string()).collect();
-        said.err.push_str(&format!("refused: {}; an earlier note stands as it was\n", names.join(", ")));
+        let names: Vec<String> = refused
+            .iter()
+            .map(|path| path.display().to_string())
+            .collect();
+        said.err.push_str(&format!(
+            "refused: {}; an earlier note stands as it was\n",
+            names.join(", ")
+        ));
         said.code = exit::REFUSED;
     } else if must_hold && !all_hold {
-        said.err.push_str("a check does not hold, or gives no number\n");
+        said.err
+            .push_str("a check does not hold, or gives no number\n");
         said.code = exit::DOES_NOT_HOLD;
     }
     said

@@ -50,7 +50,12 @@ pub fn assess(ground: &Ground<'_>, library: &Library) -> Result<Assessment, Faul
             faults.push(unknown_sheet(&spec.clause, library));
             continue;
         };
-        let asking = Asking { joint: ground.joint, index, spec, sheet };
+        let asking = Asking {
+            joint: ground.joint,
+            index,
+            spec,
+            sheet,
+        };
         match one_check(ground, asking, sheet) {
             Ok(outcome) => asked.push(outcome),
             Err(found) => faults.extend(found),
@@ -77,11 +82,18 @@ fn unknown_sheet(clause: &crate::source::Told<String>, library: &Library) -> Dia
     if let Some(near) = library.nearest(&clause.value) {
         fault = fault.help(format!("did you mean `{near}`?"));
     }
-    let names: Vec<String> = library.sheets().map(|sheet| format!("`{}`", sheet.name.value)).collect();
+    let names: Vec<String> = library
+        .sheets()
+        .map(|sheet| format!("`{}`", sheet.name.value))
+        .collect();
     fault.help(format!("there are {}", names.join(", ")))
 }
 
-fn one_check(ground: &Ground<'_>, asking: Asking<'_>, sheet: &Arc<Sheet>) -> Result<Asked, Vec<Diagnostic>> {
+fn one_check(
+    ground: &Ground<'_>,
+    asking: Asking<'_>,
+    sheet: &Arc<Sheet>,
+) -> Result<Asked, Vec<Diagnostic>> {
     let mut faults = asking.unknown_values();
     let (taken_runs, left_out): (Vec<usize>, Vec<usize>) =
         (0..ground.runs.len()).partition(|run| sheet.takes(&ground.runs[*run]));
@@ -92,18 +104,40 @@ fn one_check(ground: &Ground<'_>, asking: Asking<'_>, sheet: &Arc<Sheet>) -> Res
     if sheet.scope == Scope::Point && taken.is_empty() {
         faults.push(no_case_of_level(ground.joint, asking));
     }
-    faults.extend(taken_runs.iter().flat_map(|run| wrong_ends(ground, asking, *run)));
+    faults.extend(
+        taken_runs
+            .iter()
+            .flat_map(|run| wrong_ends(ground, asking, *run)),
+    );
     let tables = sheet.tables(ground.joint.units.value);
-    if let Some(table) = sheet.tables.iter().find(|table| !tables.contains_key(&table.name.value)) {
-        let system = if ground.joint.units.value.is_inch() { "inches" } else { "metric lengths" };
-        let message = format!("`{}` has no table `{}` in {system}", sheet.name.value, table.name.value);
-        faults.push(asking.fault("no-variant", message).help("use a printing set of the clause's own system"));
+    if let Some(table) = sheet
+        .tables
+        .iter()
+        .find(|table| !tables.contains_key(&table.name.value))
+    {
+        let system = if ground.joint.units.value.is_inch() {
+            "inches"
+        } else {
+            "metric lengths"
+        };
+        let message = format!(
+            "`{}` has no table `{}` in {system}",
+            sheet.name.value, table.name.value
+        );
+        faults.push(
+            asking
+                .fault("no-variant", message)
+                .help("use a printing set of the clause's own system"),
+        );
     }
     if !faults.is_empty() {
         return Err(faults);
     }
     let mut benches = Vec::new();
-    for site in taken_runs.iter().flat_map(|run| sites(&ground.runs[*run], *run, sheet)) {
+    for site in taken_runs
+        .iter()
+        .flat_map(|run| sites(&ground.runs[*run], *run, sheet))
+    {
         match Bench::new(asking, &tables, ground.runs, site) {
             Ok(bench) => benches.push(bench),
             Err(fault) => faults.push(fault),
@@ -113,35 +147,68 @@ fn one_check(ground: &Ground<'_>, asking: Asking<'_>, sheet: &Arc<Sheet>) -> Res
         return Err(faults);
     }
     let (strength, limits) = match sheet.scope {
-        Scope::Point => (strength(ground, asking, &benches, &taken).map_err(|fault| vec![fault])?, Vec::new()),
+        Scope::Point => (
+            strength(ground, asking, &benches, &taken).map_err(|fault| vec![fault])?,
+            Vec::new(),
+        ),
         Scope::Run => (Vec::new(), limits(&benches)),
     };
-    let (taken, not_taken) = if sheet.scope == Scope::Point { (taken, not_taken) } else { Default::default() };
-    Ok(Asked { index: asking.index, sheet: sheet.clone(), taken, not_taken, left_out, strength, limits })
+    let (taken, not_taken) = if sheet.scope == Scope::Point {
+        (taken, not_taken)
+    } else {
+        Default::default()
+    };
+    Ok(Asked {
+        index: asking.index,
+        sheet: sheet.clone(),
+        taken,
+        not_taken,
+        left_out,
+        strength,
+        limits,
+    })
 }
 
 /// The cases that a sheet takes, and the others.
 fn cases(joint: &Joint, sheet: &Sheet) -> (Vec<usize>, Vec<usize>) {
-    (0..joint.loads.cases.len()).partition(|case| sheet.levels.contains(&joint.loads.cases[*case].level.value))
+    (0..joint.loads.cases.len())
+        .partition(|case| sheet.levels.contains(&joint.loads.cases[*case].level.value))
 }
 
 fn no_case_of_level(joint: &Joint, asking: Asking<'_>) -> Diagnostic {
-    let takes: Vec<&str> = asking.sheet.levels.iter().map(|level| level.word()).collect();
+    let takes: Vec<&str> = asking
+        .sheet
+        .levels
+        .iter()
+        .map(|level| level.word())
+        .collect();
     let mut has: Vec<&str> = Vec::new();
     for case in &joint.loads.cases {
         if !has.contains(&case.level.value.word()) {
             has.push(case.level.value.word());
         }
     }
-    let message = format!("`{}` takes cases of level {}, of which there is none", asking.sheet.name.value, takes.join(" or "));
-    asking.fault("no-case-of-level", message).help(format!("the cases are of level {}", has.join(", ")))
+    let message = format!(
+        "`{}` takes cases of level {}, of which there is none",
+        asking.sheet.name.value,
+        takes.join(" or ")
+    );
+    asking
+        .fault("no-case-of-level", message)
+        .help(format!("the cases are of level {}", has.join(", ")))
 }
 
 fn no_run_taken(ground: &Ground<'_>, asking: Asking<'_>) -> Diagnostic {
     let kinds: Vec<&str> = asking.sheet.welds.iter().map(|kind| kind.says()).collect();
-    let first = ground.runs.first().map_or("no run", |run| WeldKind::of(run).says());
+    let first = ground
+        .runs
+        .first()
+        .map_or("no run", |run| WeldKind::of(run).says());
     let message = format!("`{}` takes no run of this group", asking.sheet.name.value);
-    asking.fault("no-run-taken", message).help(format!("it takes {}; the first run is {first}", kinds.join(" or ")))
+    asking.fault("no-run-taken", message).help(format!(
+        "it takes {}; the first run is {first}",
+        kinds.join(" or ")
+    ))
 }
 
 /// Ends of a run that the sheet does not take.
@@ -154,8 +221,15 @@ fn wrong_ends(ground: &Ground<'_>, asking: Asking<'_>, run: usize) -> Option<Dia
         End::Stop { leg: true, .. } => Some(EndRule::LessLeg),
         End::Stop { leg: false, .. } => Some(EndRule::LessThroat),
     };
-    let wrong = run.ends.iter().filter_map(rule).find(|rule| !allowed.is_empty() && !allowed.contains(rule))?;
-    let wanted: Vec<String> = allowed.iter().map(|rule| format!("`{}`", rule.word())).collect();
+    let wrong = run
+        .ends
+        .iter()
+        .filter_map(rule)
+        .find(|rule| !allowed.is_empty() && !allowed.contains(rule))?;
+    let wanted: Vec<String> = allowed
+        .iter()
+        .map(|rule| format!("`{}`", rule.word()))
+        .collect();
     let message = format!(
         "run `{}` ends `{}`, but `{}` requires {}",
         run.name,
@@ -164,21 +238,39 @@ fn wrong_ends(ground: &Ground<'_>, asking: Asking<'_>, run: usize) -> Option<Dia
         wanted.join(" or ")
     );
     let place = &ground.joint.weld.runs[run.spec].name.place;
-    Some(Diagnostic::error("ends-mismatch", message, place).help("say what the free ends do in `ends:` of the weld"))
+    Some(
+        Diagnostic::error("ends-mismatch", message, place)
+            .help("say what the free ends do in `ends:` of the weld"),
+    )
 }
 
 /// The sites of a run: for each part in turn, for each throat plane that must be looked at.
 fn sites(run: &Run, index: usize, sheet: &Sheet) -> Vec<Site> {
-    let turns: &[Option<Turn>] =
-        if sheet.each_part { &[Some(Turn::Attached), Some(Turn::Base)] } else { &[None] };
+    let turns: &[Option<Turn>] = if sheet.each_part {
+        &[Some(Turn::Attached), Some(Turn::Base)]
+    } else {
+        &[None]
+    };
     let needs_toe = sheet
         .needs
         .iter()
         .flat_map(|need| &need.from)
         .any(|from| matches!(from, super::from::From::Point(field) if field.needs_toe()));
-    let planes = if needs_toe { throat_planes(run, 0.0).len() } else { 1 };
-    let site = |turn: Option<Turn>, plane| Site { run: index, turn, plane, assumed: planes > 1 };
-    turns.iter().flat_map(|turn| (0..planes).map(|plane| site(*turn, plane))).collect()
+    let planes = if needs_toe {
+        throat_planes(run, 0.0).len()
+    } else {
+        1
+    };
+    let site = |turn: Option<Turn>, plane| Site {
+        run: index,
+        turn,
+        plane,
+        assumed: planes > 1,
+    };
+    turns
+        .iter()
+        .flat_map(|turn| (0..planes).map(|plane| site(*turn, plane)))
+        .collect()
 }
 
 /// The strength checks of one sheet over the cases that it takes.
@@ -198,24 +290,39 @@ fn strength(
                 worst = at;
             }
         }
-        StrengthOutcome { check, governing: per_case[worst].clone(), per_case }
+        StrengthOutcome {
+            check,
+            governing: per_case[worst].clone(),
+            per_case,
+        }
     };
     Ok(per_check.into_iter().enumerate().map(outcome).collect())
 }
 
 /// Runs whose strength no check asked for looks at.
 fn unchecked_runs(ground: &Ground<'_>, asked: &[Asked]) -> Vec<Diagnostic> {
-    let strength: Vec<&Asked> = asked.iter().filter(|asked| asked.sheet.scope == Scope::Point).collect();
+    let strength: Vec<&Asked> = asked
+        .iter()
+        .filter(|asked| asked.sheet.scope == Scope::Point)
+        .collect();
     if strength.is_empty() {
         return Vec::new();
     }
-    let unchecked = (0..ground.runs.len()).filter(|run| strength.iter().all(|asked| asked.left_out.contains(run)));
+    let unchecked = (0..ground.runs.len())
+        .filter(|run| strength.iter().all(|asked| asked.left_out.contains(run)));
     let fault = |run: usize| {
         let run = &ground.runs[run];
         let kind = WeldKind::of(run).says();
-        let message = format!("run `{}` is {kind}, which no strength check asked for takes", run.name);
-        Diagnostic::error("run-not-checked", message, &ground.joint.weld.runs[run.spec].name.place)
-            .help("ask for a sheet that takes it besides")
+        let message = format!(
+            "run `{}` is {kind}, which no strength check asked for takes",
+            run.name
+        );
+        Diagnostic::error(
+            "run-not-checked",
+            message,
+            &ground.joint.weld.runs[run.spec].name.place,
+        )
+        .help("ask for a sheet that takes it besides")
     };
     unchecked.map(fault).collect()
 }

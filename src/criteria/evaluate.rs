@@ -45,7 +45,11 @@ impl Look for Names<'_> {
     }
 
     fn known(&self) -> Vec<&str> {
-        self.values.keys().chain(self.words.keys()).copied().collect()
+        self.values
+            .keys()
+            .chain(self.words.keys())
+            .copied()
+            .collect()
     }
 }
 
@@ -85,7 +89,12 @@ impl<'a> Bench<'a> {
         site: Site,
     ) -> Result<Self, Diagnostic> {
         let run = &runs[site.run];
-        let fixed = Names { asking, tables, values: BTreeMap::new(), words: BTreeMap::new() };
+        let fixed = Names {
+            asking,
+            tables,
+            values: BTreeMap::new(),
+            words: BTreeMap::new(),
+        };
         let mut bench = Self {
             asking,
             site,
@@ -106,7 +115,10 @@ impl<'a> Bench<'a> {
                     bench.fields.push(field);
                 }
                 fixed @ (Resolved::Run(..) | Resolved::One(_) | Resolved::Extreme { .. }) => {
-                    bench.fixed.values.insert(name, fixed.value().expect("it is a quantity"));
+                    bench
+                        .fixed
+                        .values
+                        .insert(name, fixed.value().expect("it is a quantity"));
                 }
             }
         }
@@ -121,7 +133,8 @@ impl<'a> Bench<'a> {
         for step in &sheet.steps {
             let (name, text) = (step.name.value.as_str(), step.formula.value.as_str());
             if step.node.names().iter().any(|name| varying.contains(name)) {
-                let program = Program::compile(&step.node, text, &varying, &self.fixed).map_err(at)?;
+                let program =
+                    Program::compile(&step.node, text, &varying, &self.fixed).map_err(at)?;
                 self.stages.push(Stage { name, program });
                 varying.push(name);
             } else {
@@ -130,8 +143,15 @@ impl<'a> Bench<'a> {
             }
         }
         for (index, condition) in sheet.validity.iter().enumerate() {
-            if condition.node.names().iter().any(|name| varying.contains(name)) {
-                let program = Program::compile(&condition.node, &condition.text, &varying, &self.fixed).map_err(at)?;
+            if condition
+                .node
+                .names()
+                .iter()
+                .any(|name| varying.contains(name))
+            {
+                let program =
+                    Program::compile(&condition.node, &condition.text, &varying, &self.fixed)
+                        .map_err(at)?;
                 self.conditions.push((index, program));
             } else if evaluate(&condition.node, &condition.text, &self.fixed).map_err(at)? < 0.5 {
                 return Err(self.invalid(index, &format!("run `{}`", run.name)));
@@ -143,15 +163,21 @@ impl<'a> Bench<'a> {
     /// The fault of a condition of validity that does not hold.
     fn invalid(&self, index: usize, place: &str) -> Diagnostic {
         let condition = &self.asking.sheet.validity[index];
-        let message =
-            format!("`{}` gives no number for {place}: {}", self.asking.sheet.name.value, condition.says);
+        let message = format!(
+            "`{}` gives no number for {place}: {}",
+            self.asking.sheet.name.value, condition.says
+        );
         let used: Vec<String> = condition
             .node
             .names()
             .iter()
             .filter_map(|name| Some(format!("{name} = {}", self.fixed.values.get(name)?)))
             .collect();
-        let found = if used.is_empty() { String::new() } else { format!("; here {}", used.join(", ")) };
+        let found = if used.is_empty() {
+            String::new()
+        } else {
+            format!("; here {}", used.join(", "))
+        };
         self.asking
             .fault("not-valid", message)
             .help(format!("it asks that {}{found}", condition.holds.value))
@@ -195,8 +221,12 @@ impl<'a> Bench<'a> {
     ///
     /// `columns[k]` is the varying input `k` at every point. A number that does not exist is NaN.
     pub(super) fn at_points(&self, columns: &[Vec<f64>], count: usize) -> Batch<'a> {
-        let mut all: Vec<(&'a str, Vec<f64>)> =
-            self.inputs.iter().zip(columns).map(|(input, column)| (input.0, column.clone())).collect();
+        let mut all: Vec<(&'a str, Vec<f64>)> = self
+            .inputs
+            .iter()
+            .zip(columns)
+            .map(|(input, column)| (input.0, column.clone()))
+            .collect();
         for stage in &self.stages {
             let inputs: Vec<&[f64]> = all.iter().map(|(_, column)| column.as_slice()).collect();
             let out = stage.program.run(&inputs, count);
@@ -209,10 +239,15 @@ impl<'a> Bench<'a> {
             .flat_map(|(index, program)| {
                 let out = program.run(&inputs, count);
                 // A condition that has no value does not hold.
-                out.iter().position(|held| held.is_nan() || *held < 0.5).map(|point| (*index, point))
+                out.iter()
+                    .position(|held| held.is_nan() || *held < 0.5)
+                    .map(|point| (*index, point))
             })
             .next();
-        Batch { columns: all, broken }
+        Batch {
+            columns: all,
+            broken,
+        }
     }
 
     /// Demand and capacity of every check over a batch.
@@ -228,7 +263,12 @@ impl<'a> Bench<'a> {
             Capacity::Name(name) => value(name),
             Capacity::Number(_, number) => Column::All(*number),
         };
-        self.asking.sheet.checks.iter().map(|check| [value(&check.demand), capacity(&check.capacity)]).collect()
+        self.asking
+            .sheet
+            .checks
+            .iter()
+            .map(|check| [value(&check.demand), capacity(&check.capacity)])
+            .collect()
     }
 
     /// The fault of a broken condition at a point in words.
@@ -264,6 +304,11 @@ pub(super) struct Batch<'a> {
 
 /// The fault of a formula that has no value in a place told in words.
 pub(super) fn fault(asking: &Asking<'_>, error: &FormulaError, place: &str) -> Diagnostic {
-    let message = format!("`{}` gives no number for {place}: {}", asking.sheet.name.value, error.problem);
-    asking.fault("no-value", message).help(format!("in its formula `{}`", error.text))
+    let message = format!(
+        "`{}` gives no number for {place}: {}",
+        asking.sheet.name.value, error.problem
+    );
+    asking
+        .fault("no-value", message)
+        .help(format!("in its formula `{}`", error.text))
 }

@@ -131,7 +131,9 @@ pub enum Property {
 }
 
 /// Groups of words, for advice.
-const GROUPS: [&str; 9] = ["point", "run", "part", "attached", "base", "thinner", "thicker", "weaker", "filler"];
+const GROUPS: [&str; 9] = [
+    "point", "run", "part", "attached", "base", "thinner", "thicker", "weaker", "filler",
+];
 
 impl From {
     /// Reads a word such as `point.sigma_perp`.
@@ -143,7 +145,9 @@ impl From {
         if text == "clause" {
             return Ok(Self::Clause);
         }
-        let Some((group, name)) = text.split_once('.') else { return Err(Unknown::of(text, &words())) };
+        let Some((group, name)) = text.split_once('.') else {
+            return Err(Unknown::of(text, &words()));
+        };
         if !is_name(name) {
             return Err(Unknown::of(text, &words()));
         }
@@ -182,10 +186,20 @@ impl From {
     #[must_use]
     pub fn kind(&self) -> Option<Kind> {
         let dim = match self {
-            Self::Point(field) => PointField::WORDS.iter().find(|row| row.1 == *field).map(|row| row.2),
-            Self::Run(field) => RunField::WORDS.iter().find(|row| row.1 == *field).map(|row| row.2),
-            Self::Part(_, Property::Material) | Self::Filler(Property::Material) => return Some(Kind::Word),
-            Self::Part(_, Property::Thickness) | Self::Filler(Property::Thickness) => Some(Dim::LENGTH),
+            Self::Point(field) => PointField::WORDS
+                .iter()
+                .find(|row| row.1 == *field)
+                .map(|row| row.2),
+            Self::Run(field) => RunField::WORDS
+                .iter()
+                .find(|row| row.1 == *field)
+                .map(|row| row.2),
+            Self::Part(_, Property::Material) | Self::Filler(Property::Material) => {
+                return Some(Kind::Word);
+            }
+            Self::Part(_, Property::Thickness) | Self::Filler(Property::Thickness) => {
+                Some(Dim::LENGTH)
+            }
             Self::Part(_, Property::Named(name)) | Self::Filler(Property::Named(name)) => {
                 matches!(name.as_str(), "f_y" | "f_u").then_some(Dim::STRESS)
             }
@@ -199,7 +213,9 @@ impl From {
     pub const fn is_in_turn(&self) -> bool {
         matches!(
             self,
-            Self::Part(Which::InTurn, _) | Self::Point(PointField::PlateLoad) | Self::Run(RunField::Face)
+            Self::Part(Which::InTurn, _)
+                | Self::Point(PointField::PlateLoad)
+                | Self::Run(RunField::Face)
         )
     }
 
@@ -207,10 +223,14 @@ impl From {
     #[must_use]
     pub fn bound_name(&self) -> Option<String> {
         match self {
-            Self::Point(field) => {
-                PointField::WORDS.iter().find(|row| row.1 == *field).map(|row| format!("point_{}", row.0))
-            }
-            Self::Run(field) => RunField::WORDS.iter().find(|row| row.1 == *field).map(|row| format!("run_{}", row.0)),
+            Self::Point(field) => PointField::WORDS
+                .iter()
+                .find(|row| row.1 == *field)
+                .map(|row| format!("point_{}", row.0)),
+            Self::Run(field) => RunField::WORDS
+                .iter()
+                .find(|row| row.1 == *field)
+                .map(|row| format!("run_{}", row.0)),
             Self::Part(..) | Self::Filler(_) | Self::Check(_) | Self::Clause => None,
         }
     }
@@ -226,19 +246,32 @@ fn property(name: &str) -> Property {
 
 /// Whether a text can be a name: a letter, then letters, digits and underscores.
 pub(super) fn is_name(text: &str) -> bool {
-    text.starts_with(|c: char| c.is_ascii_alphabetic()) && text.chars().all(|c| c.is_ascii_alphanumeric() || c == '_')
+    text.starts_with(|c: char| c.is_ascii_alphabetic())
+        && text.chars().all(|c| c.is_ascii_alphanumeric() || c == '_')
 }
 
 /// Every word with a fixed meaning, and samples of the free ones.
 fn words() -> Vec<String> {
-    let point = PointField::WORDS.iter().map(|row| format!("point.{}", row.0));
+    let point = PointField::WORDS
+        .iter()
+        .map(|row| format!("point.{}", row.0));
     let run = RunField::WORDS.iter().map(|row| format!("run.{}", row.0));
     let parts = GROUPS[2..4 + 1].iter().flat_map(|group| {
         ["thickness", "f_y", "f_u", "material"].map(|name| format!("{group}.{name}"))
     });
-    let others = ["thinner.thickness", "thicker.thickness", "weaker.f_y", "weaker.f_u", "weaker.material"];
+    let others = [
+        "thinner.thickness",
+        "thicker.thickness",
+        "weaker.f_y",
+        "weaker.f_u",
+        "weaker.material",
+    ];
     let last = ["filler.f_u", "clause", "check.NAME"];
-    point.chain(run).chain(parts).chain(others.into_iter().chain(last).map(str::to_owned)).collect()
+    point
+        .chain(run)
+        .chain(parts)
+        .chain(others.into_iter().chain(last).map(str::to_owned))
+        .collect()
 }
 
 /// A word that says nothing here.
@@ -257,7 +290,10 @@ impl Unknown {
             .map(|word| (strsim::damerau_levenshtein(text, word), word))
             .min_by_key(|(slips, _)| *slips)
             .filter(|(slips, _)| *slips <= 3);
-        Self { nearest: near.map(|(_, word)| word.clone()), allowed: known.to_vec() }
+        Self {
+            nearest: near.map(|(_, word)| word.clone()),
+            allowed: known.to_vec(),
+        }
     }
 }
 
@@ -267,13 +303,21 @@ mod tests {
 
     #[test]
     fn words_are_read_and_wrong_ones_get_the_nearest() {
-        assert_eq!(From::parse("point.tau_par"), Ok(From::Point(PointField::TauPar)), "a stress");
+        assert_eq!(
+            From::parse("point.tau_par"),
+            Ok(From::Point(PointField::TauPar)),
+            "a stress"
+        );
         assert_eq!(
             From::parse("weaker.f_u"),
             Ok(From::Part(Which::Weaker, Property::Named("f_u".into()))),
             "a strength"
         );
-        assert_eq!(From::parse("check.gamma_M2"), Ok(From::Check("gamma_M2".into())), "a value of the check");
+        assert_eq!(
+            From::parse("check.gamma_M2"),
+            Ok(From::Check("gamma_M2".into())),
+            "a value of the check"
+        );
         for (wrong, near) in [
             ("point.sigma_prep", Some("point.sigma_perp")),
             ("runs.throat", Some("run.throat")),

@@ -27,11 +27,17 @@ impl Library {
     pub fn add(&mut self, sheet: Sheet) -> Result<(), Faults> {
         if let Some(known) = self.sheets.get(&sheet.name.value) {
             let message = format!("there is a sheet `{}` already", sheet.name.value);
-            return Err(Diagnostic::error("duplicate-sheet", message, &sheet.name.place)
-                .help(format!("the other is {}; give this one a name of its own", known.place.file.name))
-                .into());
+            return Err(
+                Diagnostic::error("duplicate-sheet", message, &sheet.name.place)
+                    .help(format!(
+                        "the other is {}; give this one a name of its own",
+                        known.place.file.name
+                    ))
+                    .into(),
+            );
         }
-        self.sheets.insert(sheet.name.value.clone(), Arc::new(sheet));
+        self.sheets
+            .insert(sheet.name.value.clone(), Arc::new(sheet));
         Ok(())
     }
 
@@ -81,9 +87,15 @@ pub fn built_in() -> &'static Library {
     BUILT_IN.get_or_init(|| {
         let mut library = Library::new();
         for (name, text) in FILES {
-            let file = Arc::new(SourceFile { name: name.to_owned(), text: text.to_owned() });
-            let sheet = read_sheet(&file).unwrap_or_else(|faults| panic!("{}", faults.render(false)));
-            library.add(sheet).unwrap_or_else(|faults| panic!("{}", faults.render(false)));
+            let file = Arc::new(SourceFile {
+                name: name.to_owned(),
+                text: text.to_owned(),
+            });
+            let sheet =
+                read_sheet(&file).unwrap_or_else(|faults| panic!("{}", faults.render(false)));
+            library
+                .add(sheet)
+                .unwrap_or_else(|faults| panic!("{}", faults.render(false)));
         }
         library
     })

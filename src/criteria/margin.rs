@@ -45,7 +45,11 @@ pub(super) fn least_factor(excess: impl Fn(f64) -> f64) -> f64 {
     }
     for _ in 0..HALVINGS {
         let middle = f64::midpoint(low, high);
-        if reached(middle) { high = middle } else { low = middle }
+        if reached(middle) {
+            high = middle
+        } else {
+            low = middle
+        }
     }
     high
 }
@@ -68,7 +72,10 @@ mod tests {
         ];
         for (name, excess, wanted) in rows {
             let found = least_factor(excess);
-            assert!(found == wanted || (found - wanted).abs() < 1e-12 * wanted, "{name}: {found}, not {wanted}");
+            assert!(
+                found == wanted || (found - wanted).abs() < 1e-12 * wanted,
+                "{name}: {found}, not {wanted}"
+            );
         }
     }
 }

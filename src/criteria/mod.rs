@@ -26,8 +26,8 @@ pub use outcome::{Asked, Assessment, Governing, LimitOutcome, Margin, StrengthOu
 pub use read::read_sheet;
 pub use resolve::Turn;
 pub use sheet::{
-    ABOVE, BySystem, Capacity, CodeTable, EndRule, FailurePath, Kind, Limit, Need, RawRows, Role, Rule, Scope, Sheet,
-    SheetSource, Side, Stated, Status, Strength, UP_TO, Validity, WeldKind,
+    ABOVE, BySystem, Capacity, CodeTable, EndRule, FailurePath, Kind, Limit, Need, RawRows, Role,
+    Rule, Scope, Sheet, SheetSource, Side, Stated, Status, Strength, UP_TO, Validity, WeldKind,
 };
 pub use state::partner;
 pub use work::{WorkError, Worked, WorkedLimit, work, work_limit};

@@ -100,7 +100,9 @@ impl Margin {
         match self {
             Self::Value(_) => None,
             Self::High => Some("high: no load factor reaches the limit"),
-            Self::FixedTermsExceed => Some("the terms that do not grow with the loads exceed the limit by themselves"),
+            Self::FixedTermsExceed => {
+                Some("the terms that do not grow with the loads exceed the limit by themselves")
+            }
         }
     }
 
@@ -115,7 +117,11 @@ impl Governing {
     /// What a larger value of makes a point worse: 1/λ, 0 where no load factor reaches the limit.
     #[must_use]
     pub fn severity(&self) -> f64 {
-        if self.load_factor > 0.0 { 1.0 / self.load_factor } else { f64::INFINITY }
+        if self.load_factor > 0.0 {
+            1.0 / self.load_factor
+        } else {
+            f64::INFINITY
+        }
     }
 }
 

@@ -78,7 +78,11 @@ impl Resolved {
             Self::One(one) => Some(one.given.value),
             Self::Extreme { greatest, of } => {
                 let (first, second) = (of[0].given.value, of[1].given.value);
-                Some(if *greatest { first.max(second) } else { first.min(second) })
+                Some(if *greatest {
+                    first.max(second)
+                } else {
+                    first.min(second)
+                })
             }
         }
     }
@@ -105,7 +109,12 @@ impl Asking<'_> {
     }
 
     /// What `need` stands for at `run`, for the part in turn.
-    pub(super) fn resolve(&self, need: &Need, run: &Run, turn: Option<Turn>) -> Result<Resolved, Diagnostic> {
+    pub(super) fn resolve(
+        &self,
+        need: &Need,
+        run: &Run,
+        turn: Option<Turn>,
+    ) -> Result<Resolved, Diagnostic> {
         for from in &need.from {
             if let Some(found) = self.look(need, from, run, turn)? {
                 self.check_bounds(need, &found)?;
@@ -119,20 +128,30 @@ impl Asking<'_> {
     }
 
     /// What one place gives; `None` if it gives nothing.
-    fn look(&self, need: &Need, from: &From, run: &Run, turn: Option<Turn>) -> Result<Option<Resolved>, Diagnostic> {
+    fn look(
+        &self,
+        need: &Need,
+        from: &From,
+        run: &Run,
+        turn: Option<Turn>,
+    ) -> Result<Option<Resolved>, Diagnostic> {
         let joins = run.joins;
         let turn_index = turn.map_or(0, Turn::index);
         match from {
             From::Point(field) => Ok(Some(Resolved::Point(*field))),
-            From::Run(field) => self.run_field(*field, run, turn).map(|value| Some(Resolved::Run(*field, value))),
+            From::Run(field) => self
+                .run_field(*field, run, turn)
+                .map(|value| Some(Resolved::Run(*field, value))),
             From::Part(which, property) => match which {
                 Which::InTurn => self.of_part(need, joins[turn_index], property),
                 Which::Attached => self.of_part(need, joins[0], property),
                 Which::Base => self.of_part(need, joins[1], property),
-                Which::Thinner | Which::Thicker => self.of_both(need, joins, property, *which == Which::Thicker),
-                Which::Weaker if *property == Property::Material => {
-                    Ok(Some(self.word(need, &self.joint.parts[self.weaker(joins)].material.value)))
+                Which::Thinner | Which::Thicker => {
+                    self.of_both(need, joins, property, *which == Which::Thicker)
                 }
+                Which::Weaker if *property == Property::Material => Ok(Some(
+                    self.word(need, &self.joint.parts[self.weaker(joins)].material.value),
+                )),
                 Which::Weaker => self.of_both(need, joins, property, false),
             },
             From::Filler(property) => match &self.joint.filler {
@@ -147,7 +166,12 @@ impl Asking<'_> {
     /// The index of the part of lesser ultimate strength (or yield strength where that is missing).
     fn weaker(&self, joins: [usize; 2]) -> usize {
         let [first, second] = joins.map(|part| &self.joint.parts[part]);
-        let both = |of: fn(&Part) -> &Option<GivenAt>| Some((of(first).as_ref()?.value.value, of(second).as_ref()?.value.value));
+        let both = |of: fn(&Part) -> &Option<GivenAt>| {
+            Some((
+                of(first).as_ref()?.value.value,
+                of(second).as_ref()?.value.value,
+            ))
+        };
         let strengths = both(|part| &part.f_u).or_else(|| both(|part| &part.f_y));
         match strengths {
             Some((first, second)) if second < first => joins[1],
@@ -156,14 +180,27 @@ impl Asking<'_> {
     }
 
     fn word(&self, need: &Need, text: &str) -> Resolved {
-        Resolved::Word(if need.grade { leading_grade(text).to_owned() } else { text.to_owned() })
+        Resolved::Word(if need.grade {
+            leading_grade(text).to_owned()
+        } else {
+            text.to_owned()
+        })
     }
 
-    fn of_part(&self, need: &Need, part: usize, property: &Property) -> Result<Option<Resolved>, Diagnostic> {
+    fn of_part(
+        &self,
+        need: &Need,
+        part: usize,
+        property: &Property,
+    ) -> Result<Option<Resolved>, Diagnostic> {
         if *property == Property::Material {
-            return Ok(Some(self.word(need, &self.joint.parts[part].material.value)));
+            return Ok(Some(
+                self.word(need, &self.joint.parts[part].material.value),
+            ));
         }
-        Ok(self.part_quantity(need, part, property)?.map(|one| Resolved::One(Box::new(one))))
+        Ok(self
+            .part_quantity(need, part, property)?
+            .map(|one| Resolved::One(Box::new(one))))
     }
 
     /// The lesser or greater of both parts; a single value where the run joins one part to itself.
@@ -180,12 +217,20 @@ impl Asking<'_> {
             if joins[0] == joins[1] {
                 Resolved::One(Box::new(first))
             } else {
-                Resolved::Extreme { greatest, of: Box::new([first, second]) }
+                Resolved::Extreme {
+                    greatest,
+                    of: Box::new([first, second]),
+                }
             }
         }))
     }
 
-    fn part_quantity(&self, need: &Need, index: usize, property: &Property) -> Result<Option<Sourced>, Diagnostic> {
+    fn part_quantity(
+        &self,
+        need: &Need,
+        index: usize,
+        property: &Property,
+    ) -> Result<Option<Sourced>, Diagnostic> {
         let part = &self.joint.parts[index];
         let name = property_name(property);
         let told = match name {
@@ -214,14 +259,24 @@ impl Asking<'_> {
         Ok(told.map(|told| Sourced {
             id: format!("part.{}.{}", slug(&part.name.value), slug(name)),
             symbol,
-            says: format!("{} of {}, {}", property_says(name), part.name.value, part.material.value),
+            says: format!(
+                "{} of {}, {}",
+                property_says(name),
+                part.name.value,
+                part.material.value
+            ),
             given: told.value,
             origin: Origin::Input(told.place),
             mark,
         }))
     }
 
-    fn of_filler(&self, need: &Need, filler: &Filler, property: &Property) -> Result<Option<Resolved>, Diagnostic> {
+    fn of_filler(
+        &self,
+        need: &Need,
+        filler: &Filler,
+        property: &Property,
+    ) -> Result<Option<Resolved>, Diagnostic> {
         let name = property_name(property);
         let told = match name {
             "material" => return Ok(Some(self.word(need, &filler.name.value))),
@@ -239,7 +294,11 @@ impl Asking<'_> {
             Resolved::One(Box::new(Sourced {
                 id: format!("filler.{}", slug(name)),
                 symbol: need.symbol.clone(),
-                says: format!("{} of the filler, {}", property_says(name), filler.name.value),
+                says: format!(
+                    "{} of the filler, {}",
+                    property_says(name),
+                    filler.name.value
+                ),
                 given: told.value,
                 origin: Origin::Input(told.place),
                 mark,
@@ -254,23 +313,40 @@ impl Asking<'_> {
         more: &[(Told<String>, Told<String>)],
         name: &str,
     ) -> Result<Option<GivenAt>, Diagnostic> {
-        let Some((_, raw)) = more.iter().find(|(key, _)| key.value == name) else { return Ok(None) };
+        let Some((_, raw)) = more.iter().find(|(key, _)| key.value == name) else {
+            return Ok(None);
+        };
         let dim = need.kind.dim().unwrap_or_default();
         match Given::parse(&raw.value, dim, self.units()) {
-            Ok(value) => Ok(Some(Told { value, place: raw.place.clone() })),
+            Ok(value) => Ok(Some(Told {
+                value,
+                place: raw.place.clone(),
+            })),
             Err(error) => Err(self.bad_value(need, name, &error, &raw.place)),
         }
     }
 
     fn bad_value(&self, need: &Need, name: &str, error: &GivenError, place: &Place) -> Diagnostic {
-        let code = if matches!(error, GivenError::Kind { .. }) { "wrong-kind" } else { "bad-quantity" };
-        Diagnostic::error(code, format!("`{name}`: {error}"), place)
-            .help(format!("`{}` takes {}: {}", self.sheet.name.value, need.kind.says(), need.says))
+        let code = if matches!(error, GivenError::Kind { .. }) {
+            "wrong-kind"
+        } else {
+            "bad-quantity"
+        };
+        Diagnostic::error(code, format!("`{name}`: {error}"), place).help(format!(
+            "`{}` takes {}: {}",
+            self.sheet.name.value,
+            need.kind.says(),
+            need.says
+        ))
     }
 
     fn of_check(&self, need: &Need, name: &str) -> Result<Option<Resolved>, Diagnostic> {
-        let Some((_, raw)) = self.spec.values.iter().find(|(key, _)| key.value == name) else { return Ok(None) };
-        let Some(dim) = need.kind.dim() else { return Ok(Some(self.word(need, &raw.value))) };
+        let Some((_, raw)) = self.spec.values.iter().find(|(key, _)| key.value == name) else {
+            return Ok(None);
+        };
+        let Some(dim) = need.kind.dim() else {
+            return Ok(Some(self.word(need, &raw.value)));
+        };
         let given = Given::parse(&raw.value, dim, self.units())
             .map_err(|error| self.bad_value(need, name, &error, &raw.place))?;
         let mark = self.check_mark(need, name, &given)?;
@@ -286,7 +362,12 @@ impl Asking<'_> {
 
     /// What is to be verified of a value of the check: an allowable or a factor without a source,
     /// unless it is the sheet's own default.
-    fn check_mark(&self, need: &Need, name: &str, given: &Given) -> Result<Option<String>, Diagnostic> {
+    fn check_mark(
+        &self,
+        need: &Need,
+        name: &str,
+        given: &Given,
+    ) -> Result<Option<String>, Diagnostic> {
         let what = format!("{name} of the check {}", self.sheet.name.value);
         if self.spec.to_be_verified {
             return Ok(Some(format!("{what}: to be verified")));
@@ -295,23 +376,43 @@ impl Asking<'_> {
         if self.spec.source.is_some() || !matters {
             return Ok(None);
         }
-        let default = self.stated(need, "default")?.as_ref().and_then(Resolved::value);
-        let is_default = default.is_some_and(|default| (default - given.value).abs() <= 1e-12 * default.abs());
+        let default = self
+            .stated(need, "default")?
+            .as_ref()
+            .and_then(Resolved::value);
+        let is_default =
+            default.is_some_and(|default| (default - given.value).abs() <= 1e-12 * default.abs());
         Ok((!is_default).then(|| format!("{what}: no source given")))
     }
 
     /// The value that the sheet states for this printing set.
     fn stated(&self, need: &Need, kind: &str) -> Result<Option<Resolved>, Diagnostic> {
-        let Some(stated) = &need.stated else { return Ok(None) };
-        let Some(text) = stated.text.of(self.units()) else {
-            let system = if self.units().is_inch() { "inches" } else { "metric lengths" };
-            let message = format!("`{}` states no `{}` for {system}", self.sheet.name.value, need.name.value);
-            return Err(self.fault("no-variant", message).help("use a printing set of the clause's own system"));
+        let Some(stated) = &need.stated else {
+            return Ok(None);
         };
-        let Some(dim) = need.kind.dim() else { return Ok(Some(self.word(need, &text.value))) };
+        let Some(text) = stated.text.of(self.units()) else {
+            let system = if self.units().is_inch() {
+                "inches"
+            } else {
+                "metric lengths"
+            };
+            let message = format!(
+                "`{}` states no `{}` for {system}",
+                self.sheet.name.value, need.name.value
+            );
+            return Err(self
+                .fault("no-variant", message)
+                .help("use a printing set of the clause's own system"));
+        };
+        let Some(dim) = need.kind.dim() else {
+            return Ok(Some(self.word(need, &text.value)));
+        };
         let given = Given::parse(&text.value, dim, self.units())
             .map_err(|error| Diagnostic::error("bad-quantity", error.to_string(), &text.place))?;
-        let source = stated.source.clone().unwrap_or_else(|| self.sheet.source.cited());
+        let source = stated
+            .source
+            .clone()
+            .unwrap_or_else(|| self.sheet.source.cited());
         let mark = (stated.status == Status::Recalled)
             .then(|| format!("{source}: recalled from memory, to be verified"));
         Ok(Some(Resolved::One(Box::new(Sourced {
@@ -325,10 +426,17 @@ impl Asking<'_> {
     }
 
     fn check_bounds(&self, need: &Need, found: &Resolved) -> Result<(), Diagnostic> {
-        let Some(value) = found.value() else { return Ok(()) };
+        let Some(value) = found.value() else {
+            return Ok(());
+        };
         let parse = |text: &Option<Told<String>>| {
             let text = text.as_ref()?;
-            Some((Given::parse(&text.value, need.kind.dim()?, self.units()).ok()?.value, text.value.clone()))
+            Some((
+                Given::parse(&text.value, need.kind.dim()?, self.units())
+                    .ok()?
+                    .value,
+                text.value.clone(),
+            ))
         };
         // Bounds are inclusive; a value converted from another unit may miss one by rounding.
         let slack = |bound: f64| 1e-12 * bound.abs();
@@ -339,14 +447,19 @@ impl Asking<'_> {
         };
         let (text, place) = match found {
             Resolved::One(one) => (one.given.text(), input_place(&one.origin)),
-            Resolved::Extreme { .. } | Resolved::Run(..) | Resolved::Word(_) | Resolved::Point(_) => {
-                (value.to_string(), None)
-            }
+            Resolved::Extreme { .. }
+            | Resolved::Run(..)
+            | Resolved::Word(_)
+            | Resolved::Point(_) => (value.to_string(), None),
         };
         let message = format!("`{}` is {text}, but must be {wrong}", need.name.value);
         let place = place.unwrap_or_else(|| self.spec.clause.place.clone());
-        Err(Diagnostic::error("out-of-range", message, &place)
-            .help(format!("the bound is of `{}`: {}", self.sheet.name.value, need.says)))
+        Err(
+            Diagnostic::error("out-of-range", message, &place).help(format!(
+                "the bound is of `{}`: {}",
+                self.sheet.name.value, need.says
+            )),
+        )
     }
 
     /// The fault of a need that nothing gives.
@@ -360,7 +473,11 @@ impl Asking<'_> {
             Some(key) => fault.help(format!("or add `{key}: ...` to the check")),
             None => fault,
         };
-        match need.from.iter().find(|from| matches!(from, From::Part(..) | From::Filler(_))) {
+        match need
+            .from
+            .iter()
+            .find(|from| matches!(from, From::Part(..) | From::Filler(_)))
+        {
             Some(From::Part(which, property)) => {
                 let wanted = property_name(property);
                 let indices = match which {
@@ -369,9 +486,14 @@ impl Asking<'_> {
                     Which::Base => vec![run.joins[1]],
                     Which::Thinner | Which::Thicker | Which::Weaker => run.joins.to_vec(),
                 };
-                let lacks = |index: &&usize| matches!(self.part_quantity(need, **index, property), Ok(None));
+                let lacks = |index: &&usize| {
+                    matches!(self.part_quantity(need, **index, property), Ok(None))
+                };
                 let part = &self.joint.parts[*indices.iter().find(lacks).unwrap_or(&indices[0])];
-                let message = format!("`{}` gives no `{wanted}`, which `{name}` needs", part.name.value);
+                let message = format!(
+                    "`{}` gives no `{wanted}`, which `{name}` needs",
+                    part.name.value
+                );
                 let fault = Diagnostic::error("missing-value", message, &part.name.place)
                     .help(format!("add `{wanted}: ...`: {}", need.says));
                 hint(fault)
@@ -379,10 +501,14 @@ impl Asking<'_> {
             Some(From::Filler(property)) => {
                 let wanted = property_name(property);
                 let (message, place) = match &self.joint.filler {
-                    Some(filler) => {
-                        (format!("the filler gives no `{wanted}`, which `{name}` needs"), &filler.name.place)
-                    }
-                    None => (format!("`{name}` needs `{wanted}` of a `filler`"), &self.spec.clause.place),
+                    Some(filler) => (
+                        format!("the filler gives no `{wanted}`, which `{name}` needs"),
+                        &filler.name.place,
+                    ),
+                    None => (
+                        format!("`{name}` needs `{wanted}` of a `filler`"),
+                        &self.spec.clause.place,
+                    ),
                 };
                 let fault = Diagnostic::error("missing-value", message, place)
                     .help(format!("add `filler: {{{wanted}: ...}}`: {}", need.says));
@@ -408,11 +534,19 @@ impl Asking<'_> {
             RunField::LegAttached => self.legs(run).map(|[_, attached]| attached),
             RunField::Face => {
                 let [base, attached] = self.legs(run)?;
-                let leg = if turn == Some(Turn::Base) { base } else { attached };
+                let leg = if turn == Some(Turn::Base) {
+                    base
+                } else {
+                    attached
+                };
                 Ok(match run.rule {
-                    ThroatRule::EqualLegs { gap, .. } | ThroatRule::UnequalLegs { gap, .. } => leg - gap,
+                    ThroatRule::EqualLegs { gap, .. } | ThroatRule::UnequalLegs { gap, .. } => {
+                        leg - gap
+                    }
                     ThroatRule::SquareLegs { gap, angle, .. } => (leg - gap) / real::sin(angle),
-                    ThroatRule::Stated { .. } | ThroatRule::Partial { .. } | ThroatRule::Complete { .. } => leg,
+                    ThroatRule::Stated { .. }
+                    | ThroatRule::Partial { .. }
+                    | ThroatRule::Complete { .. } => leg,
                 })
             }
         }
@@ -422,11 +556,30 @@ impl Asking<'_> {
     fn legs(&self, run: &Run) -> Result<[f64; 2], Diagnostic> {
         let spec = &self.joint.weld.runs[run.spec];
         match (&run.rule, &spec.size) {
-            (ThroatRule::EqualLegs { leg, .. } | ThroatRule::SquareLegs { leg, .. }, _) => Ok([*leg; 2]),
-            (ThroatRule::UnequalLegs { on_base, on_attached, .. }, _) => Ok([*on_base, *on_attached]),
-            (ThroatRule::Stated { .. }, SizeSpec::Throat { leg: Some(leg), .. }) => Ok([leg.value.value; 2]),
-            (ThroatRule::Stated { .. } | ThroatRule::Partial { .. } | ThroatRule::Complete { .. }, _) => {
-                let message = format!("run `{}` tells no leg, which `{}` needs", run.name, self.sheet.name.value);
+            (ThroatRule::EqualLegs { leg, .. } | ThroatRule::SquareLegs { leg, .. }, _) => {
+                Ok([*leg; 2])
+            }
+            (
+                ThroatRule::UnequalLegs {
+                    on_base,
+                    on_attached,
+                    ..
+                },
+                _,
+            ) => Ok([*on_base, *on_attached]),
+            (ThroatRule::Stated { .. }, SizeSpec::Throat { leg: Some(leg), .. }) => {
+                Ok([leg.value.value; 2])
+            }
+            (
+                ThroatRule::Stated { .. }
+                | ThroatRule::Partial { .. }
+                | ThroatRule::Complete { .. },
+                _,
+            ) => {
+                let message = format!(
+                    "run `{}` tells no leg, which `{}` needs",
+                    run.name, self.sheet.name.value
+                );
                 Err(Diagnostic::error("missing-leg", message, &spec.name.place)
                     .help("give `leg:` beside the throat, or another sheet"))
             }
@@ -442,11 +595,19 @@ impl Asking<'_> {
             .flat_map(|need| &need.from)
             .filter_map(|from| match from {
                 From::Check(name) => Some(name.as_str()),
-                From::Point(_) | From::Run(_) | From::Part(..) | From::Filler(_) | From::Clause => None,
+                From::Point(_) | From::Run(_) | From::Part(..) | From::Filler(_) | From::Clause => {
+                    None
+                }
             })
             .collect();
-        let unknown = self.spec.values.iter().filter(|(key, _)| !known.contains(&key.value.as_str()));
-        unknown.map(|(key, _)| unknown_value(key, &known, &self.sheet.name.value)).collect()
+        let unknown = self
+            .spec
+            .values
+            .iter()
+            .filter(|(key, _)| !known.contains(&key.value.as_str()));
+        unknown
+            .map(|(key, _)| unknown_value(key, &known, &self.sheet.name.value))
+            .collect()
     }
 }
 
@@ -490,9 +651,17 @@ fn property_says(name: &str) -> String {
 /// The leading letters and digits of a material's name: `S355` of `S355J2+N`.
 fn leading_grade(text: &str) -> &str {
     let text = text.trim();
-    let letters = text.find(|c: char| !c.is_ascii_alphabetic()).unwrap_or(text.len());
-    let digits = text[letters..].find(|c: char| !c.is_ascii_digit()).unwrap_or(text.len() - letters);
-    if letters > 0 && digits > 0 { &text[..letters + digits] } else { text }
+    let letters = text
+        .find(|c: char| !c.is_ascii_alphabetic())
+        .unwrap_or(text.len());
+    let digits = text[letters..]
+        .find(|c: char| !c.is_ascii_digit())
+        .unwrap_or(text.len() - letters);
+    if letters > 0 && digits > 0 {
+        &text[..letters + digits]
+    } else {
+        text
+    }
 }
 
 /// A text as part of an id: letters, digits and `-`.

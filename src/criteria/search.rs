@@ -41,7 +41,11 @@ pub(super) struct Search<'a> {
 }
 
 impl<'a> Search<'a> {
-    pub(super) fn new(ground: &'a Ground<'a>, asking: Asking<'a>, benches: &'a [Bench<'a>]) -> Self {
+    pub(super) fn new(
+        ground: &'a Ground<'a>,
+        asking: Asking<'a>,
+        benches: &'a [Bench<'a>],
+    ) -> Self {
         let positions = benches
             .iter()
             .map(|bench| {
@@ -50,14 +54,24 @@ impl<'a> Search<'a> {
                     return vec![0.0, 1.0];
                 }
                 let count = intervals(path);
-                (0..=count).map(|index| f64::from(index) / f64::from(count)).collect()
+                (0..=count)
+                    .map(|index| f64::from(index) / f64::from(count))
+                    .collect()
             })
             .collect();
-        Self { ground, asking, benches, positions }
+        Self {
+            ground,
+            asking,
+            benches,
+            positions,
+        }
     }
 
     /// For each check of the sheet, the worst point of each case.
-    pub(super) fn worst_of_cases(&self, cases: &[usize]) -> Result<Vec<Vec<Governing>>, Diagnostic> {
+    pub(super) fn worst_of_cases(
+        &self,
+        cases: &[usize],
+    ) -> Result<Vec<Vec<Governing>>, Diagnostic> {
         let checks = self.asking.sheet.checks.len();
         let mut worst: Vec<Vec<Governing>> = vec![Vec::new(); checks];
         let points = self.positions.iter().map(Vec::len).max().unwrap_or(1);
@@ -87,7 +101,10 @@ impl<'a> Search<'a> {
             let columns = self.columns(bench, cases, positions, scale);
             let batch = bench.at_points(&columns, count);
             if let Some((condition, point)) = batch.broken {
-                let (case, p) = (cases[point / positions.len()], positions[point % positions.len()]);
+                let (case, p) = (
+                    cases[point / positions.len()],
+                    positions[point % positions.len()],
+                );
                 return Err(bench.broken(condition, &self.place(bench, case, p)));
             }
             let mut ratios = Vec::with_capacity(positions.len());
@@ -96,7 +113,10 @@ impl<'a> Search<'a> {
                     ratios.clear();
                     for (step, p) in positions.iter().enumerate() {
                         let point = at * positions.len() + step;
-                        let pair = Pair { demand: demand.at(point), capacity: capacity.at(point) };
+                        let pair = Pair {
+                            demand: demand.at(point),
+                            capacity: capacity.at(point),
+                        };
                         ratios.push(self.ratio_of(bench, check, pair, (*case, *p, scale))?);
                     }
                     keep_peaks(&mut found[at][check], index, positions, &ratios);
@@ -106,12 +126,25 @@ impl<'a> Search<'a> {
         Ok(found)
     }
 
-    fn columns(&self, bench: &Bench<'_>, cases: &[usize], positions: &[f64], scale: f64) -> Vec<Vec<f64>> {
-        let mut columns = vec![Vec::with_capacity(cases.len() * positions.len()); bench.fields.len()];
+    fn columns(
+        &self,
+        bench: &Bench<'_>,
+        cases: &[usize],
+        positions: &[f64],
+        scale: f64,
+    ) -> Vec<Vec<f64>> {
+        let mut columns =
+            vec![Vec::with_capacity(cases.len() * positions.len()); bench.fields.len()];
         let mut values = vec![0.0; bench.fields.len()];
         for case in cases {
             for p in positions {
-                fill(self.ground, &bench.site, &bench.fields, (*case, *p, scale), &mut values);
+                fill(
+                    self.ground,
+                    &bench.site,
+                    &bench.fields,
+                    (*case, *p, scale),
+                    &mut values,
+                );
                 for (column, value) in columns.iter_mut().zip(&values) {
                     column.push(*value);
                 }
@@ -121,8 +154,17 @@ impl<'a> Search<'a> {
     }
 
     /// The worst of the samples, refined between its neighbours where a run is searched.
-    fn pick(&self, case: usize, check: usize, samples: &[Sample], scale: f64) -> Result<Sample, Diagnostic> {
-        let largest = samples.iter().map(|sample| sample.ratio).fold(0.0, f64::max);
+    fn pick(
+        &self,
+        case: usize,
+        check: usize,
+        samples: &[Sample],
+        scale: f64,
+    ) -> Result<Sample, Diagnostic> {
+        let largest = samples
+            .iter()
+            .map(|sample| sample.ratio)
+            .fold(0.0, f64::max);
         let mut best: Option<Sample> = None;
         for sample in samples {
             let mut candidate = *sample;
@@ -159,15 +201,22 @@ impl<'a> Search<'a> {
         let found = peak(2, ratio);
         match (found, failed.into_inner()) {
             (_, Some(fault)) => Err(fault),
-            (Ok(found), None) if beats(found.value, sample.ratio) => {
-                Ok(Sample { p: low + found.p * (high - low), ratio: found.value, ..sample })
-            }
+            (Ok(found), None) if beats(found.value, sample.ratio) => Ok(Sample {
+                p: low + found.p * (high - low),
+                ratio: found.value,
+                ..sample
+            }),
             (_, None) => Ok(sample),
         }
     }
 
     /// Demand and capacity at one point by the single evaluator.
-    fn pair(&self, bench: &Bench<'_>, check: usize, at: (usize, f64, f64)) -> Result<Pair, Diagnostic> {
+    fn pair(
+        &self,
+        bench: &Bench<'_>,
+        check: usize,
+        at: (usize, f64, f64),
+    ) -> Result<Pair, Diagnostic> {
         let mut values = vec![0.0; bench.fields.len()];
         fill(self.ground, &bench.site, &bench.fields, at, &mut values);
         match bench.at_point(&values) {
@@ -176,15 +225,29 @@ impl<'a> Search<'a> {
         }
     }
 
-    fn ratio(&self, bench: &Bench<'_>, check: usize, at: (usize, f64, f64)) -> Result<f64, Diagnostic> {
-        let pair = self.pair(bench, check, at).or_else(|fault| self.without_stress(bench, at).ok_or(fault))?;
+    fn ratio(
+        &self,
+        bench: &Bench<'_>,
+        check: usize,
+        at: (usize, f64, f64),
+    ) -> Result<f64, Diagnostic> {
+        let pair = self
+            .pair(bench, check, at)
+            .or_else(|fault| self.without_stress(bench, at).ok_or(fault))?;
         self.ratio_of(bench, check, pair, at)
     }
 
     /// A point without any stress has no demand, whatever a formula divides by.
-    fn without_stress(&self, bench: &Bench<'_>, (case, p, scale): (usize, f64, f64)) -> Option<Pair> {
+    fn without_stress(
+        &self,
+        bench: &Bench<'_>,
+        (case, p, scale): (usize, f64, f64),
+    ) -> Option<Pair> {
         let f = (self.ground.stress)(case, bench.site.run, p) * scale;
-        (f.norm() <= 0.0).then_some(Pair { demand: 0.0, capacity: 1.0 })
+        (f.norm() <= 0.0).then_some(Pair {
+            demand: 0.0,
+            capacity: 1.0,
+        })
     }
 
     /// max(0, D)/R.
@@ -199,7 +262,8 @@ impl<'a> Search<'a> {
             pair
         } else {
             // The single evaluator says why there is no number.
-            self.pair(bench, check, at).or_else(|fault| self.without_stress(bench, at).ok_or(fault))?
+            self.pair(bench, check, at)
+                .or_else(|fault| self.without_stress(bench, at).ok_or(fault))?
         };
         if pair.capacity <= 0.0 {
             let sheet = self.asking.sheet;
@@ -216,13 +280,25 @@ impl<'a> Search<'a> {
 
     fn place(&self, bench: &Bench<'_>, case: usize, p: f64) -> String {
         let name = &self.ground.joint.loads.cases[case].name.value;
-        format!("case `{name}` on run `{}` at {p:.3} of its length", self.ground.runs[bench.site.run].name)
+        format!(
+            "case `{name}` on run `{}` at {p:.3} of its length",
+            self.ground.runs[bench.site.run].name
+        )
     }
 
-    fn outcome(&self, case: usize, check: usize, sample: Sample, factor: f64, margin: Margin) -> Result<Governing, Diagnostic> {
+    fn outcome(
+        &self,
+        case: usize,
+        check: usize,
+        sample: Sample,
+        factor: f64,
+        margin: Margin,
+    ) -> Result<Governing, Diagnostic> {
         let bench = &self.benches[sample.bench];
         let at = (case, sample.p, 1.0);
-        let pair = self.pair(bench, check, at).or_else(|fault| self.without_stress(bench, at).ok_or(fault))?;
+        let pair = self
+            .pair(bench, check, at)
+            .or_else(|fault| self.without_stress(bench, at).ok_or(fault))?;
         let run = &self.ground.runs[bench.site.run];
         Ok(Governing {
             case,
@@ -240,7 +316,12 @@ impl<'a> Search<'a> {
         })
     }
 
-    fn proportional(&self, case: usize, check: usize, sample: Sample) -> Result<Governing, Diagnostic> {
+    fn proportional(
+        &self,
+        case: usize,
+        check: usize,
+        sample: Sample,
+    ) -> Result<Governing, Diagnostic> {
         self.check_proportional(&self.benches[sample.bench], check, (case, sample.p))?;
         let (factor, margin) = if sample.ratio > 0.0 {
             (1.0 / sample.ratio, Margin::Value(1.0 / sample.ratio - 1.0))
@@ -282,11 +363,15 @@ impl<'a> Search<'a> {
 
     fn factor(&self, case: usize, check: usize, sample: Sample) -> f64 {
         let bench = &self.benches[sample.bench];
-        least_factor(|factor| match self.pair(bench, check, (case, sample.p, factor)) {
-            Ok(pair) if pair.capacity > 0.0 => pair.demand - pair.capacity,
-            Ok(_) => f64::NAN,
-            Err(_) => self.without_stress(bench, (case, sample.p, factor)).map_or(f64::NAN, |_| -1.0),
-        })
+        least_factor(
+            |factor| match self.pair(bench, check, (case, sample.p, factor)) {
+                Ok(pair) if pair.capacity > 0.0 => pair.demand - pair.capacity,
+                Ok(_) => f64::NAN,
+                Err(_) => self
+                    .without_stress(bench, (case, sample.p, factor))
+                    .map_or(f64::NAN, |_| -1.0),
+            },
+        )
     }
 
     /// Holds the claim of proportionality against every sample of one case.
@@ -301,7 +386,12 @@ impl<'a> Search<'a> {
         Ok(())
     }
 
-    fn check_proportional(&self, bench: &Bench<'_>, check: usize, (case, p): (usize, f64)) -> Result<(), Diagnostic> {
+    fn check_proportional(
+        &self,
+        bench: &Bench<'_>,
+        check: usize,
+        (case, p): (usize, f64),
+    ) -> Result<(), Diagnostic> {
         let strength = &self.asking.sheet.checks[check];
         if !strength.proportional || self.without_stress(bench, (case, p, 1.0)).is_some() {
             return Ok(());
@@ -311,19 +401,34 @@ impl<'a> Search<'a> {
         let differs = |a: f64, b: f64, size: f64| (a - b).abs() > PROPORTIONAL * size;
         // A demand that cancels to rounding noise is held to a part of the capacity.
         let noise = 1e-6 * once.capacity.abs();
-        let demand = differs(twice.demand, 2.0 * once.demand, twice.demand.abs().max(noise));
+        let demand = differs(
+            twice.demand,
+            2.0 * once.demand,
+            twice.demand.abs().max(noise),
+        );
         let capacity = differs(twice.capacity, once.capacity, once.capacity.abs());
         if !demand && !capacity {
             return Ok(());
         }
         let what = if demand {
-            format!("twice the loads make its demand {} of {}", twice.demand, once.demand)
+            format!(
+                "twice the loads make its demand {} of {}",
+                twice.demand, once.demand
+            )
         } else {
-            format!("twice the loads make its capacity {} of {}", twice.capacity, once.capacity)
+            format!(
+                "twice the loads make its capacity {} of {}",
+                twice.capacity, once.capacity
+            )
         };
-        let message = format!("`{}` says it is proportional to the loads, but {what}", strength.name.value);
-        Err(Diagnostic::error("not-proportional", message, &strength.place)
-            .help("say `proportional: false`: the margin is then found as a load factor"))
+        let message = format!(
+            "`{}` says it is proportional to the loads, but {what}",
+            strength.name.value
+        );
+        Err(
+            Diagnostic::error("not-proportional", message, &strength.place)
+                .help("say `proportional: false`: the margin is then found as a load factor"),
+        )
     }
 }
 
@@ -339,8 +444,17 @@ fn keep_peaks(found: &mut Vec<Sample>, bench: usize, positions: &[f64], ratios: 
         if searched && !is_peak {
             continue;
         }
-        let near = searched
-            .then(|| (positions[before.unwrap_or(at)], positions[after.unwrap_or(at)]));
-        found.push(Sample { bench, p: positions[at], ratio: *ratio, near });
+        let near = searched.then(|| {
+            (
+                positions[before.unwrap_or(at)],
+                positions[after.unwrap_or(at)],
+            )
+        });
+        found.push(Sample {
+            bench,
+            p: positions[at],
+            ratio: *ratio,
+            near,
+        });
     }
 }

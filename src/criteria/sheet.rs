@@ -71,8 +71,16 @@ impl SheetSource {
     /// The source as the note cites it, such as `EN 1993-1-8:2005, 4.5.3.2`.
     #[must_use]
     pub fn cited(&self) -> String {
-        let edition = self.edition.as_ref().map(|edition| format!(":{edition}")).unwrap_or_default();
-        let clause = self.clause.as_ref().map(|clause| format!(", {clause}")).unwrap_or_default();
+        let edition = self
+            .edition
+            .as_ref()
+            .map(|edition| format!(":{edition}"))
+            .unwrap_or_default();
+        let clause = self
+            .clause
+            .as_ref()
+            .map(|clause| format!(", {clause}"))
+            .unwrap_or_default();
         format!("{}{edition}{clause}", self.document)
     }
 }
@@ -133,8 +141,11 @@ pub enum EndRule {
 
 impl EndRule {
     /// Words and what they stand for.
-    pub const WORDS: [(&'static str, Self); 3] =
-        [("full", Self::Full), ("less throat", Self::LessThroat), ("less leg", Self::LessLeg)];
+    pub const WORDS: [(&'static str, Self); 3] = [
+        ("full", Self::Full),
+        ("less throat", Self::LessThroat),
+        ("less leg", Self::LessLeg),
+    ];
 
     /// The word in files and notes.
     #[must_use]
@@ -173,9 +184,9 @@ impl WeldKind {
     #[must_use]
     pub const fn of(run: &Run) -> Self {
         match run.rule {
-            ThroatRule::EqualLegs { .. } | ThroatRule::SquareLegs { .. } | ThroatRule::UnequalLegs { .. } => {
-                Self::Fillet
-            }
+            ThroatRule::EqualLegs { .. }
+            | ThroatRule::SquareLegs { .. }
+            | ThroatRule::UnequalLegs { .. } => Self::Fillet,
             ThroatRule::Stated { .. } => Self::Stated,
             ThroatRule::Partial { .. } => Self::Partial,
             ThroatRule::Complete { .. } => Self::Complete,
@@ -241,7 +252,11 @@ impl FailurePath {
     /// Never: every path has a word.
     #[must_use]
     pub fn word(self) -> &'static str {
-        Self::WORDS.iter().find(|(_, path)| *path == self).map(|(word, _)| *word).expect("every path has a word")
+        Self::WORDS
+            .iter()
+            .find(|(_, path)| *path == self)
+            .map(|(word, _)| *word)
+            .expect("every path has a word")
     }
 }
 
@@ -317,7 +332,11 @@ impl<T> BySystem<T> {
     /// The variant of a printing set, which is never converted from the other system.
     #[must_use]
     pub const fn of(&self, set: UnitSet) -> Option<&T> {
-        if set.is_inch() { self.inch.as_ref() } else { self.metric.as_ref() }
+        if set.is_inch() {
+            self.inch.as_ref()
+        } else {
+            self.metric.as_ref()
+        }
     }
 }
 
@@ -393,14 +412,21 @@ impl CodeTable {
         let rows = self.rows.of(set)?;
         let row = |(key, value): &(Told<String>, Told<String>)| Row {
             key: self.row_key(&key.value, set),
-            value: Given::parse(&value.value, self.dim, set).expect("rows are parsed when the sheet is read"),
+            value: Given::parse(&value.value, self.dim, set)
+                .expect("rows are parsed when the sheet is read"),
         };
         let key = match self.key {
             Kind::Word => Key::Word,
             Kind::Quantity(dim) => Key::Quantity(dim),
         };
         let rows = rows.iter().map(row).collect();
-        Some(Table { name: self.name.value.clone(), cited: self.cited.clone(), key, dim: self.dim, rows })
+        Some(Table {
+            name: self.name.value.clone(),
+            cited: self.cited.clone(),
+            key,
+            dim: self.dim,
+            rows,
+        })
     }
 
     fn row_key(&self, text: &str, set: UnitSet) -> RowKey {
@@ -499,7 +525,10 @@ impl Sheet {
     /// The tables for a printing set, by name.
     #[must_use]
     pub fn tables(&self, set: UnitSet) -> BTreeMap<String, Table> {
-        self.tables.iter().filter_map(|table| Some((table.name.value.clone(), table.table(set)?))).collect()
+        self.tables
+            .iter()
+            .filter_map(|table| Some((table.name.value.clone(), table.table(set)?)))
+            .collect()
     }
 
     /// A need by its name.
@@ -517,14 +546,20 @@ impl Sheet {
     /// The dimension of a need or step.
     #[must_use]
     pub fn dim(&self, name: &str) -> Option<Dim> {
-        self.need(name).and_then(|need| need.kind.dim()).or_else(|| self.step(name).map(|step| step.dim))
+        self.need(name)
+            .and_then(|need| need.kind.dim())
+            .or_else(|| self.step(name).map(|step| step.dim))
     }
 
     /// The names of needs and steps that vary from point to point.
     #[must_use]
     pub fn varying(&self) -> Vec<&str> {
-        let mut names: Vec<&str> =
-            self.needs.iter().filter(|need| need.is_at_point()).map(|need| need.name.value.as_str()).collect();
+        let mut names: Vec<&str> = self
+            .needs
+            .iter()
+            .filter(|need| need.is_at_point())
+            .map(|need| need.name.value.as_str())
+            .collect();
         for step in &self.steps {
             if step.node.names().iter().any(|name| names.contains(name)) {
                 names.push(&step.name.value);
@@ -536,8 +571,12 @@ impl Sheet {
     /// Whether the document's text still has to be verified, and the mark that says so.
     #[must_use]
     pub fn mark(&self) -> Option<String> {
-        (self.source.status == Status::Recalled)
-            .then(|| format!("{}: recalled from memory, to be verified", self.source.cited()))
+        (self.source.status == Status::Recalled).then(|| {
+            format!(
+                "{}: recalled from memory, to be verified",
+                self.source.cited()
+            )
+        })
     }
 
     /// Whether a weld of this kind is taken.

@@ -105,17 +105,39 @@ pub fn work(
         .iter()
         .position(|plane| plane.side * at.side > 0.0)
         .unwrap_or_default();
-    let site = Site { run: at.run, turn: at.part, plane, assumed: at.side_assumed };
-    let mut desk = Desk::new(ledger, env, ground, asked, site, Some((at.case, at.s)), prefix);
+    let site = Site {
+        run: at.run,
+        turn: at.part,
+        plane,
+        assumed: at.side_assumed,
+    };
+    let mut desk = Desk::new(
+        ledger,
+        env,
+        ground,
+        asked,
+        site,
+        Some((at.case, at.s)),
+        prefix,
+    );
     let strength = &asked.sheet.checks[check];
     let demand = desk.name(&strength.demand)?;
     let capacity = match &strength.capacity {
         Capacity::Name(name) => desk.name(name)?,
         Capacity::Number(text, value) => desk.number(text, *value),
     };
-    desk.agree(&strength.demand, demand, at.demand, at.demand.abs().max(AGREES * at.capacity))?;
+    desk.agree(
+        &strength.demand,
+        demand,
+        at.demand,
+        at.demand.abs().max(AGREES * at.capacity),
+    )?;
     desk.agree("capacity", capacity, at.capacity, at.capacity.abs())?;
-    let utilisation = if at.demand > 0.0 { Some(desk.utilisation(check, demand, capacity)?) } else { None };
+    let utilisation = if at.demand > 0.0 {
+        Some(desk.utilisation(check, demand, capacity)?)
+    } else {
+        None
+    };
     let margin = match at.margin {
         Margin::High | Margin::FixedTermsExceed => None,
         Margin::Value(_) if strength.proportional => Some(desk.margin(check, demand, capacity)?),
@@ -124,7 +146,13 @@ pub fn work(
     if let (Some(margin), Margin::Value(wanted)) = (margin, at.margin) {
         desk.agree("MS", margin, wanted, 1.0 + wanted.abs())?;
     }
-    Ok(Worked { demand, capacity, utilisation, margin, steps: desk.steps })
+    Ok(Worked {
+        demand,
+        capacity,
+        utilisation,
+        margin,
+        steps: desk.steps,
+    })
 }
 
 /// Writes a limit of a sheet at a run into the ledger; `env` as for [`work`], without points.
@@ -140,7 +168,12 @@ pub fn work_limit(
     at: &LimitOutcome,
     prefix: &str,
 ) -> Result<WorkedLimit, WorkError> {
-    let site = Site { run: at.run, turn: at.part, plane: 0, assumed: false };
+    let site = Site {
+        run: at.run,
+        turn: at.part,
+        plane: 0,
+        assumed: false,
+    };
     let mut desk = Desk::new(ledger, env, ground, asked, site, None, prefix);
     let limit = &asked.sheet.limits[at.limit];
     let value = desk.name(&limit.value)?;
@@ -148,7 +181,11 @@ pub fn work_limit(
     desk.agree(&limit.value, value, at.value, at.value.abs())?;
     desk.agree(&limit.bound, bound, at.bound, at.bound.abs())?;
     desk.mark(bound);
-    Ok(WorkedLimit { value, bound, steps: desk.steps })
+    Ok(WorkedLimit {
+        value,
+        bound,
+        steps: desk.steps,
+    })
 }
 
 /// The sheet's names being bound, one by one as they are asked for.
@@ -177,9 +214,28 @@ impl<'a, 'g> Desk<'a, 'g> {
     ) -> Self {
         let sheet: &Sheet = &asked.sheet;
         let spec = &ground.joint.checks[asked.index];
-        let asking = Asking { joint: ground.joint, index: asked.index, spec, sheet };
-        let env = Env { tables: sheet.tables(ledger.units()), ..Env::default() };
-        Self { ledger, outer, ground, asking, sheet, site, point, prefix, env, steps: Vec::new() }
+        let asking = Asking {
+            joint: ground.joint,
+            index: asked.index,
+            spec,
+            sheet,
+        };
+        let env = Env {
+            tables: sheet.tables(ledger.units()),
+            ..Env::default()
+        };
+        Self {
+            ledger,
+            outer,
+            ground,
+            asking,
+            sheet,
+            site,
+            point,
+            prefix,
+            env,
+            steps: Vec::new(),
+        }
     }
 
     fn run(&self) -> &'a Run {
@@ -207,7 +263,9 @@ impl<'a, 'g> Desk<'a, 'g> {
         if let Some(need) = self.sheet.need(name) {
             return self.bind_need(need);
         }
-        let Some(step) = self.sheet.step(name) else { return Err(WorkError::Unbound(name.to_owned())) };
+        let Some(step) = self.sheet.step(name) else {
+            return Err(WorkError::Unbound(name.to_owned()));
+        };
         for used in step.node.names() {
             self.bind(used)?;
         }
@@ -227,7 +285,9 @@ impl<'a, 'g> Desk<'a, 'g> {
     fn bind_need(&mut self, need: &Need) -> Result<(), WorkError> {
         let value = match self.asking.resolve(need, self.run(), self.site.turn)? {
             Resolved::Word(word) => {
-                self.env.names.insert(need.name.value.clone(), Bound::Word(word));
+                self.env
+                    .names
+                    .insert(need.name.value.clone(), Bound::Word(word));
                 return Ok(());
             }
             Resolved::Point(field) => self.point_value(field)?,
@@ -265,14 +325,24 @@ impl<'a, 'g> Desk<'a, 'g> {
         if let Some(known) = self.ledger.find(&one.id) {
             return known;
         }
-        let value =
-            self.ledger.given(one.id.clone(), one.symbol.clone(), one.says.clone(), &one.given, one.origin.clone());
+        let value = self.ledger.given(
+            one.id.clone(),
+            one.symbol.clone(),
+            one.says.clone(),
+            &one.given,
+            one.origin.clone(),
+        );
         self.ledger.get_mut(value).mark.clone_from(&one.mark);
         self.steps.push(value);
         value
     }
 
-    fn extreme(&mut self, need: &Need, greatest: bool, of: &[Sourced; 2]) -> Result<Value, WorkError> {
+    fn extreme(
+        &mut self,
+        need: &Need,
+        greatest: bool,
+        of: &[Sourced; 2],
+    ) -> Result<Value, WorkError> {
         let mut env = Env::default();
         env.bind("attached", self.given(&of[0]));
         env.bind("base", self.given(&of[1]));
@@ -280,7 +350,11 @@ impl<'a, 'g> Desk<'a, 'g> {
             id: format!("{}.{}", self.prefix, need.name.value),
             symbol: need.symbol.clone(),
             says: need.says.clone(),
-            formula: if greatest { "max(attached, base)" } else { "min(attached, base)" },
+            formula: if greatest {
+                "max(attached, base)"
+            } else {
+                "min(attached, base)"
+            },
             origin: self.cited(),
             dim: need.kind.dim(),
         };
@@ -294,7 +368,9 @@ impl<'a, 'g> Desk<'a, 'g> {
         }
         let given = Given::stated(text, value, Dim::NONE);
         let says = "limit of the interaction".to_owned();
-        let value = self.ledger.given(id, Symbol::of("R", &[]), says, &given, self.cited());
+        let value = self
+            .ledger
+            .given(id, Symbol::of("R", &[]), says, &given, self.cited());
         self.steps.push(value);
         value
     }
@@ -319,10 +395,18 @@ impl<'a, 'g> Desk<'a, 'g> {
         };
         if let Some((case, s)) = self.point {
             let mut out = [0.0; 2];
-            fill(self.ground, &self.site, &[field, PointField::Resultant], (case, s, 1.0), &mut out);
+            fill(
+                self.ground,
+                &self.site,
+                &[field, PointField::Resultant],
+                (case, s, 1.0),
+                &mut out,
+            );
             let size = match field {
                 PointField::SinPhi => 1.0,
-                PointField::LineLoad | PointField::PlateLoad => out[0].abs().max(out[1] * self.run().throat),
+                PointField::LineLoad | PointField::PlateLoad => {
+                    out[0].abs().max(out[1] * self.run().throat)
+                }
                 _ => out[1],
             };
             let name = From::Point(field).bound_name().unwrap_or_default();
@@ -335,12 +419,21 @@ impl<'a, 'g> Desk<'a, 'g> {
     fn derived_point(&mut self, field: PointField) -> Result<Value, WorkError> {
         let missing = || Self::unbound(&From::Point(field));
         match field {
-            PointField::Along => self.outer(&From::Point(PointField::TauPar)).ok_or_else(missing),
-            PointField::TauPar => self.outer(&From::Point(PointField::Along)).ok_or_else(missing),
+            PointField::Along => self
+                .outer(&From::Point(PointField::TauPar))
+                .ok_or_else(missing),
+            PointField::TauPar => self
+                .outer(&From::Point(PointField::Along))
+                .ok_or_else(missing),
             PointField::LineLoad => self.line_load(),
             PointField::PlateLoad => {
-                let both = self.site.turn != Some(Turn::Base) && partner(self.ground.runs, self.site.run).is_some();
-                if both { Err(missing()) } else { self.point_value(PointField::LineLoad) }
+                let both = self.site.turn != Some(Turn::Base)
+                    && partner(self.ground.runs, self.site.run).is_some();
+                if both {
+                    Err(missing())
+                } else {
+                    self.point_value(PointField::LineLoad)
+                }
             }
             PointField::SinPhi => self.sin_phi(),
             PointField::Resultant
@@ -397,12 +490,18 @@ impl<'a, 'g> Desk<'a, 'g> {
             (_, SizeSpec::Fillet { leg, .. } | SizeSpec::Throat { leg: Some(leg), .. }) => {
                 Ok(self.told("leg", Symbol::of("h", &[]), "leg", leg))
             }
-            (RunField::LegBase, SizeSpec::Unequal { on_base, .. }) => {
-                Ok(self.told("leg-base", Symbol::of("h", &["b"]), "leg on the base part", on_base))
-            }
-            (RunField::LegAttached, SizeSpec::Unequal { on_attached, .. }) => {
-                Ok(self.told("leg-attached", Symbol::of("h", &["a"]), "leg on the attached part", on_attached))
-            }
+            (RunField::LegBase, SizeSpec::Unequal { on_base, .. }) => Ok(self.told(
+                "leg-base",
+                Symbol::of("h", &["b"]),
+                "leg on the base part",
+                on_base,
+            )),
+            (RunField::LegAttached, SizeSpec::Unequal { on_attached, .. }) => Ok(self.told(
+                "leg-attached",
+                Symbol::of("h", &["a"]),
+                "leg on the attached part",
+                on_attached,
+            )),
             (RunField::Leg, SizeSpec::Unequal { .. }) => {
                 let mut env = Env::default();
                 env.bind("base", self.run_value(RunField::LegBase)?);
@@ -419,7 +518,9 @@ impl<'a, 'g> Desk<'a, 'g> {
             }
             (
                 RunField::Leg | RunField::LegBase | RunField::LegAttached,
-                SizeSpec::Throat { leg: None, .. } | SizeSpec::Partial { .. } | SizeSpec::Complete { .. },
+                SizeSpec::Throat { leg: None, .. }
+                | SizeSpec::Partial { .. }
+                | SizeSpec::Complete { .. },
             ) => Err(Self::unbound(&From::Run(field))),
         }
     }
@@ -443,12 +544,18 @@ impl<'a, 'g> Desk<'a, 'g> {
         if let Some(told) = told {
             return self.told("angle", symbol, "angle between the faces", told);
         }
-        let square = Given { unit: Some("deg".into()), ..Given::stated("90", 90.0, Dim::ANGLE) };
+        let square = Given {
+            unit: Some("deg".into()),
+            ..Given::stated("90", 90.0, Dim::ANGLE)
+        };
         self.given(&Sourced {
             id: format!("run.{}.angle", self.run().spec + 1),
             symbol,
             says: "angle between the faces, where the file tells no other".to_owned(),
-            given: Given { value: std::f64::consts::FRAC_PI_2, ..square },
+            given: Given {
+                value: std::f64::consts::FRAC_PI_2,
+                ..square
+            },
             origin: Origin::Method("geometry".to_owned()),
             mark: None,
         })
@@ -465,10 +572,21 @@ impl<'a, 'g> Desk<'a, 'g> {
         let (gap, square) = match run.rule {
             ThroatRule::EqualLegs { gap, .. } | ThroatRule::UnequalLegs { gap, .. } => (gap, false),
             ThroatRule::SquareLegs { gap, .. } => (gap, true),
-            ThroatRule::Stated { .. } | ThroatRule::Partial { .. } | ThroatRule::Complete { .. } => (0.0, false),
+            ThroatRule::Stated { .. }
+            | ThroatRule::Partial { .. }
+            | ThroatRule::Complete { .. } => (0.0, false),
         };
         let spec = &self.ground.joint.weld.runs[run.spec];
-        debug_assert_eq!(square, matches!(&spec.size, SizeSpec::Fillet { measured: LegMeasure::SquareToFace, .. }));
+        debug_assert_eq!(
+            square,
+            matches!(
+                &spec.size,
+                SizeSpec::Fillet {
+                    measured: LegMeasure::SquareToFace,
+                    ..
+                }
+            )
+        );
         let gap = spec.gap.as_ref().filter(|_| gap > 0.0);
         let mut env = Env::default();
         env.bind("h", leg);
@@ -504,7 +622,11 @@ impl<'a, 'g> Desk<'a, 'g> {
         if (bound - computed).abs() <= AGREES * size {
             return Ok(());
         }
-        Err(WorkError::Disagrees { name: name.to_owned(), bound, computed })
+        Err(WorkError::Disagrees {
+            name: name.to_owned(),
+            bound,
+            computed,
+        })
     }
 
     /// Marks a value with what of the sheet is still to be verified.
@@ -514,7 +636,12 @@ impl<'a, 'g> Desk<'a, 'g> {
         }
     }
 
-    fn utilisation(&mut self, check: usize, demand: Value, capacity: Value) -> Result<Value, WorkError> {
+    fn utilisation(
+        &mut self,
+        check: usize,
+        demand: Value,
+        capacity: Value,
+    ) -> Result<Value, WorkError> {
         let mut env = Env::default();
         env.bind("D", demand);
         env.bind("R", capacity);
@@ -581,7 +708,10 @@ impl<'a, 'g> Desk<'a, 'g> {
         let mut env = self.env.clone();
         let bound: Vec<(String, Value)> = self.bound_point_needs();
         for (name, value) in bound {
-            let mut local = Env { names: at_limit.clone(), ..Env::default() };
+            let mut local = Env {
+                names: at_limit.clone(),
+                ..Env::default()
+            };
             local.bind("x", value);
             let (symbol, dim) = {
                 let entry = self.ledger.get(value);
@@ -601,7 +731,12 @@ impl<'a, 'g> Desk<'a, 'g> {
                 env.bind(&name, scaled);
             }
         }
-        let varying: Vec<String> = self.sheet.varying().into_iter().map(str::to_owned).collect();
+        let varying: Vec<String> = self
+            .sheet
+            .varying()
+            .into_iter()
+            .map(str::to_owned)
+            .collect();
         for step in &self.sheet.steps {
             let name = &step.name.value;
             if varying.contains(name) && env.names.contains_key(name) {
@@ -618,12 +753,20 @@ impl<'a, 'g> Desk<'a, 'g> {
             }
         }
         let strength = &self.sheet.checks[check];
-        let (demand, formula) = (strength.demand.as_str(), match &strength.capacity {
-            Capacity::Name(name) => format!("{}/{name}", strength.demand),
-            Capacity::Number(_, number) if (number - 1.0).abs() < 1e-15 => strength.demand.clone(),
-            Capacity::Number(text, _) => format!("{}/{text}", strength.demand),
-        });
-        debug_assert!(env.names.contains_key(demand), "the demand was bound before");
+        let (demand, formula) = (
+            strength.demand.as_str(),
+            match &strength.capacity {
+                Capacity::Name(name) => format!("{}/{name}", strength.demand),
+                Capacity::Number(_, number) if (number - 1.0).abs() < 1e-15 => {
+                    strength.demand.clone()
+                }
+                Capacity::Number(text, _) => format!("{}/{text}", strength.demand),
+            },
+        );
+        debug_assert!(
+            env.names.contains_key(demand),
+            "the demand was bound before"
+        );
         let draft = Draft {
             id: format!("{id}.ratio"),
             symbol: Symbol::of("U", &["lambda"]),
@@ -637,7 +780,12 @@ impl<'a, 'g> Desk<'a, 'g> {
 
     /// The needs of the point that are bound, with their values.
     fn bound_point_needs(&self) -> Vec<(String, Value)> {
-        let names = self.sheet.needs.iter().filter(|need| need.is_at_point()).map(|need| &need.name.value);
+        let names = self
+            .sheet
+            .needs
+            .iter()
+            .filter(|need| need.is_at_point())
+            .map(|need| &need.name.value);
         names
             .filter_map(|name| match self.env.names.get(name)? {
                 Bound::Value(value) => Some((name.clone(), *value)),

@@ -11,18 +11,37 @@ pub fn scene(sketch: &Sketch) -> Scene {
         runs: sketch
             .runs
             .iter()
-            .map(|run| RunLine { path: run.path.clone(), throat: run.throat, label: run.text.clone() })
+            .map(|run| RunLine {
+                path: run.path.clone(),
+                throat: run.throat,
+                label: run.text.clone(),
+            })
             .collect(),
-        points: sketch.points.iter().map(|(at, label)| CheckPoint { at: *at, label: label.clone() }).collect(),
+        points: sketch
+            .points
+            .iter()
+            .map(|(at, label)| CheckPoint {
+                at: *at,
+                label: label.clone(),
+            })
+            .collect(),
         origin: Some(V3::zeros()),
         axes: sketch.axes.clone(),
         centroid: Some(sketch.centroid),
         loads: sketch.load.iter().map(load).collect(),
-        governing: sketch.governing.as_ref().map(|(at, label)| Governing { at: *at, label: label.clone() }),
+        governing: sketch.governing.as_ref().map(|(at, label)| Governing {
+            at: *at,
+            label: label.clone(),
+        }),
         dimensions: sketch
             .dimensions
             .iter()
-            .map(|(from, to, axis, text)| Dimension { from: *from, to: *to, axis: Axis::ALL[*axis], text: text.clone() })
+            .map(|(from, to, axis, text)| Dimension {
+                from: *from,
+                to: *to,
+                axis: Axis::ALL[*axis],
+                text: text.clone(),
+            })
             .collect(),
         outlines: Vec::new(),
         units: sketch.units.to_owned(),
@@ -36,7 +55,11 @@ fn load(load: &SketchLoad) -> Load {
             .into_iter()
             .map(|axis| {
                 let (value, text) = &values[axis.index()];
-                Component { axis, value: *value, text: text.clone() }
+                Component {
+                    axis,
+                    value: *value,
+                    text: text.clone(),
+                }
             })
             .collect()
     };

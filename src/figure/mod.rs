@@ -22,8 +22,8 @@ mod view;
 
 pub use canvas::firm_strokes;
 pub use compose::{Room, draw, draw_in};
-pub use from_note::scene;
 pub use drawing::{Drawing, Fill, Ink, Item, Label, P2, Path, Piece, Span, Stroke, Style};
+pub use from_note::scene;
 pub use rect::{Bounds, Rect};
 pub use scene::{Axis, CheckPoint, Component, Dimension, Governing, Load, RunLine, Scene};
 pub use source::{standalone_source, typst_source};

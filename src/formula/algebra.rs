@@ -20,7 +20,11 @@ impl Ledger {
     #[must_use]
     pub fn numbers_algebra(&self, value: Value) -> Option<String> {
         let text = self.algebra(value, true)?;
-        Some(if self.get(value).dim == Dim::ANGLE { format!("({text}*180/pi)") } else { text })
+        Some(if self.get(value).dim == Dim::ANGLE {
+            format!("({text}*180/pi)")
+        } else {
+            text
+        })
     }
 
     fn algebra(&self, value: Value, numbers: bool) -> Option<String> {
@@ -30,8 +34,20 @@ impl Ledger {
             LineKind::Converted { node, .. } => (node, "", &empty),
             LineKind::Given(_) | LineKind::Found { .. } | LineKind::Bound { .. } => return None,
         };
-        let look = EntryLook { ledger: self, env, printed: false, shift: None };
-        Some(Writer { look, text, numbers }.write(node, None))
+        let look = EntryLook {
+            ledger: self,
+            env,
+            printed: false,
+            shift: None,
+        };
+        Some(
+            Writer {
+                look,
+                text,
+                numbers,
+            }
+            .write(node, None),
+        )
     }
 }
 
@@ -45,7 +61,11 @@ impl Writer<'_> {
     fn write(&self, node: &Node, member: Option<(&str, usize)>) -> String {
         match &node.kind {
             Kind::Number(number) => Printed::typed(&number.text, number.value).algebra(),
-            Kind::Constant { number, unit_text, unit } => {
+            Kind::Constant {
+                number,
+                unit_text,
+                unit,
+            } => {
                 if !self.numbers {
                     return format!("({} {unit_text})", number.text);
                 }
@@ -63,10 +83,19 @@ impl Writer<'_> {
             Kind::Name(name) => self.name(name, member),
             Kind::Negative(inner) => format!("(-{})", self.write(inner, member)),
             Kind::Binary { op, left, right } => {
-                format!("({}{}{})", self.write(left, member), op.text(), self.write(right, member))
+                format!(
+                    "({}{}{})",
+                    self.write(left, member),
+                    op.text(),
+                    self.write(right, member)
+                )
             }
-            Kind::Call { function, argument } => format!("{}({})", function.text(), self.write(argument, member)),
-            Kind::Atan2 { y, x } => format!("atan2({},{})", self.write(y, member), self.write(x, member)),
+            Kind::Call { function, argument } => {
+                format!("{}({})", function.text(), self.write(argument, member))
+            }
+            Kind::Atan2 { y, x } => {
+                format!("atan2({},{})", self.write(y, member), self.write(x, member))
+            }
             Kind::Extreme { greatest, operands } => {
                 let name = if *greatest { "max" } else { "min" };
                 let mut operands = operands.iter().map(|operand| self.write(operand, member));
@@ -78,7 +107,9 @@ impl Writer<'_> {
                 if !self.numbers {
                     return format!("lookup({table},{})", self.write(key, member));
                 }
-                let Some(table) = super::Look::table(&self.look, table) else { return String::new() };
+                let Some(table) = super::Look::table(&self.look, table) else {
+                    return String::new();
+                };
                 let value = || evaluate(key, self.text, &self.look);
                 match lookup_row(table, key, &self.look, value, self.text) {
                     Ok(row) => Printed::of(table.rows[row].value.value, 6, 9, 0.0).algebra(),
@@ -111,15 +142,23 @@ impl Writer<'_> {
             None => true,
             Some(condition) => {
                 let side = |node: &Node| evaluate(node, self.text, &self.look).unwrap_or(f64::NAN);
-                condition.relation.holds(side(&condition.left), side(&condition.right))
+                condition
+                    .relation
+                    .holds(side(&condition.left), side(&condition.right))
             }
         };
-        branches.iter().find(holds).map(|branch| self.write(&branch.value, member)).unwrap_or_default()
+        branches
+            .iter()
+            .find(holds)
+            .map(|branch| self.write(&branch.value, member))
+            .unwrap_or_default()
     }
 
     fn name(&self, name: &str, member: Option<(&str, usize)>) -> String {
         let Some(value) = self.look.resolve(name, member) else {
-            return super::Look::word(&self.look, name).unwrap_or(name).to_owned();
+            return super::Look::word(&self.look, name)
+                .unwrap_or(name)
+                .to_owned();
         };
         let entry = self.look.ledger.get(value);
         if !self.numbers {
@@ -127,7 +166,10 @@ impl Writer<'_> {
         }
         let printed = self.look.ledger.printed(value);
         let text = printed.algebra();
-        match (entry.dim == Dim::ANGLE, printed.negative || printed.exponent.is_some()) {
+        match (
+            entry.dim == Dim::ANGLE,
+            printed.negative || printed.exponent.is_some(),
+        ) {
             (true, _) => format!("({text}*pi/180)"),
             (false, true) => format!("({text})"),
             (false, false) => text,
@@ -136,7 +178,13 @@ impl Writer<'_> {
 
     fn sum(&self, set: &str, term: &Node) -> String {
         let count = super::Look::members(&self.look, set).unwrap_or(0);
-        let terms: Vec<String> = (0..count).map(|index| self.write(term, Some((set, index)))).collect();
-        if terms.is_empty() { "0".to_owned() } else { format!("({})", terms.join("+")) }
+        let terms: Vec<String> = (0..count)
+            .map(|index| self.write(term, Some((set, index))))
+            .collect();
+        if terms.is_empty() {
+            "0".to_owned()
+        } else {
+            format!("({})", terms.join("+"))
+        }
     }
 }

@@ -41,7 +41,10 @@ enum Step {
     /// Look the top up in a table of ranges.
     Lookup(Box<Table>),
     /// From the top: alternatives as condition left, right, value; last may be bare.
-    Choose { relations: Vec<Relation>, otherwise: bool },
+    Choose {
+        relations: Vec<Relation>,
+        otherwise: bool,
+    },
 }
 
 impl Program {
@@ -50,9 +53,24 @@ impl Program {
     /// # Errors
     ///
     /// [`FormulaError`] as [`evaluate`], for the parts that do not vary.
-    pub fn compile(node: &Node, text: &str, varying: &[&str], look: &dyn Look) -> Result<Self, FormulaError> {
-        let mut program = Self { ops: Vec::new(), depth: 0 };
-        Compiler { text, varying, look, program: &mut program, height: 0 }.push(node)?;
+    pub fn compile(
+        node: &Node,
+        text: &str,
+        varying: &[&str],
+        look: &dyn Look,
+    ) -> Result<Self, FormulaError> {
+        let mut program = Self {
+            ops: Vec::new(),
+            depth: 0,
+        };
+        Compiler {
+            text,
+            varying,
+            look,
+            program: &mut program,
+            height: 0,
+        }
+        .push(node)?;
         Ok(program)
     }
 
@@ -91,7 +109,9 @@ impl Program {
                 }
                 Step::Negate => stack[top - 1][..size].iter_mut().for_each(|x| *x = -*x),
                 Step::Call(function) => {
-                    stack[top - 1][..size].iter_mut().for_each(|x| *x = call(*function, *x));
+                    stack[top - 1][..size]
+                        .iter_mut()
+                        .for_each(|x| *x = call(*function, *x));
                 }
                 Step::Apply(op) => {
                     combine(stack, top, size, |a, b| apply(*op, a, b));
@@ -103,15 +123,21 @@ impl Program {
                 }
                 Step::Extreme { greatest, count } => {
                     for point in 0..size {
-                        let values: Vec<f64> = (top - count..top).map(|row| stack[row][point]).collect();
+                        let values: Vec<f64> =
+                            (top - count..top).map(|row| stack[row][point]).collect();
                         stack[top - count][point] = values[governs(*greatest, &values)];
                     }
                     top -= count - 1;
                 }
                 Step::Lookup(table) => stack[top - 1][..size].iter_mut().for_each(|x| {
-                    *x = table.row_of_quantity(*x).map_or(f64::NAN, |row| table.rows[row].value.value);
+                    *x = table
+                        .row_of_quantity(*x)
+                        .map_or(f64::NAN, |row| table.rows[row].value.value);
                 }),
-                Step::Choose { relations, otherwise } => {
+                Step::Choose {
+                    relations,
+                    otherwise,
+                } => {
                     let used = relations.len() * 3 + usize::from(*otherwise);
                     let base = top - used;
                     for point in 0..size {
@@ -170,7 +196,11 @@ impl Compiler<'_> {
                 });
             }
             Kind::Name(name) => {
-                let input = self.varying.iter().position(|known| known == name).expect("the name varies");
+                let input = self
+                    .varying
+                    .iter()
+                    .position(|known| known == name)
+                    .expect("the name varies");
                 self.emit(Step::Load(input), 0);
             }
             Kind::Negative(inner) => {
@@ -195,12 +225,23 @@ impl Compiler<'_> {
                 for operand in operands {
                     self.push(operand)?;
                 }
-                self.emit(Step::Extreme { greatest: *greatest, count: operands.len() }, operands.len());
+                self.emit(
+                    Step::Extreme {
+                        greatest: *greatest,
+                        count: operands.len(),
+                    },
+                    operands.len(),
+                );
             }
             Kind::Lookup { table, key } => {
                 self.push(key)?;
-                let table = self.look.table(table).filter(|table| matches!(table.key, Key::Quantity(_)));
-                let table = table.expect("the dimension check has found the table").clone();
+                let table = self
+                    .look
+                    .table(table)
+                    .filter(|table| matches!(table.key, Key::Quantity(_)));
+                let table = table
+                    .expect("the dimension check has found the table")
+                    .clone();
                 self.emit(Step::Lookup(Box::new(table)), 1);
             }
             Kind::When(branches) => {
@@ -216,8 +257,16 @@ impl Compiler<'_> {
                     self.push(&branch.value)?;
                     takes += 1;
                 }
-                let otherwise = branches.last().is_some_and(|branch| branch.condition.is_none());
-                self.emit(Step::Choose { relations, otherwise }, takes);
+                let otherwise = branches
+                    .last()
+                    .is_some_and(|branch| branch.condition.is_none());
+                self.emit(
+                    Step::Choose {
+                        relations,
+                        otherwise,
+                    },
+                    takes,
+                );
             }
         }
         Ok(())

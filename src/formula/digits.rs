@@ -32,7 +32,11 @@ impl Printed {
     #[must_use]
     pub fn of(value: f64, digits: usize, exact: usize, floor: f64) -> Self {
         if value.abs() <= floor {
-            return Self { negative: false, mantissa: "0".to_owned(), exponent: None };
+            return Self {
+                negative: false,
+                mantissa: "0".to_owned(),
+                exponent: None,
+            };
         }
         let size = value.abs();
         let (figures, power) = (1..=digits.max(exact))
@@ -43,10 +47,22 @@ impl Printed {
         let count = i32::try_from(figures.len()).unwrap_or(i32::MAX);
         let negative = value < 0.0;
         if (SMALL..LARGE).contains(&power) && (is_exact || count > power) {
-            return Self { negative, mantissa: fixed(&figures, power), exponent: None };
+            return Self {
+                negative,
+                mantissa: fixed(&figures, power),
+                exponent: None,
+            };
         }
-        let mantissa = if count > 1 { format!("{}.{}", &figures[..1], &figures[1..]) } else { figures };
-        Self { negative, mantissa, exponent: Some(power) }
+        let mantissa = if count > 1 {
+            format!("{}.{}", &figures[..1], &figures[1..])
+        } else {
+            figures
+        };
+        Self {
+            negative,
+            mantissa,
+            exponent: Some(power),
+        }
     }
 
     /// A decimal as a user typed it; `value` is its value, used where the text has an exponent.
@@ -61,7 +77,11 @@ impl Printed {
         if mantissa.starts_with('.') {
             mantissa.insert(0, '0');
         }
-        Self { negative: plain.starts_with('-') && value != 0.0, mantissa, exponent: None }
+        Self {
+            negative: plain.starts_with('-') && value != 0.0,
+            mantissa,
+            exponent: None,
+        }
     }
 
     /// `value` with `decimals` digits after the point, rounded down (toward −∞) or up (toward +∞).
@@ -78,7 +98,11 @@ impl Printed {
             (false, false) => scaled.floor(),
         };
         let places = usize::try_from(decimals).unwrap_or(0);
-        Self { negative: whole < 0.0, mantissa: format!("{:.places$}", (whole / scale).abs()), exponent: None }
+        Self {
+            negative: whole < 0.0,
+            mantissa: format!("{:.places$}", (whole / scale).abs()),
+            exponent: None,
+        }
     }
 
     /// The number that the printed text stands for.
@@ -92,7 +116,10 @@ impl Printed {
     /// One unit in the last printed digit.
     #[must_use]
     pub fn unit_in_last(&self) -> f64 {
-        let decimals = self.mantissa.split_once('.').map_or(0, |(_, decimals)| decimals.len());
+        let decimals = self
+            .mantissa
+            .split_once('.')
+            .map_or(0, |(_, decimals)| decimals.len());
         let decimals = i32::try_from(decimals).unwrap_or(i32::MAX);
         real::ten_to(self.exponent.unwrap_or(0) - decimals)
     }
@@ -127,7 +154,11 @@ impl Printed {
     /// Running text that always shows a sign: `+0.14`.
     #[must_use]
     pub fn signed_text(&self) -> String {
-        if self.negative { self.text() } else { format!("+{}", self.text()) }
+        if self.negative {
+            self.text()
+        } else {
+            format!("+{}", self.text())
+        }
     }
 }
 
@@ -135,12 +166,17 @@ impl Printed {
 fn decompose(size: f64, count: usize) -> (String, i32) {
     let text = format!("{size:.*e}", count - 1);
     let (mantissa, power) = text.split_once('e').expect("the e format has an exponent");
-    (mantissa.replace('.', ""), power.parse().expect("an exponent is a whole number"))
+    (
+        mantissa.replace('.', ""),
+        power.parse().expect("an exponent is a whole number"),
+    )
 }
 
 /// The value of digits times a power of ten.
 fn compose(figures: &str, power: i32) -> f64 {
-    format!("{}.{}e{power}", &figures[..1], &figures[1..]).parse().expect("digits make a decimal")
+    format!("{}.{}e{power}", &figures[..1], &figures[1..])
+        .parse()
+        .expect("digits make a decimal")
 }
 
 /// Digits in fixed notation, zeros filled in.
@@ -164,7 +200,12 @@ fn superscript(number: i32) -> String {
     number
         .to_string()
         .chars()
-        .map(|c| c.to_digit(10).and_then(|digit| RAISED.get(digit as usize)).copied().unwrap_or('⁻'))
+        .map(|c| {
+            c.to_digit(10)
+                .and_then(|digit| RAISED.get(digit as usize))
+                .copied()
+                .unwrap_or('⁻')
+        })
         .collect()
 }
 
@@ -191,17 +232,41 @@ mod tests {
             (9_999.96,     4,      4,     "1.000*10^4"),
         ];
         for (value, digits, exact, printed) in rows {
-            assert_eq!(Printed::of(value, digits, exact, 1e-12).algebra(), printed, "{value}");
+            assert_eq!(
+                Printed::of(value, digits, exact, 1e-12).algebra(),
+                printed,
+                "{value}"
+            );
         }
-        assert_eq!(Printed::of(1e-15, 4, 4, 1e-12).algebra(), "0", "under the floor");
+        assert_eq!(
+            Printed::of(1e-15, 4, 4, 1e-12).algebra(),
+            "0",
+            "under the floor"
+        );
     }
 
     #[test]
     fn margins_round_down_and_utilisations_up() {
-        assert_eq!(Printed::rounded(0.148_9, 2, false).signed_text(), "+0.14", "a margin");
-        assert_eq!(Printed::rounded(-0.001, 2, false).signed_text(), "−0.01", "a negative margin");
-        assert_eq!(Printed::rounded(0.871_01, 3, true).text(), "0.872", "a utilisation");
-        assert_eq!(Printed::rounded(0.5, 2, false).signed_text(), "+0.50", "on the grid");
+        assert_eq!(
+            Printed::rounded(0.148_9, 2, false).signed_text(),
+            "+0.14",
+            "a margin"
+        );
+        assert_eq!(
+            Printed::rounded(-0.001, 2, false).signed_text(),
+            "−0.01",
+            "a negative margin"
+        );
+        assert_eq!(
+            Printed::rounded(0.871_01, 3, true).text(),
+            "0.872",
+            "a utilisation"
+        );
+        assert_eq!(
+            Printed::rounded(0.5, 2, false).signed_text(),
+            "+0.50",
+            "on the grid"
+        );
     }
 
     #[test]
@@ -210,6 +275,10 @@ mod tests {
             let value = text.parse().unwrap();
             assert_eq!(Printed::typed(text, value).algebra(), text, "as typed");
         }
-        assert_eq!(Printed::typed("1.5e3", 1500.0).algebra(), "1500", "an exponent is written out");
+        assert_eq!(
+            Printed::typed("1.5e3", 1500.0).algebra(),
+            "1500",
+            "an exponent is written out"
+        );
     }
 }

@@ -22,7 +22,11 @@ struct Checker<'a> {
 
 impl Checker<'_> {
     fn fault(&self, node: &Node, problem: Problem) -> FormulaError {
-        FormulaError { text: self.text.to_owned(), span: node.span.clone(), problem }
+        FormulaError {
+            text: self.text.to_owned(),
+            span: node.span.clone(),
+            problem,
+        }
     }
 
     fn need(&self, node: &Node, set: Option<&str>, wanted: Dim) -> Result<Dim, FormulaError> {
@@ -30,29 +34,51 @@ impl Checker<'_> {
         if found == wanted {
             return Ok(found);
         }
-        Err(self.fault(node, Problem::Kind { found: found.word(), wanted: wanted.word() }))
+        Err(self.fault(
+            node,
+            Problem::Kind {
+                found: found.word(),
+                wanted: wanted.word(),
+            },
+        ))
     }
 
-    fn same(&self, node: &Node, left: Dim, right: Dim, verb: &'static str) -> Result<Dim, FormulaError> {
+    fn same(
+        &self,
+        node: &Node,
+        left: Dim,
+        right: Dim,
+        verb: &'static str,
+    ) -> Result<Dim, FormulaError> {
         if left == right {
             return Ok(left);
         }
-        Err(self.fault(node, Problem::Mismatch { left: left.word(), right: right.word(), verb }))
+        Err(self.fault(
+            node,
+            Problem::Mismatch {
+                left: left.word(),
+                right: right.word(),
+                verb,
+            },
+        ))
     }
 
     fn dim(&self, node: &Node, set: Option<&str>) -> Result<Dim, FormulaError> {
         match &node.kind {
             Kind::Number(_) | Kind::Pi => Ok(Dim::NONE),
             Kind::Constant { unit, .. } => Ok(unit.dim),
-            Kind::Name(name) => {
-                self.look.dim(name, set).ok_or_else(|| self.fault(node, unknown(name, self.look)))
-            }
+            Kind::Name(name) => self
+                .look
+                .dim(name, set)
+                .ok_or_else(|| self.fault(node, unknown(name, self.look))),
             Kind::Negative(inner) => self.dim(inner, set),
             Kind::Binary { op, left, right } => self.binary(node, *op, left, right, set),
             Kind::Call { function, argument } => match function {
                 Function::Sqrt => {
                     let inner = self.dim(argument, set)?;
-                    inner.power(0.5).ok_or_else(|| self.fault(node, Problem::Exponent))
+                    inner
+                        .power(0.5)
+                        .ok_or_else(|| self.fault(node, Problem::Exponent))
                 }
                 Function::Sin | Function::Cos | Function::Tan => {
                     self.need(argument, set, Dim::ANGLE).map(|_| Dim::NONE)
@@ -72,16 +98,27 @@ impl Checker<'_> {
                 Ok(first)
             }
             Kind::Sum { set, term } => {
-                self.look.members(set).ok_or_else(|| self.fault(node, unknown(set, self.look)))?;
+                self.look
+                    .members(set)
+                    .ok_or_else(|| self.fault(node, unknown(set, self.look)))?;
                 self.dim(term, Some(set))
             }
             Kind::Lookup { table, key } => {
-                let table = self.look.table(table).ok_or_else(|| self.fault(node, unknown(table, self.look)))?;
+                let table = self
+                    .look
+                    .table(table)
+                    .ok_or_else(|| self.fault(node, unknown(table, self.look)))?;
                 match (table.key, &key.kind) {
                     (Key::Word, Kind::Name(name)) if self.look.word(name).is_some() => {}
                     (Key::Word, _) => {
                         let found = "another value".to_owned();
-                        return Err(self.fault(key, Problem::Kind { found, wanted: "a word".to_owned() }));
+                        return Err(self.fault(
+                            key,
+                            Problem::Kind {
+                                found,
+                                wanted: "a word".to_owned(),
+                            },
+                        ));
                     }
                     (Key::Quantity(dim), _) => {
                         self.need(key, set, dim)?;
@@ -105,11 +142,22 @@ impl Checker<'_> {
         }
     }
 
-    fn binary(&self, node: &Node, op: Op, left: &Node, right: &Node, set: Option<&str>) -> Result<Dim, FormulaError> {
+    fn binary(
+        &self,
+        node: &Node,
+        op: Op,
+        left: &Node,
+        right: &Node,
+        set: Option<&str>,
+    ) -> Result<Dim, FormulaError> {
         let base = self.dim(left, set)?;
         match op {
-            Op::Add => self.dim(right, set).and_then(|other| self.same(node, base, other, "added")),
-            Op::Sub => self.dim(right, set).and_then(|other| self.same(node, base, other, "subtracted")),
+            Op::Add => self
+                .dim(right, set)
+                .and_then(|other| self.same(node, base, other, "added")),
+            Op::Sub => self
+                .dim(right, set)
+                .and_then(|other| self.same(node, base, other, "subtracted")),
             Op::Mul => Ok(base.times(self.dim(right, set)?)),
             Op::Div => Ok(base.over(self.dim(right, set)?)),
             Op::Pow => {
@@ -130,7 +178,11 @@ fn constant(node: &Node) -> Option<f64> {
     match &node.kind {
         Kind::Number(number) => Some(number.value),
         Kind::Negative(inner) => constant(inner).map(|value| -value),
-        Kind::Binary { op: Op::Div, left, right } => Some(constant(left)? / constant(right)?),
+        Kind::Binary {
+            op: Op::Div,
+            left,
+            right,
+        } => Some(constant(left)? / constant(right)?),
         Kind::Binary { .. }
         | Kind::Constant { .. }
         | Kind::Pi

@@ -45,7 +45,10 @@ pub(super) fn lookup_row(
 ) -> Result<usize, FormulaError> {
     let row = match (&key.kind, table.key) {
         (Kind::Name(name), Key::Word) => {
-            let word = look.word(name).ok_or_else(|| unknown(name, look)).map_err(|p| at_place(p, text, key.span.clone()))?;
+            let word = look
+                .word(name)
+                .ok_or_else(|| unknown(name, look))
+                .map_err(|p| at_place(p, text, key.span.clone()))?;
             table.row_of_word(word)
         }
         _ => table.row_of_quantity(value()?),
@@ -62,7 +65,10 @@ pub(super) fn unknown(name: &str, look: &dyn Look) -> Problem {
         .filter(|(likeness, _)| *likeness > 0.8)
         .max_by(|a, b| a.0.total_cmp(&b.0))
         .map(|(_, known)| known.to_owned());
-    Problem::UnknownName { name: name.to_owned(), nearest }
+    Problem::UnknownName {
+        name: name.to_owned(),
+        nearest,
+    }
 }
 
 /// The value of a binary operation.
@@ -91,7 +97,11 @@ pub(super) fn call(function: Function, argument: f64) -> f64 {
 pub(super) fn governs(greatest: bool, values: &[f64]) -> usize {
     let mut best = 0;
     for (at, value) in values.iter().enumerate() {
-        let better = if greatest { *value > values[best] } else { *value < values[best] };
+        let better = if greatest {
+            *value > values[best]
+        } else {
+            *value < values[best]
+        };
         if better {
             best = at;
         }
@@ -117,18 +127,28 @@ impl Evaluator<'_> {
                 }
             }
             Kind::Pi => std::f64::consts::PI,
-            Kind::Name(name) => self.look.value(name, member).ok_or_else(|| fault(unknown(name, self.look)))?,
+            Kind::Name(name) => self
+                .look
+                .value(name, member)
+                .ok_or_else(|| fault(unknown(name, self.look)))?,
             Kind::Negative(inner) => -self.value(inner, member)?,
-            Kind::Binary { op, left, right } => apply(*op, self.value(left, member)?, self.value(right, member)?),
+            Kind::Binary { op, left, right } => {
+                apply(*op, self.value(left, member)?, self.value(right, member)?)
+            }
             Kind::Call { function, argument } => call(*function, self.value(argument, member)?),
             Kind::Atan2 { y, x } => real::atan2(self.value(y, member)?, self.value(x, member)?),
             Kind::Extreme { greatest, operands } => {
-                let values: Vec<f64> =
-                    operands.iter().map(|operand| self.value(operand, member)).collect::<Result<_, _>>()?;
+                let values: Vec<f64> = operands
+                    .iter()
+                    .map(|operand| self.value(operand, member))
+                    .collect::<Result<_, _>>()?;
                 values[governs(*greatest, &values)]
             }
             Kind::Sum { set, term } => {
-                let count = self.look.members(set).ok_or_else(|| fault(unknown(set, self.look)))?;
+                let count = self
+                    .look
+                    .members(set)
+                    .ok_or_else(|| fault(unknown(set, self.look)))?;
                 let mut total = 0.0;
                 for index in 0..count {
                     total += self.value(term, Some((set, index)))?;
@@ -136,7 +156,10 @@ impl Evaluator<'_> {
                 total
             }
             Kind::Lookup { table, key } => {
-                let table = self.look.table(table).ok_or_else(|| fault(unknown(table, self.look)))?;
+                let table = self
+                    .look
+                    .table(table)
+                    .ok_or_else(|| fault(unknown(table, self.look)))?;
                 let row = lookup_row(table, key, self.look, || self.value(key, member), self.text)?;
                 table.rows[row].value.value
             }
@@ -144,9 +167,10 @@ impl Evaluator<'_> {
                 for branch in branches {
                     let holds = match &branch.condition {
                         None => true,
-                        Some(condition) => condition
-                            .relation
-                            .holds(self.value(&condition.left, member)?, self.value(&condition.right, member)?),
+                        Some(condition) => condition.relation.holds(
+                            self.value(&condition.left, member)?,
+                            self.value(&condition.right, member)?,
+                        ),
                     };
                     if holds {
                         return self.value(&branch.value, member);
@@ -155,6 +179,10 @@ impl Evaluator<'_> {
                 return Err(fault(Problem::NoBranch));
             }
         };
-        if value.is_finite() { Ok(value) } else { Err(fault(Problem::NotFinite)) }
+        if value.is_finite() {
+            Ok(value)
+        } else {
+            Err(fault(Problem::NotFinite))
+        }
     }
 }

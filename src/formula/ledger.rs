@@ -195,7 +195,11 @@ impl Ledger {
     /// which values print 0.
     #[must_use]
     pub fn new(units: UnitSet, force: f64, length: f64) -> Self {
-        Self { units, scales: (force, length), entries: Vec::new() }
+        Self {
+            units,
+            scales: (force, length),
+            entries: Vec::new(),
+        }
     }
 
     /// The printing set.
@@ -223,7 +227,10 @@ impl Ledger {
     /// The value with an id.
     #[must_use]
     pub fn find(&self, id: &str) -> Option<Value> {
-        self.entries.iter().position(|entry| entry.id == id).map(Value)
+        self.entries
+            .iter()
+            .position(|entry| entry.id == id)
+            .map(Value)
     }
 
     /// The absolute floor of a dimension, under which a value prints 0.
@@ -239,10 +246,20 @@ impl Ledger {
     }
 
     /// Adds an input; another unit than the printing set's makes a conversion line.
-    pub fn given(&mut self, id: String, symbol: Symbol, says: String, given: &Given, origin: Origin) -> Value {
+    pub fn given(
+        &mut self,
+        id: String,
+        symbol: Symbol,
+        says: String,
+        given: &Given,
+        origin: Origin,
+    ) -> Value {
         let kind = if given.is_converted() {
             let node = parse(&conversion_text(given)).expect("a conversion is plain arithmetic");
-            Kind::Converted { given: given.clone(), node }
+            Kind::Converted {
+                given: given.clone(),
+                node,
+            }
         } else {
             Kind::Given(given.clone())
         };
@@ -269,13 +286,25 @@ impl Ledger {
     /// [`FormulaError`] with the formula's text and place.
     pub fn step(&mut self, draft: Draft<'_>, env: &Env) -> Result<Value, FormulaError> {
         let node = parse(draft.formula)?;
-        let look = EntryLook { ledger: self, env, printed: false, shift: None };
+        let look = EntryLook {
+            ledger: self,
+            env,
+            printed: false,
+            shift: None,
+        };
         let dim = dimension(&node, draft.formula, &look)?;
         if let Some(wanted) = draft.dim
             && wanted != dim
         {
-            let problem = Problem::Declared { found: dim.word(), wanted: wanted.word() };
-            return Err(FormulaError { text: draft.formula.to_owned(), span: 0..draft.formula.len(), problem });
+            let problem = Problem::Declared {
+                found: dim.word(),
+                wanted: wanted.word(),
+            };
+            return Err(FormulaError {
+                text: draft.formula.to_owned(),
+                span: 0..draft.formula.len(),
+                problem,
+            });
         }
         let value = evaluate(&node, draft.formula, &look)?;
         let env = env.used_by(&node);
@@ -284,7 +313,11 @@ impl Ledger {
             id: draft.id,
             symbol: draft.symbol,
             says: draft.says,
-            kind: Kind::Step { node, text: draft.formula.to_owned(), env },
+            kind: Kind::Step {
+                node,
+                text: draft.formula.to_owned(),
+                env,
+            },
             value,
             dim,
             origin: draft.origin,
@@ -302,7 +335,9 @@ impl Ledger {
             id: draft.id,
             symbol: draft.symbol,
             says: draft.says,
-            kind: Kind::Found { method: draft.formula.to_owned() },
+            kind: Kind::Found {
+                method: draft.formula.to_owned(),
+            },
             value,
             dim,
             origin: draft.origin,
@@ -335,7 +370,11 @@ impl Ledger {
     #[must_use]
     pub fn printed(&self, value: Value) -> Printed {
         let entry = self.get(value);
-        let shown = if entry.dim == Dim::ANGLE { entry.value.to_degrees() } else { entry.value };
+        let shown = if entry.dim == Dim::ANGLE {
+            entry.value.to_degrees()
+        } else {
+            entry.value
+        };
         match &entry.kind {
             Kind::Given(given) => {
                 let typed_degrees = given.unit.as_deref().is_none_or(|unit| unit != "rad");
@@ -357,13 +396,19 @@ impl Ledger {
     #[must_use]
     pub fn printed_value(&self, value: Value) -> f64 {
         let printed = self.printed(value).value();
-        if self.get(value).dim == Dim::ANGLE { printed.to_radians() } else { printed }
+        if self.get(value).dim == Dim::ANGLE {
+            printed.to_radians()
+        } else {
+            printed
+        }
     }
 
     /// The values that a line's numbers come from, in the order of its formula, each once.
     #[must_use]
     pub fn uses(&self, value: Value) -> Vec<Value> {
-        let Kind::Step { node, env, .. } = &self.get(value).kind else { return Vec::new() };
+        let Kind::Step { node, env, .. } = &self.get(value).kind else {
+            return Vec::new();
+        };
         let mut uses = Vec::new();
         let mut add = |used: Value| {
             if !uses.contains(&used) {
@@ -378,7 +423,10 @@ impl Ledger {
                     add(*used);
                 }
                 for set in &in_sum {
-                    set.members.iter().filter_map(|member| member.get(name)).for_each(|used| add(*used));
+                    set.members
+                        .iter()
+                        .filter_map(|member| member.get(name))
+                        .for_each(|used| add(*used));
                 }
             }
             _ => {}
@@ -411,11 +459,23 @@ fn conversion_text(given: &Given) -> String {
         }
         _ => Printed::typed(&given.number, given.typed).algebra(),
     };
-    let number = if given.number.contains('/') && !number.contains('(') { given.number.clone() } else { number };
+    let number = if given.number.contains('/') && !number.contains('(') {
+        given.number.clone()
+    } else {
+        number
+    };
     let mut text = number;
     for factor in &given.conversion.factors {
-        let sign = if factor.power < 0 && factor.number != 10.0 { "/" } else { "*" };
-        let power = if factor.number == 10.0 { factor.power } else { factor.power.abs() };
+        let sign = if factor.power < 0 && factor.number != 10.0 {
+            "/"
+        } else {
+            "*"
+        };
+        let power = if factor.number == 10.0 {
+            factor.power
+        } else {
+            factor.power.abs()
+        };
         text.push_str(sign);
         match power {
             1 => text.push_str(&format!("{}", factor.number)),
@@ -439,7 +499,8 @@ pub(super) struct EntryLook<'a> {
 impl EntryLook<'_> {
     /// The value of the ledger that a name stands for.
     pub(super) fn resolve(&self, name: &str, member: Option<(&str, usize)>) -> Option<Value> {
-        let in_set = member.and_then(|(set, index)| self.env.sets.get(set)?.members.get(index)?.get(name));
+        let in_set =
+            member.and_then(|(set, index)| self.env.sets.get(set)?.members.get(index)?.get(name));
         in_set.copied().or_else(|| match self.env.names.get(name)? {
             Bound::Value(value) => Some(*value),
             Bound::Word(_) => None,
@@ -453,13 +514,21 @@ impl Look for EntryLook<'_> {
     }
 
     fn dim(&self, name: &str, set: Option<&str>) -> Option<Dim> {
-        self.resolve(name, set.map(|set| (set, 0))).map(|value| self.ledger.get(value).dim)
+        self.resolve(name, set.map(|set| (set, 0)))
+            .map(|value| self.ledger.get(value).dim)
     }
 
     fn value(&self, name: &str, member: Option<(&str, usize)>) -> Option<f64> {
         let value = self.resolve(name, member)?;
-        let plain = if self.printed { self.ledger.printed_value(value) } else { self.ledger.get(value).value };
-        let moved = self.shift.filter(|(shifted, _)| *shifted == value).map_or(0.0, |(_, by)| by);
+        let plain = if self.printed {
+            self.ledger.printed_value(value)
+        } else {
+            self.ledger.get(value).value
+        };
+        let moved = self
+            .shift
+            .filter(|(shifted, _)| *shifted == value)
+            .map_or(0.0, |(_, by)| by);
         Some(plain + moved)
     }
 
@@ -480,7 +549,14 @@ impl Look for EntryLook<'_> {
 
     fn known(&self) -> Vec<&str> {
         let names = self.env.names.keys().map(String::as_str);
-        let columns = self.env.sets.values().flat_map(|set| set.symbols.keys().map(String::as_str));
-        names.chain(columns).chain(self.env.sets.keys().map(String::as_str)).collect()
+        let columns = self
+            .env
+            .sets
+            .values()
+            .flat_map(|set| set.symbols.keys().map(String::as_str));
+        names
+            .chain(columns)
+            .chain(self.env.sets.keys().map(String::as_str))
+            .collect()
     }
 }

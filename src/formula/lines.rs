@@ -54,7 +54,10 @@ impl Ledger {
             }
             Kind::Step { node, text, env } => {
                 let symbols = Presenter::read(self, env, node, text, false);
-                let Reading { math, remarks: chosen } = Presenter::read(self, env, node, text, true);
+                let Reading {
+                    math,
+                    remarks: chosen,
+                } = Presenter::read(self, env, node, text, true);
                 readings.extend(symbols.math);
                 readings.extend(math.filter(|math| Some(math) != readings.last()));
                 remarks = chosen;
@@ -64,7 +67,9 @@ impl Ledger {
         }
         let mut pieces: Vec<Piece> = readings.iter().flat_map(split_long).collect();
         let plain_result = Math::plain(self.printed(value));
-        let repeats = readings.last().is_some_and(|last| last.words() == plain_result.words());
+        let repeats = readings
+            .last()
+            .is_some_and(|last| last.words() == plain_result.words());
         if repeats && pieces.len() > 1 {
             pieces.pop();
         }
@@ -87,7 +92,11 @@ impl Ledger {
         let node = super::parse(text)?;
         let index = env.sets.get(set).map_or("i", |set| set.index.as_str());
         let formula = Presenter::head(self, env, &node, text, set);
-        Ok(Math::Relation("=", Box::new(Math::Symbol(symbol.with(index))), Box::new(formula)))
+        Ok(Math::Relation(
+            "=",
+            Box::new(Math::Symbol(symbol.with(index))),
+            Box::new(formula),
+        ))
     }
 
     /// The bold result with its unit, and remarks behind it.
@@ -100,14 +109,27 @@ impl Ledger {
             (false, true) => "+",
             (false, false) => "",
         };
-        let exponent = printed.exponent.map(|power| power.to_string()).unwrap_or_default();
-        let mut typst = format!("#res(\"{sign}{}\", \"{exponent}\", \"{unit}\")", printed.mantissa);
+        let exponent = printed
+            .exponent
+            .map(|power| power.to_string())
+            .unwrap_or_default();
+        let mut typst = format!(
+            "#res(\"{sign}{}\", \"{exponent}\", \"{unit}\")",
+            printed.mantissa
+        );
         let number = match printed.exponent {
             Some(power) => format!("{sign}{} \\times 10^{{{power}}}", printed.mantissa),
             None => format!("{sign}{}", printed.mantissa),
         };
-        let mut latex = format!("\\mathbf{{{number}{}}}", unit_latex(self.units(), entry.dim));
-        let mut words = format!("{}{} {unit}", if sign == "+" { "plus " } else { "" }, Math::plain(printed.clone()).words());
+        let mut latex = format!(
+            "\\mathbf{{{number}{}}}",
+            unit_latex(self.units(), entry.dim)
+        );
+        let mut words = format!(
+            "{}{} {unit}",
+            if sign == "+" { "plus " } else { "" },
+            Math::plain(printed.clone()).words()
+        );
         let mut width = Math::plain(printed).width() * 1.08 + 1.0 + unit.chars().count() as f64;
         for remark in remarks {
             typst.push_str(&format!(" quad ({})", remark.typst()));
@@ -115,7 +137,12 @@ impl Ledger {
             words.push_str(&format!(", {}", remark.words()));
             width += 4.0 + remark.width();
         }
-        Piece { typst: format!("= {typst}"), latex: format!("= {latex}"), words: format!("equals {}", words.trim()), width: width + 2.9 }
+        Piece {
+            typst: format!("= {typst}"),
+            latex: format!("= {latex}"),
+            words: format!("equals {}", words.trim()),
+            width: width + 2.9,
+        }
     }
 
     fn bound_line(&self, value: Value) -> Equation {
@@ -169,7 +196,11 @@ fn unit_latex(units: UnitSet, dim: crate::quantity::Dim) -> String {
     let parts: Vec<String> = factors
         .iter()
         .map(|(name, power)| {
-            if (power - 1.0).abs() < 1e-9 { format!("\\mathrm{{{name}}}") } else { format!("\\mathrm{{{name}}}^{{{power}}}") }
+            if (power - 1.0).abs() < 1e-9 {
+                format!("\\mathrm{{{name}}}")
+            } else {
+                format!("\\mathrm{{{name}}}^{{{power}}}")
+            }
         })
         .collect();
     format!("\\,{}", parts.join("\\,"))
@@ -179,11 +210,21 @@ fn unit_latex(units: UnitSet, dim: crate::quantity::Dim) -> String {
 fn split_long(math: &Math) -> Vec<Piece> {
     let piece = |sign: &str, math: &Math| Piece {
         typst: format!("{sign} {}", math.typst()),
-        latex: format!("{} {}", if sign == "quad +" { "\\quad +" } else { "=" }, math.latex()),
-        words: format!("{} {}", if sign == "=" { "equals" } else { "plus" }, math.words()),
+        latex: format!(
+            "{} {}",
+            if sign == "quad +" { "\\quad +" } else { "=" },
+            math.latex()
+        ),
+        words: format!(
+            "{} {}",
+            if sign == "=" { "equals" } else { "plus" },
+            math.words()
+        ),
         width: math.width() + 2.9,
     };
-    let Math::Terms(terms) = math else { return vec![piece("=", math)] };
+    let Math::Terms(terms) = math else {
+        return vec![piece("=", math)];
+    };
     if math.width() + 6.0 <= LINE {
         return vec![piece("=", math)];
     }
@@ -251,5 +292,8 @@ fn lay_out(symbol: &super::Symbol, pieces: &[Piece]) -> Equation {
             used = start + piece.width;
         }
     }
-    Equation { lines, latex: ["\\begin{aligned}", &latex, "\\end{aligned}"].join("\n") }
+    Equation {
+        lines,
+        latex: ["\\begin{aligned}", &latex, "\\end{aligned}"].join("\n"),
+    }
 }

@@ -92,7 +92,11 @@ impl Math {
     /// A number without a link.
     #[must_use]
     pub fn plain(printed: Printed) -> Self {
-        Self::Number { printed, degrees: false, link: None }
+        Self::Number {
+            printed,
+            degrees: false,
+            link: None,
+        }
     }
 
     /// Whether it starts with a minus sign, so that it needs brackets after an operator.
@@ -100,8 +104,12 @@ impl Math {
     pub fn starts_negative(&self) -> bool {
         match self {
             Self::Number { printed, .. } => printed.negative,
-            Self::Terms(terms) => terms.first().is_some_and(|term| term.0 || term.1.starts_negative()),
-            Self::Product(factors) | Self::Row(factors) => factors.first().is_some_and(Self::starts_negative),
+            Self::Terms(terms) => terms
+                .first()
+                .is_some_and(|term| term.0 || term.1.starts_negative()),
+            Self::Product(factors) | Self::Row(factors) => {
+                factors.first().is_some_and(Self::starts_negative)
+            }
             Self::Slash(above, _) => above.starts_negative(),
             Self::Power(base, _) => base.starts_negative(),
             Self::Symbol(_)
@@ -123,11 +131,16 @@ impl Math {
             Self::Number { .. } => true,
             Self::Power(base, _) => base.is_numeric(),
             Self::Product(factors) => factors.iter().any(Self::is_numeric),
-            Self::Fraction(above, below) | Self::Slash(above, below) => above.is_numeric() || below.is_numeric(),
-            Self::Bracket(inner) | Self::Root(inner) | Self::Magnitude(inner) | Self::Sum(_, inner) => {
-                inner.is_numeric()
+            Self::Fraction(above, below) | Self::Slash(above, below) => {
+                above.is_numeric() || below.is_numeric()
             }
-            Self::Call(_, arguments) | Self::Row(arguments) => arguments.iter().any(Self::is_numeric),
+            Self::Bracket(inner)
+            | Self::Root(inner)
+            | Self::Magnitude(inner)
+            | Self::Sum(_, inner) => inner.is_numeric(),
+            Self::Call(_, arguments) | Self::Row(arguments) => {
+                arguments.iter().any(Self::is_numeric)
+            }
             Self::Terms(terms) => terms.iter().any(|term| term.1.is_numeric()),
             Self::Relation(..) | Self::Symbol(_) | Self::Word(_) | Self::Pi => false,
         }
@@ -136,20 +149,31 @@ impl Math {
     /// Whether a dot stands between two neighbouring factors.
     fn dotted(left: &Self, right: &Self) -> bool {
         let number_first = matches!(left, Self::Number { .. });
-        let opens = matches!(right, Self::Number { .. } | Self::Power(..) | Self::Fraction(..) | Self::Slash(..));
-        (left.is_numeric() && right.is_numeric()) || (number_first && opens && right.is_numeric()) || (!number_first && matches!(right, Self::Number { .. }))
+        let opens = matches!(
+            right,
+            Self::Number { .. } | Self::Power(..) | Self::Fraction(..) | Self::Slash(..)
+        );
+        (left.is_numeric() && right.is_numeric())
+            || (number_first && opens && right.is_numeric())
+            || (!number_first && matches!(right, Self::Number { .. }))
     }
 
     /// The Typst maths source, as the templates' functions take it.
     #[must_use]
     pub fn typst(&self) -> String {
         match self {
-            Self::Number { printed, degrees, link } => {
+            Self::Number {
+                printed,
+                degrees,
+                link,
+            } => {
                 let sign = if printed.negative { "-" } else { "" };
                 let degree = if *degrees { " #u(\"°\")" } else { "" };
                 let number = match (link, printed.exponent) {
                     (Some(id), None) => format!("#n({}, \"{}\")", literal(id), printed.mantissa),
-                    (Some(id), Some(power)) => format!("#n({}, \"{}\", \"{power}\")", literal(id), printed.mantissa),
+                    (Some(id), Some(power)) => {
+                        format!("#n({}, \"{}\", \"{power}\")", literal(id), printed.mantissa)
+                    }
                     (None, None) => printed.mantissa.clone(),
                     (None, Some(power)) => format!("{} times 10^({power})", printed.mantissa),
                 };
@@ -166,9 +190,13 @@ impl Math {
             Self::Root(inner) => format!("sqrt({})", inner.typst()),
             Self::Bracket(inner) => format!("({})", inner.typst()),
             Self::Magnitude(inner) => format!("abs({})", inner.typst()),
-            Self::Call(name, arguments) => format!("{name}({})", join(arguments, Self::typst, ", ")),
+            Self::Call(name, arguments) => {
+                format!("{name}({})", join(arguments, Self::typst, ", "))
+            }
             Self::Sum(index, term) => format!("sum_{index} {}", term.typst()),
-            Self::Relation(sign, left, right) => format!("{} {sign} {}", left.typst(), right.typst()),
+            Self::Relation(sign, left, right) => {
+                format!("{} {sign} {}", left.typst(), right.typst())
+            }
             Self::Row(pieces) => join(pieces, Self::typst, " "),
         }
     }
@@ -177,12 +205,16 @@ impl Math {
     #[must_use]
     pub fn latex(&self) -> String {
         match self {
-            Self::Number { printed, degrees, .. } => {
+            Self::Number {
+                printed, degrees, ..
+            } => {
                 let sign = if printed.negative { "-" } else { "" };
                 let degree = if *degrees { "^\\circ" } else { "" };
                 match printed.exponent {
                     None => format!("{sign}{}{degree}", printed.mantissa),
-                    Some(power) => format!("{sign}{} \\times 10^{{{power}}}{degree}", printed.mantissa),
+                    Some(power) => {
+                        format!("{sign}{} \\times 10^{{{power}}}{degree}", printed.mantissa)
+                    }
                 }
             }
             Self::Symbol(symbol) => symbol.latex(),
@@ -190,15 +222,24 @@ impl Math {
             Self::Pi => "\\pi".to_owned(),
             Self::Terms(terms) => join_terms(terms, Self::latex),
             Self::Product(factors) => join_factors(factors, Self::latex, " \\cdot ", " \\, "),
-            Self::Fraction(above, below) => format!("\\frac{{{}}}{{{}}}", above.latex(), below.latex()),
+            Self::Fraction(above, below) => {
+                format!("\\frac{{{}}}{{{}}}", above.latex(), below.latex())
+            }
             Self::Slash(above, below) => format!("{} / {}", above.latex(), below.latex()),
             Self::Power(base, exponent) => format!("{}^{{{}}}", base.latex(), exponent.latex()),
             Self::Root(inner) => format!("\\sqrt{{{}}}", inner.latex()),
             Self::Bracket(inner) => format!("\\left({}\\right)", inner.latex()),
             Self::Magnitude(inner) => format!("\\left|{}\\right|", inner.latex()),
             Self::Call(name, arguments) => {
-                let name = if *name == "atan2" { "\\operatorname{atan2}".to_owned() } else { format!("\\{name}") };
-                format!("{name}\\left({}\\right)", join(arguments, Self::latex, ", "))
+                let name = if *name == "atan2" {
+                    "\\operatorname{atan2}".to_owned()
+                } else {
+                    format!("\\{name}")
+                };
+                format!(
+                    "{name}\\left({}\\right)",
+                    join(arguments, Self::latex, ", ")
+                )
             }
             Self::Sum(index, term) => format!("\\sum_{{{index}}} {}", term.latex()),
             Self::Relation(sign, left, right) => {
@@ -217,12 +258,16 @@ impl Math {
     #[must_use]
     pub fn words(&self) -> String {
         match self {
-            Self::Number { printed, degrees, .. } => {
+            Self::Number {
+                printed, degrees, ..
+            } => {
                 let sign = if printed.negative { "minus " } else { "" };
                 let degree = if *degrees { " degrees" } else { "" };
                 match printed.exponent {
                     None => format!("{sign}{}{degree}", printed.mantissa),
-                    Some(power) => format!("{sign}{} times 10 to the {power}{degree}", printed.mantissa),
+                    Some(power) => {
+                        format!("{sign}{} times 10 to the {power}{degree}", printed.mantissa)
+                    }
                 }
             }
             Self::Symbol(symbol) => symbol.words(),
@@ -252,7 +297,9 @@ impl Math {
             Self::Root(inner) => format!("the square root of {}", inner.words()),
             Self::Bracket(inner) => format!("the quantity {}", inner.words()),
             Self::Magnitude(inner) => format!("the magnitude of {}", inner.words()),
-            Self::Call(name, arguments) => format!("{name} of {}", join(arguments, Self::words, " and ")),
+            Self::Call(name, arguments) => {
+                format!("{name} of {}", join(arguments, Self::words, " and "))
+            }
             Self::Sum(_, term) => format!("the sum of {}", term.words()),
             Self::Relation(sign, left, right) => {
                 let sign = match *sign {
@@ -272,17 +319,34 @@ impl Math {
     #[must_use]
     pub fn width(&self) -> f64 {
         match self {
-            Self::Number { printed, degrees, .. } => {
-                let power = printed.exponent.map_or(0.0, |power| 4.1 + 0.75 * power.to_string().len() as f64);
-                let point = if printed.mantissa.contains('.') { -0.5 } else { 0.0 };
+            Self::Number {
+                printed, degrees, ..
+            } => {
+                let power = printed
+                    .exponent
+                    .map_or(0.0, |power| 4.1 + 0.75 * power.to_string().len() as f64);
+                let point = if printed.mantissa.contains('.') {
+                    -0.5
+                } else {
+                    0.0
+                };
                 let sign = if printed.negative { 1.7 } else { 0.0 };
-                sign + printed.mantissa.len() as f64 + point + power + if *degrees { 1.0 } else { 0.0 }
+                sign + printed.mantissa.len() as f64
+                    + point
+                    + power
+                    + if *degrees { 1.0 } else { 0.0 }
             }
             Self::Symbol(symbol) => symbol.width(),
             Self::Word(text) => 1.05 * text.chars().count() as f64,
             Self::Pi => 1.2,
             Self::Terms(terms) => terms.iter().map(|term| 2.9 + term.1.width()).sum::<f64>() - 2.0,
-            Self::Product(factors) => factors.iter().map(|factor| factor.width() + 1.3).sum::<f64>() - 1.3,
+            Self::Product(factors) => {
+                factors
+                    .iter()
+                    .map(|factor| factor.width() + 1.3)
+                    .sum::<f64>()
+                    - 1.3
+            }
             Self::Fraction(above, below) => above.width().max(below.width()) + 0.6,
             Self::Slash(above, below) => above.width() + below.width() + 1.2,
             Self::Power(base, exponent) => base.width() + 0.75 * exponent.width(),
@@ -290,7 +354,10 @@ impl Math {
             Self::Bracket(inner) => inner.width() + 1.7,
             Self::Magnitude(inner) => inner.width() + 1.3,
             Self::Call(name, arguments) => {
-                let inner: f64 = arguments.iter().map(|argument| argument.width() + 0.9).sum();
+                let inner: f64 = arguments
+                    .iter()
+                    .map(|argument| argument.width() + 0.9)
+                    .sum();
                 name.len() as f64 + inner + 1.7
             }
             Self::Sum(_, term) => 3.6 + term.width(),
@@ -322,7 +389,11 @@ fn join_factors(factors: &[Math], form: impl Fn(&Math) -> String, dot: &str, thi
     let mut out = String::new();
     for (at, factor) in factors.iter().enumerate() {
         if at > 0 {
-            out.push_str(if Math::dotted(&factors[at - 1], factor) { dot } else { thin });
+            out.push_str(if Math::dotted(&factors[at - 1], factor) {
+                dot
+            } else {
+                thin
+            });
         }
         out.push_str(&form(factor));
     }

@@ -77,7 +77,9 @@ pub enum Problem {
     #[error("a sum cannot stand inside a sum")]
     NestedSum,
     /// A function that does not exist.
-    #[error("`{0}` is not a function; there are sqrt, sin, cos, tan, abs, atan2, min, max, sum, lookup, when")]
+    #[error(
+        "`{0}` is not a function; there are sqrt, sin, cos, tan, abs, atan2, min, max, sum, lookup, when"
+    )]
     UnknownFunction(String),
     /// A name that is not bound.
     #[error("`{name}` is not known here{}", nearest.as_ref().map(|near| format!("; did you mean `{near}`?")).unwrap_or_default())]

@@ -216,7 +216,10 @@ impl Node {
         visit(self);
         match &self.kind {
             Kind::Number(_) | Kind::Constant { .. } | Kind::Pi | Kind::Name(_) => {}
-            Kind::Negative(inner) | Kind::Call { argument: inner, .. } => inner.walk(visit),
+            Kind::Negative(inner)
+            | Kind::Call {
+                argument: inner, ..
+            } => inner.walk(visit),
             Kind::Binary { left, right, .. } => {
                 left.walk(visit);
                 right.walk(visit);
@@ -225,7 +228,9 @@ impl Node {
                 y.walk(visit);
                 x.walk(visit);
             }
-            Kind::Extreme { operands, .. } => operands.iter().for_each(|operand| operand.walk(visit)),
+            Kind::Extreme { operands, .. } => {
+                operands.iter().for_each(|operand| operand.walk(visit))
+            }
             Kind::Sum { term, .. } => term.walk(visit),
             Kind::Lookup { key, .. } => key.walk(visit),
             Kind::When(branches) => {

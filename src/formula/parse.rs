@@ -17,11 +17,19 @@ const DEEPEST: usize = 48;
 ///
 /// [`FormulaError`] with the byte range of the fault in `text`.
 pub fn parse(text: &str) -> Result<Node, FormulaError> {
-    let mut parser = Parser { text, at: 0, depth: 0, in_sum: false };
+    let mut parser = Parser {
+        text,
+        at: 0,
+        depth: 0,
+        in_sum: false,
+    };
     let node = parser.sum_of_terms()?;
     parser.skip_space();
     if parser.at < text.len() {
-        return Err(parser.fault(parser.at..parser.at + parser.char_len(), Problem::Unexpected(parser.next_text())));
+        return Err(parser.fault(
+            parser.at..parser.at + parser.char_len(),
+            Problem::Unexpected(parser.next_text()),
+        ));
     }
     Ok(node)
 }
@@ -35,7 +43,11 @@ struct Parser<'a> {
 
 impl<'a> Parser<'a> {
     fn fault(&self, span: Range<usize>, problem: Problem) -> FormulaError {
-        FormulaError { text: self.text.to_owned(), span, problem }
+        FormulaError {
+            text: self.text.to_owned(),
+            span,
+            problem,
+        }
     }
 
     fn rest(&self) -> &'a str {
@@ -47,7 +59,10 @@ impl<'a> Parser<'a> {
     }
 
     fn next_text(&self) -> String {
-        self.rest().chars().next().map_or_else(|| "the end".to_owned(), String::from)
+        self.rest()
+            .chars()
+            .next()
+            .map_or_else(|| "the end".to_owned(), String::from)
     }
 
     fn skip_space(&mut self) {
@@ -67,13 +82,23 @@ impl<'a> Parser<'a> {
         if self.eat(mark) {
             return Ok(());
         }
-        let problem = Problem::Wanted { wanted: mark, found: self.next_text() };
+        let problem = Problem::Wanted {
+            wanted: mark,
+            found: self.next_text(),
+        };
         Err(self.fault(self.at..self.at + self.char_len(), problem))
     }
 
     fn binary(op: Op, left: Node, right: Node) -> Node {
         let span = left.span.start..right.span.end;
-        Node { kind: Kind::Binary { op, left: Box::new(left), right: Box::new(right) }, span }
+        Node {
+            kind: Kind::Binary {
+                op,
+                left: Box::new(left),
+                right: Box::new(right),
+            },
+            span,
+        }
     }
 
     fn sum_of_terms(&mut self) -> Result<Node, FormulaError> {
@@ -122,7 +147,10 @@ impl<'a> Parser<'a> {
             let inner = self.signed()?;
             self.depth -= 1;
             let span = start..inner.span.end;
-            return Ok(Node { kind: Kind::Negative(Box::new(inner)), span });
+            return Ok(Node {
+                kind: Kind::Negative(Box::new(inner)),
+                span,
+            });
         }
         let base = self.primary()?;
         if self.eat("^") {
@@ -158,7 +186,10 @@ impl<'a> Parser<'a> {
 
     fn number(&mut self) -> Result<Node, FormulaError> {
         let start = self.at;
-        let digits = self.rest().find(|c: char| !c.is_ascii_digit() && c != '.').unwrap_or(self.rest().len());
+        let digits = self
+            .rest()
+            .find(|c: char| !c.is_ascii_digit() && c != '.')
+            .unwrap_or(self.rest().len());
         let text = &self.rest()[..digits];
         self.at += digits;
         let value: f64 = text
@@ -166,20 +197,37 @@ impl<'a> Parser<'a> {
             .ok()
             .filter(|value: &f64| value.is_finite())
             .ok_or_else(|| self.fault(start..self.at, Problem::Number(text.to_owned())))?;
-        let number = Literal { text: text.to_owned(), value };
+        let number = Literal {
+            text: text.to_owned(),
+            value,
+        };
         let after_number = self.at;
         self.skip_space();
         let word = self.word();
         if word.is_empty() && !self.rest().starts_with(['%', '°']) {
             self.at = after_number;
-            return Ok(Node { kind: Kind::Number(number), span: start..self.at });
+            return Ok(Node {
+                kind: Kind::Number(number),
+                span: start..self.at,
+            });
         }
         let unit_start = self.at;
-        self.at += if word.is_empty() { self.char_len() } else { word.len() };
+        self.at += if word.is_empty() {
+            self.char_len()
+        } else {
+            word.len()
+        };
         let unit_text = self.text[unit_start..self.at].to_owned();
         let unit = Unit::parse(&unit_text)
             .map_err(|fault| self.fault(unit_start..self.at, Problem::Unit(fault.to_string())))?;
-        Ok(Node { kind: Kind::Constant { number, unit_text, unit }, span: start..self.at })
+        Ok(Node {
+            kind: Kind::Constant {
+                number,
+                unit_text,
+                unit,
+            },
+            span: start..self.at,
+        })
     }
 
     /// The name that starts here: letters, digits and underscores.
@@ -188,7 +236,9 @@ impl<'a> Parser<'a> {
         if !rest.starts_with(|c: char| c.is_ascii_alphabetic()) {
             return "";
         }
-        let end = rest.find(|c: char| !c.is_ascii_alphanumeric() && c != '_').unwrap_or(rest.len());
+        let end = rest
+            .find(|c: char| !c.is_ascii_alphanumeric() && c != '_')
+            .unwrap_or(rest.len());
         &rest[..end]
     }
 
@@ -198,24 +248,43 @@ impl<'a> Parser<'a> {
         self.at += word.len();
         if !self.eat("(") {
             self.at = start + word.len();
-            let kind = if word == "pi" { Kind::Pi } else { Kind::Name(word.to_owned()) };
-            return Ok(Node { kind, span: start..self.at });
+            let kind = if word == "pi" {
+                Kind::Pi
+            } else {
+                Kind::Name(word.to_owned())
+            };
+            return Ok(Node {
+                kind,
+                span: start..self.at,
+            });
         }
         let kind = self.call(word, start)?;
         self.need(")")?;
-        Ok(Node { kind, span: start..self.at })
+        Ok(Node {
+            kind,
+            span: start..self.at,
+        })
     }
 
     /// The inside of a call, up to its closing bracket.
     fn call(&mut self, word: &str, start: usize) -> Result<Kind, FormulaError> {
-        if let Some(function) = Function::ALL.into_iter().find(|function| function.text() == word) {
-            return Ok(Kind::Call { function, argument: Box::new(self.sum_of_terms()?) });
+        if let Some(function) = Function::ALL
+            .into_iter()
+            .find(|function| function.text() == word)
+        {
+            return Ok(Kind::Call {
+                function,
+                argument: Box::new(self.sum_of_terms()?),
+            });
         }
         match word {
             "atan2" => {
                 let y = Box::new(self.sum_of_terms()?);
                 self.need(",")?;
-                Ok(Kind::Atan2 { y, x: Box::new(self.sum_of_terms()?) })
+                Ok(Kind::Atan2 {
+                    y,
+                    x: Box::new(self.sum_of_terms()?),
+                })
             }
             "min" | "max" => {
                 let mut operands = vec![self.sum_of_terms()?];
@@ -225,7 +294,10 @@ impl<'a> Parser<'a> {
                 if operands.len() < 2 {
                     return Err(self.fault(start..self.at, Problem::OneOperand(word.to_owned())));
                 }
-                Ok(Kind::Extreme { greatest: word == "max", operands })
+                Ok(Kind::Extreme {
+                    greatest: word == "max",
+                    operands,
+                })
             }
             "sum" => {
                 if self.in_sum {
@@ -245,10 +317,16 @@ impl<'a> Parser<'a> {
                 let table = self.word().to_owned();
                 self.at += table.len();
                 self.need(",")?;
-                Ok(Kind::Lookup { table, key: Box::new(self.sum_of_terms()?) })
+                Ok(Kind::Lookup {
+                    table,
+                    key: Box::new(self.sum_of_terms()?),
+                })
             }
             "when" => self.branches(),
-            _ => Err(self.fault(start..start + word.len(), Problem::UnknownFunction(word.to_owned()))),
+            _ => Err(self.fault(
+                start..start + word.len(),
+                Problem::UnknownFunction(word.to_owned()),
+            )),
         }
     }
 
@@ -264,7 +342,10 @@ impl<'a> Parser<'a> {
             };
             self.need(",")?;
             let last = condition.is_none();
-            branches.push(Branch { condition, value: self.sum_of_terms()? });
+            branches.push(Branch {
+                condition,
+                value: self.sum_of_terms()?,
+            });
             if last || !self.eat(",") {
                 return Ok(Kind::When(branches));
             }
@@ -282,9 +363,16 @@ impl<'a> Parser<'a> {
         } else if self.eat(">") {
             Relation::Greater
         } else {
-            let problem = Problem::Wanted { wanted: "<, <=, > or >=", found: self.next_text() };
+            let problem = Problem::Wanted {
+                wanted: "<, <=, > or >=",
+                found: self.next_text(),
+            };
             return Err(self.fault(self.at..self.at + self.char_len(), problem));
         };
-        Ok(Condition { left, relation, right: Box::new(self.sum_of_terms()?) })
+        Ok(Condition {
+            left,
+            relation,
+            right: Box::new(self.sum_of_terms()?),
+        })
     }
 }

@@ -31,38 +31,91 @@ pub(super) struct Presenter<'a> {
 
 impl<'a> Presenter<'a> {
     /// The reading of a formula, in symbols or in numbers.
-    pub(super) fn read(ledger: &'a Ledger, env: &'a Env, node: &Node, text: &'a str, numbers: bool) -> Reading {
-        let look = EntryLook { ledger, env, printed: false, shift: None };
-        let mut presenter = Self { look, text, numbers, remarks: Vec::new(), elided: false };
+    pub(super) fn read(
+        ledger: &'a Ledger,
+        env: &'a Env,
+        node: &Node,
+        text: &'a str,
+        numbers: bool,
+    ) -> Reading {
+        let look = EntryLook {
+            ledger,
+            env,
+            printed: false,
+            shift: None,
+        };
+        let mut presenter = Self {
+            look,
+            text,
+            numbers,
+            remarks: Vec::new(),
+            elided: false,
+        };
         let math = presenter.math(node, None, false);
-        Reading { math: (!presenter.elided).then_some(math), remarks: presenter.remarks }
+        Reading {
+            math: (!presenter.elided).then_some(math),
+            remarks: presenter.remarks,
+        }
     }
 
     /// A formula in symbols for a table's head: names of a set's columns carry its index letter.
-    pub(super) fn head(ledger: &'a Ledger, env: &'a Env, node: &Node, text: &'a str, set: &str) -> Math {
-        let look = EntryLook { ledger, env, printed: false, shift: None };
-        let mut presenter = Self { look, text, numbers: false, remarks: Vec::new(), elided: false };
+    pub(super) fn head(
+        ledger: &'a Ledger,
+        env: &'a Env,
+        node: &Node,
+        text: &'a str,
+        set: &str,
+    ) -> Math {
+        let look = EntryLook {
+            ledger,
+            env,
+            printed: false,
+            shift: None,
+        };
+        let mut presenter = Self {
+            look,
+            text,
+            numbers: false,
+            remarks: Vec::new(),
+            elided: false,
+        };
         presenter.math(node, Some((set, 0)), false)
     }
 
     fn math(&mut self, node: &Node, member: Option<(&str, usize)>, inline: bool) -> Math {
         match &node.kind {
             Kind::Number(number) => Math::plain(Printed::typed(&number.text, number.value)),
-            Kind::Constant { number, unit_text, unit } => self.constant(&number.text, number.value, unit_text, unit),
+            Kind::Constant {
+                number,
+                unit_text,
+                unit,
+            } => self.constant(&number.text, number.value, unit_text, unit),
             Kind::Pi => Math::Pi,
             Kind::Name(name) => self.name(name, member),
             Kind::Negative(inner) => {
                 let inner = self.math(inner, member, inline);
-                let inner = bracket_if(matches!(inner, Math::Terms(_)) || inner.starts_negative(), inner);
+                let inner = bracket_if(
+                    matches!(inner, Math::Terms(_)) || inner.starts_negative(),
+                    inner,
+                );
                 Math::Terms(vec![(true, inner)])
             }
             Kind::Binary { op, left, right } => self.binary(*op, left, right, member, inline),
-            Kind::Call { function: Function::Sqrt, argument } => Math::Root(Box::new(self.math(argument, member, inline))),
-            Kind::Call { function: Function::Abs, argument } => {
-                Math::Magnitude(Box::new(self.math(argument, member, inline)))
+            Kind::Call {
+                function: Function::Sqrt,
+                argument,
+            } => Math::Root(Box::new(self.math(argument, member, inline))),
+            Kind::Call {
+                function: Function::Abs,
+                argument,
+            } => Math::Magnitude(Box::new(self.math(argument, member, inline))),
+            Kind::Call { function, argument } => {
+                Math::Call(function.text(), vec![self.math(argument, member, true)])
             }
-            Kind::Call { function, argument } => Math::Call(function.text(), vec![self.math(argument, member, true)]),
-            Kind::Atan2 { y, x } => Math::Call("atan2", vec![self.math(y, member, true), self.math(x, member, true)]),
+            Kind::Atan2 { y, x } => Math::Call(
+                "atan2",
+                vec![self.math(y, member, true), self.math(x, member, true)],
+            ),
             Kind::Extreme { greatest, operands } => self.extreme(*greatest, operands, member),
             Kind::Sum { set, term } => self.sum(set, term, inline),
             Kind::Lookup { table, key } => self.lookup(table, key, member),
@@ -71,7 +124,10 @@ impl<'a> Presenter<'a> {
                     let Some(condition) = &branch.condition else {
                         return self.math(&branch.value, member, inline);
                     };
-                    let holds = match (self.value(&condition.left, member), self.value(&condition.right, member)) {
+                    let holds = match (
+                        self.value(&condition.left, member),
+                        self.value(&condition.right, member),
+                    ) {
                         (Some(left), Some(right)) => condition.relation.holds(left, right),
                         _ => false,
                     };
@@ -92,7 +148,11 @@ impl<'a> Presenter<'a> {
 
     fn value(&self, node: &Node, member: Option<(&str, usize)>) -> Option<f64> {
         // Inside a sum each member is read in its own place; conditions there are not remarked on.
-        if member.is_some() { None } else { evaluate(node, self.text, &self.look).ok() }
+        if member.is_some() {
+            None
+        } else {
+            evaluate(node, self.text, &self.look).ok()
+        }
     }
 
     fn number_of(&self, value: Value) -> Math {
@@ -126,7 +186,11 @@ impl<'a> Presenter<'a> {
     fn constant(&self, text: &str, value: f64, unit_text: &str, unit: &Unit) -> Math {
         let number = Math::plain(Printed::typed(text, value));
         if unit.is_degree() {
-            return Math::Number { printed: Printed::typed(text, value), degrees: true, link: None };
+            return Math::Number {
+                printed: Printed::typed(text, value),
+                degrees: true,
+                link: None,
+            };
         }
         if !self.numbers {
             return Math::Row(vec![number, Math::Word(unit_text.to_owned())]);
@@ -150,7 +214,14 @@ impl<'a> Presenter<'a> {
         math
     }
 
-    fn binary(&mut self, op: Op, left: &Node, right: &Node, member: Option<(&str, usize)>, inline: bool) -> Math {
+    fn binary(
+        &mut self,
+        op: Op,
+        left: &Node,
+        right: &Node,
+        member: Option<(&str, usize)>,
+        inline: bool,
+    ) -> Math {
         match op {
             Op::Add | Op::Sub => {
                 let mut terms = match self.math(left, member, inline) {
@@ -183,17 +254,19 @@ impl<'a> Presenter<'a> {
                     return Math::Fraction(Box::new(above), Box::new(below));
                 }
                 let above = bracket_if(matches!(above, Math::Terms(_)), above);
-                let low = matches!(below, Math::Terms(_) | Math::Product(_) | Math::Slash(..) | Math::Row(_))
-                    || below.starts_negative();
+                let low = matches!(
+                    below,
+                    Math::Terms(_) | Math::Product(_) | Math::Slash(..) | Math::Row(_)
+                ) || below.starts_negative();
                 Math::Slash(Box::new(above), Box::new(bracket_if(low, below)))
             }
             Op::Pow => {
                 let base = self.math(left, member, inline);
                 let bare = match &base {
                     Math::Symbol(_) | Math::Bracket(_) | Math::Pi => true,
-                    Math::Number { printed, degrees, .. } => {
-                        !printed.negative && printed.exponent.is_none() && !degrees
-                    }
+                    Math::Number {
+                        printed, degrees, ..
+                    } => !printed.negative && printed.exponent.is_none() && !degrees,
                     _ => false,
                 };
                 let exponent = self.math(right, member, true);
@@ -202,22 +275,43 @@ impl<'a> Presenter<'a> {
         }
     }
 
-    fn extreme(&mut self, greatest: bool, operands: &[Node], member: Option<(&str, usize)>) -> Math {
-        let values: Option<Vec<f64>> = operands.iter().map(|operand| self.value(operand, member)).collect();
+    fn extreme(
+        &mut self,
+        greatest: bool,
+        operands: &[Node],
+        member: Option<(&str, usize)>,
+    ) -> Math {
+        let values: Option<Vec<f64>> = operands
+            .iter()
+            .map(|operand| self.value(operand, member))
+            .collect();
         if let (Some(values), true) = (values, self.numbers) {
             const ORDER: [&str; 6] = ["first", "second", "third", "fourth", "fifth", "sixth"];
             let which = governs(greatest, &values);
-            let tie = values.iter().filter(|value| (*value - values[which]).abs() <= 1e-12 * values[which].abs()).count() > 1;
+            let tie = values
+                .iter()
+                .filter(|value| (*value - values[which]).abs() <= 1e-12 * values[which].abs())
+                .count()
+                > 1;
             let order = ORDER.get(which).copied().unwrap_or("last");
-            let words = if tie { format!("equal; the {order} is taken") } else { format!("the {order} governs") };
+            let words = if tie {
+                format!("equal; the {order} is taken")
+            } else {
+                format!("the {order} governs")
+            };
             self.remarks.push(Math::Word(words));
         }
-        let arguments = operands.iter().map(|operand| self.math(operand, member, true)).collect();
+        let arguments = operands
+            .iter()
+            .map(|operand| self.math(operand, member, true))
+            .collect();
         Math::Call(if greatest { "max" } else { "min" }, arguments)
     }
 
     fn sum(&mut self, set: &str, term: &Node, inline: bool) -> Math {
-        let Some(members) = self.look.env.sets.get(set) else { return Math::Word(set.to_owned()) };
+        let Some(members) = self.look.env.sets.get(set) else {
+            return Math::Word(set.to_owned());
+        };
         if !self.numbers {
             let index = members.index.clone();
             let term = self.math(term, Some((set, 0)), inline);
@@ -239,15 +333,20 @@ impl<'a> Presenter<'a> {
     }
 
     fn lookup(&mut self, name: &str, key: &Node, member: Option<(&str, usize)>) -> Math {
-        let Some(table) = super::Look::table(&self.look, name) else { return Math::Word(name.to_owned()) };
+        let Some(table) = super::Look::table(&self.look, name) else {
+            return Math::Word(name.to_owned());
+        };
         let (cited, table) = (table.cited.clone(), table.clone());
         if !self.numbers {
             let key = self.math(key, member, true);
             return Math::Row(vec![Math::Word(cited), Math::Bracket(Box::new(key))]);
         }
         let value = || evaluate(key, self.text, &self.look);
-        let Ok(row) = lookup_row(&table, key, &self.look, value, self.text) else { return Math::Word(cited) };
-        self.remarks.push(Math::Word(format!("row: {}", table.row_words(row))));
+        let Ok(row) = lookup_row(&table, key, &self.look, value, self.text) else {
+            return Math::Word(cited);
+        };
+        self.remarks
+            .push(Math::Word(format!("row: {}", table.row_words(row))));
         let given = &table.rows[row].value;
         Math::plain(Printed::of(given.value, 6, 9, 0.0))
     }
@@ -255,7 +354,11 @@ impl<'a> Presenter<'a> {
 
 /// Wraps in brackets on a condition.
 fn bracket_if(condition: bool, math: Math) -> Math {
-    if condition { Math::Bracket(Box::new(math)) } else { math }
+    if condition {
+        Math::Bracket(Box::new(math))
+    } else {
+        math
+    }
 }
 
 /// A term after a plus or minus: a sum is bracketed, and so is a negative number at its start.
@@ -266,7 +369,10 @@ fn as_term(math: Math) -> Math {
             factors.insert(0, Math::Bracket(Box::new(first)));
             Math::Product(factors)
         }
-        other => bracket_if(matches!(other, Math::Terms(_)) || other.starts_negative(), other),
+        other => bracket_if(
+            matches!(other, Math::Terms(_)) || other.starts_negative(),
+            other,
+        ),
     }
 }
 

@@ -53,17 +53,32 @@ impl Ledger {
     ///
     /// [`FormulaError`] if the printed numbers do not evaluate.
     pub fn replay_miss(&self, value: Value) -> Result<Option<f64>, FormulaError> {
-        let Kind::Step { node, text, env } = &self.get(value).kind else { return Ok(None) };
-        let look = EntryLook { ledger: self, env, printed: true, shift: None };
+        let Kind::Step { node, text, env } = &self.get(value).kind else {
+            return Ok(None);
+        };
+        let look = EntryLook {
+            ledger: self,
+            env,
+            printed: true,
+            shift: None,
+        };
         let replayed = self.shown(value, evaluate(node, text, &look)?);
         let printed = self.printed(value);
-        let unit = if printed.is_zero() { self.unit_of_zero(value) } else { self.unit(value) };
+        let unit = if printed.is_zero() {
+            self.unit_of_zero(value)
+        } else {
+            self.unit(value)
+        };
         Ok(Some((replayed - printed.value()).abs() / unit))
     }
 
     /// The value as printed: degrees for an angle.
     fn shown(&self, value: Value, number: f64) -> f64 {
-        if self.get(value).dim == Dim::ANGLE { number.to_degrees() } else { number }
+        if self.get(value).dim == Dim::ANGLE {
+            number.to_degrees()
+        } else {
+            number
+        }
     }
 
     /// One unit in the last digit that the value is held to: the printed one, or the digits assigned
@@ -72,7 +87,10 @@ impl Ledger {
         let printed = self.printed(value);
         let size = printed.value().abs();
         let digits = i32::try_from(self.get(value).digits).unwrap_or(i32::MAX);
-        #[expect(clippy::cast_possible_truncation, reason = "the power of ten of a double fits")]
+        #[expect(
+            clippy::cast_possible_truncation,
+            reason = "the power of ten of a double fits"
+        )]
         let power = libm::floor(libm::log10(size) + 1e-12) as i32;
         printed.unit_in_last().min(real::ten_to(power - digits + 1))
     }
@@ -80,11 +98,18 @@ impl Ledger {
     /// What counts as one unit where the result prints 0: a thousandth of the largest operand's effect,
     /// and never over one half of a whole unit, so that nobody reads another digit than 0.
     fn unit_of_zero(&self, value: Value) -> f64 {
-        let Kind::Step { node, text, env } = &self.get(value).kind else { return 1.0 };
+        let Kind::Step { node, text, env } = &self.get(value).kind else {
+            return 1.0;
+        };
         let mut largest: f64 = 0.0;
         for used in self.uses(value) {
             let size = self.get(used).value;
-            let look = EntryLook { ledger: self, env, printed: false, shift: Some((used, size)) };
+            let look = EntryLook {
+                ledger: self,
+                env,
+                printed: false,
+                shift: Some((used, size)),
+            };
             if let Ok(moved) = evaluate(node, text, &look) {
                 largest = largest.max(self.shown(value, moved).abs());
             }
@@ -94,7 +119,9 @@ impl Ledger {
 
     /// Raises one operand of a line that does not replay; `None` once it does.
     fn raise_for(&mut self, value: Value) -> Result<Option<Value>, FormulaError> {
-        let Some(miss) = self.replay_miss(value)? else { return Ok(None) };
+        let Some(miss) = self.replay_miss(value)? else {
+            return Ok(None);
+        };
         // A hair over one unit is rounding of the replay itself.
         if miss <= 1.0 + 1e-6 {
             return Ok(None);
@@ -110,8 +137,14 @@ impl Ledger {
             }
         }
         let Some((_, used)) = worst else {
-            let Kind::Step { text, .. } = &self.get(value).kind else { return Ok(None) };
-            return Err(FormulaError { text: text.clone(), span: 0..text.len(), problem: Problem::Unsettled });
+            let Kind::Step { text, .. } = &self.get(value).kind else {
+                return Ok(None);
+            };
+            return Err(FormulaError {
+                text: text.clone(),
+                span: 0..text.len(),
+                problem: Problem::Unsettled,
+            });
         };
         self.get_mut(used).digits += 1;
         Ok(Some(used))
@@ -126,16 +159,29 @@ impl Ledger {
             Kind::Bound { .. } => false,
         };
         let shown = self.shown(value, entry.value);
-        computed && entry.digits < MOST_DIGITS && (self.printed(value).value() - shown).abs() > 1e-14 * shown.abs()
+        computed
+            && entry.digits < MOST_DIGITS
+            && (self.printed(value).value() - shown).abs() > 1e-14 * shown.abs()
     }
 
     /// How far half a unit in the last digit of `used` moves the result of `value`.
     fn effect_of_rounding(&self, value: Value, used: Value) -> f64 {
-        let Kind::Step { node, text, env } = &self.get(value).kind else { return 0.0 };
+        let Kind::Step { node, text, env } = &self.get(value).kind else {
+            return 0.0;
+        };
         let half = 0.5 * self.printed(used).unit_in_last();
-        let half = if self.get(used).dim == Dim::ANGLE { half.to_radians() } else { half };
+        let half = if self.get(used).dim == Dim::ANGLE {
+            half.to_radians()
+        } else {
+            half
+        };
         let at = |shift: f64| {
-            let look = EntryLook { ledger: self, env, printed: true, shift: Some((used, shift)) };
+            let look = EntryLook {
+                ledger: self,
+                env,
+                printed: true,
+                shift: Some((used, shift)),
+            };
             evaluate(node, text, &look).unwrap_or(f64::INFINITY)
         };
         (at(half) - at(-half)).abs()

@@ -75,11 +75,21 @@ impl Symbol {
     /// If the base is neither one letter nor a Greek name, or an index part has odd characters.
     pub fn declared(base: &str, index: Vec<String>) -> Result<Self, String> {
         if !is_letter(base) && sign(base).is_none() {
-            return Err(format!("`{base}` is neither one letter nor the name of a Greek letter"));
+            return Err(format!(
+                "`{base}` is neither one letter nor the name of a Greek letter"
+            ));
         }
-        match index.iter().find(|part| part.is_empty() || part.len() > 16 || !part.chars().all(is_index_char)) {
-            Some(part) => Err(format!("`{part}` cannot stand in an index: letters and digits only")),
-            None => Ok(Self { base: base.to_owned(), index }),
+        match index
+            .iter()
+            .find(|part| part.is_empty() || part.len() > 16 || !part.chars().all(is_index_char))
+        {
+            Some(part) => Err(format!(
+                "`{part}` cannot stand in an index: letters and digits only"
+            )),
+            None => Ok(Self {
+                base: base.to_owned(),
+                index,
+            }),
         }
     }
 
@@ -100,7 +110,10 @@ impl Symbol {
             if !tight {
                 plain.push('_');
             }
-            plain.extend(part.chars().map(|c| if c.is_ascii_alphanumeric() { c } else { '_' }));
+            plain.extend(
+                part.chars()
+                    .map(|c| if c.is_ascii_alphanumeric() { c } else { '_' }),
+            );
         }
         plain
     }
@@ -119,7 +132,9 @@ impl Symbol {
             None if is_letter(text) || text.bytes().all(|c| c.is_ascii_digit()) => text.to_owned(),
             None => format!("\"{text}\""),
         };
-        self.join(part, " ", "\",\" ", |base, index| format!("{base}_({index})"))
+        self.join(part, " ", "\",\" ", |base, index| {
+            format!("{base}_({index})")
+        })
     }
 
     /// The symbol in LaTeX maths.
@@ -171,7 +186,13 @@ impl Symbol {
     /// A bound of its printed width, in widths of a digit.
     #[must_use]
     pub fn width(&self) -> f64 {
-        let part = |text: &str| if is_letter(text) || sign(text).is_some() { 1.0 } else { 0.95 * text.len() as f64 };
+        let part = |text: &str| {
+            if is_letter(text) || sign(text).is_some() {
+                1.0
+            } else {
+                0.95 * text.len() as f64
+            }
+        };
         let commas = 0.4 * self.index.len().saturating_sub(1) as f64;
         1.35 + 0.72 * (self.index.iter().map(|text| part(text)).sum::<f64>() + commas)
     }

@@ -78,8 +78,14 @@ impl Table {
     }
 
     fn outside(&self, key: String) -> Problem {
-        let covers: Vec<String> = (0..self.rows.len()).map(|row| self.row_words(row)).collect();
-        Problem::OutsideTable { key, table: self.name.clone(), covers: covers.join("; ") }
+        let covers: Vec<String> = (0..self.rows.len())
+            .map(|row| self.row_words(row))
+            .collect();
+        Problem::OutsideTable {
+            key,
+            table: self.name.clone(),
+            covers: covers.join("; "),
+        }
     }
 
     /// The key of a row in words, such as `S355` or `over 6 up to 13`.
@@ -102,5 +108,9 @@ impl Table {
 
 /// The error of a lookup at its place in a formula.
 pub(super) fn at_place(problem: Problem, text: &str, span: std::ops::Range<usize>) -> FormulaError {
-    FormulaError { text: text.to_owned(), span, problem }
+    FormulaError {
+        text: text.to_owned(),
+        span,
+        problem,
+    }
 }

@@ -26,7 +26,11 @@ impl Triple {
     /// The values in the printing set.
     #[must_use]
     pub fn values(&self) -> [f64; 3] {
-        [self.parts[0].value, self.parts[1].value, self.parts[2].value]
+        [
+            self.parts[0].value,
+            self.parts[1].value,
+            self.parts[2].value,
+        ]
     }
 }
 

@@ -16,7 +16,16 @@ impl Builder<'_> {
     /// Works every arc of the group.
     pub(super) fn arcs(&mut self) -> Result<(), FormulaError> {
         for index in 0..self.runs.len() {
-            let Segment::Arc { centre, u, v, sweep, .. } = self.runs[index].path else { continue };
+            let Segment::Arc {
+                centre,
+                u,
+                v,
+                sweep,
+                ..
+            } = self.runs[index].path
+            else {
+                continue;
+            };
             let name = self.runs[index].name.clone();
             self.heading(&format!("Arc of run {}, {name}", index + 1));
             self.arc_inputs(index, centre);
@@ -30,15 +39,36 @@ impl Builder<'_> {
     }
 
     /// Shows a step of a run and keeps its value.
-    fn arc_step(&mut self, index: usize, name: &str, symbol: Symbol, says: &str, formula: &str) -> Result<Value, FormulaError> {
+    fn arc_step(
+        &mut self,
+        index: usize,
+        name: &str,
+        symbol: Symbol,
+        says: &str,
+        formula: &str,
+    ) -> Result<Value, FormulaError> {
         let value = self.run_step(index, name, &symbol, says, formula)?;
         self.show(value);
         Ok(value)
     }
 
-    fn arc_given(&mut self, index: usize, name: &str, symbol: Symbol, says: &str, given: &Given, origin: Origin) {
+    fn arc_given(
+        &mut self,
+        index: usize,
+        name: &str,
+        symbol: Symbol,
+        says: &str,
+        given: &Given,
+        origin: Origin,
+    ) {
         let id = self.slug_id(index, name);
-        let value = self.input(id, symbol.with(&(index + 1).to_string()), says, given, origin);
+        let value = self.input(
+            id,
+            symbol.with(&(index + 1).to_string()),
+            says,
+            given,
+            origin,
+        );
         self.show(value);
         self.run_values[index].insert(name.to_owned(), value);
     }
@@ -47,26 +77,52 @@ impl Builder<'_> {
     fn arc_inputs(&mut self, index: usize, centre: V3) {
         let spec: RunSpec = self.joint.weld.runs[self.runs[index].spec].clone();
         let (told, radius, angles) = match &spec.path {
-            PathSpec::Arc { centre, radius, from, sweep } => (centre, radius, Some((from, sweep))),
+            PathSpec::Arc {
+                centre,
+                radius,
+                from,
+                sweep,
+            } => (centre, radius, Some((from, sweep))),
             PathSpec::Circle { centre, radius } => (centre, radius, None),
             PathSpec::Straight(_) | PathSpec::Polyline { .. } => return,
         };
         let number = format!("run {}", index + 1);
         let origin = Origin::Input(radius.place.clone());
-        self.arc_given(index, "R", Symbol::of("R", &[]), &format!("Radius of {number}"), &radius.value, origin);
+        self.arc_given(
+            index,
+            "R",
+            Symbol::of("R", &[]),
+            &format!("Radius of {number}"),
+            &radius.value,
+            origin,
+        );
         for axis in axes(self.planar) {
             let a = AXES[*axis];
             let symbol = Symbol::of(a, &["0"]);
             let says = format!("Centre of {number}, {a}");
             if (told.parts[*axis].value - centre[*axis]).abs() <= 1e-12 * self.properties.size {
                 let origin = Origin::Input(told.place.clone());
-                self.arc_given(index, &format!("{a}_0"), symbol, &says, &told.parts[*axis], origin);
+                self.arc_given(
+                    index,
+                    &format!("{a}_0"),
+                    symbol,
+                    &says,
+                    &told.parts[*axis],
+                    origin,
+                );
             } else {
                 let id = self.slug_id(index, &format!("{a}_0"));
                 let origin = Origin::Input(spec.place.clone());
                 let symbol = symbol.with(&(index + 1).to_string());
                 let formula = "laid out from the run as told";
-                let draft = Draft { id, symbol, says, formula, origin, dim: None };
+                let draft = Draft {
+                    id,
+                    symbol,
+                    says,
+                    formula,
+                    origin,
+                    dim: None,
+                };
                 let value = self.ledger.found(draft, centre[*axis], Dim::LENGTH);
                 self.show(value);
                 self.run_values[index].insert(format!("{a}_0"), value);
@@ -78,14 +134,27 @@ impl Builder<'_> {
                 ("phi", Symbol::of("phi", &[]), "Swept angle", sweep),
             ] {
                 let origin = Origin::Input(given.place.clone());
-                self.arc_given(index, name, symbol, &format!("{says} of {number}"), &given.value, origin);
+                self.arc_given(
+                    index,
+                    name,
+                    symbol,
+                    &format!("{says} of {number}"),
+                    &given.value,
+                    origin,
+                );
             }
         }
     }
 
     /// A full circle.
     fn circle(&mut self, index: usize) -> Result<(), FormulaError> {
-        self.arc_step(index, "L", Symbol::of("L", &[]), "Length of the circle", "2*pi*R")?;
+        self.arc_step(
+            index,
+            "L",
+            Symbol::of("L", &[]),
+            "Length of the circle",
+            "2*pi*R",
+        )?;
         for axis in axes(self.planar) {
             let centre = self.run_values[index][&format!("{}_0", AXES[*axis])];
             self.run_values[index].insert(format!("{}_m", AXES[*axis]), centre);
@@ -103,7 +172,12 @@ impl Builder<'_> {
                 (true, false) => {
                     let id = self.slug_id(index, OWN[at]);
                     let symbol = symbol.with(&(index + 1).to_string());
-                    let value = self.zero(id, symbol, "Product of inertia of a full circle", Dim::SECOND);
+                    let value = self.zero(
+                        id,
+                        symbol,
+                        "Product of inertia of a full circle",
+                        Dim::SECOND,
+                    );
                     self.show(value);
                     self.run_values[index].insert(OWN[at].to_owned(), value);
                     continue;
@@ -125,12 +199,25 @@ impl Builder<'_> {
                 continue;
             }
             let says = format!("Faying normal of run {}, {}", index + 1, AXES[axis]);
-            self.direction_value(index, &name, Symbol::of("n", &[AXES[axis]]), says, normal[axis]);
+            self.direction_value(
+                index,
+                &name,
+                Symbol::of("n", &[AXES[axis]]),
+                says,
+                normal[axis],
+            );
         }
     }
 
     /// A direction of a run as a found value.
-    pub(super) fn direction_value(&mut self, index: usize, name: &str, symbol: Symbol, says: String, value: f64) {
+    pub(super) fn direction_value(
+        &mut self,
+        index: usize,
+        name: &str,
+        symbol: Symbol,
+        says: String,
+        value: f64,
+    ) {
         let spec = self.runs[index].spec;
         let draft = Draft {
             id: self.slug_id(index, name),
@@ -146,30 +233,83 @@ impl Builder<'_> {
     }
 
     /// An arc that does not close, in its own axes u and v, then in those of the joint.
-    fn open_arc(&mut self, index: usize, forward: bool, plane: [V3; 2]) -> Result<(), FormulaError> {
+    fn open_arc(
+        &mut self,
+        index: usize,
+        forward: bool,
+        plane: [V3; 2],
+    ) -> Result<(), FormulaError> {
         let trimmed = self.is_trimmed();
-        let cut = |sign: &str, end: &str| if trimmed { format!(" {sign} {end}/R*(1 rad)") } else { String::new() };
+        let cut = |sign: &str, end: &str| {
+            if trimmed {
+                format!(" {sign} {end}/R*(1 rad)")
+            } else {
+                String::new()
+            }
+        };
         let (low, high) = if forward {
-            (format!("theta_0{}", cut("+", "e_a")), format!("theta_0 + phi{}", cut("-", "e_b")))
+            (
+                format!("theta_0{}", cut("+", "e_a")),
+                format!("theta_0 + phi{}", cut("-", "e_b")),
+            )
         } else {
-            (format!("theta_0 + phi{}", cut("+", "e_b")), format!("theta_0{}", cut("-", "e_a")))
+            (
+                format!("theta_0 + phi{}", cut("+", "e_b")),
+                format!("theta_0{}", cut("-", "e_a")),
+            )
         };
         let theta = |end: &str| Symbol::of("theta", &[end]);
-        self.arc_step(index, "theta_a", theta("a"), "Lower limit of the effective arc", &low)?;
-        self.arc_step(index, "theta_b", theta("b"), "Upper limit of the effective arc", &high)?;
+        self.arc_step(
+            index,
+            "theta_a",
+            theta("a"),
+            "Lower limit of the effective arc",
+            &low,
+        )?;
+        self.arc_step(
+            index,
+            "theta_b",
+            theta("b"),
+            "Upper limit of the effective arc",
+            &high,
+        )?;
         let length = "pi*R*(theta_b - theta_a)/(180 deg)";
-        self.arc_step(index, "L", Symbol::of("L", &[]), "Effective length of the arc", length)?;
+        self.arc_step(
+            index,
+            "L",
+            Symbol::of("L", &[]),
+            "Effective length of the arc",
+            length,
+        )?;
         self.arc_step(index, "A", Symbol::of("A", &[]), "Throat area", "t*L")?;
         let along = "R^2*(sin(theta_b) - sin(theta_a))/L";
         let across = "R^2*(cos(theta_a) - cos(theta_b))/L";
-        self.arc_step(index, "c_u", Symbol::of("c", &["u"]), "Centroid from the centre, toward 0°", along)?;
-        self.arc_step(index, "c_v", Symbol::of("c", &["v"]), "Centroid from the centre, toward 90°", across)?;
+        self.arc_step(
+            index,
+            "c_u",
+            Symbol::of("c", &["u"]),
+            "Centroid from the centre, toward 0°",
+            along,
+        )?;
+        self.arc_step(
+            index,
+            "c_v",
+            Symbol::of("c", &["v"]),
+            "Centroid from the centre, toward 90°",
+            across,
+        )?;
         if !self.planar {
             for (letter, axis) in ["u", "v"].into_iter().zip(plane) {
                 for component in 0..3 {
                     let name = format!("{letter}_{}", AXES[component]);
                     let says = format!("Axis {letter} of the arc's plane, {}", AXES[component]);
-                    self.direction_value(index, &name, Symbol::of(letter, &[AXES[component]]), says, axis[component]);
+                    self.direction_value(
+                        index,
+                        &name,
+                        Symbol::of(letter, &[AXES[component]]),
+                        says,
+                        axis[component],
+                    );
                 }
             }
         }
@@ -180,7 +320,13 @@ impl Builder<'_> {
                 (true, _) => "y_0 + c_v".to_owned(),
                 (false, _) => format!("{a}_0 + c_u*u_{a} + c_v*v_{a}"),
             };
-            self.arc_step(index, &format!("{a}_m"), Symbol::of(a, &["m"]), "Centroid of the arc", &formula)?;
+            self.arc_step(
+                index,
+                &format!("{a}_m"),
+                Symbol::of(a, &["m"]),
+                "Centroid of the arc",
+                &formula,
+            )?;
         }
         self.own_moments(index)
     }
@@ -200,9 +346,11 @@ impl Builder<'_> {
             }
             return Ok(());
         }
-        for (name, symbol, formula) in
-            [("Q_uu", q("u", "u"), uu.as_str()), ("Q_vv", q("v", "v"), vv.as_str()), ("Q_uv", q("u", "v"), uv)]
-        {
+        for (name, symbol, formula) in [
+            ("Q_uu", q("u", "u"), uu.as_str()),
+            ("Q_vv", q("v", "v"), vv.as_str()),
+            ("Q_uv", q("u", "v"), uv),
+        ] {
             self.arc_step(index, name, symbol, says, formula)?;
         }
         for (at, (name, p, r)) in self.pairs().iter().enumerate() {
@@ -212,7 +360,13 @@ impl Builder<'_> {
             } else {
                 format!("Q_uu*u_{a}*u_{b} + Q_vv*v_{a}*v_{b} + Q_uv*(u_{a}*v_{b} + u_{b}*v_{a})")
             };
-            self.arc_step(index, OWN[at], Self::pair_symbol(name).with("0"), says, &formula)?;
+            self.arc_step(
+                index,
+                OWN[at],
+                Self::pair_symbol(name).with("0"),
+                says,
+                &formula,
+            )?;
         }
         Ok(())
     }

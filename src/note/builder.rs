@@ -102,7 +102,11 @@ pub(super) struct Builder<'a> {
 impl Builder<'_> {
     /// Starts a section.
     pub(super) fn part(&mut self, id: &str, title: &str) {
-        self.parts.push(Part { title: title.to_owned(), id: id.to_owned(), pieces: Vec::new() });
+        self.parts.push(Part {
+            title: title.to_owned(),
+            id: id.to_owned(),
+            pieces: Vec::new(),
+        });
     }
 
     fn last(&mut self) -> &mut Part {
@@ -116,7 +120,9 @@ impl Builder<'_> {
 
     /// Adds a small heading.
     pub(super) fn heading(&mut self, text: &str) {
-        self.last().pieces.push(Piece::Block(Block::Heading { text: text.to_owned() }));
+        self.last().pieces.push(Piece::Block(Block::Heading {
+            text: text.to_owned(),
+        }));
     }
 
     /// Adds a finished block.
@@ -144,7 +150,11 @@ impl Builder<'_> {
 
     /// A cell for a value: its own place if it has none yet, else a link to it.
     pub(super) fn cell(&mut self, value: Value) -> Cell {
-        if self.placed.insert(value) { Cell::Own(value) } else { Cell::Linked(value) }
+        if self.placed.insert(value) {
+            Cell::Own(value)
+        } else {
+            Cell::Linked(value)
+        }
     }
 
     /// Makes a step without showing it, and binds it to `name`.
@@ -159,26 +169,59 @@ impl Builder<'_> {
         env: &Env,
     ) -> Result<Value, FormulaError> {
         let origin = Origin::Method(method.to_owned());
-        let value = self.ledger.step(Draft { id, symbol, says, formula, origin, dim: None }, env)?;
+        let value = self.ledger.step(
+            Draft {
+                id,
+                symbol,
+                says,
+                formula,
+                origin,
+                dim: None,
+            },
+            env,
+        )?;
         self.env.bind(name, value);
         Ok(value)
     }
 
     /// Makes a step of the whole joint, shows it, and binds it to its own plain name.
-    pub(super) fn step(&mut self, symbol: Symbol, says: &str, formula: &str, method: &str) -> Result<Value, FormulaError> {
+    pub(super) fn step(
+        &mut self,
+        symbol: Symbol,
+        says: &str,
+        formula: &str,
+        method: &str,
+    ) -> Result<Value, FormulaError> {
         let name = symbol.plain();
         let env = self.env.clone();
-        let value = self.make(&name, name.replace('_', "-"), symbol, says.to_owned(), formula, method, &env)?;
+        let value = self.make(
+            &name,
+            name.replace('_', "-"),
+            symbol,
+            says.to_owned(),
+            formula,
+            method,
+            &env,
+        )?;
         self.show(value);
         Ok(value)
     }
 
     /// An input of the joint file, put into the ledger once for each place and symbol.
-    pub(super) fn input(&mut self, id: String, symbol: Symbol, says: &str, given: &Given, origin: Origin) -> Value {
+    pub(super) fn input(
+        &mut self,
+        id: String,
+        symbol: Symbol,
+        says: &str,
+        given: &Given,
+        origin: Origin,
+    ) -> Value {
         if let Some(known) = self.given.get(&id) {
             return *known;
         }
-        let value = self.ledger.given(id.clone(), symbol, says.to_owned(), given, origin);
+        let value = self
+            .ledger
+            .given(id.clone(), symbol, says.to_owned(), given, origin);
         self.given.insert(id, value);
         value
     }
@@ -192,11 +235,25 @@ impl Builder<'_> {
 
 /// A column of numbers whose head is a symbol.
 pub(super) fn number_column(head: Inline, unit: &str) -> Column {
-    let unit = if unit.is_empty() { Vec::new() } else { plain(unit) };
-    Column { head: vec![head], unit, align: Align::Point, share: 0 }
+    let unit = if unit.is_empty() {
+        Vec::new()
+    } else {
+        plain(unit)
+    };
+    Column {
+        head: vec![head],
+        unit,
+        align: Align::Point,
+        share: 0,
+    }
 }
 
 /// A column of words.
 pub(super) fn word_column(head: &str, share: u32) -> Column {
-    Column { head: plain(head), unit: Vec::new(), align: Align::Left, share }
+    Column {
+        head: plain(head),
+        unit: Vec::new(),
+        align: Align::Left,
+        share,
+    }
 }

@@ -47,8 +47,13 @@ pub struct Refusal {
 }
 
 /// Faults of an assessment that are no mistakes of the file: a clause that does not apply.
-const REFUSALS: [&str; 5] =
-    ["ends-mismatch", "run-not-checked", "outside-validity", "outside-table", "weld-not-taken"];
+const REFUSALS: [&str; 5] = [
+    "ends-mismatch",
+    "run-not-checked",
+    "outside-validity",
+    "outside-table",
+    "weld-not-taken",
+];
 
 impl<'a> Calculation<'a> {
     /// Computes a joint.
@@ -57,12 +62,24 @@ impl<'a> Calculation<'a> {
     ///
     /// [`Faults`] with their places, if the joint file asks for what cannot be laid out or checked.
     pub fn of(joint: &'a Joint, library: &Library) -> Result<Self, Faults> {
-        let runs = lay_runs(joint).map_err(|faults| Faults(faults.0.into_iter().map(weld_fault).collect()))?;
+        let runs = lay_runs(joint)
+            .map_err(|faults| Faults(faults.0.into_iter().map(weld_fault).collect()))?;
         let properties = line_properties(&runs);
         let actions = actions(&joint.loads).map_err(|fault| Faults(vec![frame_fault(&fault)]))?;
         let resistance = Resistance::new(&runs, &properties);
-        let fields: Vec<_> = actions.iter().map(|action| resistance.field_of(action)).collect();
-        let mut calculation = Self { joint, runs, properties, actions, resistance, fields, outcomes: Vec::new() };
+        let fields: Vec<_> = actions
+            .iter()
+            .map(|action| resistance.field_of(action))
+            .collect();
+        let mut calculation = Self {
+            joint,
+            runs,
+            properties,
+            actions,
+            resistance,
+            fields,
+            outcomes: Vec::new(),
+        };
         calculation.outcomes = calculation.assess_all(library)?;
         Ok(calculation)
     }
@@ -74,7 +91,9 @@ impl<'a> Calculation<'a> {
         let height = self.properties.centroid.z;
         let near = 1e-9 * self.properties.size;
         let at_height = |run: &Run| {
-            [0.0, 0.25, 0.5, 1.0].iter().all(|p| (run.path.point(*p).z - height).abs() <= near)
+            [0.0, 0.25, 0.5, 1.0]
+                .iter()
+                .all(|p| (run.path.point(*p).z - height).abs() <= near)
         };
         self.runs.iter().all(|run| flat(run) && at_height(run))
     }
@@ -82,7 +101,10 @@ impl<'a> Calculation<'a> {
     /// The first case that the group cannot resist, and why.
     #[must_use]
     pub fn unresisted(&self) -> Option<(usize, Unresisted)> {
-        self.fields.iter().enumerate().find_map(|(case, field)| field.as_ref().err().map(|why| (case, *why)))
+        self.fields
+            .iter()
+            .enumerate()
+            .find_map(|(case, field)| field.as_ref().err().map(|why| (case, *why)))
     }
 
     fn assess_all(&self, library: &Library) -> Result<Vec<Outcome>, Faults> {
@@ -91,25 +113,39 @@ impl<'a> Calculation<'a> {
         for (index, check) in self.joint.checks.iter().enumerate() {
             let mut alone = self.joint.clone();
             alone.checks = vec![check.clone()];
-            let strength = library.find(&check.clause.value).is_some_and(|sheet| !sheet.checks.is_empty());
+            let strength = library
+                .find(&check.clause.value)
+                .is_some_and(|sheet| !sheet.checks.is_empty());
             if let (true, Some((case, why))) = (strength, self.unresisted()) {
-                outcomes.push(Outcome::Refused(self.no_path(check.clause.value.clone(), case, &why)));
+                outcomes.push(Outcome::Refused(self.no_path(
+                    check.clause.value.clone(),
+                    case,
+                    &why,
+                )));
                 continue;
             }
             let stress = |case: usize, run: usize, p: f64| match &self.fields[case] {
                 Ok(field) => field.at(self.runs[run].path.point(p)),
                 Err(_) => V3::zeros(),
             };
-            let ground = Ground { joint: &alone, runs: &self.runs, stress: &stress };
+            let ground = Ground {
+                joint: &alone,
+                runs: &self.runs,
+                stress: &stress,
+            };
             match assess(&ground, library) {
                 Ok(assessment) => outcomes.extend(assessment.asked.into_iter().map(|mut asked| {
                     asked.index = index;
                     Outcome::Assessed(asked)
                 })),
                 Err(found) if found.0.iter().all(|fault| REFUSALS.contains(&fault.code)) => {
-                    let reasons: Vec<&str> = found.0.iter().map(|fault| fault.message.as_str()).collect();
-                    let help: Vec<&str> =
-                        found.0.iter().flat_map(|fault| fault.help.iter().map(String::as_str)).collect();
+                    let reasons: Vec<&str> =
+                        found.0.iter().map(|fault| fault.message.as_str()).collect();
+                    let help: Vec<&str> = found
+                        .0
+                        .iter()
+                        .flat_map(|fault| fault.help.iter().map(String::as_str))
+                        .collect();
                     outcomes.push(Outcome::Refused(Refusal {
                         clause: check.clause.value.clone(),
                         reason: reasons.join("; "),
@@ -119,7 +155,11 @@ impl<'a> Calculation<'a> {
                 Err(found) => faults.extend(found.0),
             }
         }
-        if faults.is_empty() { Ok(outcomes) } else { Err(Faults(faults)) }
+        if faults.is_empty() {
+            Ok(outcomes)
+        } else {
+            Err(Faults(faults))
+        }
     }
 
     fn no_path(&self, clause: String, case: usize, why: &Unresisted) -> Refusal {
@@ -128,10 +168,18 @@ impl<'a> Calculation<'a> {
             Unresisted::AboutLine { .. } => {
                 "weld a second line away from the first, or let another part carry this moment and take it out of the case"
             }
-            Unresisted::OnPoint { .. } | Unresisted::NoArea => "give the group runs of length that can resist a moment",
-            Unresisted::Inaccurate { .. } => "spread the runs: the group is too nearly a line for this moment",
+            Unresisted::OnPoint { .. } | Unresisted::NoArea => {
+                "give the group runs of length that can resist a moment"
+            }
+            Unresisted::Inaccurate { .. } => {
+                "spread the runs: the group is too nearly a line for this moment"
+            }
         };
-        Refusal { clause, reason: format!("case {name}: {why}"), help: help.to_owned() }
+        Refusal {
+            clause,
+            reason: format!("case {name}: {why}"),
+            help: help.to_owned(),
+        }
     }
 }
 

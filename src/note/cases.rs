@@ -10,13 +10,21 @@ use crate::formula::Printed;
 const DIGITS: usize = 6;
 
 /// The worst points of one case, one for each strength check that takes it.
-pub(super) fn of_case<'c>(calculation: &'c Calculation<'_>, case: usize) -> Vec<(String, &'c Governing)> {
+pub(super) fn of_case<'c>(
+    calculation: &'c Calculation<'_>,
+    case: usize,
+) -> Vec<(String, &'c Governing)> {
     let mut found = Vec::new();
     for outcome in &calculation.outcomes {
-        let Outcome::Assessed(asked) = outcome else { continue };
+        let Outcome::Assessed(asked) = outcome else {
+            continue;
+        };
         for strength in &asked.strength {
             if let Some(at) = strength.per_case.iter().find(|at| at.case == case) {
-                let part = at.part.map(|turn| format!(", {}", turn.word())).unwrap_or_default();
+                let part = at
+                    .part
+                    .map(|turn| format!(", {}", turn.word()))
+                    .unwrap_or_default();
                 found.push((format!("{}{part}", check_name(asked, strength.check)), at));
             }
         }
@@ -34,15 +42,26 @@ pub(super) fn rows(calculation: &Calculation<'_>) -> Vec<Vec<String>> {
     let mut rows = Vec::new();
     for (index, case) in calculation.joint.loads.cases.iter().enumerate() {
         for (check, at) in of_case(calculation, index) {
-            rows.push(vec![case.name.value.clone(), check, number(at.demand), number(at.capacity)]);
+            rows.push(vec![
+                case.name.value.clone(),
+                check,
+                number(at.demand),
+                number(at.capacity),
+            ]);
         }
     }
     for outcome in &calculation.outcomes {
         match outcome {
             Outcome::Assessed(asked) => rows.extend(asked.limits.iter().map(|limit| {
-                vec![asked.sheet.name.value.clone(), number(limit.value), number(limit.bound)]
+                vec![
+                    asked.sheet.name.value.clone(),
+                    number(limit.value),
+                    number(limit.bound),
+                ]
             })),
-            Outcome::Refused(refusal) => rows.push(vec![refusal.clause.clone(), refusal.reason.clone()]),
+            Outcome::Refused(refusal) => {
+                rows.push(vec![refusal.clause.clone(), refusal.reason.clone()])
+            }
         }
     }
     rows
@@ -57,10 +76,24 @@ pub(super) fn csv(trace: &Trace) -> String {
     );
     for case in &trace.cases {
         for check in &case.checks {
-            let mut cells = vec![quoted(&case.case), case.level.to_owned(), quoted(&check.check), quoted(&check.point)];
-            cells.extend(check.position.iter().chain([&check.demand, &check.capacity]).map(|value| plain_number(*value)));
+            let mut cells = vec![
+                quoted(&case.case),
+                case.level.to_owned(),
+                quoted(&check.check),
+                quoted(&check.point),
+            ];
+            cells.extend(
+                check
+                    .position
+                    .iter()
+                    .chain([&check.demand, &check.capacity])
+                    .map(|value| plain_number(*value)),
+            );
             cells.push(check.utilisation.map_or(String::new(), plain_number));
-            cells.push(check.margin.map_or_else(|| check.reason.as_deref().map_or(String::new(), quoted), plain_number));
+            cells.push(check.margin.map_or_else(
+                || check.reason.as_deref().map_or(String::new(), quoted),
+                plain_number,
+            ));
             text.push_str(&cells.join(","));
             text.push_str("\r\n");
         }
@@ -80,6 +113,14 @@ fn plain_number(value: f64) -> String {
 
 /// A text as a CSV cell; a leading sign that spreadsheets would take for a formula is kept as text.
 fn quoted(text: &str) -> String {
-    let text = if text.starts_with(['=', '+', '-', '@']) { format!("'{text}") } else { text.to_owned() };
-    if text.contains([',', '"', '\n', '\r']) { format!("\"{}\"", text.replace('"', "\"\"")) } else { text }
+    let text = if text.starts_with(['=', '+', '-', '@']) {
+        format!("'{text}")
+    } else {
+        text.to_owned()
+    };
+    if text.contains([',', '"', '\n', '\r']) {
+        format!("\"{}\"", text.replace('"', "\"\""))
+    } else {
+        text
+    }
 }

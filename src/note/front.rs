@@ -19,7 +19,12 @@ impl Builder<'_> {
         if let Some(purpose) = &self.joint.purpose {
             self.para(plain(&purpose.value));
         }
-        let item = self.joint.item.as_ref().map(|item| format!(" of the {}", item.value)).unwrap_or_default();
+        let item = self
+            .joint
+            .item
+            .as_ref()
+            .map(|item| format!(" of the {}", item.value))
+            .unwrap_or_default();
         let [attached, base] = self.runs[0].joins;
         let name = |index: usize| self.joint.parts[index].name.value.clone();
         let text = format!(
@@ -34,9 +39,22 @@ impl Builder<'_> {
     /// Where the inputs come from, and the unit set.
     pub(super) fn inputs(&mut self) {
         self.part("inputs", "Inputs and their sources");
-        let file = self.joint.note.place.file.name.rsplit('/').next().unwrap_or_default().to_owned();
+        let file = self
+            .joint
+            .note
+            .place
+            .file
+            .name
+            .rsplit('/')
+            .next()
+            .unwrap_or_default()
+            .to_owned();
         let units = self.joint.units.value;
-        let mut text = vec![piece("All inputs stand in "), emph(&file), piece(", which travels inside the PDF")];
+        let mut text = vec![
+            piece("All inputs stand in "),
+            emph(&file),
+            piece(", which travels inside the PDF"),
+        ];
         if let Some(drawing) = &self.joint.drawing {
             text.push(piece(&format!("; geometry by drawing {}", drawing.value)));
         }
@@ -64,13 +82,20 @@ impl Builder<'_> {
             items.push(Item {
                 label,
                 text: plain(&assumption.says.value),
-                mark: assumption.to_be_verified.then(|| "to be verified".to_owned()),
+                mark: assumption
+                    .to_be_verified
+                    .then(|| "to be verified".to_owned()),
                 source: Some(assumption.says.place.short()),
             });
         }
         for (says, source) in of_sheets {
             let label = format!("A{}", items.len() + 1);
-            items.push(Item { label, text: plain(says), mark: None, source: Some(source.clone()) });
+            items.push(Item {
+                label,
+                text: plain(says),
+                mark: None,
+                source: Some(source.clone()),
+            });
         }
         if !items.is_empty() {
             self.items(items);
@@ -82,7 +107,10 @@ impl Builder<'_> {
     pub(super) fn geometry(&mut self) {
         self.part("geometry", "Axes and geometry");
         let frame = &self.joint.frame;
-        let mut text = vec![piece(&format!("The origin is the {}", frame.origin.value.trim_end_matches('.')))];
+        let mut text = vec![piece(&format!(
+            "The origin is the {}",
+            frame.origin.value.trim_end_matches('.')
+        ))];
         let mut parted = ";";
         for (axis, words) in super::points::AXES.iter().zip(&frame.axes) {
             if let Some(words) = words {
@@ -102,10 +130,16 @@ impl Builder<'_> {
             text.push(symbol(&Symbol::of("z", &[])));
             text.push(piece(" out of the base toward the attached part."));
         } else {
-            text.push(piece("The group stands in space; each run has its own faying normal."));
+            text.push(piece(
+                "The group stands in space; each run has its own faying normal.",
+            ));
         }
         self.para(text);
-        self.block(Block::Figure(FigureRef { name: FIGURE.to_owned(), caption: Vec::new(), alt: String::new() }));
+        self.block(Block::Figure(FigureRef {
+            name: FIGURE.to_owned(),
+            caption: Vec::new(),
+            alt: String::new(),
+        }));
         if !self.points.is_empty() {
             self.point_table();
         }
@@ -126,7 +160,10 @@ impl Builder<'_> {
             .map(|index| {
                 let run = &self.runs[index];
                 let [from, to] = ends(&run.told);
-                let number = |at| self.point_at(at).map_or_else(|| "–".to_owned(), |point| point.number.to_string());
+                let number = |at| {
+                    self.point_at(at)
+                        .map_or_else(|| "–".to_owned(), |point| point.number.to_string())
+                };
                 let cells = vec![
                     Cell::Text(plain(&(index + 1).to_string())),
                     Cell::Text(plain(&run.name)),
@@ -135,10 +172,20 @@ impl Builder<'_> {
                     Cell::Text(plain(&number(to))),
                     Cell::Text(plain(&end_words(run.ends))),
                 ];
-                Line { id: format!("run.{}", self.slugs[index]), cells, strong: false }
+                Line {
+                    id: format!("run.{}", self.slugs[index]),
+                    cells,
+                    strong: false,
+                }
             })
             .collect();
-        self.table(Sheet { id: "runs".to_owned(), caption: plain("Runs as told"), columns, rows, foot: None });
+        self.table(Sheet {
+            id: "runs".to_owned(),
+            caption: plain("Runs as told"),
+            columns,
+            rows,
+            foot: None,
+        });
     }
 
     /// A run's weld in words, sizes as typed.
@@ -152,11 +199,20 @@ impl Builder<'_> {
         };
         let mut words = match &spec.size {
             SizeSpec::Fillet { leg, .. } => format!("fillet, leg {}", typed(&leg.value)),
-            SizeSpec::Unequal { on_base, on_attached } => {
-                format!("fillet, legs {} on base, {} on attached", typed(&on_base.value), typed(&on_attached.value))
+            SizeSpec::Unequal {
+                on_base,
+                on_attached,
+            } => {
+                format!(
+                    "fillet, legs {} on base, {} on attached",
+                    typed(&on_base.value),
+                    typed(&on_attached.value)
+                )
             }
             SizeSpec::Throat { throat, .. } => format!("fillet, throat {}", typed(&throat.value)),
-            SizeSpec::Partial { throat } => format!("partial penetration, throat {}", typed(&throat.value)),
+            SizeSpec::Partial { throat } => {
+                format!("partial penetration, throat {}", typed(&throat.value))
+            }
             SizeSpec::Complete { .. } => "complete penetration".to_owned(),
         };
         if let Some(gap) = &spec.gap {
@@ -172,23 +228,43 @@ impl Builder<'_> {
     pub(super) fn materials(&mut self) {
         self.part("materials", "Materials and allowables");
         let units = self.joint.units.value;
-        let stress = |base: &str, index: &str| number_column(symbol(&Symbol::of(base, &[index])), units.stress());
+        let stress = |base: &str, index: &str| {
+            number_column(symbol(&Symbol::of(base, &[index])), units.stress())
+        };
         let columns = vec![
             word_column("part", 2),
             word_column("material", 2),
             number_column(symbol(&Symbol::of("t", &["p"])), units.length()),
             stress("f", "y"),
             stress("f", "u"),
-            Column { head: plain("source"), unit: Vec::new(), align: Align::Left, share: 4 },
+            Column {
+                head: plain("source"),
+                unit: Vec::new(),
+                align: Align::Left,
+                share: 4,
+            },
         ];
         let parts: Vec<Part> = self.joint.parts.clone();
         let mut rows = Vec::new();
         for part in &parts {
-            let mut cells = vec![Cell::Text(plain(&part.name.value)), Cell::Text(plain(&part.material.value))];
+            let mut cells = vec![
+                Cell::Text(plain(&part.name.value)),
+                Cell::Text(plain(&part.material.value)),
+            ];
             for (name, symbol, says, given) in [
-                ("thickness", Symbol::of("t", &["p"]), "Thickness", &part.thickness),
+                (
+                    "thickness",
+                    Symbol::of("t", &["p"]),
+                    "Thickness",
+                    &part.thickness,
+                ),
                 ("f_y", Symbol::of("f", &["y"]), "Yield strength", &part.f_y),
-                ("f_u", Symbol::of("f", &["u"]), "Ultimate strength", &part.f_u),
+                (
+                    "f_u",
+                    Symbol::of("f", &["u"]),
+                    "Ultimate strength",
+                    &part.f_u,
+                ),
             ] {
                 let Some(given) = given else {
                     cells.push(Cell::Text(plain("–")));
@@ -196,29 +272,60 @@ impl Builder<'_> {
                 };
                 let id = format!("part.{}.{name}", super::text::slug(&part.name.value));
                 let says = format!("{says} of {}", part.name.value);
-                let value = self.input(id, symbol, &says, &given.value, Origin::Input(given.place.clone()));
+                let value = self.input(
+                    id,
+                    symbol,
+                    &says,
+                    &given.value,
+                    Origin::Input(given.place.clone()),
+                );
                 let unsure = part.to_be_verified || part.source.is_none();
                 if unsure && given.value.dim == Dim::STRESS {
-                    self.ledger.get_mut(value).mark = Some(format!("strengths of {}", part.name.value));
+                    self.ledger.get_mut(value).mark =
+                        Some(format!("strengths of {}", part.name.value));
                 }
                 cells.push(self.cell(value));
             }
-            cells.push(Cell::Text(source_words(part.source.as_ref().map(|s| s.value.as_str()), part.to_be_verified)));
-            rows.push(Line { id: format!("part.{}", super::text::slug(&part.name.value)), cells, strong: false });
+            cells.push(Cell::Text(source_words(
+                part.source.as_ref().map(|s| s.value.as_str()),
+                part.to_be_verified,
+            )));
+            rows.push(Line {
+                id: format!("part.{}", super::text::slug(&part.name.value)),
+                cells,
+                strong: false,
+            });
         }
-        self.table(Sheet { id: "parts".to_owned(), caption: plain("Parts joined"), columns, rows, foot: None });
+        self.table(Sheet {
+            id: "parts".to_owned(),
+            caption: plain("Parts joined"),
+            columns,
+            rows,
+            foot: None,
+        });
         self.filler();
     }
 
     fn filler(&mut self) {
-        let Some(filler) = self.joint.filler.clone() else { return };
-        let mut text = vec![piece(&format!("Filler metal {}; source: ", filler.name.value))];
-        text.extend(source_words(filler.source.as_ref().map(|s| s.value.as_str()), filler.to_be_verified));
+        let Some(filler) = self.joint.filler.clone() else {
+            return;
+        };
+        let mut text = vec![piece(&format!(
+            "Filler metal {}; source: ",
+            filler.name.value
+        ))];
+        text.extend(source_words(
+            filler.source.as_ref().map(|s| s.value.as_str()),
+            filler.to_be_verified,
+        ));
         text.push(piece("."));
         self.para(text);
         if let Some(given) = &filler.f_u {
             let symbol = Symbol::of("f", &["u", "w"]);
-            let says = format!("Ultimate strength of the filler metal {}", filler.name.value);
+            let says = format!(
+                "Ultimate strength of the filler metal {}",
+                filler.name.value
+            );
             let origin = Origin::Input(given.place.clone());
             let value = self.input("filler.f_u".to_owned(), symbol, &says, &given.value, origin);
             if filler.to_be_verified || filler.source.is_none() {
@@ -247,5 +354,9 @@ fn end_words(ends: [End; 2]) -> String {
         End::Stop { leg: false, .. } => "stop, less one throat",
     };
     let [start, end] = ends.map(word);
-    if start == end { format!("both {start}") } else { format!("{start}; {end}") }
+    if start == end {
+        format!("both {start}")
+    } else {
+        format!("{start}; {end}")
+    }
 }

@@ -23,7 +23,12 @@ pub struct Identity {
 impl Identity {
     /// The digests of a settled calculation; `sheets` are the canonical texts of the sheets used,
     /// `results` every printed outcome of every case.
-    pub(super) fn of(joint: &Joint, ledger: &Ledger, sheets: &[String], results: &[String]) -> Self {
+    pub(super) fn of(
+        joint: &Joint,
+        ledger: &Ledger,
+        sheets: &[String],
+        results: &[String],
+    ) -> Self {
         let mut technical = String::new();
         let mut words = String::new();
         for value in ledger.values() {
@@ -34,13 +39,27 @@ impl Identity {
                 Kind::Found { .. } => "found".to_owned(),
                 Kind::Bound { .. } => "bound".to_owned(),
             };
-            let _ = writeln!(technical, "{}|{kind}|{}", entry.id, ledger.printed(value).algebra());
+            let _ = writeln!(
+                technical,
+                "{}|{kind}|{}",
+                entry.id,
+                ledger.printed(value).algebra()
+            );
             let _ = writeln!(words, "{}", entry.says);
         }
         for case in &joint.loads.cases {
             let parts = [&case.force, &case.moment, &case.at].map(|triple| triple.values());
-            let _ = writeln!(technical, "{}|{}|{parts:?}", case.name.value, case.level.value.word());
-            let _ = writeln!(words, "{}", case.says.as_ref().map_or("", |says| says.value.as_str()));
+            let _ = writeln!(
+                technical,
+                "{}|{}|{parts:?}",
+                case.name.value,
+                case.level.value.word()
+            );
+            let _ = writeln!(
+                words,
+                "{}",
+                case.says.as_ref().map_or("", |says| says.value.as_str())
+            );
         }
         for line in sheets.iter().chain(results) {
             let _ = writeln!(technical, "{line}");
@@ -54,7 +73,10 @@ impl Identity {
         for caution in &joint.cautions {
             let _ = writeln!(words, "{}", caution.value);
         }
-        Self { calculation: digest(&technical), words: digest(&words) }
+        Self {
+            calculation: digest(&technical),
+            words: digest(&words),
+        }
     }
 
     /// The calculation digest as printed, such as `7f3a 91c2 08de`.
@@ -72,10 +94,12 @@ impl Identity {
 
 /// The SHA-256 of a text (FIPS 180-4) in hexadecimal.
 fn digest(text: &str) -> String {
-    Sha256::digest(text.as_bytes()).iter().fold(String::new(), |mut out, byte| {
-        let _ = write!(out, "{byte:02x}");
-        out
-    })
+    Sha256::digest(text.as_bytes())
+        .iter()
+        .fold(String::new(), |mut out, byte| {
+            let _ = write!(out, "{byte:02x}");
+            out
+        })
 }
 
 /// The first digits in groups of four.

@@ -31,7 +31,12 @@ impl Builder<'_> {
         let mut found = Vec::new();
         for piece in self.parts.iter().flat_map(|part| &part.pieces) {
             if let Piece::Table(sheet) = piece {
-                for cell in sheet.rows.iter().chain(&sheet.foot).flat_map(|row| &row.cells) {
+                for cell in sheet
+                    .rows
+                    .iter()
+                    .chain(&sheet.foot)
+                    .flat_map(|row| &row.cells)
+                {
                     if let Cell::Own(value) = cell
                         && matches!(self.ledger.get(*value).kind, Kind::Converted { .. })
                         && !found.contains(value)
@@ -52,7 +57,12 @@ impl Builder<'_> {
         }
         for piece in self.parts.iter_mut().flat_map(|part| &mut part.pieces) {
             if let Piece::Table(sheet) = piece {
-                for cell in sheet.rows.iter_mut().chain(&mut sheet.foot).flat_map(|row| &mut row.cells) {
+                for cell in sheet
+                    .rows
+                    .iter_mut()
+                    .chain(&mut sheet.foot)
+                    .flat_map(|row| &mut row.cells)
+                {
                     if let Cell::Own(value) = cell
                         && converted.contains(value)
                     {
@@ -115,7 +125,11 @@ impl Builder<'_> {
                         Piece::Table(sheet) => Block::Table(self.table_block(sheet)),
                     })
                     .collect();
-                Section { title: part.title, id: part.id, blocks }
+                Section {
+                    title: part.title,
+                    id: part.id,
+                    blocks,
+                }
             })
             .collect()
     }
@@ -134,7 +148,8 @@ impl Builder<'_> {
         for used in &uses {
             let used = self.ledger.get(*used);
             let pair = (used.anchor.clone(), used.no.clone());
-            let same_table = pair.1.starts_with("table") && anchors.iter().any(|known| known.1 == pair.1);
+            let same_table =
+                pair.1.starts_with("table") && anchors.iter().any(|known| known.1 == pair.1);
             if !same_table && !anchors.contains(&pair) {
                 anchors.push(pair);
             }
@@ -146,7 +161,11 @@ impl Builder<'_> {
             lines: equation
                 .lines
                 .into_iter()
-                .map(|line| super::doc::Line { typst: line.typst, words: line.words, continued: line.continued })
+                .map(|line| super::doc::Line {
+                    typst: line.typst,
+                    words: line.words,
+                    continued: line.continued,
+                })
                 .collect(),
             latex: equation.latex,
             source,
@@ -190,19 +209,35 @@ impl Builder<'_> {
                 Cell::Text(text) => text,
                 Cell::Own(value) => vec![self.number(value, false)],
                 Cell::Linked(value) => vec![self.number(value, true)],
-                Cell::Rounded { value, decimals, up } => {
+                Cell::Rounded {
+                    value,
+                    decimals,
+                    up,
+                } => {
                     let entry = self.ledger.get(value);
                     let link = (!entry.no.is_empty()).then(|| entry.anchor.clone());
-                    vec![number(&Printed::rounded(entry.value, decimals, up), entry.signed, link)]
+                    vec![number(
+                        &Printed::rounded(entry.value, decimals, up),
+                        entry.signed,
+                        link,
+                    )]
                 }
             })
             .collect();
-        Row { cells, strong: line.strong, id: Some(line.id) }
+        Row {
+            cells,
+            strong: line.strong,
+            id: Some(line.id),
+        }
     }
 
     fn number(&self, value: Value, linked: bool) -> super::doc::Inline {
         let entry = self.ledger.get(value);
-        number(&self.ledger.printed(value), entry.signed, linked.then(|| entry.anchor.clone()))
+        number(
+            &self.ledger.printed(value),
+            entry.signed,
+            linked.then(|| entry.anchor.clone()),
+        )
     }
 }
 
@@ -242,7 +277,12 @@ fn ranges(word: &str, mut numbers: Vec<usize>) -> String {
 
 /// A plain entry of a list.
 pub(super) fn item(label: &str, text: Text) -> Item {
-    Item { label: label.to_owned(), text, mark: None, source: None }
+    Item {
+        label: label.to_owned(),
+        text,
+        mark: None,
+        source: None,
+    }
 }
 
 /// The plain unit of a value, for words and the trace.

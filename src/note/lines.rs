@@ -24,18 +24,30 @@ struct Property {
 /// The pairs of axes of second moments, with the names of the line integrals.
 const PLANAR_PAIRS: [(&str, usize, usize); 3] = [("I_xx", 1, 1), ("I_yy", 0, 0), ("I_xy", 0, 1)];
 /// The pairs in space: the symmetric products t ∫ ρ_a ρ_b ds.
-const SPACE_PAIRS: [(&str, usize, usize); 6] =
-    [("S_xx", 0, 0), ("S_yy", 1, 1), ("S_zz", 2, 2), ("S_xy", 0, 1), ("S_yz", 1, 2), ("S_zx", 2, 0)];
+const SPACE_PAIRS: [(&str, usize, usize); 6] = [
+    ("S_xx", 0, 0),
+    ("S_yy", 1, 1),
+    ("S_zz", 2, 2),
+    ("S_xy", 0, 1),
+    ("S_yz", 1, 2),
+    ("S_zx", 2, 0),
+];
 
 /// Names of the runs' own second moments, in the order of the pairs.
 pub(super) const OWN: [&str; 6] = ["own_0", "own_1", "own_2", "own_3", "own_4", "own_5"];
 /// Names of the transfer terms, in the order of the pairs.
-const MOVED: [&str; 6] = ["moved_0", "moved_1", "moved_2", "moved_3", "moved_4", "moved_5"];
+const MOVED: [&str; 6] = [
+    "moved_0", "moved_1", "moved_2", "moved_3", "moved_4", "moved_5",
+];
 
 impl Builder<'_> {
     /// The pairs that this group needs.
     pub(super) fn pairs(&self) -> &'static [(&'static str, usize, usize)] {
-        if self.planar { &PLANAR_PAIRS } else { &SPACE_PAIRS }
+        if self.planar {
+            &PLANAR_PAIRS
+        } else {
+            &SPACE_PAIRS
+        }
     }
 
     /// The symbol of a second moment: I_xx, I_yy, I_xy in the plane, S_xx … in space.
@@ -70,7 +82,8 @@ impl Builder<'_> {
                 for (letter, at) in [("a", a), ("b", b)] {
                     let values = self.point_at(at).expect("every end has a point").values;
                     for axis in 0..3 {
-                        self.run_values[index].insert(format!("{}_{letter}", AXES[axis]), values[axis]);
+                        self.run_values[index]
+                            .insert(format!("{}_{letter}", AXES[axis]), values[axis]);
                     }
                 }
             }
@@ -115,8 +128,15 @@ impl Builder<'_> {
 
     /// The set `runs` with the given columns, for sums and heads.
     fn run_set(&self, columns: &[(&str, Symbol)]) -> SumSet {
-        let symbols = columns.iter().map(|(name, symbol)| ((*name).to_owned(), symbol.clone())).collect();
-        SumSet { index: "i".to_owned(), symbols, members: self.run_values.clone() }
+        let symbols = columns
+            .iter()
+            .map(|(name, symbol)| ((*name).to_owned(), symbol.clone()))
+            .collect();
+        SumSet {
+            index: "i".to_owned(),
+            symbols,
+            members: self.run_values.clone(),
+        }
     }
 
     /// A table with a row for each run, or each straight run, and its formulas above it.
@@ -132,8 +152,16 @@ impl Builder<'_> {
                 continue;
             }
             for property in properties {
-                if !property.formula.is_empty() && !self.run_values[index].contains_key(property.name) {
-                    self.run_step(index, property.name, &property.symbol, property.says, &property.formula)?;
+                if !property.formula.is_empty()
+                    && !self.run_values[index].contains_key(property.name)
+                {
+                    self.run_step(
+                        index,
+                        property.name,
+                        &property.symbol,
+                        property.says,
+                        &property.formula,
+                    )?;
                 }
             }
         }
@@ -141,22 +169,41 @@ impl Builder<'_> {
         let units = self.ledger.units();
         let mut columns = vec![word_column("", 0), word_column("run", 1)];
         for property in properties {
-            let value = self.run_values.iter().find_map(|values| values.get(property.name));
-            let unit = value.map(|value| units.text(self.ledger.get(*value).dim)).unwrap_or_default();
+            let value = self
+                .run_values
+                .iter()
+                .find_map(|values| values.get(property.name));
+            let unit = value
+                .map(|value| units.text(self.ledger.get(*value).dim))
+                .unwrap_or_default();
             columns.push(number_column(symbol(&property.symbol), &unit));
         }
-        let members: Vec<usize> = (0..self.runs.len()).filter(|index| !straight_only || self.is_straight(*index)).collect();
+        let members: Vec<usize> = (0..self.runs.len())
+            .filter(|index| !straight_only || self.is_straight(*index))
+            .collect();
         let mut rows = Vec::new();
         for index in members {
-            let mut cells =
-                vec![Cell::Text(plain(&(index + 1).to_string())), Cell::Text(plain(&self.runs[index].name))];
+            let mut cells = vec![
+                Cell::Text(plain(&(index + 1).to_string())),
+                Cell::Text(plain(&self.runs[index].name)),
+            ];
             for property in properties {
                 let value = self.run_values[index][property.name];
                 cells.push(self.cell(value));
             }
-            rows.push(Line { id: format!("{id}.{}", self.slugs[index]), cells, strong: false });
+            rows.push(Line {
+                id: format!("{id}.{}", self.slugs[index]),
+                cells,
+                strong: false,
+            });
         }
-        self.table(Sheet { id: id.to_owned(), caption: plain(caption), columns, rows, foot: None });
+        self.table(Sheet {
+            id: id.to_owned(),
+            caption: plain(caption),
+            columns,
+            rows,
+            foot: None,
+        });
         Ok(())
     }
 
@@ -167,24 +214,41 @@ impl Builder<'_> {
 
     /// The formulas of the columns in one paragraph, as straight runs fill them.
     fn column_formulas(&mut self, properties: &[Property]) -> Result<(), FormulaError> {
-        let Some(straight) = self.runs.iter().position(|run| matches!(run.path, Segment::Straight { .. })) else {
+        let Some(straight) = self
+            .runs
+            .iter()
+            .position(|run| matches!(run.path, Segment::Straight { .. }))
+        else {
             return Ok(());
         };
         let mut env = self.env.clone();
         let names: Vec<(String, Symbol)> = self.run_values[straight]
             .iter()
-            .map(|(name, value)| (name.clone(), column_symbol(name, &self.ledger.get(*value).symbol)))
+            .map(|(name, value)| {
+                (
+                    name.clone(),
+                    column_symbol(name, &self.ledger.get(*value).symbol),
+                )
+            })
             .collect();
-        let columns: Vec<(&str, Symbol)> = names.iter().map(|(name, symbol)| (name.as_str(), symbol.clone())).collect();
+        let columns: Vec<(&str, Symbol)> = names
+            .iter()
+            .map(|(name, symbol)| (name.as_str(), symbol.clone()))
+            .collect();
         let mut set = self.run_set(&columns);
         set.members = vec![self.run_values[straight].clone()];
         env.sets.insert("runs".to_owned(), set);
         let mut text = Vec::new();
-        for property in properties.iter().filter(|property| !property.formula.is_empty()) {
+        for property in properties
+            .iter()
+            .filter(|property| !property.formula.is_empty())
+        {
             if !text.is_empty() {
                 text.push(piece(";  "));
             }
-            let formula = self.ledger.column_formula(&env, &property.symbol, &property.formula, "runs")?;
+            let formula =
+                self.ledger
+                    .column_formula(&env, &property.symbol, &property.formula, "runs")?;
             text.push(math(&inline(formula)));
         }
         if !text.is_empty() {
@@ -207,7 +271,10 @@ impl Builder<'_> {
                 says: "Extent from start to end",
             });
         }
-        let squares: Vec<String> = axes.iter().map(|axis| format!("d_{}^2", AXES[*axis])).collect();
+        let squares: Vec<String> = axes
+            .iter()
+            .map(|axis| format!("d_{}^2", AXES[*axis]))
+            .collect();
         let root = format!("sqrt({})", squares.join(" + "));
         if trimmed {
             properties.push(Property {
@@ -217,10 +284,20 @@ impl Builder<'_> {
                 says: "Length as told",
             });
         } else {
-            properties.push(Property { name: "L", symbol: Symbol::of("L", &[]), formula: root, says: "Length" });
+            properties.push(Property {
+                name: "L",
+                symbol: Symbol::of("L", &[]),
+                formula: root,
+                says: "Length",
+            });
         }
         let mut second: Vec<Property> = Vec::new();
-        second.push(Property { name: "t", symbol: Symbol::of("t", &[]), formula: String::new(), says: "Effective throat" });
+        second.push(Property {
+            name: "t",
+            symbol: Symbol::of("t", &[]),
+            formula: String::new(),
+            says: "Effective throat",
+        });
         if trimmed {
             second.push(Property {
                 name: "L",
@@ -231,7 +308,12 @@ impl Builder<'_> {
         } else {
             second.extend(properties.pop());
         }
-        second.push(Property { name: "A", symbol: Symbol::of("A", &[]), formula: "t*L".to_owned(), says: "Throat area" });
+        second.push(Property {
+            name: "A",
+            symbol: Symbol::of("A", &[]),
+            formula: "t*L".to_owned(),
+            says: "Throat area",
+        });
         for axis in axes {
             let a = AXES[*axis];
             let formula = if trimmed {
@@ -247,13 +329,28 @@ impl Builder<'_> {
             });
         }
         if trimmed {
-            properties.push(Property { name: "e_a", symbol: Symbol::of("e", &["a"]), formula: String::new(), says: "Shortening at the start" });
-            properties.push(Property { name: "e_b", symbol: Symbol::of("e", &["b"]), formula: String::new(), says: "Shortening at the end" });
+            properties.push(Property {
+                name: "e_a",
+                symbol: Symbol::of("e", &["a"]),
+                formula: String::new(),
+                says: "Shortening at the start",
+            });
+            properties.push(Property {
+                name: "e_b",
+                symbol: Symbol::of("e", &["b"]),
+                formula: String::new(),
+                says: "Shortening at the end",
+            });
         }
         if (0..self.runs.len()).any(|index| self.is_straight(index)) {
             self.run_table("extents", "Extents of the straight runs", &properties, true)?;
         }
-        self.run_table("throats", "Throats, lengths, areas and centroids", &second, false)
+        self.run_table(
+            "throats",
+            "Throats, lengths, areas and centroids",
+            &second,
+            false,
+        )
     }
 
     /// What each stop takes off: one leg, one throat, or nothing.
@@ -267,18 +364,27 @@ impl Builder<'_> {
                         let size = |value: Value| self.ledger.get(value).value;
                         // One leg of unequal ones is the larger.
                         match (of("leg_base"), of("leg_attached")) {
-                            (Some(base), Some(attached)) if size(attached) > size(base) => Some(attached),
+                            (Some(base), Some(attached)) if size(attached) > size(base) => {
+                                Some(attached)
+                            }
                             (Some(base), _) => Some(base),
                             (None, attached) => attached.or_else(|| of("t")),
                         }
                     }
-                    crate::weld::End::Stop { leg: false, .. } => self.run_values[index].get("t").copied(),
+                    crate::weld::End::Stop { leg: false, .. } => {
+                        self.run_values[index].get("t").copied()
+                    }
                     crate::weld::End::Continuous | crate::weld::End::Full => None,
                 };
                 let value = value.unwrap_or_else(|| {
                     let symbol = Symbol::of("e", &[&name[2..]]).with(&(index + 1).to_string());
                     let id = self.slug_id(index, name);
-                    self.zero(id, symbol, "No shortening at this end", crate::quantity::Dim::LENGTH)
+                    self.zero(
+                        id,
+                        symbol,
+                        "No shortening at this end",
+                        crate::quantity::Dim::LENGTH,
+                    )
                 });
                 self.run_values[index].insert(name.to_owned(), value);
             }
@@ -288,11 +394,20 @@ impl Builder<'_> {
     /// First moments and the centroid of the group.
     fn first_moments(&mut self) -> Result<(), FormulaError> {
         let axes = axes(self.planar);
-        self.sum_step("A", Symbol::of("A", &[]), "Area of all throats", &[("A", Symbol::of("A", &[]))], "sum(runs, A)")?;
+        self.sum_step(
+            "A",
+            Symbol::of("A", &[]),
+            "Area of all throats",
+            &[("A", Symbol::of("A", &[]))],
+            "sum(runs, A)",
+        )?;
         for axis in axes {
             let a = AXES[*axis];
             let middle = format!("{a}_m");
-            let columns = [("A", Symbol::of("A", &[])), (middle.as_str(), Symbol::of(a, &["m"]))];
+            let columns = [
+                ("A", Symbol::of("A", &[])),
+                (middle.as_str(), Symbol::of(a, &["m"])),
+            ];
             let says = format!("Centroid of the group, {a}");
             let formula = format!("sum(runs, A*{middle})/A_w");
             let name = format!("{a}_c");
@@ -308,7 +423,12 @@ impl Builder<'_> {
     fn plane_height(&mut self) -> Result<(), FormulaError> {
         let value = match self.points.first() {
             Some(point) => point.values[2],
-            None => self.zero("plane.z".to_owned(), Symbol::of("z", &["c"]), "Faying plane", crate::quantity::Dim::LENGTH),
+            None => self.zero(
+                "plane.z".to_owned(),
+                Symbol::of("z", &["c"]),
+                "Faying plane",
+                crate::quantity::Dim::LENGTH,
+            ),
         };
         self.env.bind("z_c", value);
         Ok(())
@@ -345,7 +465,12 @@ impl Builder<'_> {
                 says: "Second moment about the run's own centroid",
             })
             .collect();
-        self.run_table("own", "Second moments of the runs about their own centroids", &own, false)?;
+        self.run_table(
+            "own",
+            "Second moments of the runs about their own centroids",
+            &own,
+            false,
+        )?;
         let transfer: Vec<Property> = pairs
             .iter()
             .zip(MOVED)
@@ -364,25 +489,47 @@ impl Builder<'_> {
                 }
             })
             .collect();
-        self.run_table("transfer", "Transfer terms to the centroid of the group", &transfer, false)?;
+        self.run_table(
+            "transfer",
+            "Transfer terms to the centroid of the group",
+            &transfer,
+            false,
+        )?;
         for (at, (name, ..)) in pairs.iter().enumerate() {
             let (o, q) = (OWN[at], MOVED[at]);
             let base = Self::pair_symbol(name);
-            let columns = [(o, base.with("0")), (q, Symbol::of("T", &[&name[2..3], &name[3..4]]))];
+            let columns = [
+                (o, base.with("0")),
+                (q, Symbol::of("T", &[&name[2..3], &name[3..4]])),
+            ];
             let says = match *name {
                 "I_xx" => "Second moment about x through the centroid".to_owned(),
                 "I_yy" => "Second moment about y through the centroid".to_owned(),
                 "I_xy" => "Product of inertia about the centroid".to_owned(),
-                other => format!("Line integral of {}·{} about the centroid", &other[2..3], &other[3..4]),
+                other => format!(
+                    "Line integral of {}·{} about the centroid",
+                    &other[2..3],
+                    &other[3..4]
+                ),
             };
-            self.sum_step(name, base, &says, &columns, &format!("sum(runs, {o}) + sum(runs, {q})"))?;
+            self.sum_step(
+                name,
+                base,
+                &says,
+                &columns,
+                &format!("sum(runs, {o}) + sum(runs, {q})"),
+            )?;
         }
         Ok(())
     }
 
     fn own_formula(&self, p: usize, q: usize) -> String {
         let (a, b) = (AXES[p], AXES[q]);
-        let product = if p == q { format!("d_{a}^2") } else { format!("d_{a}*d_{b}") };
+        let product = if p == q {
+            format!("d_{a}^2")
+        } else {
+            format!("d_{a}*d_{b}")
+        };
         if self.is_trimmed() {
             format!("A*{product}*L^2/(12*L_0^2)")
         } else {
@@ -393,7 +540,12 @@ impl Builder<'_> {
     /// J and the determinant in the plane; the tensor K in space.
     fn group_moments(&mut self) -> Result<(), FormulaError> {
         if self.planar {
-            self.step(Symbol::of("J", &[]), "Polar second moment about the centroid", "I_xx + I_yy", "statics")?;
+            self.step(
+                Symbol::of("J", &[]),
+                "Polar second moment about the centroid",
+                "I_xx + I_yy",
+                "statics",
+            )?;
             return Ok(());
         }
         for (symbol, formula) in [
@@ -405,7 +557,10 @@ impl Builder<'_> {
             ("zx", "-S_zx"),
         ] {
             let symbol = Symbol::of("K", &[&symbol[..1], &symbol[1..]]);
-            let says = format!("Component {} of the inertia tensor about the centroid", symbol.plain());
+            let says = format!(
+                "Component {} of the inertia tensor about the centroid",
+                symbol.plain()
+            );
             self.step(symbol, &says, formula, "statics")?;
         }
         Ok(())
@@ -418,9 +573,14 @@ fn column_symbol(name: &str, value: &Symbol) -> Symbol {
     match name {
         "t" | "L" | "A" => Symbol::of(name, &[]),
         "leg_base" | "leg_attached" => Symbol::of("h", &[]),
-        _ if name.len() == 3 && name.ends_with(['a', 'b', 'm']) => Symbol::of(&name[..1], &[&name[2..]]),
+        _ if name.len() == 3 && name.ends_with(['a', 'b', 'm']) => {
+            Symbol::of(&name[..1], &[&name[2..]])
+        }
         _ => {
-            let kept: Vec<&str> = index[..index.len().saturating_sub(1)].iter().map(String::as_str).collect();
+            let kept: Vec<&str> = index[..index.len().saturating_sub(1)]
+                .iter()
+                .map(String::as_str)
+                .collect();
             Symbol::of(base, &kept)
         }
     }
@@ -442,7 +602,12 @@ fn inline(formula: Math) -> Math {
         }
         Math::Relation(sign, left, right) => Math::Relation(sign, left, Box::new(inline(*right))),
         Math::Product(factors) => Math::Product(factors.into_iter().map(inline).collect()),
-        Math::Terms(terms) => Math::Terms(terms.into_iter().map(|(minus, term)| (minus, inline(term))).collect()),
+        Math::Terms(terms) => Math::Terms(
+            terms
+                .into_iter()
+                .map(|(minus, term)| (minus, inline(term)))
+                .collect(),
+        ),
         other => other,
     }
 }

@@ -48,23 +48,40 @@ impl Builder<'_> {
         for index in shown {
             let case = self.joint.loads.cases[index].clone();
             let id = format!("case.{}-{}", index + 1, slug(&case.name.value));
-            let mut cells =
-                vec![Cell::Text(plain(&case.name.value)), Cell::Text(plain(case.level.value.word()))];
-            for (base, triple, says) in [("F", &case.force, "Force"), ("M", &case.moment, "Moment")] {
+            let mut cells = vec![
+                Cell::Text(plain(&case.name.value)),
+                Cell::Text(plain(case.level.value.word())),
+            ];
+            for (base, triple, says) in [("F", &case.force, "Force"), ("M", &case.moment, "Moment")]
+            {
                 for axis in 0..3 {
-                    let value = self.case_input(index, &case, base, &triple.parts[axis], axis, says);
+                    let value =
+                        self.case_input(index, &case, base, &triple.parts[axis], axis, says);
                     cells.push(self.cell(value));
                 }
             }
-            rows.push(Line { id, cells, strong: false });
+            rows.push(Line {
+                id,
+                cells,
+                strong: false,
+            });
         }
         let total = self.joint.loads.cases.len();
         let caption = if rows.len() == total {
             format!("Load cases as told, {} in all", total)
         } else {
-            format!("Load cases as told: the {} that rank first of {total}; all stand in the table of cases", rows.len())
+            format!(
+                "Load cases as told: the {} that rank first of {total}; all stand in the table of cases",
+                rows.len()
+            )
         };
-        self.table(Sheet { id: "cases".to_owned(), caption: plain(&caption), columns, rows, foot: None });
+        self.table(Sheet {
+            id: "cases".to_owned(),
+            caption: plain(&caption),
+            columns,
+            rows,
+            foot: None,
+        });
         self.describe_cases(first);
     }
 
@@ -74,7 +91,10 @@ impl Builder<'_> {
         for index in first.iter().take(CASES_IN_NOTE) {
             if let Some(says) = &cases[*index].says {
                 let name = &cases[*index].name.value;
-                self.para(vec![super::text::strong(name), piece(&format!(": {}.", says.value.trim_end_matches('.')))]);
+                self.para(vec![
+                    super::text::strong(name),
+                    piece(&format!(": {}.", says.value.trim_end_matches('.'))),
+                ]);
             }
         }
         let count = count(cases.len(), "case", "cases");
@@ -86,16 +106,45 @@ impl Builder<'_> {
     }
 
     /// A component of a case as told.
-    fn case_input(&mut self, index: usize, case: &Case, base: &str, given: &Given, axis: usize, says: &str) -> Value {
-        let frame = case.frame.as_ref().map_or(String::new(), |frame| format!(", in frame {}", frame.name.value));
-        let id = format!("case.{}-{}.{}{}", index + 1, slug(&case.name.value), base.to_lowercase(), AXES[axis]);
+    fn case_input(
+        &mut self,
+        index: usize,
+        case: &Case,
+        base: &str,
+        given: &Given,
+        axis: usize,
+        says: &str,
+    ) -> Value {
+        let frame = case.frame.as_ref().map_or(String::new(), |frame| {
+            format!(", in frame {}", frame.name.value)
+        });
+        let id = format!(
+            "case.{}-{}.{}{}",
+            index + 1,
+            slug(&case.name.value),
+            base.to_lowercase(),
+            AXES[axis]
+        );
         let mut symbol = Symbol::of(base, &[AXES[axis]]);
         if base == "M" || case.frame.is_some() {
             symbol = symbol.with(if case.frame.is_some() { "told" } else { "P" });
         }
-        let says = format!("{says} along {} of case {}{frame}", AXES[axis], case.name.value);
-        let says = if base == "M" { says.replace("along", "about") } else { says };
-        self.input(id, symbol, &says, given, Origin::Input(case.force.place.clone()))
+        let says = format!(
+            "{says} along {} of case {}{frame}",
+            AXES[axis], case.name.value
+        );
+        let says = if base == "M" {
+            says.replace("along", "about")
+        } else {
+            says
+        };
+        self.input(
+            id,
+            symbol,
+            &says,
+            given,
+            Origin::Input(case.force.place.clone()),
+        )
     }
 
     /// Works a case: into the joint frame if it has another, then about the centroid.
@@ -104,14 +153,22 @@ impl Builder<'_> {
         let tag = format!("case.{}-{}", index + 1, slug(&case.name.value));
         let mut told = [[None; 3]; 3];
         for axis in 0..3 {
-            told[0][axis] = Some(self.case_input(index, &case, "F", &case.force.parts[axis], axis, "Force"));
-            told[1][axis] = Some(self.case_input(index, &case, "M", &case.moment.parts[axis], axis, "Moment"));
+            told[0][axis] =
+                Some(self.case_input(index, &case, "F", &case.force.parts[axis], axis, "Force"));
+            told[1][axis] =
+                Some(self.case_input(index, &case, "M", &case.moment.parts[axis], axis, "Moment"));
             let base = AXES[axis];
             let part = if case.frame.is_some() { "told" } else { "P" };
             let says = format!("Point of application of case {}, {base}", case.name.value);
             let id = format!("{tag}.at-{base}");
             let origin = Origin::Input(case.at.place.clone());
-            let value = self.input(id, Symbol::of(base, &[part]), &says, &case.at.parts[axis], origin);
+            let value = self.input(
+                id,
+                Symbol::of(base, &[part]),
+                &says,
+                &case.at.parts[axis],
+                origin,
+            );
             self.show(value);
             told[2][axis] = Some(value);
         }
@@ -121,27 +178,55 @@ impl Builder<'_> {
             Some(_) => self.turn_case(index, &tag, told)?,
         };
         let about = self.about_centroid(&tag, force, moment, at)?;
-        Ok(CaseValues { force, moment, at, about })
+        Ok(CaseValues {
+            force,
+            moment,
+            at,
+            about,
+        })
     }
 
     /// A case from its own frame into that of the joint: v = R v', p = o + R p'.
-    fn turn_case(&mut self, index: usize, tag: &str, told: [[Value; 3]; 3]) -> Result<[[Value; 3]; 3], FormulaError> {
+    fn turn_case(
+        &mut self,
+        index: usize,
+        tag: &str,
+        told: [[Value; 3]; 3],
+    ) -> Result<[[Value; 3]; 3], FormulaError> {
         let case = self.joint.loads.cases[index].clone();
-        let frame = case.frame.as_ref().expect("only cases with a frame are turned");
+        let frame = case
+            .frame
+            .as_ref()
+            .expect("only cases with a frame are turned");
         let turned = Frame::new(frame).expect("the frame was checked when the loads were laid out");
         let mut env = self.env.clone();
         for row in 0..3 {
             let origin = Origin::Input(frame.origin.place.clone());
             let says = format!("Origin of frame {}, {}", frame.name.value, AXES[row]);
             let id = format!("{}.o-{}", slug(&frame.name.value), AXES[row]);
-            let value = self.input(id, Symbol::of("o", &[AXES[row]]), &says, &frame.origin.parts[row], origin);
+            let value = self.input(
+                id,
+                Symbol::of("o", &[AXES[row]]),
+                &says,
+                &frame.origin.parts[row],
+                origin,
+            );
             self.show(value);
             env.bind(&format!("o_{}", AXES[row]), value);
             for column in 0..3 {
                 let symbol = Symbol::of("R", &[AXES[row], AXES[column]]);
-                let says = format!("Axis {} of frame {}, component {}", AXES[column], frame.name.value, AXES[row]);
-                let id = format!("{}.r-{}{}", slug(&frame.name.value), AXES[row], AXES[column]);
-                let exact = (frame.axes[column].parts[row].value - turned.r[(row, column)]).abs() < 1e-15;
+                let says = format!(
+                    "Axis {} of frame {}, component {}",
+                    AXES[column], frame.name.value, AXES[row]
+                );
+                let id = format!(
+                    "{}.r-{}{}",
+                    slug(&frame.name.value),
+                    AXES[row],
+                    AXES[column]
+                );
+                let exact =
+                    (frame.axes[column].parts[row].value - turned.r[(row, column)]).abs() < 1e-15;
                 let origin = Origin::Input(frame.axes[column].place.clone());
                 let value = if exact {
                     self.input(id, symbol, &says, &frame.axes[column].parts[row], origin)
@@ -149,7 +234,14 @@ impl Builder<'_> {
                     *known
                 } else {
                     let formula = "axes as told, made exactly square and of unit length";
-                    let draft = Draft { id: id.clone(), symbol, says, formula, origin, dim: None };
+                    let draft = Draft {
+                        id: id.clone(),
+                        symbol,
+                        says,
+                        formula,
+                        origin,
+                        dim: None,
+                    };
                     let value = self.ledger.found(draft, turned.r[(row, column)], Dim::NONE);
                     self.given.insert(id, value);
                     value
@@ -159,8 +251,13 @@ impl Builder<'_> {
             }
         }
         let mut out = told;
-        for (kind, (base, what)) in
-            [("F", "Force"), ("M", "Moment at the point of application"), ("", "Point of application")].into_iter().enumerate()
+        for (kind, (base, what)) in [
+            ("F", "Force"),
+            ("M", "Moment at the point of application"),
+            ("", "Point of application"),
+        ]
+        .into_iter()
+        .enumerate()
         {
             for axis in 0..3 {
                 env.bind(["v_0", "v_1", "v_2"][axis], told[kind][axis]);
@@ -168,7 +265,11 @@ impl Builder<'_> {
             for axis in 0..3 {
                 let a = AXES[axis];
                 let turn = format!("R_{axis}0*v_0 + R_{axis}1*v_1 + R_{axis}2*v_2");
-                let formula = if base.is_empty() { format!("o_{a} + {turn}") } else { turn };
+                let formula = if base.is_empty() {
+                    format!("o_{a} + {turn}")
+                } else {
+                    turn
+                };
                 let symbol = match base {
                     "F" => Symbol::of("F", &[a]),
                     "M" => Symbol::of("M", &[a, "P"]),
@@ -191,7 +292,13 @@ impl Builder<'_> {
     }
 
     /// M_C = M + (P − C) × F.
-    fn about_centroid(&mut self, tag: &str, force: [Value; 3], moment: [Value; 3], at: [Value; 3]) -> Result<[Value; 3], FormulaError> {
+    fn about_centroid(
+        &mut self,
+        tag: &str,
+        force: [Value; 3],
+        moment: [Value; 3],
+        at: [Value; 3],
+    ) -> Result<[Value; 3], FormulaError> {
         let mut env = self.env.clone();
         for axis in 0..3 {
             env.bind(&format!("F_{}", AXES[axis]), force[axis]);
@@ -205,7 +312,9 @@ impl Builder<'_> {
             let draft = Draft {
                 id: format!("{tag}.moment-{a}"),
                 symbol: Symbol::of("M", &[a]),
-                says: format!("Moment about {a} through the centroid: the given moment and the force carried across"),
+                says: format!(
+                    "Moment about {a} through the centroid: the given moment and the force carried across"
+                ),
                 formula: &formula,
                 origin: Origin::Method("statics".to_owned()),
                 dim: None,

@@ -7,7 +7,10 @@ use super::loads::{CASES_IN_NOTE, CaseValues};
 use super::stress::{CaseTerms, Spot};
 use super::text::{piece, plain, slug, strong, symbol};
 use super::write::NoteError;
-use crate::criteria::{Asked, From, Governing, Ground, LimitOutcome, Margin, Side, Turn, Worked, partner, work, work_limit};
+use crate::criteria::{
+    Asked, From, Governing, Ground, LimitOutcome, Margin, Side, Turn, Worked, partner, work,
+    work_limit,
+};
 use crate::formula::{Draft, Env, Origin, Printed, Symbol, Value};
 use crate::quantity::Dim;
 use crate::weld::V3;
@@ -84,7 +87,12 @@ pub(super) fn check_name(asked: &Asked, check: usize) -> String {
 }
 
 fn spot_of(governing: &Governing) -> Spot {
-    Spot { case: governing.case, run: governing.run, p: governing.s, side: governing.side }
+    Spot {
+        case: governing.case,
+        run: governing.run,
+        p: governing.s,
+        side: governing.side,
+    }
 }
 
 fn same_place(a: Spot, b: Spot) -> bool {
@@ -103,28 +111,48 @@ impl Builder<'_> {
         for check in checks {
             let spot = spot_of(&check.governing);
             let sheet = &asked(calculation, check.outcome).sheet;
-            let names: BTreeSet<String> =
-                sheet.needs.iter().flat_map(|need| need.from.iter().filter_map(From::bound_name)).collect();
+            let names: BTreeSet<String> = sheet
+                .needs
+                .iter()
+                .flat_map(|need| need.from.iter().filter_map(From::bound_name))
+                .collect();
             match wanted.iter_mut().find(|known| same_place(known.spot, spot)) {
                 Some(known) => known.names.extend(names),
                 None => wanted.push(Wanted { spot, names }),
             }
         }
-        self.part("stress", if wanted.len() == 1 { "Stress at the governing point" } else { "Stress at the governing points" });
+        self.part(
+            "stress",
+            if wanted.len() == 1 {
+                "Stress at the governing point"
+            } else {
+                "Stress at the governing points"
+            },
+        );
         let regime = calculation.resistance.class.regime;
         let mut sites = Vec::new();
         for (index, Wanted { spot, names }) in wanted.into_iter().enumerate() {
-            let words = format!("{}, case {}", self.place_words(spot), self.joint.loads.cases[spot.case].name.value);
+            let words = format!(
+                "{}, case {}",
+                self.place_words(spot),
+                self.joint.loads.cases[spot.case].name.value
+            );
             self.heading(&capital(&words));
             if !cases.contains_key(&spot.case) {
                 let values = self.work_case(spot.case)?;
-                let tag = format!("case.{}-{}", spot.case + 1, slug(&self.joint.loads.cases[spot.case].name.value));
+                let tag = format!(
+                    "case.{}-{}",
+                    spot.case + 1,
+                    slug(&self.joint.loads.cases[spot.case].name.value)
+                );
                 let env = self.case_terms(&tag, spot.case, &values, regime)?;
                 cases.insert(spot.case, (values, env));
             }
             let (values, case_env) = cases[&spot.case].clone();
             let tag = format!("stress-{}", index + 1);
-            let env = self.work_spot(&tag, spot, &values, &case_env, regime, &|name| names.contains(name))?;
+            let env = self.work_spot(&tag, spot, &values, &case_env, regime, &|name| {
+                names.contains(name)
+            })?;
             let stress = Self::stress_values(&env).expect("the components were worked");
             sites.push(Site { spot, env, stress });
         }
@@ -144,13 +172,37 @@ impl Builder<'_> {
         for (index, check) in checks.iter_mut().enumerate() {
             let asked = asked(calculation, check.outcome);
             let spot = spot_of(&check.governing);
-            let site = sites.iter().find(|site| same_place(site.spot, spot)).expect("every check has its site");
-            let part = check.governing.part.map(|turn| format!(", {}", turn.word())).unwrap_or_default();
-            self.heading(&format!("{}{part}", capital(&check_name(asked, check.check))));
+            let site = sites
+                .iter()
+                .find(|site| same_place(site.spot, spot))
+                .expect("every check has its site");
+            let part = check
+                .governing
+                .part
+                .map(|turn| format!(", {}", turn.word()))
+                .unwrap_or_default();
+            self.heading(&format!(
+                "{}{part}",
+                capital(&check_name(asked, check.check))
+            ));
             let mut env = site.env.clone();
-            self.twin_load(calculation, check, &mut env, cases, &format!("check-{}", index + 1))?;
+            self.twin_load(
+                calculation,
+                check,
+                &mut env,
+                cases,
+                &format!("check-{}", index + 1),
+            )?;
             let prefix = format!("margin-{}", index + 1);
-            let worked = work(&mut self.ledger, &env, ground, asked, check.check, &check.governing, &prefix)?;
+            let worked = work(
+                &mut self.ledger,
+                &env,
+                ground,
+                asked,
+                check.check,
+                &check.governing,
+                &prefix,
+            )?;
             for value in &worked.steps {
                 self.show(*value);
             }
@@ -172,22 +224,43 @@ impl Builder<'_> {
         tag: &str,
     ) -> Result<(), NoteError> {
         let sheet = &asked(calculation, check.outcome).sheet;
-        let needs_plate = sheet
-            .needs
-            .iter()
-            .any(|need| need.from.iter().filter_map(From::bound_name).any(|name| name == "point_q_plate"));
+        let needs_plate = sheet.needs.iter().any(|need| {
+            need.from
+                .iter()
+                .filter_map(From::bound_name)
+                .any(|name| name == "point_q_plate")
+        });
         let governing = &check.governing;
         if !needs_plate || governing.part == Some(Turn::Base) {
             return Ok(());
         }
-        let Some((other, reversed)) = partner(self.runs, governing.run) else { return Ok(()) };
-        let p = if reversed { 1.0 - governing.s } else { governing.s };
-        let apart = (self.runs[other].path.point(p) - governing.position).norm() > 1e-9 * self.properties.size;
+        let Some((other, reversed)) = partner(self.runs, governing.run) else {
+            return Ok(());
+        };
+        let p = if reversed {
+            1.0 - governing.s
+        } else {
+            governing.s
+        };
+        let apart = (self.runs[other].path.point(p) - governing.position).norm()
+            > 1e-9 * self.properties.size;
         let twin = if apart {
             let (values, case_env) = cases[&governing.case].clone();
-            let spot = Spot { case: governing.case, run: other, p, side: governing.side };
+            let spot = Spot {
+                case: governing.case,
+                run: other,
+                p,
+                side: governing.side,
+            };
             let regime = calculation.resistance.class.regime;
-            let env = self.work_spot(&format!("{tag}-twin"), spot, &values, &case_env, regime, &|_| false)?;
+            let env = self.work_spot(
+                &format!("{tag}-twin"),
+                spot,
+                &values,
+                &case_env,
+                regime,
+                &|_| false,
+            )?;
             Self::stress_values(&env)
         } else {
             None
@@ -199,11 +272,23 @@ impl Builder<'_> {
     /// The table of margins.
     pub(super) fn margin_table(&mut self, calculation: &Calculation<'_>, checks: &[Check]) {
         let units = self.ledger.units();
-        let demand_dims: BTreeSet<Dim> =
-            checks.iter().filter_map(|check| check.worked.as_ref()).map(|worked| self.ledger.get(worked.demand).dim).collect();
-        let one_unit = if demand_dims.len() == 1 { demand_dims.first().map(|dim| units.text(*dim)) } else { None };
+        let demand_dims: BTreeSet<Dim> = checks
+            .iter()
+            .filter_map(|check| check.worked.as_ref())
+            .map(|worked| self.ledger.get(worked.demand).dim)
+            .collect();
+        let one_unit = if demand_dims.len() == 1 {
+            demand_dims.first().map(|dim| units.text(*dim))
+        } else {
+            None
+        };
         let unit = one_unit.clone().unwrap_or_default();
-        let head = |text: &str, align| Column { head: plain(text), unit: Vec::new(), align, share: 0 };
+        let head = |text: &str, align| Column {
+            head: plain(text),
+            unit: Vec::new(),
+            align,
+            share: 0,
+        };
         let mut columns = vec![
             word_column("check", 4),
             word_column("case", 0),
@@ -218,45 +303,84 @@ impl Builder<'_> {
         columns.push(head("MS", Align::Point));
         let mut rows = Vec::new();
         for (index, check) in checks.iter().enumerate() {
-            let Some(worked) = &check.worked else { continue };
+            let Some(worked) = &check.worked else {
+                continue;
+            };
             let asked = asked(calculation, check.outcome);
-            let part = check.governing.part.map(|turn| format!(", {}", turn.word())).unwrap_or_default();
+            let part = check
+                .governing
+                .part
+                .map(|turn| format!(", {}", turn.word()))
+                .unwrap_or_default();
             let mut cells = vec![
-                Cell::Text(plain(&format!("{}{part}", capital(&check_name(asked, check.check))))),
-                Cell::Text(plain(&self.joint.loads.cases[check.governing.case].name.value)),
+                Cell::Text(plain(&format!(
+                    "{}{part}",
+                    capital(&check_name(asked, check.check))
+                ))),
+                Cell::Text(plain(
+                    &self.joint.loads.cases[check.governing.case].name.value,
+                )),
                 Cell::Text(plain(&self.place_words(spot_of(&check.governing)))),
                 self.cell(worked.demand),
                 self.cell(worked.capacity),
             ];
             if one_unit.is_none() {
-                cells.push(Cell::Text(plain(&units.text(self.ledger.get(worked.demand).dim))));
+                cells.push(Cell::Text(plain(
+                    &units.text(self.ledger.get(worked.demand).dim),
+                )));
             }
-            cells.push(worked.utilisation.map_or_else(|| Cell::Text(plain("0")), |value| Cell::Rounded { value, decimals: 3, up: true }));
+            cells.push(worked.utilisation.map_or_else(
+                || Cell::Text(plain("0")),
+                |value| Cell::Rounded {
+                    value,
+                    decimals: 3,
+                    up: true,
+                },
+            ));
             cells.push(match (worked.margin, check.governing.margin) {
-                (Some(value), _) => Cell::Rounded { value, decimals: 2, up: false },
+                (Some(value), _) => Cell::Rounded {
+                    value,
+                    decimals: 2,
+                    up: false,
+                },
                 (None, Margin::FixedTermsExceed) => Cell::Text(plain("fails")),
                 (None, _) => Cell::Text(plain("high")),
             });
-            rows.push(Line { id: format!("margin-row-{}", index + 1), cells, strong: index == 0 });
+            rows.push(Line {
+                id: format!("margin-row-{}", index + 1),
+                cells,
+                strong: index == 0,
+            });
         }
         if rows.is_empty() {
             return;
         }
         let caption = "Margins of all strength checks at their governing points, the least in bold: demand, capacity, \
                        utilisation rounded up, margin of safety rounded down";
-        self.table(Sheet { id: "margin-table".to_owned(), caption: plain(caption), columns, rows, foot: None });
+        self.table(Sheet {
+            id: "margin-table".to_owned(),
+            caption: plain(caption),
+            columns,
+            rows,
+            foot: None,
+        });
         self.levels(calculation);
     }
 
     /// Which cases each sheet took.
     fn levels(&mut self, calculation: &Calculation<'_>) {
         for outcome in &calculation.outcomes {
-            let Outcome::Assessed(asked) = outcome else { continue };
+            let Outcome::Assessed(asked) = outcome else {
+                continue;
+            };
             if asked.not_taken.is_empty() || asked.strength.is_empty() {
                 continue;
             }
-            let names: Vec<&str> =
-                asked.not_taken.iter().map(|case| self.joint.loads.cases[*case].name.value.as_str()).collect();
+            let names: Vec<&str> = asked
+                .not_taken
+                .iter()
+                .map(|case| self.joint.loads.cases[*case].name.value.as_str())
+                .collect();
             let text = format!(
                 "{} takes no cases of the level stated for {}.",
                 capital(&asked.sheet.name.value),
@@ -270,7 +394,9 @@ impl Builder<'_> {
     pub(super) fn case_margins(&mut self, calculation: &Calculation<'_>) -> Vec<usize> {
         let mut worst: Vec<(usize, usize, usize, Governing)> = Vec::new();
         for (outcome, given) in calculation.outcomes.iter().enumerate() {
-            let Outcome::Assessed(asked) = given else { continue };
+            let Outcome::Assessed(asked) = given else {
+                continue;
+            };
             for strength in &asked.strength {
                 for at in &strength.per_case {
                     match worst.iter_mut().find(|known| known.0 == at.case) {
@@ -283,7 +409,11 @@ impl Builder<'_> {
                 }
             }
         }
-        worst.sort_by(|a, b| b.3.severity().total_cmp(&a.3.severity()).then(a.0.cmp(&b.0)));
+        worst.sort_by(|a, b| {
+            b.3.severity()
+                .total_cmp(&a.3.severity())
+                .then(a.0.cmp(&b.0))
+        });
         let order: Vec<usize> = worst.iter().map(|row| row.0).collect();
         if worst.len() < 2 {
             return order;
@@ -294,19 +424,38 @@ impl Builder<'_> {
             word_column("check", 4),
             word_column("place", 3),
             number_column(symbol(&Symbol::of("U", &[])), ""),
-            Column { head: plain("MS"), unit: Vec::new(), align: Align::Point, share: 0 },
+            Column {
+                head: plain("MS"),
+                unit: Vec::new(),
+                align: Align::Point,
+                share: 0,
+            },
         ];
         let total = worst.len();
         let mut rows = Vec::new();
         for (case, outcome, check, at) in worst.into_iter().take(CASES_IN_NOTE) {
             let told = self.joint.loads.cases[case].clone();
             let id = format!("worst.{}-{}", case + 1, slug(&told.name.value));
-            let utilisation = self.batch_value(&format!("{id}.u"), Symbol::of("U", &[]), "Utilisation", at.utilisation);
+            let utilisation = self.batch_value(
+                &format!("{id}.u"),
+                Symbol::of("U", &[]),
+                "Utilisation",
+                at.utilisation,
+            );
             let margin = match at.margin {
                 Margin::Value(margin) => {
-                    let value = self.batch_value(&format!("{id}.ms"), Symbol::of("M", &["S"]), "Margin of safety", margin);
+                    let value = self.batch_value(
+                        &format!("{id}.ms"),
+                        Symbol::of("M", &["S"]),
+                        "Margin of safety",
+                        margin,
+                    );
                     self.ledger.get_mut(value).signed = true;
-                    Cell::Rounded { value, decimals: 2, up: false }
+                    Cell::Rounded {
+                        value,
+                        decimals: 2,
+                        up: false,
+                    }
                 }
                 Margin::High => Cell::Text(plain("high")),
                 Margin::FixedTermsExceed => Cell::Text(plain("fails")),
@@ -314,19 +463,40 @@ impl Builder<'_> {
             let cells = vec![
                 Cell::Text(plain(&told.name.value)),
                 Cell::Text(plain(told.level.value.word())),
-                Cell::Text(plain(&capital(&check_name(asked(calculation, outcome), check)))),
+                Cell::Text(plain(&capital(&check_name(
+                    asked(calculation, outcome),
+                    check,
+                )))),
                 Cell::Text(plain(&self.place_words(spot_of(&at)))),
-                Cell::Rounded { value: utilisation, decimals: 3, up: true },
+                Cell::Rounded {
+                    value: utilisation,
+                    decimals: 3,
+                    up: true,
+                },
                 margin,
             ];
-            rows.push(Line { id, cells, strong: rows.is_empty() });
+            rows.push(Line {
+                id,
+                cells,
+                strong: rows.is_empty(),
+            });
         }
         let caption = if total > CASES_IN_NOTE {
-            format!("Least margin of each case, the {CASES_IN_NOTE} that rank first of {total}; all stand in cases.csv")
+            format!(
+                "Least margin of each case, the {CASES_IN_NOTE} that rank first of {total}; all stand in cases.csv"
+            )
         } else {
-            format!("Least margin of each case, all {total}, by the batch kernel at every check point")
+            format!(
+                "Least margin of each case, all {total}, by the batch kernel at every check point"
+            )
         };
-        self.table(Sheet { id: "case-margins".to_owned(), caption: plain(&caption), columns, rows, foot: None });
+        self.table(Sheet {
+            id: "case-margins".to_owned(),
+            caption: plain(&caption),
+            columns,
+            rows,
+            foot: None,
+        });
         order
     }
 
@@ -358,11 +528,16 @@ impl Builder<'_> {
             return;
         }
         self.part("refusals", "Checks without a number");
-        self.para(plain("For these checks mechanics or the clause gives no number, so this note gives none."));
+        self.para(plain(
+            "For these checks mechanics or the clause gives no number, so this note gives none.",
+        ));
         let items = refused
             .into_iter()
             .map(|refusal| {
-                let mut text: Text = vec![strong(&capital(&refusal.clause)), piece(&format!(": {}.", refusal.reason))];
+                let mut text: Text = vec![
+                    strong(&capital(&refusal.clause)),
+                    piece(&format!(": {}.", refusal.reason)),
+                ];
                 if !refusal.help.is_empty() {
                     text.push(piece(&format!(" What would help: {}.", refusal.help)));
                 }
@@ -373,14 +548,23 @@ impl Builder<'_> {
     }
 
     /// Limits on sizes and lengths: each distinct one in steps, then all runs.
-    pub(super) fn sizes(&mut self, calculation: &Calculation<'_>, ground: &Ground<'_>) -> Result<(), NoteError> {
+    pub(super) fn sizes(
+        &mut self,
+        calculation: &Calculation<'_>,
+        ground: &Ground<'_>,
+    ) -> Result<(), NoteError> {
         self.part("sizes", "Sizes and detailing");
         let mut rows = Vec::new();
         for (index, outcome) in calculation.outcomes.iter().enumerate() {
-            let Outcome::Assessed(asked) = outcome else { continue };
+            let Outcome::Assessed(asked) = outcome else {
+                continue;
+            };
             let mut done: Vec<(LimitOutcome, Value, Value)> = Vec::new();
             for limit in &asked.limits {
-                let known = done.iter().find(|(known, ..)| same_limit(known, limit)).map(|(_, value, bound)| (*value, *bound));
+                let known = done
+                    .iter()
+                    .find(|(known, ..)| same_limit(known, limit))
+                    .map(|(_, value, bound)| (*value, *bound));
                 let (value, bound) = match known {
                     Some(known) => known,
                     None => {
@@ -389,7 +573,8 @@ impl Builder<'_> {
                         }
                         let env = self.size_env(limit.run);
                         let prefix = format!("limit-{}-{}", index + 1, done.len() + 1);
-                        let worked = work_limit(&mut self.ledger, &env, ground, asked, limit, &prefix)?;
+                        let worked =
+                            work_limit(&mut self.ledger, &env, ground, asked, limit, &prefix)?;
                         for step in &worked.steps {
                             self.show(*step);
                         }
@@ -413,27 +598,55 @@ impl Builder<'_> {
             word_column("", 0),
         ];
         let caption = plain("Limits on sizes and lengths, run by run");
-        self.table(Sheet { id: "limit-table".to_owned(), caption, columns, rows, foot: None });
+        self.table(Sheet {
+            id: "limit-table".to_owned(),
+            caption,
+            columns,
+            rows,
+            foot: None,
+        });
         Ok(())
     }
 
-    fn limit_row(&mut self, asked: &Asked, limit: &LimitOutcome, value: Value, bound: Value, at: usize) -> Line {
+    fn limit_row(
+        &mut self,
+        asked: &Asked,
+        limit: &LimitOutcome,
+        value: Value,
+        bound: Value,
+        at: usize,
+    ) -> Line {
         let rule = &asked.sheet.limits[limit.limit];
-        let part = limit.part.map(|turn| format!(", {}", turn.word())).unwrap_or_default();
+        let part = limit
+            .part
+            .map(|turn| format!(", {}", turn.word()))
+            .unwrap_or_default();
         let sign = match rule.side {
             Side::AtLeast => "≥",
             Side::AtMost => "≤",
         };
-        let name = format!("{}: {}{part}", capital(&asked.sheet.name.value), rule.name.value);
+        let name = format!(
+            "{}: {}{part}",
+            capital(&asked.sheet.name.value),
+            rule.name.value
+        );
         let cells = vec![
             Cell::Text(plain(&name)),
             Cell::Text(plain(&self.runs[limit.run].name)),
             self.cell(value),
             Cell::Text(plain(sign)),
             self.cell(bound),
-            Cell::Text(if limit.holds { plain("holds") } else { vec![strong("fails")] }),
+            Cell::Text(if limit.holds {
+                plain("holds")
+            } else {
+                vec![strong("fails")]
+            }),
         ];
-        Line { id: format!("limit-row-{}", at + 1), cells, strong: false }
+        Line {
+            id: format!("limit-row-{}", at + 1),
+            cells,
+            strong: false,
+        }
     }
 
     /// The names of a run's sizes as sheets read them.
@@ -458,16 +671,28 @@ impl Builder<'_> {
     pub(super) fn place_words(&self, spot: Spot) -> String {
         let run = &self.runs[spot.run];
         let at: V3 = run.path.point(spot.p);
-        if let (Some(point), true) = (self.point_at(run.told.point(spot.p)), spot.p <= 0.0 || spot.p >= 1.0) {
+        if let (Some(point), true) = (
+            self.point_at(run.told.point(spot.p)),
+            spot.p <= 0.0 || spot.p >= 1.0,
+        ) {
             let end = if spot.p <= 0.0 { "start" } else { "end" };
-            let closed = (run.told.point(0.0) - run.told.point(1.0)).norm() < 1e-9 * self.properties.size;
-            let end = if closed { "on".to_owned() } else { format!("{end} of") };
+            let closed =
+                (run.told.point(0.0) - run.told.point(1.0)).norm() < 1e-9 * self.properties.size;
+            let end = if closed {
+                "on".to_owned()
+            } else {
+                format!("{end} of")
+            };
             return format!("point {}, {end} {}", point.number, run.name);
         }
         match &run.path {
             crate::weld::Segment::Arc { from, sweep, .. } => {
                 let degrees = (from + spot.p * sweep).to_degrees();
-                format!("{} at {}°", run.name, Printed::of(degrees, 4, 4, 1e-6).text())
+                format!(
+                    "{} at {}°",
+                    run.name,
+                    Printed::of(degrees, 4, 4, 1e-6).text()
+                )
             }
             crate::weld::Segment::Straight { .. } => {
                 let distance = (at - run.path.point(0.0)).norm();
@@ -483,8 +708,14 @@ impl Builder<'_> {
     }
 
     /// The kernel's stress at the spot of a check.
-    pub(super) fn kernel_stress(calculation: &Calculation<'_>, governing: &Governing) -> Option<V3> {
-        calculation.fields[governing.case].as_ref().ok().map(|field| field.at(governing.position))
+    pub(super) fn kernel_stress(
+        calculation: &Calculation<'_>,
+        governing: &Governing,
+    ) -> Option<V3> {
+        calculation.fields[governing.case]
+            .as_ref()
+            .ok()
+            .map(|field| field.at(governing.position))
     }
 }
 
@@ -497,7 +728,9 @@ fn same_limit(a: &LimitOutcome, b: &LimitOutcome) -> bool {
 /// A text with its first letter in upper case.
 pub(super) fn capital(text: &str) -> String {
     let mut chars = text.chars();
-    chars.next().map_or_else(String::new, |first| first.to_uppercase().chain(chars).collect())
+    chars.next().map_or_else(String::new, |first| {
+        first.to_uppercase().chain(chars).collect()
+    })
 }
 
 /// A case's values as the drawing shows them.

@@ -51,7 +51,9 @@ impl Builder<'_> {
     /// The number of the point at a place, if one stands there.
     pub(super) fn point_at(&self, at: V3) -> Option<&Point> {
         let near = SAME * self.properties.size.max(f64::MIN_POSITIVE);
-        self.points.iter().find(|point| (point.at - at).norm() <= near)
+        self.points
+            .iter()
+            .find(|point| (point.at - at).norm() <= near)
     }
 
     /// Numbers the ends of all straight runs and open arcs.
@@ -59,7 +61,8 @@ impl Builder<'_> {
         for index in 0..self.runs.len() {
             let run = self.runs[index].clone();
             let [from, to] = ends(&run.told);
-            let closed = matches!(run.told, Segment::Arc { .. }) && (from - to).norm() <= SAME * self.properties.size;
+            let closed = matches!(run.told, Segment::Arc { .. })
+                && (from - to).norm() <= SAME * self.properties.size;
             for at in if closed { vec![from] } else { vec![from, to] } {
                 if self.point_at(at).is_none() {
                     let values = self.coordinates(&run, at);
@@ -85,9 +88,13 @@ impl Builder<'_> {
             let says = format!("Coordinate {} of point {number}", AXES[axis]);
             let id = format!("point-{number}.{}", AXES[axis]);
             match &told {
-                Some(triple) => {
-                    self.input(id, symbol, &says, &triple.parts[axis], Origin::Input(triple.place.clone()))
-                }
+                Some(triple) => self.input(
+                    id,
+                    symbol,
+                    &says,
+                    &triple.parts[axis],
+                    Origin::Input(triple.place.clone()),
+                ),
                 None => {
                     let method = match (&spec.stitch, arc, self.joint.weld.pattern.is_some()) {
                         (Some(_), _, _) => "laid out from the run, its bead and its pitch",
@@ -97,7 +104,14 @@ impl Builder<'_> {
                     };
                     let origin = Origin::Input(spec.place.clone());
                     self.ledger.found(
-                        Draft { id, symbol, says, formula: method, origin, dim: None },
+                        Draft {
+                            id,
+                            symbol,
+                            says,
+                            formula: method,
+                            origin,
+                            dim: None,
+                        },
                         at[axis],
                         Dim::LENGTH,
                     )
@@ -111,7 +125,10 @@ impl Builder<'_> {
         let unit = self.joint.units.value.length();
         let axes = axes(self.planar);
         let mut columns = vec![word_column("point", 0)];
-        columns.extend(axes.iter().map(|axis| number_column(symbol(&Symbol::of(AXES[*axis], &[])), unit)));
+        columns.extend(
+            axes.iter()
+                .map(|axis| number_column(symbol(&Symbol::of(AXES[*axis], &[])), unit)),
+        );
         columns.push(word_column("where", 1));
         let rows = (0..self.points.len())
             .map(|index| {
@@ -119,10 +136,20 @@ impl Builder<'_> {
                 let mut cells = vec![Cell::Text(plain(&number.to_string()))];
                 cells.extend(axes.iter().map(|axis| self.cell(values[*axis])));
                 cells.push(Cell::Text(self.where_is(at)));
-                Line { id: format!("point-{number}"), cells, strong: false }
+                Line {
+                    id: format!("point-{number}"),
+                    cells,
+                    strong: false,
+                }
             })
             .collect();
-        self.table(Sheet { id: "points".to_owned(), caption: plain("Points of the weld group"), columns, rows, foot: None });
+        self.table(Sheet {
+            id: "points".to_owned(),
+            caption: plain("Points of the weld group"),
+            columns,
+            rows,
+            foot: None,
+        });
     }
 
     /// The runs that start or end at a place, in words.

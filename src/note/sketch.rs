@@ -65,7 +65,11 @@ fn short(length: f64, size: f64) -> String {
 
 impl Builder<'_> {
     /// The drawing's data.
-    pub(super) fn sketch(&self, case: Option<(usize, &CaseValues)>, governing: Option<(V3, String)>) -> Sketch {
+    pub(super) fn sketch(
+        &self,
+        case: Option<(usize, &CaseValues)>,
+        governing: Option<(V3, String)>,
+    ) -> Sketch {
         let units = self.joint.units.value;
         let size = self.properties.size;
         let centroid = self.properties.centroid;
@@ -78,22 +82,39 @@ impl Builder<'_> {
             .collect();
         let load = case.map(|(index, values)| {
             let at = self.actions[index].at;
-            let text = |value, dim: Dim| format!("{} {}", self.ledger.printed(value).text(), units.text(dim));
-            let part = |values: [_; 3], dim: Dim| values.map(|value| (self.ledger.get(value).value, text(value, dim)));
+            let text = |value, dim: Dim| {
+                format!("{} {}", self.ledger.printed(value).text(), units.text(dim))
+            };
+            let part = |values: [_; 3], dim: Dim| {
+                values.map(|value| (self.ledger.get(value).value, text(value, dim)))
+            };
             let height = at.z - centroid.z;
             let raised = self.planar && height.abs() > 1e-9 * size;
             SketchLoad {
                 at,
-                aside: if raised { format!("z = {}", short(at.z, size)) } else { String::new() },
+                aside: if raised {
+                    format!("z = {}", short(at.z, size))
+                } else {
+                    String::new()
+                },
                 distance: format!("{} from C", short((at - centroid).norm(), size)),
                 force: part(values.force, Dim::FORCE),
                 moment: part(values.moment, Dim::MOMENT),
             }
         });
-        let axes = self.joint.frame.axes.each_ref().map(|words| words.as_ref().map_or(String::new(), |w| w.value.clone()));
+        let axes = self
+            .joint
+            .frame
+            .axes
+            .each_ref()
+            .map(|words| words.as_ref().map_or(String::new(), |w| w.value.clone()));
         Sketch {
             runs,
-            points: self.points.iter().map(|point| (point.at, point.number.to_string())).collect(),
+            points: self
+                .points
+                .iter()
+                .map(|point| (point.at, point.number.to_string()))
+                .collect(),
             axes,
             centroid,
             dimensions: self.dimensions(load.as_ref().map(|load| load.at)),
@@ -108,7 +129,11 @@ impl Builder<'_> {
     /// The name of a run with its leg or throat.
     fn run_text(&self, index: usize) -> String {
         let words = self.weld_words(index);
-        let size = words.split(", ").nth(1).unwrap_or(&words).replace(&format!(" {}", self.joint.units.value.length()), "");
+        let size = words
+            .split(", ")
+            .nth(1)
+            .unwrap_or(&words)
+            .replace(&format!(" {}", self.joint.units.value.length()), "");
         format!("{}, {size}", self.runs[index].name)
     }
 
@@ -139,7 +164,8 @@ impl Builder<'_> {
             for axis in [0, 1] {
                 let from = low;
                 let reach = load[axis] - from[axis];
-                let beyond = load[axis] > high[axis] + 1e-6 * size || load[axis] < low[axis] - 1e-6 * size;
+                let beyond =
+                    load[axis] > high[axis] + 1e-6 * size || load[axis] < low[axis] - 1e-6 * size;
                 if beyond {
                     out.push((from, load, axis, short(reach.abs(), size)));
                 }

@@ -42,10 +42,21 @@ impl Standing {
         }
         let first = ranked(calculation).into_iter().next();
         let governing = first.as_ref().map(|check| {
-            let case = calculation.joint.loads.cases[check.governing.case].name.value.clone();
-            (check_name(asked(calculation, check.outcome), check.check), case)
+            let case = calculation.joint.loads.cases[check.governing.case]
+                .name
+                .value
+                .clone();
+            (
+                check_name(asked(calculation, check.outcome), check.check),
+                case,
+            )
         });
-        Self { margin: first.map(|check| check.governing.margin), governing, held: (held, all), refused }
+        Self {
+            margin: first.map(|check| check.governing.margin),
+            governing,
+            held: (held, all),
+            refused,
+        }
     }
 
     /// Whether every check holds and has a number.
@@ -72,10 +83,13 @@ impl Standing {
         let verb = if held == 1 { "holds" } else { "hold" };
         let mut text = format!("{held} of {} {verb}.", count(all, "check", "checks"));
         if self.refused > 0 {
-            text.push_str(&format!(" {} no number.", match self.refused {
-                1 => "1 check has".to_owned(),
-                many => format!("{many} checks have"),
-            }));
+            text.push_str(&format!(
+                " {} no number.",
+                match self.refused {
+                    1 => "1 check has".to_owned(),
+                    many => format!("{many} checks have"),
+                }
+            ));
         }
         text
     }
@@ -87,7 +101,11 @@ impl Standing {
             Some((check, case)) => format!("{}, case {case}", capital(check)),
             None => "no strength check".to_owned(),
         };
-        format!("least margin {}  {governing}  {}", self.figure(), self.tally())
+        format!(
+            "least margin {}  {governing}  {}",
+            self.figure(),
+            self.tally()
+        )
     }
 }
 

@@ -53,7 +53,16 @@ impl Builder<'_> {
         Ok(value)
     }
 
-    fn find_at(&mut self, sheet: &mut Sheet, name: &str, symbol: Symbol, says: &str, method: &str, value: f64, dim: Dim) {
+    fn find_at(
+        &mut self,
+        sheet: &mut Sheet,
+        name: &str,
+        symbol: Symbol,
+        says: &str,
+        method: &str,
+        value: f64,
+        dim: Dim,
+    ) {
         let draft = Draft {
             id: format!("{}.{}", sheet.tag, name.replace('_', "-")),
             symbol,
@@ -68,26 +77,51 @@ impl Builder<'_> {
     }
 
     /// What a case needs once, whatever the point: the bending terms in the plane, θ in space.
-    pub(super) fn case_terms(&mut self, tag: &str, case: usize, values: &CaseValues, regime: Regime) -> Result<Env, FormulaError> {
+    pub(super) fn case_terms(
+        &mut self,
+        tag: &str,
+        case: usize,
+        values: &CaseValues,
+        regime: Regime,
+    ) -> Result<Env, FormulaError> {
         let mut env = self.env.clone();
         for axis in 0..3 {
             env.bind(&format!("F_{}", AXES[axis]), values.force[axis]);
             env.bind(&format!("M_{}", AXES[axis]), values.about[axis]);
         }
-        let mut sheet = Sheet { tag: tag.to_owned(), env };
+        let mut sheet = Sheet {
+            tag: tag.to_owned(),
+            env,
+        };
         match regime {
             Regime::Planar => {
                 if self.bends(values) {
                     if !self.env.names.contains_key("D") {
                         let says = "Determinant of the second moments";
                         self.step(Symbol::of("D", &[]), says, "I_xx*I_yy - I_xy^2", "statics")?;
-                        sheet.env.bind("D", self.ledger.find("D").expect("the step was just made"));
+                        sheet
+                            .env
+                            .bind("D", self.ledger.find("D").expect("the step was just made"));
                     }
                     let n = |axis| Symbol::of("N", &[axis]);
                     let says = "Bending term of the moments, for y";
-                    self.at(&mut sheet, "N_x", n("x"), says, "M_x*I_yy + M_y*I_xy", "method 4")?;
+                    self.at(
+                        &mut sheet,
+                        "N_x",
+                        n("x"),
+                        says,
+                        "M_x*I_yy + M_y*I_xy",
+                        "method 4",
+                    )?;
                     let says = "Bending term of the moments, for x";
-                    self.at(&mut sheet, "N_y", n("y"), says, "M_y*I_xx + M_x*I_xy", "method 4")?;
+                    self.at(
+                        &mut sheet,
+                        "N_y",
+                        n("y"),
+                        says,
+                        "M_y*I_xx + M_x*I_xy",
+                        "method 4",
+                    )?;
                 }
             }
             Regime::Space => self.twist(&mut sheet, case)?,
@@ -96,11 +130,30 @@ impl Builder<'_> {
                     let symbol = Symbol::of("u", &[AXES[axis]]);
                     let says = format!("Direction of the line of the welds, {}", AXES[axis]);
                     let name = format!("u_{}", AXES[axis]);
-                    self.find_at(&mut sheet, &name, symbol, &says, "unit vector along the line", u[axis], Dim::NONE);
+                    self.find_at(
+                        &mut sheet,
+                        &name,
+                        symbol,
+                        &says,
+                        "unit vector along the line",
+                        u[axis],
+                        Dim::NONE,
+                    );
                 }
-                let line = if self.planar { "J" } else { "S_xx + S_yy + S_zz" };
+                let line = if self.planar {
+                    "J"
+                } else {
+                    "S_xx + S_yy + S_zz"
+                };
                 let says = "Second moment along the line of the welds";
-                self.at(&mut sheet, "I_L", Symbol::of("I", &["L"]), says, line, "method 4")?;
+                self.at(
+                    &mut sheet,
+                    "I_L",
+                    Symbol::of("I", &["L"]),
+                    says,
+                    line,
+                    "method 4",
+                )?;
             }
             Regime::Point => {}
         }
@@ -120,13 +173,28 @@ impl Builder<'_> {
     fn twist(&mut self, sheet: &mut Sheet, case: usize) -> Result<(), FormulaError> {
         let action = self.actions[case];
         let (_, moment) = action.about(self.properties.centroid);
-        let theta = self.properties.tensor.try_inverse().map_or_else(crate::weld::V3::zeros, |inverse| inverse * moment);
+        let theta = self
+            .properties
+            .tensor
+            .try_inverse()
+            .map_or_else(crate::weld::V3::zeros, |inverse| inverse * moment);
         for axis in 0..3 {
             let symbol = Symbol::of("theta", &[AXES[axis]]);
-            let says = format!("Twist of the stress field about {}: the solution of K θ = M", AXES[axis]);
+            let says = format!(
+                "Twist of the stress field about {}: the solution of K θ = M",
+                AXES[axis]
+            );
             let name = format!("theta_{}", AXES[axis]);
             let dim = Dim::STRESS.over(Dim::LENGTH);
-            self.find_at(sheet, &name, symbol, &says, "solution of the three equations verified below", theta[axis], dim);
+            self.find_at(
+                sheet,
+                &name,
+                symbol,
+                &says,
+                "solution of the three equations verified below",
+                theta[axis],
+                dim,
+            );
         }
         for (axis, formula) in [
             "K_xx*theta_x + K_xy*theta_y + K_zx*theta_z",
@@ -138,7 +206,14 @@ impl Builder<'_> {
         {
             let a = AXES[axis];
             let says = format!("Verification: K θ returns the moment about {a}");
-            self.at(sheet, &format!("M_{a}K"), Symbol::of("M", &[a, "K"]), &says, formula, "method 4")?;
+            self.at(
+                sheet,
+                &format!("M_{a}K"),
+                Symbol::of("M", &[a, "K"]),
+                &says,
+                formula,
+                "method 4",
+            )?;
         }
         Ok(())
     }
@@ -152,7 +227,10 @@ impl Builder<'_> {
                     || (spot.p >= 1.0 && run.path.point(1.0) == run.told.point(1.0));
                 if told_end {
                     let at = run.path.point(spot.p);
-                    let values = self.point_at(at).expect("every told end has a point").values;
+                    let values = self
+                        .point_at(at)
+                        .expect("every told end has a point")
+                        .values;
                     for axis in 0..3 {
                         sheet.env.bind(AXES[axis], values[axis]);
                     }
@@ -165,25 +243,57 @@ impl Builder<'_> {
                     (_, true, false) => "L".to_owned(),
                     (false, false, _) => {
                         let length = run.path.length();
-                        let says = "Distance of the governing point from the effective start of the run";
+                        let says =
+                            "Distance of the governing point from the effective start of the run";
                         let method = "found by search along the run";
-                        self.find_at(sheet, "s", Symbol::of("s", &[]), says, method, spot.p * length, Dim::LENGTH);
-                        if trimmed { "(e_a + s)".to_owned() } else { "s".to_owned() }
+                        self.find_at(
+                            sheet,
+                            "s",
+                            Symbol::of("s", &[]),
+                            says,
+                            method,
+                            spot.p * length,
+                            Dim::LENGTH,
+                        );
+                        if trimmed {
+                            "(e_a + s)".to_owned()
+                        } else {
+                            "s".to_owned()
+                        }
                     }
                 };
                 let length = if trimmed { "L_0" } else { "L" };
                 for axis in axes(self.planar) {
                     let a = AXES[*axis];
                     let formula = format!("{a}_a + d_{a}*{from}/{length}");
-                    self.at(sheet, a, Symbol::of(a, &[]), "Position of the point on the run", &formula, "geometry")?;
+                    self.at(
+                        sheet,
+                        a,
+                        Symbol::of(a, &[]),
+                        "Position of the point on the run",
+                        &formula,
+                        "geometry",
+                    )?;
                 }
                 Ok(())
             }
             Segment::Arc { from, sweep, .. } => {
                 let theta = from + spot.p * sweep;
-                let method = if spot.p <= 0.0 || spot.p >= 1.0 { "at the end of the arc" } else { "found by search along the arc" };
+                let method = if spot.p <= 0.0 || spot.p >= 1.0 {
+                    "at the end of the arc"
+                } else {
+                    "found by search along the arc"
+                };
                 let says = "Angle of the point on the arc";
-                self.find_at(sheet, "theta", Symbol::of("theta", &[]), says, method, theta, Dim::ANGLE);
+                self.find_at(
+                    sheet,
+                    "theta",
+                    Symbol::of("theta", &[]),
+                    says,
+                    method,
+                    theta,
+                    Dim::ANGLE,
+                );
                 if !self.planar {
                     self.arc_axes(spot.run);
                     for (name, value) in self.run_values[spot.run].clone() {
@@ -197,7 +307,14 @@ impl Builder<'_> {
                         (true, _) => "y_0 + R*sin(theta)".to_owned(),
                         (false, _) => format!("{a}_0 + R*cos(theta)*u_{a} + R*sin(theta)*v_{a}"),
                     };
-                    self.at(sheet, a, Symbol::of(a, &[]), "Position of the point on the arc", &formula, "geometry")?;
+                    self.at(
+                        sheet,
+                        a,
+                        Symbol::of(a, &[]),
+                        "Position of the point on the arc",
+                        &formula,
+                        "geometry",
+                    )?;
                 }
                 Ok(())
             }
@@ -206,26 +323,43 @@ impl Builder<'_> {
 
     /// The axes of an arc's plane, for groups in space.
     fn arc_axes(&mut self, index: usize) {
-        let Segment::Arc { u, v, .. } = self.runs[index].path else { return };
+        let Segment::Arc { u, v, .. } = self.runs[index].path else {
+            return;
+        };
         for (letter, axis) in [("u", u), ("v", v)] {
             for component in 0..3 {
                 let name = format!("{letter}_{}", AXES[component]);
                 if !self.run_values[index].contains_key(&name) {
                     let says = format!("Axis {letter} of the arc's plane, {}", AXES[component]);
-                    self.direction_value(index, &name, Symbol::of(letter, &[AXES[component]]), says, axis[component]);
+                    self.direction_value(
+                        index,
+                        &name,
+                        Symbol::of(letter, &[AXES[component]]),
+                        says,
+                        axis[component],
+                    );
                 }
             }
         }
     }
 
     /// f_x, f_y, f_z and the resultant f at the spot.
-    fn components(&mut self, sheet: &mut Sheet, values: &CaseValues, regime: Regime) -> Result<(), FormulaError> {
+    fn components(
+        &mut self,
+        sheet: &mut Sheet,
+        values: &CaseValues,
+        regime: Regime,
+    ) -> Result<(), FormulaError> {
         let bends = self.bends(values);
         let formulas: [String; 3] = match regime {
             Regime::Planar => [
                 "F_x/A_w - M_z*(y - y_c)/J".to_owned(),
                 "F_y/A_w + M_z*(x - x_c)/J".to_owned(),
-                if bends { "F_z/A_w + (N_x*(y - y_c) - N_y*(x - x_c))/D".to_owned() } else { "F_z/A_w".to_owned() },
+                if bends {
+                    "F_z/A_w + (N_x*(y - y_c) - N_y*(x - x_c))/D".to_owned()
+                } else {
+                    "F_z/A_w".to_owned()
+                },
             ],
             Regime::Space => [
                 "F_x/A_w + theta_y*(z - z_c) - theta_z*(y - y_c)".to_owned(),
@@ -233,10 +367,19 @@ impl Builder<'_> {
                 "F_z/A_w + theta_x*(y - y_c) - theta_y*(x - x_c)".to_owned(),
             ],
             Regime::Collinear { .. } => {
-                let terms: Vec<String> =
-                    axes(self.planar).iter().map(|axis| format!("({0} - {0}_c)*u_{0}", AXES[*axis])).collect();
+                let terms: Vec<String> = axes(self.planar)
+                    .iter()
+                    .map(|axis| format!("({0} - {0}_c)*u_{0}", AXES[*axis]))
+                    .collect();
                 let says = "Distance of the point from the centroid along the line";
-                self.at(sheet, "s", Symbol::of("s", &[]), says, &terms.join(" + "), "geometry")?;
+                self.at(
+                    sheet,
+                    "s",
+                    Symbol::of("s", &[]),
+                    says,
+                    &terms.join(" + "),
+                    "geometry",
+                )?;
                 [
                     "F_x/A_w + (M_y*u_z - M_z*u_y)*s/I_L".to_owned(),
                     "F_y/A_w + (M_z*u_x - M_x*u_z)*s/I_L".to_owned(),
@@ -248,16 +391,34 @@ impl Builder<'_> {
         for axis in 0..3 {
             let a = AXES[axis];
             let says = match (axis, regime) {
-                (2, Regime::Planar) if bends => "Stress out of the plane, from the direct force and both bending moments",
+                (2, Regime::Planar) if bends => {
+                    "Stress out of the plane, from the direct force and both bending moments"
+                }
                 (2, Regime::Planar) => "Stress out of the plane, from the direct force",
-                (_, Regime::Planar) => "Stress along the axis, from the direct force and the torsion",
+                (_, Regime::Planar) => {
+                    "Stress along the axis, from the direct force and the torsion"
+                }
                 _ => "Stress along the axis, from the direct force and the moments",
             };
             let says = says.replace("the axis", a);
-            self.at(sheet, &format!("f_{a}"), Symbol::of("f", &[a]), &says, &formulas[axis], "method 4")?;
+            self.at(
+                sheet,
+                &format!("f_{a}"),
+                Symbol::of("f", &[a]),
+                &says,
+                &formulas[axis],
+                "method 4",
+            )?;
         }
         let says = "Resultant stress on the throat area";
-        self.at(sheet, "f", Symbol::of("f", &[]), says, "sqrt(f_x^2 + f_y^2 + f_z^2)", "method 4")?;
+        self.at(
+            sheet,
+            "f",
+            Symbol::of("f", &[]),
+            says,
+            "sqrt(f_x^2 + f_y^2 + f_z^2)",
+            "method 4",
+        )?;
         Ok(())
     }
 
@@ -274,13 +435,22 @@ impl Builder<'_> {
                     match (self.planar, axis) {
                         (true, 0) => format!("{minus}sin(theta)"),
                         (true, _) => format!("{plus}cos(theta)"),
-                        (false, _) if *sweep < 0.0 => format!("sin(theta)*u_{a} - cos(theta)*v_{a}"),
+                        (false, _) if *sweep < 0.0 => {
+                            format!("sin(theta)*u_{a} - cos(theta)*v_{a}")
+                        }
                         (false, _) => format!("cos(theta)*v_{a} - sin(theta)*u_{a}"),
                     }
                 }
             };
             let says = format!("Direction of the run at the point, {a}");
-            self.at(sheet, &format!("t_{a}"), Symbol::of("ell", &[a]), &says, &formula, "geometry")?;
+            self.at(
+                sheet,
+                &format!("t_{a}"),
+                Symbol::of("ell", &[a]),
+                &says,
+                &formula,
+                "geometry",
+            )?;
         }
         if !self.planar {
             self.normal_values(spot.run);
@@ -291,7 +461,14 @@ impl Builder<'_> {
                 let [a, b, c] = [AXES[axis], AXES[(axis + 1) % 3], AXES[(axis + 2) % 3]];
                 let says = format!("Direction across the run, {a}");
                 let formula = format!("n_{b}*t_{c} - n_{c}*t_{b}");
-                self.at(sheet, &format!("m_{a}"), Symbol::of("m", &[a]), &says, &formula, "geometry")?;
+                self.at(
+                    sheet,
+                    &format!("m_{a}"),
+                    Symbol::of("m", &[a]),
+                    &says,
+                    &formula,
+                    "geometry",
+                )?;
             }
         }
         Ok(())
@@ -301,13 +478,30 @@ impl Builder<'_> {
     fn local_components(&mut self, sheet: &mut Sheet, spot: Spot) -> Result<(), FormulaError> {
         self.directions(sheet, spot)?;
         let dot = |v: &str, planar: bool| {
-            let terms: Vec<String> = axes(planar).iter().map(|axis| format!("f_{0}*{v}_{0}", AXES[*axis])).collect();
+            let terms: Vec<String> = axes(planar)
+                .iter()
+                .map(|axis| format!("f_{0}*{v}_{0}", AXES[*axis]))
+                .collect();
             terms.join(" + ")
         };
         let f = |part: &str| Symbol::of("f", &[part]);
-        self.at(sheet, "f_par", f("par"), "Stress along the run", &dot("t", self.planar), "method 4")?;
+        self.at(
+            sheet,
+            "f_par",
+            f("par"),
+            "Stress along the run",
+            &dot("t", self.planar),
+            "method 4",
+        )?;
         if self.planar {
-            self.at(sheet, "f_n", f("n"), "Stress across the run, in the faying plane", "f_y*t_x - f_x*t_y", "method 4")?;
+            self.at(
+                sheet,
+                "f_n",
+                f("n"),
+                "Stress across the run, in the faying plane",
+                "f_y*t_x - f_x*t_y",
+                "method 4",
+            )?;
             let out = match sheet.env.names.get("f_z") {
                 Some(bound) => bound.clone(),
                 None => unreachable!("the components were worked before"),
@@ -325,32 +519,68 @@ impl Builder<'_> {
     /// σ⊥, τ⊥ and τ∥ on the throat plane.
     fn on_throat(&mut self, sheet: &mut Sheet, spot: Spot) -> Result<(), FormulaError> {
         let run = &self.runs[spot.run];
-        let (plus, minus) = if spot.side < 0.0 { ("-", "+") } else { ("+", "-") };
+        let (plus, minus) = if spot.side < 0.0 {
+            ("-", "+")
+        } else {
+            ("+", "-")
+        };
         let negative = if spot.side < 0.0 { "-" } else { "" };
         let square = (run.angle - FRAC_PI_2).abs() < 1e-9;
         let (sigma, tau) = match &run.rule {
             ThroatRule::Complete { .. } => ("f_out".to_owned(), format!("{negative}f_n")),
             ThroatRule::UnequalLegs { .. } => {
                 let root = "sqrt(leg_base^2 + leg_attached^2)";
-                let first = if negative.is_empty() { "leg_attached*f_n" } else { "-leg_attached*f_n" };
+                let first = if negative.is_empty() {
+                    "leg_attached*f_n"
+                } else {
+                    "-leg_attached*f_n"
+                };
                 (
                     format!("(leg_attached*f_out {minus} leg_base*f_n)/{root}"),
                     format!("({first} + leg_base*f_out)/{root}"),
                 )
             }
-            _ if square => (format!("(f_out {minus} f_n)/sqrt(2)"), format!("(f_out {plus} f_n)/sqrt(2)")),
+            _ if square => (
+                format!("(f_out {minus} f_n)/sqrt(2)"),
+                format!("(f_out {plus} f_n)/sqrt(2)"),
+            ),
             _ => (
                 format!("f_out*cos(psi/2) {minus} f_n*sin(psi/2)"),
                 format!("f_out*sin(psi/2) {plus} f_n*cos(psi/2)"),
             ),
         };
-        let told = if run.toe.is_some() { "" } else { "; side of the toe not stated, the worse of both" };
+        let told = if run.toe.is_some() {
+            ""
+        } else {
+            "; side of the toe not stated, the worse of both"
+        };
         let says = format!("Normal stress on the throat plane, tension positive{told}");
-        self.at(sheet, "sigma_perp", Symbol::of("sigma", &["perp"]), &says, &sigma, "method 4")?;
+        self.at(
+            sheet,
+            "sigma_perp",
+            Symbol::of("sigma", &["perp"]),
+            &says,
+            &sigma,
+            "method 4",
+        )?;
         let says = "Shear stress on the throat plane, square to the run";
-        self.at(sheet, "tau_perp", Symbol::of("tau", &["perp"]), says, &tau, "method 4")?;
+        self.at(
+            sheet,
+            "tau_perp",
+            Symbol::of("tau", &["perp"]),
+            says,
+            &tau,
+            "method 4",
+        )?;
         let says = "Shear stress on the throat plane, along the run";
-        self.at(sheet, "tau_par", Symbol::of("tau", &["par"]), says, "f_par", "method 4")?;
+        self.at(
+            sheet,
+            "tau_par",
+            Symbol::of("tau", &["par"]),
+            says,
+            "f_par",
+            "method 4",
+        )?;
         Ok(())
     }
 
@@ -368,7 +598,10 @@ impl Builder<'_> {
         for (name, value) in &self.run_values[spot.run] {
             env.bind(name, *value);
         }
-        let mut sheet = Sheet { tag: tag.to_owned(), env };
+        let mut sheet = Sheet {
+            tag: tag.to_owned(),
+            env,
+        };
         self.position(&mut sheet, spot)?;
         for axis in 0..3 {
             if !sheet.env.names.contains_key(AXES[axis]) {
@@ -379,8 +612,13 @@ impl Builder<'_> {
             }
         }
         self.components(&mut sheet, values, regime)?;
-        let on_throat = ["point_sigma_perp", "point_tau_perp", "point_tau_par"].iter().any(|name| wanted(name));
-        let local = on_throat || ["point_f_par", "point_f_n", "point_f_z", "point_sin_phi"].iter().any(|name| wanted(name));
+        let on_throat = ["point_sigma_perp", "point_tau_perp", "point_tau_par"]
+            .iter()
+            .any(|name| wanted(name));
+        let local = on_throat
+            || ["point_f_par", "point_f_n", "point_f_z", "point_sin_phi"]
+                .iter()
+                .any(|name| wanted(name));
         if local {
             self.local_components(&mut sheet, spot)?;
         }
@@ -390,10 +628,24 @@ impl Builder<'_> {
         if wanted("point_sin_phi") {
             let says = "Sine of the angle between the stress and the run";
             let formula = "sqrt(f_n^2 + f_out^2)/f";
-            self.at(&mut sheet, "sin_phi", Symbol::of("s", &["phi"]), says, formula, "method 4")?;
+            self.at(
+                &mut sheet,
+                "sin_phi",
+                Symbol::of("s", &["phi"]),
+                says,
+                formula,
+                "method 4",
+            )?;
         }
         if wanted("point_q") {
-            self.at(&mut sheet, "q", Symbol::of("q", &[]), "Line load of the bead", "t*f", "method 4")?;
+            self.at(
+                &mut sheet,
+                "q",
+                Symbol::of("q", &[]),
+                "Line load of the bead",
+                "t*f",
+                "method 4",
+            )?;
         }
         Ok(self.for_sheets(&sheet.env))
     }
@@ -408,11 +660,21 @@ impl Builder<'_> {
     ) -> Result<(), FormulaError> {
         let mut inner = env.clone();
         inner.bind("t", self.run_values[run]["t"]);
-        let mut sheet = Sheet { tag: tag.to_owned(), env: inner };
+        let mut sheet = Sheet {
+            tag: tag.to_owned(),
+            env: inner,
+        };
         let q = Symbol::of("q", &["p"]);
         match twin {
             None => {
-                self.at(&mut sheet, "q_plate", q, "Line load on the plate, of this bead alone", "t*f", "method 6")?;
+                self.at(
+                    &mut sheet,
+                    "q_plate",
+                    q,
+                    "Line load on the plate, of this bead alone",
+                    "t*f",
+                    "method 6",
+                )?;
             }
             Some((other, None)) => {
                 sheet.env.bind("t_2", self.run_values[other]["t"]);
@@ -426,10 +688,24 @@ impl Builder<'_> {
                     sheet.env.bind(&format!("g_{a}"), stress[axis]);
                     let says = format!("Line load of both beads, {a}");
                     let formula = format!("t*f_{a} + t_2*g_{a}");
-                    self.at(&mut sheet, &format!("q_{a}"), Symbol::of("q", &[a]), &says, &formula, "method 6")?;
+                    self.at(
+                        &mut sheet,
+                        &format!("q_{a}"),
+                        Symbol::of("q", &[a]),
+                        &says,
+                        &formula,
+                        "method 6",
+                    )?;
                 }
                 let says = "Line load on the plate, of both beads";
-                self.at(&mut sheet, "q_plate", q, says, "sqrt(q_x^2 + q_y^2 + q_z^2)", "method 6")?;
+                self.at(
+                    &mut sheet,
+                    "q_plate",
+                    q,
+                    says,
+                    "sqrt(q_x^2 + q_y^2 + q_z^2)",
+                    "method 6",
+                )?;
             }
         }
         if let Some(value) = sheet.env.names.get("q_plate") {

@@ -10,22 +10,32 @@ pub(super) fn plain(text: &str) -> Text {
 
 /// A piece of plain text.
 pub(super) fn piece(text: &str) -> Inline {
-    Inline::Plain { text: text.to_owned() }
+    Inline::Plain {
+        text: text.to_owned(),
+    }
 }
 
 /// A piece of emphasis.
 pub(super) fn emph(text: &str) -> Inline {
-    Inline::Emph { text: text.to_owned() }
+    Inline::Emph {
+        text: text.to_owned(),
+    }
 }
 
 /// A piece in bold.
 pub(super) fn strong(text: &str) -> Inline {
-    Inline::Strong { text: text.to_owned() }
+    Inline::Strong {
+        text: text.to_owned(),
+    }
 }
 
 /// Mathematics in running text.
 pub(super) fn math(math: &Math) -> Inline {
-    Inline::Math { typst: math.typst(), latex: math.latex(), words: math.words() }
+    Inline::Math {
+        typst: math.typst(),
+        latex: math.latex(),
+        words: math.words(),
+    }
 }
 
 /// A symbol in running text.
@@ -44,7 +54,12 @@ pub(super) fn number(printed: &Printed, signed: bool, step: Option<String>) -> I
         Some((whole, decimals)) => (whole, format!(".{decimals}")),
         None => (printed.mantissa.as_str(), String::new()),
     };
-    Inline::Number { whole: format!("{sign}{whole}"), decimals, exponent: printed.exponent, step }
+    Inline::Number {
+        whole: format!("{sign}{whole}"),
+        decimals,
+        exponent: printed.exponent,
+        step,
+    }
 }
 
 /// A short name for ids: lower-case letters and digits with single hyphens.

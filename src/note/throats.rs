@@ -26,12 +26,19 @@ impl Builder<'_> {
         };
         for index in 0..self.runs.len() {
             let run = &self.runs[index];
-            let known = sizes.iter().find(|(rule, ..)| *rule == run.rule).map(|(_, t, legs)| (*t, legs.clone()));
+            let known = sizes
+                .iter()
+                .find(|(rule, ..)| *rule == run.rule)
+                .map(|(_, t, legs)| (*t, legs.clone()));
             let (throat, legs) = match known {
                 Some(known) => known,
                 None => {
                     let letter = LETTERS.get(sizes.len()).copied().unwrap_or(b'z') as char;
-                    let letter = if distinct == 1 { String::new() } else { letter.to_string() };
+                    let letter = if distinct == 1 {
+                        String::new()
+                    } else {
+                        letter.to_string()
+                    };
                     let spec = &self.joint.weld.runs[run.spec];
                     let (throat, legs) = self.size(spec, &run.rule.clone(), &letter)?;
                     sizes.push((run.rule.clone(), throat, legs.clone()));
@@ -49,13 +56,24 @@ impl Builder<'_> {
     fn length_of(&mut self, base: &str, letter: &str, says: &str, given: &Told<Given>) -> Value {
         let symbol = lettered(base, letter);
         let id = format!("size.{}", symbol.plain().to_lowercase().replace('_', "-"));
-        let value = self.input(id, symbol, says, &given.value, Origin::Input(given.place.clone()));
+        let value = self.input(
+            id,
+            symbol,
+            says,
+            &given.value,
+            Origin::Input(given.place.clone()),
+        );
         self.show(value);
         value
     }
 
     /// The throat of one size and the legs on base and attached part.
-    fn size(&mut self, spec: &RunSpec, rule: &ThroatRule, letter: &str) -> Result<(Value, Vec<Value>), FormulaError> {
+    fn size(
+        &mut self,
+        spec: &RunSpec,
+        rule: &ThroatRule,
+        letter: &str,
+    ) -> Result<(Value, Vec<Value>), FormulaError> {
         let mut env = Env::default();
         let mut formula;
         let mut says = "Effective throat".to_owned();
@@ -84,9 +102,21 @@ impl Builder<'_> {
                 says.push_str(", legs measured square to the faces");
                 formula = format!("{leg}/(2*sin(psi/2))");
             }
-            (SizeSpec::Unequal { on_base, on_attached }, ThroatRule::UnequalLegs { gap, .. }) => {
-                let base = self.length_of("h", &format!("{letter}1"), "Leg on the base part", on_base);
-                let attached = self.length_of("h", &format!("{letter}2"), "Leg on the attached part", on_attached);
+            (
+                SizeSpec::Unequal {
+                    on_base,
+                    on_attached,
+                },
+                ThroatRule::UnequalLegs { gap, .. },
+            ) => {
+                let base =
+                    self.length_of("h", &format!("{letter}1"), "Leg on the base part", on_base);
+                let attached = self.length_of(
+                    "h",
+                    &format!("{letter}2"),
+                    "Leg on the attached part",
+                    on_attached,
+                );
                 env.bind("h_1", base);
                 env.bind("h_2", attached);
                 legs = vec![base, attached];
@@ -109,8 +139,12 @@ impl Builder<'_> {
             }
             (_, ThroatRule::Complete { part, .. }) => {
                 let thickness = self.joint.parts[*part].thickness.clone();
-                let thickness = thickness.expect("complete penetration was laid out from this thickness");
-                let says = format!("Complete penetration: thickness of {}", self.joint.parts[*part].name.value);
+                let thickness =
+                    thickness.expect("complete penetration was laid out from this thickness");
+                let says = format!(
+                    "Complete penetration: thickness of {}",
+                    self.joint.parts[*part].name.value
+                );
                 return Ok((self.length_of("t", letter, &says, &thickness), legs));
             }
             _ => unreachable!("a rule follows from its size"),
@@ -136,12 +170,24 @@ impl Builder<'_> {
         let value = match &spec.between {
             Some(given) => {
                 let origin = Origin::Input(given.place.clone());
-                self.input(id, symbol, "Dihedral angle between the faces", &given.value, origin)
+                self.input(
+                    id,
+                    symbol,
+                    "Dihedral angle between the faces",
+                    &given.value,
+                    origin,
+                )
             }
             None => {
                 let given = Given::stated("90", FRAC_PI_2, Dim::ANGLE);
                 let origin = Origin::Method("not told: a right angle".to_owned());
-                self.input(id, symbol, "Dihedral angle between the faces", &given, origin)
+                self.input(
+                    id,
+                    symbol,
+                    "Dihedral angle between the faces",
+                    &given,
+                    origin,
+                )
             }
         };
         self.show(value);
@@ -149,13 +195,21 @@ impl Builder<'_> {
     }
 
     /// The leg as a formula reads it: less the root gap where the gap exceeds the free one.
-    fn worked_leg(&mut self, spec: &RunSpec, gap: f64, letter: &str, env: &mut Env, leg: &str) -> String {
+    fn worked_leg(
+        &mut self,
+        spec: &RunSpec,
+        gap: f64,
+        letter: &str,
+        env: &mut Env,
+        leg: &str,
+    ) -> String {
         match (&spec.gap, gap > 0.0) {
             (Some(given), true) => {
                 if !env.names.contains_key("g") {
                     let says = "Root gap over 1/16 in: taken off the leg in full";
                     let value = self.length_of("g", letter, says, given);
-                    let mark = "fit-up rule for root gaps (AWS D1.1) recalled from memory".to_owned();
+                    let mark =
+                        "fit-up rule for root gaps (AWS D1.1) recalled from memory".to_owned();
                     self.ledger.get_mut(value).mark = Some(mark);
                     env.bind("g", value);
                 }
@@ -168,5 +222,9 @@ impl Builder<'_> {
 
 /// A symbol with the letter of its size, if the note has several sizes.
 fn lettered(base: &str, letter: &str) -> Symbol {
-    if letter.is_empty() { Symbol::of(base, &[]) } else { Symbol::of(base, &[letter]) }
+    if letter.is_empty() {
+        Symbol::of(base, &[])
+    } else {
+        Symbol::of(base, &[letter])
+    }
 }

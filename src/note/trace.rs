@@ -61,7 +61,11 @@ pub struct Units {
 impl Units {
     /// The units of a set.
     pub(super) const fn of(set: UnitSet) -> Self {
-        Self { force: set.force(), length: set.length(), stress: set.stress() }
+        Self {
+            force: set.force(),
+            length: set.length(),
+            stress: set.stress(),
+        }
     }
 }
 
@@ -218,11 +222,18 @@ pub(super) fn steps(ledger: &Ledger) -> Vec<TraceStep> {
                 numbers: ledger.numbers_algebra(value),
                 value: (kind != "bound").then_some(entry.value),
                 printed: ledger.printed(value).algebra(),
-                unit: if kind == "bound" { String::new() } else { unit(ledger, entry.dim) },
-                uses: ledger.uses(value).into_iter().map(|used| ledger.get(used).id.clone()).collect(),
+                unit: if kind == "bound" {
+                    String::new()
+                } else {
+                    unit(ledger, entry.dim)
+                },
+                uses: ledger
+                    .uses(value)
+                    .into_iter()
+                    .map(|used| ledger.get(used).id.clone())
+                    .collect(),
                 source: origin(&entry.origin),
             }
         })
         .collect()
 }
-

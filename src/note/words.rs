@@ -21,5 +21,7 @@ pub(super) struct Words {
 /// If the program's own data does not parse, which a test would show.
 pub(super) fn words() -> &'static Words {
     static WORDS: OnceLock<Words> = OnceLock::new();
-    WORDS.get_or_init(|| serde_yaml::from_str(include_str!("words.yaml")).expect("the program's own words parse"))
+    WORDS.get_or_init(|| {
+        serde_yaml::from_str(include_str!("words.yaml")).expect("the program's own words parse")
+    })
 }

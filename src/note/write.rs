@@ -82,7 +82,11 @@ fn builder<'c>(calculation: &'c Calculation<'_>) -> Builder<'c> {
         runs: &calculation.runs,
         properties: &calculation.properties,
         actions: &calculation.actions,
-        ledger: Ledger::new(calculation.joint.units.value, force.max(f64::MIN_POSITIVE), size),
+        ledger: Ledger::new(
+            calculation.joint.units.value,
+            force.max(f64::MIN_POSITIVE),
+            size,
+        ),
         env: Env::default(),
         parts: Vec::new(),
         slugs,
@@ -100,7 +104,11 @@ fn compose(calculation: &Calculation<'_>) -> Result<Note, NoteError> {
         Ok(field) => field.at(calculation.runs[run].path.point(p)),
         Err(_) => V3::zeros(),
     };
-    let ground = Ground { joint, runs: &calculation.runs, stress: &stress };
+    let ground = Ground {
+        joint,
+        runs: &calculation.runs,
+        stress: &stress,
+    };
     let mut b = builder(calculation);
     let mut checks = ranked(calculation);
     let mut cases = CaseTerms::new();
@@ -115,7 +123,11 @@ fn compose(calculation: &Calculation<'_>) -> Result<Note, NoteError> {
     b.part("lines", "Line properties");
     b.throats()?;
     b.line_properties()?;
-    let sites = if checks.is_empty() { Vec::new() } else { b.work_stresses(calculation, &checks, &mut cases)? };
+    let sites = if checks.is_empty() {
+        Vec::new()
+    } else {
+        b.work_stresses(calculation, &checks, &mut cases)?
+    };
     b.work_checks(calculation, &ground, &mut checks, &sites, &cases)?;
     b.margin_table(calculation, &checks);
     let order = b.case_margins(calculation);
@@ -155,7 +167,13 @@ fn compose(calculation: &Calculation<'_>) -> Result<Note, NoteError> {
         identity: identity.printed(),
         state: "DRAFT — not signed".to_owned(),
     };
-    Ok(Note { doc, sketch, identity, standing, trace })
+    Ok(Note {
+        doc,
+        sketch,
+        identity,
+        standing,
+        trace,
+    })
 }
 
 fn head(calculation: &Calculation<'_>) -> Head {
@@ -203,7 +221,11 @@ fn loads_part(b: &mut Builder<'_>, calculation: &Calculation<'_>, order: &[usize
 /// Moves the list of cases to its place before the line properties.
 fn order_parts(b: &mut Builder<'_>) {
     let take = |b: &mut Builder<'_>, id: &str| {
-        b.parts.iter_mut().find(|part| part.id == id).map(|part| std::mem::take(&mut part.pieces)).unwrap_or_default()
+        b.parts
+            .iter_mut()
+            .find(|part| part.id == id)
+            .map(|part| std::mem::take(&mut part.pieces))
+            .unwrap_or_default()
     };
     let pieces = take(b, "case-list");
     if let Some(part) = b.parts.iter_mut().find(|part| part.id == "loads") {
@@ -228,9 +250,13 @@ fn second_opinions(
         let case = check.governing.case;
         if let Ok(field) = &calculation.fields[case] {
             let properties = &calculation.properties;
-            let found = close(&calculation.runs, &calculation.actions[case], properties.centroid, properties.size, |_, _, r| {
-                field.at(r)
-            });
+            let found = close(
+                &calculation.runs,
+                &calculation.actions[case],
+                properties.centroid,
+                properties.size,
+                |_, _, r| field.at(r),
+            );
             b.closure(case, &found);
             closure = Some(found);
         }
@@ -245,7 +271,11 @@ fn second_opinions(
 
 /// Puts the number of lines with a formula into the words on replay.
 fn count_replays(b: &mut Builder<'_>) {
-    let count = b.ledger.values().filter(|value| b.ledger.formula_algebra(*value).is_some()).count();
+    let count = b
+        .ledger
+        .values()
+        .filter(|value| b.ledger.formula_algebra(*value).is_some())
+        .count();
     let words = super::proofs::replay_text(count);
     for part in b.parts.iter_mut().filter(|part| part.id == "opinions") {
         if let Some(Piece::Block(Block::Para { text })) = part.pieces.last_mut() {
@@ -263,24 +293,37 @@ fn coverage(b: &mut Builder<'_>, calculation: &Calculation<'_>) {
             .outcomes
             .iter()
             .filter_map(|outcome| match outcome {
-                Outcome::Assessed(asked) if asked.sheet.covers.iter().any(|path| path.word() == word) => {
+                Outcome::Assessed(asked)
+                    if asked.sheet.covers.iter().any(|path| path.word() == word) =>
+                {
                     Some(capital(&asked.sheet.name.value))
                 }
                 Outcome::Assessed(_) | Outcome::Refused(_) => None,
             })
             .collect();
-        let excluded = calculation.joint.excluded.iter().find(|exclusion| exclusion.path.value == word);
+        let excluded = calculation
+            .joint
+            .excluded
+            .iter()
+            .find(|exclusion| exclusion.path.value == word);
         let (state, detail) = match (by.is_empty(), excluded) {
             (false, _) => (plain("checked"), by.join("; ")),
             (true, Some(exclusion)) => (plain("excluded"), exclusion.by.value.clone()),
-            (true, None) => (vec![strong("not covered")], "not checked in this note; to be checked elsewhere".to_owned()),
+            (true, None) => (
+                vec![strong("not covered")],
+                "not checked in this note; to be checked elsewhere".to_owned(),
+            ),
         };
         let cells = vec![
             super::builder::Cell::Text(plain(&capital(&name))),
             super::builder::Cell::Text(state),
             super::builder::Cell::Text(plain(&detail)),
         ];
-        rows.push(super::builder::Line { id: format!("path.{}", slug(&word)), cells, strong: false });
+        rows.push(super::builder::Line {
+            id: format!("path.{}", slug(&word)),
+            cells,
+            strong: false,
+        });
     }
     let columns = vec![
         super::builder::word_column("failure path", 2),
@@ -288,14 +331,29 @@ fn coverage(b: &mut Builder<'_>, calculation: &Calculation<'_>) {
         super::builder::word_column("by", 4),
     ];
     let caption = plain("Failure paths of the joint, and where each is looked at");
-    b.table(super::builder::Sheet { id: "paths".to_owned(), caption, columns, rows, foot: None });
+    b.table(super::builder::Sheet {
+        id: "paths".to_owned(),
+        caption,
+        columns,
+        rows,
+        foot: None,
+    });
 }
 
 /// Failure paths in the order of the sheets' words.
 fn ordered_paths() -> Vec<(String, String)> {
     crate::criteria::FailurePath::WORDS
         .iter()
-        .map(|(word, _)| ((*word).to_owned(), words().paths.get(*word).cloned().unwrap_or_else(|| (*word).to_owned())))
+        .map(|(word, _)| {
+            (
+                (*word).to_owned(),
+                words()
+                    .paths
+                    .get(*word)
+                    .cloned()
+                    .unwrap_or_else(|| (*word).to_owned()),
+            )
+        })
         .collect()
 }
 
@@ -305,7 +363,12 @@ fn cautions(b: &mut Builder<'_>, calculation: &Calculation<'_>) {
     let mut items: Vec<Item> = Vec::new();
     let mut add = |text: &str, source: Option<String>| {
         let label = format!("C{}", items.len() + 1);
-        items.push(Item { label, text: plain(text), mark: None, source });
+        items.push(Item {
+            label,
+            text: plain(text),
+            mark: None,
+            source,
+        });
     };
     for caution in &calculation.joint.cautions {
         add(&caution.value, Some(caution.place.short()));
@@ -330,10 +393,14 @@ fn closing(b: &mut Builder<'_>) {
             .enumerate()
             .map(|(index, change)| super::builder::Line {
                 id: format!("change-{}", index + 1),
-                cells: [&change.revision.value, &change.date.value.to_string(), &change.says.value]
-                    .into_iter()
-                    .map(|text| super::builder::Cell::Text(plain(text)))
-                    .collect(),
+                cells: [
+                    &change.revision.value,
+                    &change.date.value.to_string(),
+                    &change.says.value,
+                ]
+                .into_iter()
+                .map(|text| super::builder::Cell::Text(plain(text)))
+                .collect(),
                 strong: false,
             })
             .collect();
@@ -343,15 +410,30 @@ fn closing(b: &mut Builder<'_>) {
             super::builder::word_column("what changed", 1),
         ];
         let caption = plain("Issues of this note");
-        b.table(super::builder::Sheet { id: "issues".to_owned(), caption, columns, rows, foot: None });
+        b.table(super::builder::Sheet {
+            id: "issues".to_owned(),
+            caption,
+            columns,
+            rows,
+            foot: None,
+        });
     }
     b.part("signatures", "Signatures");
-    b.block(Block::Signatures { roles: joint.signatures.iter().map(|role| role.value.clone()).collect() });
+    b.block(Block::Signatures {
+        roles: joint
+            .signatures
+            .iter()
+            .map(|role| role.value.clone())
+            .collect(),
+    });
 }
 
 /// The identity in words, before the signatures, which name it.
 fn identity_section(sections: &mut [super::doc::Section], identity: &Identity) {
-    if let Some(section) = sections.iter_mut().find(|section| section.id == "signatures") {
+    if let Some(section) = sections
+        .iter_mut()
+        .find(|section| section.id == "signatures")
+    {
         let text = vec![
             piece("Calculation identity "),
             strong(&identity.printed()),
@@ -367,14 +449,25 @@ fn identity_section(sections: &mut [super::doc::Section], identity: &Identity) {
 }
 
 /// The verdict of the first page.
-fn verdict(b: &Builder<'_>, calculation: &Calculation<'_>, checks: &[Check], open: &[String]) -> Verdict {
+fn verdict(
+    b: &Builder<'_>,
+    calculation: &Calculation<'_>,
+    checks: &[Check],
+    open: &[String],
+) -> Verdict {
     let standing = Standing::of(calculation);
     let Some(check) = checks.first() else {
         let lines = vec![
-            plain("No strength check of this note has a number; the reasons stand under “Checks without a number”."),
+            plain(
+                "No strength check of this note has a number; the reasons stand under “Checks without a number”.",
+            ),
             plain(&standing.tally()),
         ];
-        return Verdict { label: "no margin".to_owned(), figure: "none".to_owned(), lines };
+        return Verdict {
+            label: "no margin".to_owned(),
+            figure: "none".to_owned(),
+            lines,
+        };
     };
     let asked = asked(calculation, check.outcome);
     let case = &b.joint.loads.cases[check.governing.case];
@@ -384,9 +477,16 @@ fn verdict(b: &Builder<'_>, calculation: &Calculation<'_>, checks: &[Check], ope
         p: check.governing.s,
         side: check.governing.side,
     };
-    let part = check.governing.part.map(|turn| format!(", {}", turn.word())).unwrap_or_default();
+    let part = check
+        .governing
+        .part
+        .map(|turn| format!(", {}", turn.word()))
+        .unwrap_or_default();
     let first: Text = vec![
-        piece(&format!("{}{part}, at ", capital(&check_name(asked, check.check)))),
+        piece(&format!(
+            "{}{part}, at ",
+            capital(&check_name(asked, check.check))
+        )),
         super::text::emph(&b.place_words(spot)),
         piece(", case "),
         strong(&case.name.value),
@@ -395,11 +495,20 @@ fn verdict(b: &Builder<'_>, calculation: &Calculation<'_>, checks: &[Check], ope
     let mut first = first;
     if let Some(margin) = check.worked.as_ref().and_then(|worked| worked.margin) {
         let entry = b.ledger.get(margin);
-        first.push(super::doc::Inline::StepRef { id: entry.anchor.clone(), text: format!("Step {}", entry.no) });
+        first.push(super::doc::Inline::StepRef {
+            id: entry.anchor.clone(),
+            text: format!("Step {}", entry.no),
+        });
     }
-    let mut marks: BTreeSet<String> = open.iter().map(|label| format!("assumption {label}")).collect();
+    let mut marks: BTreeSet<String> = open
+        .iter()
+        .map(|label| format!("assumption {label}"))
+        .collect();
     if let Some(worked) = &check.worked {
-        for value in [Some(worked.demand), Some(worked.capacity), worked.margin].into_iter().flatten() {
+        for value in [Some(worked.demand), Some(worked.capacity), worked.margin]
+            .into_iter()
+            .flatten()
+        {
             marks.extend(b.ledger.marks_behind(value));
         }
     }
@@ -415,7 +524,11 @@ fn verdict(b: &Builder<'_>, calculation: &Calculation<'_>, checks: &[Check], ope
             list.join("; ")
         )));
     }
-    Verdict { label: "least margin of safety".to_owned(), figure: standing.figure(), lines }
+    Verdict {
+        label: "least margin of safety".to_owned(),
+        figure: standing.figure(),
+        lines,
+    }
 }
 
 /// Canonical lines of the sheets used.
@@ -425,9 +538,24 @@ fn sheet_lines(calculation: &Calculation<'_>) -> Vec<String> {
         if let Outcome::Assessed(asked) = outcome {
             let sheet = &asked.sheet;
             lines.push(format!("{}|{}", sheet.name.value, sheet.source.cited()));
-            lines.extend(sheet.steps.iter().map(|step| format!("{}={}", step.name.value, step.formula.value)));
-            lines.extend(sheet.checks.iter().map(|check| format!("{}|{:?}", check.demand, check.capacity)));
-            lines.extend(sheet.limits.iter().map(|limit| format!("{}|{:?}|{}", limit.value, limit.side, limit.bound)));
+            lines.extend(
+                sheet
+                    .steps
+                    .iter()
+                    .map(|step| format!("{}={}", step.name.value, step.formula.value)),
+            );
+            lines.extend(
+                sheet
+                    .checks
+                    .iter()
+                    .map(|check| format!("{}|{:?}", check.demand, check.capacity)),
+            );
+            lines.extend(
+                sheet
+                    .limits
+                    .iter()
+                    .map(|limit| format!("{}|{:?}|{}", limit.value, limit.side, limit.bound)),
+            );
         }
     }
     lines
@@ -435,7 +563,10 @@ fn sheet_lines(calculation: &Calculation<'_>) -> Vec<String> {
 
 /// Every outcome of every case, as printed.
 fn result_lines(calculation: &Calculation<'_>) -> Vec<String> {
-    super::cases::rows(calculation).into_iter().map(|row| row.join("|")).collect()
+    super::cases::rows(calculation)
+        .into_iter()
+        .map(|row| row.join("|"))
+        .collect()
 }
 
 fn whole_trace(
@@ -447,7 +578,12 @@ fn whole_trace(
 ) -> Trace {
     let joint = calculation.joint;
     let properties = &calculation.properties;
-    let spot = |at: &crate::criteria::Governing| super::stress::Spot { case: at.case, run: at.run, p: at.s, side: at.side };
+    let spot = |at: &crate::criteria::Governing| super::stress::Spot {
+        case: at.case,
+        run: at.run,
+        p: at.s,
+        side: at.side,
+    };
     let cases = (0..joint.loads.cases.len())
         .map(|case| {
             let action = calculation.actions[case];
@@ -458,7 +594,10 @@ fn whole_trace(
                 force: trace::components(action.force),
                 moment: trace::components(action.moment),
                 at: trace::components(action.at),
-                at_centroid: trace::AtCentroid { force: trace::components(force), moment: trace::components(moment) },
+                at_centroid: trace::AtCentroid {
+                    force: trace::components(force),
+                    moment: trace::components(moment),
+                },
                 checks: super::cases::of_case(calculation, case)
                     .into_iter()
                     .map(|(name, at)| trace::TraceCheck {
@@ -478,7 +617,10 @@ fn whole_trace(
     Trace {
         note: joint.note.value.clone(),
         revision: joint.revision.value.clone(),
-        identity: trace::TraceIdentity { calculation: identity.calculation.clone(), words: identity.words.clone() },
+        identity: trace::TraceIdentity {
+            calculation: identity.calculation.clone(),
+            words: identity.words.clone(),
+        },
         program: env!("CARGO_PKG_VERSION").to_owned(),
         units: trace::Units::of(joint.units.value),
         group: trace::Group {
@@ -508,14 +650,39 @@ fn whole_trace(
 impl Note {
     /// Completes the caption of the drawing once it is drawn.
     pub fn set_caption(&mut self, view: &str, scale: &str, remarks: &[String]) {
-        let case = self.sketch.case.as_ref().map(|case| format!(", with case {case}")).unwrap_or_default();
+        let case = self
+            .sketch
+            .case
+            .as_ref()
+            .map(|case| format!(", with case {case}"))
+            .unwrap_or_default();
         let units = self.sketch.units;
-        let remarks = remarks.iter().map(|remark| format!(" {}.", capital(remark.trim_end_matches('.')))).collect::<String>();
-        let words = format!("The weld group, {view}{case}. Scale {scale}; lengths in {units}.{remarks}");
-        let runs: Vec<&str> = self.sketch.runs.iter().map(|run| run.text.as_str()).collect();
-        let alt = format!("Drawing of the weld group with its runs: {}. {words}", runs.join("; "));
-        for block in self.doc.sections.iter_mut().flat_map(|section| &mut section.blocks) {
-            if let Block::Figure(FigureRef { caption, alt: text, .. }) = block {
+        let remarks = remarks
+            .iter()
+            .map(|remark| format!(" {}.", capital(remark.trim_end_matches('.'))))
+            .collect::<String>();
+        let words =
+            format!("The weld group, {view}{case}. Scale {scale}; lengths in {units}.{remarks}");
+        let runs: Vec<&str> = self
+            .sketch
+            .runs
+            .iter()
+            .map(|run| run.text.as_str())
+            .collect();
+        let alt = format!(
+            "Drawing of the weld group with its runs: {}. {words}",
+            runs.join("; ")
+        );
+        for block in self
+            .doc
+            .sections
+            .iter_mut()
+            .flat_map(|section| &mut section.blocks)
+        {
+            if let Block::Figure(FigureRef {
+                caption, alt: text, ..
+            }) = block
+            {
                 caption.clone_from(&plain(&words));
                 text.clone_from(&alt);
             }

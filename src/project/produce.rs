@@ -1,13 +1,15 @@
 //! From a joint file to the bytes of its outputs.
 
+use super::ProjectError;
 use super::outputs::{Output, stage};
 use super::read::{JointFile, read_joint_file};
-use super::ProjectError;
 use crate::criteria::Library;
 use crate::figure::{SerifFaces, draw, scene, standalone_source, typst_source};
 use crate::joint::read_joint;
 use crate::note::{Calculation, FIGURE, Note, write_note};
-use crate::render::{Attachment, Drawings, Press, Relation, RenderError, render_markdown, render_typst};
+use crate::render::{
+    Attachment, Drawings, Press, Relation, RenderError, render_markdown, render_typst,
+};
 use std::path::Path;
 
 /// Which outputs are wanted.
@@ -25,7 +27,12 @@ pub struct Kinds {
 
 impl Kinds {
     /// Every output.
-    pub const ALL: Self = Self { pdf: true, markdown: true, cases: true, trace: true };
+    pub const ALL: Self = Self {
+        pdf: true,
+        markdown: true,
+        cases: true,
+        trace: true,
+    };
 }
 
 /// What is built once and serves every note: the press and the metrics of its faces.
@@ -48,7 +55,10 @@ impl Workshop {
     /// If the program was built without its faces.
     #[must_use]
     pub fn new() -> Self {
-        Self { press: Press::new(), faces: SerifFaces::embedded().expect("the serif faces are built in") }
+        Self {
+            press: Press::new(),
+            faces: SerifFaces::embedded().expect("the serif faces are built in"),
+        }
     }
 }
 
@@ -67,44 +77,96 @@ impl Workshop {
     /// # Errors
     ///
     /// [`ProjectError`] with the faults of the file, or what the typesetter refuses.
-    pub fn produce(&self, joint: &JointFile, library: &Library, kinds: Kinds) -> Result<Produced, ProjectError> {
+    pub fn produce(
+        &self,
+        joint: &JointFile,
+        library: &Library,
+        kinds: Kinds,
+    ) -> Result<Produced, ProjectError> {
         let file = read_joint_file(&joint.path)?;
         let told = read_joint(&file)?;
         let calculation = Calculation::of(&told, library)?;
         let mut note = write_note(&calculation)?;
-        let render = |fault: RenderError| ProjectError::Render { joint: file.name.clone(), fault };
+        let render = |fault: RenderError| ProjectError::Render {
+            joint: file.name.clone(),
+            fault,
+        };
         let drawing = draw(&scene(&note.sketch), &self.faces);
         note.set_caption(&drawing.view, &drawing.scale, &drawing.remarks);
         let trace = note.trace_json();
         let mut outputs = Vec::new();
         if kinds.markdown {
             let markdown = render_markdown(&note.doc).map_err(render)?;
-            outputs.push(Output { name: "note.md", bytes: markdown.into_bytes() });
-            let svg = self.press.svg(&standalone_source(&drawing)).map_err(render)?;
-            outputs.push(Output { name: "figure.svg", bytes: svg.into_bytes() });
+            outputs.push(Output {
+                name: "note.md",
+                bytes: markdown.into_bytes(),
+            });
+            let svg = self
+                .press
+                .svg(&standalone_source(&drawing))
+                .map_err(render)?;
+            outputs.push(Output {
+                name: "figure.svg",
+                bytes: svg.into_bytes(),
+            });
         }
         if kinds.pdf {
             let drawings = Drawings::from([(FIGURE.to_owned(), typst_source(&drawing))]);
             let source = render_typst(&note.doc, &drawings).map_err(render)?;
-            let name = joint.path.file_name().unwrap_or_default().to_string_lossy().into_owned();
+            let name = joint
+                .path
+                .file_name()
+                .unwrap_or_default()
+                .to_string_lossy()
+                .into_owned();
             let attachments = [
-                attachment(&name, "application/yaml", Relation::Source, "The joint file", file.text.as_bytes()),
-                attachment("trace.json", "application/json", Relation::Data, "Every line of the calculation", trace.as_bytes()),
+                attachment(
+                    &name,
+                    "application/yaml",
+                    Relation::Source,
+                    "The joint file",
+                    file.text.as_bytes(),
+                ),
+                attachment(
+                    "trace.json",
+                    "application/json",
+                    Relation::Data,
+                    "Every line of the calculation",
+                    trace.as_bytes(),
+                ),
             ];
-            let pdf = self.press.pdf(&source.text, &attachments).map_err(|fault| render(source.explain(fault)))?;
-            outputs.push(Output { name: "note.pdf", bytes: pdf.bytes });
+            let pdf = self
+                .press
+                .pdf(&source.text, &attachments)
+                .map_err(|fault| render(source.explain(fault)))?;
+            outputs.push(Output {
+                name: "note.pdf",
+                bytes: pdf.bytes,
+            });
         }
         if kinds.cases {
-            outputs.push(Output { name: "cases.csv", bytes: note.cases_csv().into_bytes() });
+            outputs.push(Output {
+                name: "cases.csv",
+                bytes: note.cases_csv().into_bytes(),
+            });
         }
         if kinds.trace {
-            outputs.push(Output { name: "trace.json", bytes: trace.into_bytes() });
+            outputs.push(Output {
+                name: "trace.json",
+                bytes: trace.into_bytes(),
+            });
         }
         Ok(Produced { note, outputs })
     }
 }
 
-fn attachment(name: &str, mime: &str, relation: Relation, description: &str, bytes: &[u8]) -> Attachment {
+fn attachment(
+    name: &str,
+    mime: &str,
+    relation: Relation,
+    description: &str,
+    bytes: &[u8],
+) -> Attachment {
     Attachment {
         name: name.to_owned(),
         mime: mime.to_owned(),

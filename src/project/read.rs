@@ -26,7 +26,10 @@ pub struct JointFile {
 }
 
 fn file_error(path: &Path, what: impl Into<String>) -> ProjectError {
-    ProjectError::File { path: path.to_owned(), what: what.into() }
+    ProjectError::File {
+        path: path.to_owned(),
+        what: what.into(),
+    }
 }
 
 /// The joints under the given paths: a file as it is, of a folder every `.yaml` in it, in order.
@@ -41,13 +44,19 @@ pub fn find_joints(paths: &[PathBuf]) -> Result<Vec<JointFile>, ProjectError> {
         if path.is_dir() {
             let before = found.len();
             for entry in sorted(path)? {
-                let name = entry.file_name().and_then(|name| name.to_str()).unwrap_or_default();
+                let name = entry
+                    .file_name()
+                    .and_then(|name| name.to_str())
+                    .unwrap_or_default();
                 if is_yaml(&entry) && entry.is_file() && !NOT_JOINTS.contains(&name) {
                     found.push(joint_file(&entry));
                 }
             }
             if found.len() == before {
-                return Err(file_error(path, "holds no joint: joints are files that end in .yaml"));
+                return Err(file_error(
+                    path,
+                    "holds no joint: joints are files that end in .yaml",
+                ));
             }
         } else if path.is_file() {
             found.push(joint_file(path));
@@ -69,20 +78,35 @@ pub fn find_joints(paths: &[PathBuf]) -> Result<Vec<JointFile>, ProjectError> {
 }
 
 fn is_yaml(path: &Path) -> bool {
-    path.extension().is_some_and(|extension| extension == "yaml" || extension == "yml")
+    path.extension()
+        .is_some_and(|extension| extension == "yaml" || extension == "yml")
 }
 
 fn joint_file(path: &Path) -> JointFile {
-    let folder = path.parent().filter(|parent| !parent.as_os_str().is_empty()).unwrap_or(Path::new("."));
-    let stem = path.file_stem().and_then(|stem| stem.to_str()).unwrap_or("joint");
-    JointFile { path: path.to_owned(), folder: folder.to_owned(), stem: stem.to_owned() }
+    let folder = path
+        .parent()
+        .filter(|parent| !parent.as_os_str().is_empty())
+        .unwrap_or(Path::new("."));
+    let stem = path
+        .file_stem()
+        .and_then(|stem| stem.to_str())
+        .unwrap_or("joint");
+    JointFile {
+        path: path.to_owned(),
+        folder: folder.to_owned(),
+        stem: stem.to_owned(),
+    }
 }
 
 fn sorted(folder: &Path) -> Result<Vec<PathBuf>, ProjectError> {
     let entries = fs::read_dir(folder).map_err(|fault| file_error(folder, fault.to_string()))?;
     let mut paths = Vec::new();
     for entry in entries {
-        paths.push(entry.map_err(|fault| file_error(folder, fault.to_string()))?.path());
+        paths.push(
+            entry
+                .map_err(|fault| file_error(folder, fault.to_string()))?
+                .path(),
+        );
     }
     paths.sort();
     Ok(paths)
@@ -95,9 +119,14 @@ fn sorted(folder: &Path) -> Result<Vec<PathBuf>, ProjectError> {
 /// [`ProjectError::File`] if it cannot be read or is too large; [`ProjectError::Faults`] at the
 /// first byte that is no UTF-8.
 pub fn read_joint_file(path: &Path) -> Result<Arc<SourceFile>, ProjectError> {
-    let size = fs::metadata(path).map_err(|fault| file_error(path, fault.to_string()))?.len();
+    let size = fs::metadata(path)
+        .map_err(|fault| file_error(path, fault.to_string()))?
+        .len();
     if size > LARGEST {
-        return Err(file_error(path, format!("has {size} bytes, more than the {LARGEST} that are read")));
+        return Err(file_error(
+            path,
+            format!("has {size} bytes, more than the {LARGEST} that are read"),
+        ));
     }
     let bytes = fs::read(path).map_err(|fault| file_error(path, fault.to_string()))?;
     let name = path.to_string_lossy().replace('\\', "/");
@@ -107,9 +136,14 @@ pub fn read_joint_file(path: &Path) -> Result<Arc<SourceFile>, ProjectError> {
             let start = fault.utf8_error().valid_up_to();
             let text = String::from_utf8_lossy(fault.as_bytes()).into_owned();
             let file = Arc::new(SourceFile { name, text });
-            let place = Place { end: (start + 3).min(file.text.len()), file, start };
-            let fault = Diagnostic::error("not-utf8", "this byte is no UTF-8 text".to_owned(), &place)
-                .help("save the file as UTF-8");
+            let place = Place {
+                end: (start + 3).min(file.text.len()),
+                file,
+                start,
+            };
+            let fault =
+                Diagnostic::error("not-utf8", "this byte is no UTF-8 text".to_owned(), &place)
+                    .help("save the file as UTF-8");
             Err(Faults(vec![fault]).into())
         }
     }
@@ -134,5 +168,9 @@ pub fn read_library(folder: &Path) -> Result<Library, ProjectError> {
             faults.extend(found.0);
         }
     }
-    if faults.is_empty() { Ok(library) } else { Err(Faults(faults).into()) }
+    if faults.is_empty() {
+        Ok(library)
+    } else {
+        Err(Faults(faults).into())
+    }
 }

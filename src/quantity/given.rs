@@ -82,11 +82,22 @@ impl Given {
             });
         }
         let conversion = unit.conversion(set);
-        let value = if unit.is_degree() { typed.to_radians() } else { typed * conversion.value() };
+        let value = if unit.is_degree() {
+            typed.to_radians()
+        } else {
+            typed * conversion.value()
+        };
         if !value.is_finite() {
             return Err(GivenError::NotFinite(text.to_owned()));
         }
-        Ok(Self { number: number.to_owned(), unit: Some(unit_text.to_owned()), dim, typed, conversion, value })
+        Ok(Self {
+            number: number.to_owned(),
+            unit: Some(unit_text.to_owned()),
+            dim,
+            typed,
+            conversion,
+            value,
+        })
     }
 
     /// A quantity that the program itself states, such as a default, in the printing set.
@@ -147,9 +158,15 @@ fn parse_number(text: &str) -> Result<f64, GivenError> {
             return Err(bad());
         }
         let value: f64 = typed.parse().map_err(|_| bad())?;
-        if value.is_finite() { Ok(value) } else { Err(GivenError::NotFinite(text.to_owned())) }
+        if value.is_finite() {
+            Ok(value)
+        } else {
+            Err(GivenError::NotFinite(text.to_owned()))
+        }
     };
-    let Some((above, below)) = text.split_once('/') else { return plain(text) };
+    let Some((above, below)) = text.split_once('/') else {
+        return plain(text);
+    };
     let (is_mixed, whole, above) = match above.trim().rsplit_once(' ') {
         Some((whole, above)) => (true, plain(whole.trim())?, above),
         None => (false, 0.0, above.trim()),
@@ -159,5 +176,9 @@ fn parse_number(text: &str) -> Result<f64, GivenError> {
         return Err(bad());
     }
     let fraction = above / below;
-    Ok(if whole.is_sign_negative() { whole - fraction } else { whole + fraction })
+    Ok(if whole.is_sign_negative() {
+        whole - fraction
+    } else {
+        whole + fraction
+    })
 }

@@ -49,7 +49,11 @@ impl Dim {
     /// The dimension with whole exponents of force, length and angle.
     #[must_use]
     pub const fn of(force: i16, length: i16, angle: i16) -> Self {
-        Self { force: force * 12, length: length * 12, angle: angle * 12 }
+        Self {
+            force: force * 12,
+            length: length * 12,
+            angle: angle * 12,
+        }
     }
 
     /// The dimension of a product.
@@ -78,10 +82,17 @@ impl Dim {
         let scale = |twelfths: i16| -> Option<i16> {
             let exact = f64::from(twelfths) * exponent;
             let whole = exact.round();
-            #[expect(clippy::cast_possible_truncation, reason = "the range is checked beside it")]
+            #[expect(
+                clippy::cast_possible_truncation,
+                reason = "the range is checked beside it"
+            )]
             ((exact - whole).abs() < 1e-9 && whole.abs() < 12_000.0).then_some(whole as i16)
         };
-        Some(Self { force: scale(self.force)?, length: scale(self.length)?, angle: scale(self.angle)? })
+        Some(Self {
+            force: scale(self.force)?,
+            length: scale(self.length)?,
+            angle: scale(self.angle)?,
+        })
     }
 
     /// The trade's word for the dimension, with its article, as used in error texts.
@@ -106,7 +117,11 @@ impl fmt::Display for Dim {
     /// Writes the dimension as a product of powers, such as `force length^-2`.
     fn fmt(&self, out: &mut fmt::Formatter<'_>) -> fmt::Result {
         let mut first = true;
-        for (name, twelfths) in [("force", self.force), ("length", self.length), ("angle", self.angle)] {
+        for (name, twelfths) in [
+            ("force", self.force),
+            ("length", self.length),
+            ("angle", self.angle),
+        ] {
             if twelfths == 0 {
                 continue;
             }
@@ -120,7 +135,11 @@ impl fmt::Display for Dim {
                 _ => write!(out, "{name}^({twelfths}/12)")?,
             }
         }
-        if first { out.write_str("a plain number") } else { Ok(()) }
+        if first {
+            out.write_str("a plain number")
+        } else {
+            Ok(())
+        }
     }
 }
 
@@ -141,13 +160,20 @@ pub enum UnitSet {
 
 impl UnitSet {
     /// Every printing set, in the order in which help texts list them.
-    pub const ALL: [Self; 5] =
-        [Self::NewtonMillimetre, Self::KilonewtonMillimetre, Self::NewtonMetre, Self::PoundInch, Self::KipInch];
+    pub const ALL: [Self; 5] = [
+        Self::NewtonMillimetre,
+        Self::KilonewtonMillimetre,
+        Self::NewtonMetre,
+        Self::PoundInch,
+        Self::KipInch,
+    ];
 
     /// The set that the two unit names make, if it is one of the five.
     #[must_use]
     pub fn from_names(force: &str, length: &str) -> Option<Self> {
-        Self::ALL.into_iter().find(|set| set.force() == force && set.length() == length)
+        Self::ALL
+            .into_iter()
+            .find(|set| set.force() == force && set.length() == length)
     }
 
     /// The unit of force.
@@ -216,12 +242,27 @@ impl UnitSet {
     #[must_use]
     pub fn text(self, dim: Dim) -> String {
         const RAISED: [(char, char); 12] = [
-            ('0', '⁰'), ('1', '¹'), ('2', '²'), ('3', '³'), ('4', '⁴'), ('5', '⁵'),
-            ('6', '⁶'), ('7', '⁷'), ('8', '⁸'), ('9', '⁹'), ('-', '⁻'), ('.', '·'),
+            ('0', '⁰'),
+            ('1', '¹'),
+            ('2', '²'),
+            ('3', '³'),
+            ('4', '⁴'),
+            ('5', '⁵'),
+            ('6', '⁶'),
+            ('7', '⁷'),
+            ('8', '⁸'),
+            ('9', '⁹'),
+            ('-', '⁻'),
+            ('.', '·'),
         ];
         let mut raised = false;
         let label = self.label(dim).replace("deg", "°");
-        let raise = |c: char| RAISED.iter().find(|(plain, _)| *plain == c).map_or(c, |(_, up)| *up);
+        let raise = |c: char| {
+            RAISED
+                .iter()
+                .find(|(plain, _)| *plain == c)
+                .map_or(c, |(_, up)| *up)
+        };
         label
             .chars()
             .filter_map(|c| {
@@ -237,10 +278,22 @@ impl UnitSet {
     pub fn label(self, dim: Dim) -> String {
         let factors = self.unit_of(dim);
         let part = |name: &str, power: f64| {
-            if (power - 1.0).abs() < 1e-9 { name.to_owned() } else { format!("{name}^{power}") }
+            if (power - 1.0).abs() < 1e-9 {
+                name.to_owned()
+            } else {
+                format!("{name}^{power}")
+            }
         };
-        let above: Vec<_> = factors.iter().filter(|f| f.1 > 0.0).map(|f| part(f.0, f.1)).collect();
-        let below: Vec<_> = factors.iter().filter(|f| f.1 < 0.0).map(|f| part(f.0, -f.1)).collect();
+        let above: Vec<_> = factors
+            .iter()
+            .filter(|f| f.1 > 0.0)
+            .map(|f| part(f.0, f.1))
+            .collect();
+        let below: Vec<_> = factors
+            .iter()
+            .filter(|f| f.1 < 0.0)
+            .map(|f| part(f.0, -f.1))
+            .collect();
         match (above.is_empty(), below.is_empty()) {
             (_, true) => above.join(" "),
             (true, false) => format!("1/{}", below.join(" ")),

@@ -13,7 +13,11 @@ pub fn power(base: f64, exponent: f64) -> f64 {
             product *= base;
             count += 1.0;
         }
-        return if exponent < 0.0 { 1.0 / product } else { product };
+        return if exponent < 0.0 {
+            1.0 / product
+        } else {
+            product
+        };
     }
     libm::pow(base, exponent)
 }

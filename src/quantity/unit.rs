@@ -26,7 +26,11 @@ impl Conversion {
         self.factors.iter().fold(1.0, |product, factor| {
             let times = |n: u32| (0..n).fold(1.0, |p, _| p * factor.number);
             let whole = times(factor.power.unsigned_abs());
-            if factor.power < 0 { product / whole } else { product * whole }
+            if factor.power < 0 {
+                product / whole
+            } else {
+                product * whole
+            }
         })
     }
 }
@@ -82,13 +86,41 @@ const KGF: f64 = 9.806_65;
 
 /// Names of atoms: text, and the bases it stands for with their powers.
 fn atom(name: &str) -> Option<Vec<Part>> {
-    let force = |newton: f64| vec![Part { base: Base::Force(newton), power: 1 }];
-    let length = |mm: f64| vec![Part { base: Base::Length(mm), power: 1 }];
+    let force = |newton: f64| {
+        vec![Part {
+            base: Base::Force(newton),
+            power: 1,
+        }]
+    };
+    let length = |mm: f64| {
+        vec![Part {
+            base: Base::Length(mm),
+            power: 1,
+        }]
+    };
     let stress = |newton: f64, mm: f64| {
-        vec![Part { base: Base::Force(newton), power: 1 }, Part { base: Base::Length(mm), power: -2 }]
+        vec![
+            Part {
+                base: Base::Force(newton),
+                power: 1,
+            },
+            Part {
+                base: Base::Length(mm),
+                power: -2,
+            },
+        ]
     };
     let moment = |newton: f64, mm: f64| {
-        vec![Part { base: Base::Force(newton), power: 1 }, Part { base: Base::Length(mm), power: 1 }]
+        vec![
+            Part {
+                base: Base::Force(newton),
+                power: 1,
+            },
+            Part {
+                base: Base::Length(mm),
+                power: 1,
+            },
+        ]
     };
     Some(match name {
         "N" => force(1.0),
@@ -112,16 +144,28 @@ fn atom(name: &str) -> Option<Vec<Part>> {
         "Nm" => moment(1.0, 1e3),
         "kNm" => moment(1e3, 1e3),
         "Nmm" => moment(1.0, 1.0),
-        "deg" | "°" => vec![Part { base: Base::Angle(true), power: 1 }],
-        "rad" => vec![Part { base: Base::Angle(false), power: 1 }],
-        "%" => vec![Part { base: Base::Percent, power: 1 }],
+        "deg" | "°" => vec![Part {
+            base: Base::Angle(true),
+            power: 1,
+        }],
+        "rad" => vec![Part {
+            base: Base::Angle(false),
+            power: 1,
+        }],
+        "%" => vec![Part {
+            base: Base::Percent,
+            power: 1,
+        }],
         _ => return None,
     })
 }
 
 /// Whether a name is a mass unit, which is refused with advice.
 fn is_mass(name: &str) -> bool {
-    matches!(name, "kg" | "g" | "t" | "tonne" | "lb" | "lbs" | "lbm" | "slug")
+    matches!(
+        name,
+        "kg" | "g" | "t" | "tonne" | "lb" | "lbs" | "lbm" | "slug"
+    )
 }
 
 impl Unit {
@@ -141,8 +185,10 @@ impl Unit {
         }
         for (side, sign) in [(Some(above), 1), (below, -1)] {
             let Some(side) = side else { continue };
-            let atoms: Vec<&str> =
-                side.split([' ', '·', '*', '⋅', '.', '-', '(', ')']).filter(|atom| !atom.is_empty()).collect();
+            let atoms: Vec<&str> = side
+                .split([' ', '·', '*', '⋅', '.', '-', '(', ')'])
+                .filter(|atom| !atom.is_empty())
+                .collect();
             if atoms.is_empty() || (sign > 0 && atoms == ["1"] && below.is_none()) {
                 return Err(UnitError::Malformed(text.to_owned()));
             }
@@ -150,7 +196,8 @@ impl Unit {
                 if word == "1" {
                     continue;
                 }
-                let (name, power) = split_power(word).ok_or_else(|| UnitError::Malformed(word.to_owned()))?;
+                let (name, power) =
+                    split_power(word).ok_or_else(|| UnitError::Malformed(word.to_owned()))?;
                 if is_mass(name) {
                     return Err(UnitError::Mass(name.to_owned()));
                 }
@@ -164,7 +211,10 @@ impl Unit {
                         Base::Percent => Dim::NONE,
                     };
                     dim = dim.times(step.power(f64::from(power)).unwrap_or_default());
-                    parts.push(Part { base: part.base, power });
+                    parts.push(Part {
+                        base: part.base,
+                        power,
+                    });
                 }
             }
         }
@@ -189,14 +239,21 @@ impl Unit {
         let mut tens = 0;
         for part in &self.parts {
             match part.base {
-                Base::Force(newton) => push_ratio(&mut factors, &mut tens, newton, force_of_set, part.power),
-                Base::Length(mm) => push_ratio(&mut factors, &mut tens, mm, length_of_set, part.power),
+                Base::Force(newton) => {
+                    push_ratio(&mut factors, &mut tens, newton, force_of_set, part.power)
+                }
+                Base::Length(mm) => {
+                    push_ratio(&mut factors, &mut tens, mm, length_of_set, part.power)
+                }
                 Base::Percent => tens -= 2 * part.power,
                 Base::Angle(_) => {}
             }
         }
         if tens != 0 {
-            factors.push(Factor { number: 10.0, power: tens });
+            factors.push(Factor {
+                number: 10.0,
+                power: tens,
+            });
         }
         Conversion { factors }
     }
@@ -204,14 +261,24 @@ impl Unit {
     /// Whether the unit is a plane angle in degrees.
     #[must_use]
     pub fn is_degree(&self) -> bool {
-        matches!(self.parts.as_slice(), [Part { base: Base::Angle(true), power: 1 }])
+        matches!(
+            self.parts.as_slice(),
+            [Part {
+                base: Base::Angle(true),
+                power: 1
+            }]
+        )
     }
 }
 
 /// Splits `mm^2`, `mm²` or `mm2` into its name and power.
 fn split_power(word: &str) -> Option<(&str, i32)> {
     if let Some((name, power)) = word.split_once('^') {
-        return power.parse().ok().filter(|p: &i32| (1..=12).contains(p)).map(|p| (name, p));
+        return power
+            .parse()
+            .ok()
+            .filter(|p: &i32| (1..=12).contains(p))
+            .map(|p| (name, p));
     }
     for (mark, power) in [('²', 2), ('³', 3), ('⁴', 4)] {
         if let Some(name) = word.strip_suffix(mark) {
@@ -220,7 +287,11 @@ fn split_power(word: &str) -> Option<(&str, i32)> {
     }
     let name = word.trim_end_matches(|c: char| c.is_ascii_digit());
     let digits = &word[name.len()..];
-    if digits.is_empty() { Some((name, 1)) } else { digits.parse().ok().map(|p| (name, p)) }
+    if digits.is_empty() {
+        Some((name, 1))
+    } else {
+        digits.parse().ok().map(|p| (name, p))
+    }
 }
 
 /// Adds `(from/to)^power` to the factors, keeping powers of ten apart and only exact numbers.
@@ -229,7 +300,10 @@ fn push_ratio(factors: &mut Vec<Factor>, tens: &mut i32, from: f64, to: f64, pow
         if (number - 1.0).abs() < 1e-15 {
             return;
         }
-        match factors.iter_mut().find(|f| (f.number - number).abs() < 1e-12 * number) {
+        match factors
+            .iter_mut()
+            .find(|f| (f.number - number).abs() < 1e-12 * number)
+        {
             Some(known) => known.power += power,
             None => factors.push(Factor { number, power }),
         }
@@ -252,7 +326,12 @@ fn push_ratio(factors: &mut Vec<Factor>, tens: &mut i32, from: f64, to: f64, pow
 
 /// Takes whole thousands and tens of metric prefixes out of a factor: `4448.22` stays as lbf times 10³.
 fn without_tens(size: f64) -> (f64, i32) {
-    for (base, known) in [(LBF * 1000.0, (LBF, 3)), (1e6, (1.0, 6)), (1e3, (1.0, 3)), (10.0, (1.0, 1))] {
+    for (base, known) in [
+        (LBF * 1000.0, (LBF, 3)),
+        (1e6, (1.0, 6)),
+        (1e3, (1.0, 3)),
+        (10.0, (1.0, 1)),
+    ] {
         if (size - base).abs() < 1e-12 * base {
             return known;
         }

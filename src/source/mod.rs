@@ -42,7 +42,13 @@ impl Place {
     pub fn line_column(&self) -> (usize, usize) {
         let before = &self.file.text[..self.start.min(self.file.text.len())];
         let line = before.matches('\n').count() + 1;
-        let column = before.rsplit('\n').next().unwrap_or_default().chars().count() + 1;
+        let column = before
+            .rsplit('\n')
+            .next()
+            .unwrap_or_default()
+            .chars()
+            .count()
+            + 1;
         (line, column)
     }
 
@@ -73,6 +79,9 @@ pub struct Told<T> {
 impl<T> Told<T> {
     /// The same place with another value.
     pub fn map<U>(self, change: impl FnOnce(T) -> U) -> Told<U> {
-        Told { value: change(self.value), place: self.place }
+        Told {
+            value: change(self.value),
+            place: self.place,
+        }
     }
 }

@@ -1,7 +1,9 @@
 //! The formula engine: every reading of a formula, its dimension, and the digit rule.
 
 use exmex::prelude::*;
-use seamnote::formula::{Draft, Env, Key, Ledger, Origin, Row, RowKey, Symbol, SumSet, Table, Value};
+use seamnote::formula::{
+    Draft, Env, Key, Ledger, Origin, Row, RowKey, SumSet, Symbol, Table, Value,
+};
 use seamnote::quantity::{Dim, Given, UnitSet};
 
 /// A ledger in N and mm with a few named inputs.
@@ -37,17 +39,26 @@ fn step(ledger: &mut Ledger, env: &Env, id: &str, formula: &str) -> Value {
         origin: origin(),
         dim: None,
     };
-    ledger.step(draft, env).unwrap_or_else(|fault| panic!("{formula}: {fault}"))
+    ledger
+        .step(draft, env)
+        .unwrap_or_else(|fault| panic!("{formula}: {fault}"))
 }
 
 /// The whole equation in Typst, lines joined.
 fn typst(ledger: &Ledger, value: Value) -> String {
-    ledger.equation(value).lines.iter().map(|line| line.typst.as_str()).collect::<Vec<_>>().join(" / ")
+    ledger
+        .equation(value)
+        .lines
+        .iter()
+        .map(|line| line.typst.as_str())
+        .collect::<Vec<_>>()
+        .join(" / ")
 }
 
 /// Numbers of a step by an evaluator that is not ours.
 fn other_evaluator(numbers: &str) -> f64 {
-    exmex::eval_str::<f64>(&numbers.replace("pi", "π")).unwrap_or_else(|fault| panic!("{numbers}: {fault}"))
+    exmex::eval_str::<f64>(&numbers.replace("pi", "π"))
+        .unwrap_or_else(|fault| panic!("{numbers}: {fault}"))
 }
 
 /// Precedence and signs as in the algebra of ISO 80000-2 and of every textbook; -2^2 is -4.
@@ -100,25 +111,44 @@ fn one_formula_has_every_reading() {
     for (at, (formula, printed, numbers)) in rows.into_iter().enumerate() {
         let value = step(&mut ledger, &env, &at.to_string(), formula);
         assert_eq!(typst(&ledger, value), printed, "typst of {formula}");
-        assert_eq!(ledger.numbers_algebra(value).unwrap(), numbers, "trace of {formula}");
+        assert_eq!(
+            ledger.numbers_algebra(value).unwrap(),
+            numbers,
+            "trace of {formula}"
+        );
         let replayed = other_evaluator(numbers);
         let printed = ledger.printed(value);
-        assert!((replayed - printed.value()).abs() <= printed.unit_in_last(), "{formula}: {replayed}");
+        assert!(
+            (replayed - printed.value()).abs() <= printed.unit_in_last(),
+            "{formula}: {replayed}"
+        );
     }
 }
 
 #[test]
 fn a_sum_runs_over_its_set_and_is_written_out_in_the_trace() {
     let (mut ledger, mut env) = bench();
-    let mut set = SumSet { index: "i".to_owned(), ..SumSet::default() };
+    let mut set = SumSet {
+        index: "i".to_owned(),
+        ..SumSet::default()
+    };
     set.symbols.insert("t".to_owned(), Symbol::of("t", &[]));
     set.symbols.insert("L".to_owned(), Symbol::of("L", &[]));
-    for (at, (t, l)) in [("4.2", "80"), ("5.6", "120"), ("4.2", "80")].into_iter().enumerate() {
+    for (at, (t, l)) in [("4.2", "80"), ("5.6", "120"), ("4.2", "80")]
+        .into_iter()
+        .enumerate()
+    {
         let mut member = std::collections::BTreeMap::new();
         for (name, text) in [("t", t), ("L", l)] {
             let given = Given::parse(text, Dim::LENGTH, UnitSet::NewtonMillimetre).unwrap();
             let symbol = Symbol::of(name, &[&(at + 1).to_string()]);
-            let value = ledger.given(format!("{name}{at}"), symbol, String::new(), &given, origin());
+            let value = ledger.given(
+                format!("{name}{at}"),
+                symbol,
+                String::new(),
+                &given,
+                origin(),
+            );
             member.insert(name.to_owned(), value);
         }
         set.members.push(member);
@@ -126,9 +156,19 @@ fn a_sum_runs_over_its_set_and_is_written_out_in_the_trace() {
     env.sets.insert("runs".to_owned(), set);
     let value = step(&mut ledger, &env, "A", "sum(runs, t*L)");
     assert!((ledger.get(value).value - 1344.0).abs() < 1e-9, "the sum");
-    assert_eq!(ledger.numbers_algebra(value).unwrap(), "((4.2*80)+(5.6*120)+(4.2*80))");
-    assert_eq!(ledger.formula_algebra(value).unwrap(), "((t_1*L_1)+(t_2*L_2)+(t_3*L_3))");
-    assert!(typst(&ledger, value).starts_with("r_(A) &= sum_i t_(i) L_(i) = "), "{}", typst(&ledger, value));
+    assert_eq!(
+        ledger.numbers_algebra(value).unwrap(),
+        "((4.2*80)+(5.6*120)+(4.2*80))"
+    );
+    assert_eq!(
+        ledger.formula_algebra(value).unwrap(),
+        "((t_1*L_1)+(t_2*L_2)+(t_3*L_3))"
+    );
+    assert!(
+        typst(&ledger, value).starts_with("r_(A) &= sum_i t_(i) L_(i) = "),
+        "{}",
+        typst(&ledger, value)
+    );
     assert_eq!(ledger.uses(value).len(), 6, "every operand is linked");
 }
 
@@ -147,13 +187,23 @@ fn a_lookup_prints_its_row_and_refuses_outside() {
         dim: Dim::LENGTH,
         rows: rows
             .iter()
-            .map(|(bound, value)| Row { key: RowKey::UpTo(Some(length(bound))), value: length(value) })
+            .map(|(bound, value)| Row {
+                key: RowKey::UpTo(Some(length(bound))),
+                value: length(value),
+            })
             .collect(),
     };
     env.tables.insert("w_least".to_owned(), table);
     let value = step(&mut ledger, &env, "w", "lookup(w_least, 6 mm)");
-    assert!((ledger.get(value).value - 3.0).abs() < 1e-12, "the bound is inclusive");
-    assert!(typst(&ledger, value).contains("row: up to 6"), "{}", typst(&ledger, value));
+    assert!(
+        (ledger.get(value).value - 3.0).abs() < 1e-12,
+        "the bound is inclusive"
+    );
+    assert!(
+        typst(&ledger, value).contains("row: up to 6"),
+        "{}",
+        typst(&ledger, value)
+    );
     let draft = Draft {
         id: "x".to_owned(),
         symbol: Symbol::of("x", &[]),
@@ -163,7 +213,10 @@ fn a_lookup_prints_its_row_and_refuses_outside() {
         dim: None,
     };
     let fault = ledger.step(draft, &env).unwrap_err().to_string();
-    assert!(fault.contains("20 is outside the table `w_least`, which covers up to 6; over 6 up to 13"), "{fault}");
+    assert!(
+        fault.contains("20 is outside the table `w_least`, which covers up to 6; over 6 up to 13"),
+        "{fault}"
+    );
 }
 
 /// A formula of wrong dimension is refused with its text, the place and both dimensions.
@@ -193,7 +246,10 @@ fn wrong_dimensions_are_refused_with_place_and_both_dimensions() {
         };
         let fault = ledger.step(draft, &env).unwrap_err();
         assert_eq!(fault.span, span, "{formula}");
-        assert_eq!(fault.to_string(), format!("{text}, in the formula `{formula}`"));
+        assert_eq!(
+            fault.to_string(),
+            format!("{text}, in the formula `{formula}`")
+        );
     }
     let draft = Draft {
         id: "x".to_owned(),
@@ -204,7 +260,10 @@ fn wrong_dimensions_are_refused_with_place_and_both_dimensions() {
         dim: Some(Dim::STRESS),
     };
     let fault = ledger.step(draft, &env).unwrap_err().to_string();
-    assert_eq!(fault, "the formula gives a line load, but a stress is declared, in the formula `F_x/a`");
+    assert_eq!(
+        fault,
+        "the formula gives a line load, but a stress is declared, in the formula `F_x/a`"
+    );
 }
 
 #[test]
@@ -224,7 +283,10 @@ fn faults_of_syntax_say_what_is_needed() {
         assert_eq!(fault, format!("{text}, in the formula `{formula}`"));
     }
     let deep = format!("{}a{}", "(".repeat(500), ")".repeat(500));
-    assert!(seamnote::formula::parse(&deep).is_err(), "nesting is bounded");
+    assert!(
+        seamnote::formula::parse(&deep).is_err(),
+        "nesting is bounded"
+    );
 }
 
 /// The digit rule: a difference of near values raises its operands until the line replays.
@@ -236,13 +298,26 @@ fn digits_rise_where_a_line_would_not_replay() {
     let longer = step(&mut ledger, &env, "2", "a*sqrt(2)*1000 + a*sqrt(3)/50");
     env.bind("longer", longer);
     let small = step(&mut ledger, &env, "3", "longer - long");
-    assert!(ledger.replay_miss(small).unwrap().unwrap() > 1.0, "four digits do not replay");
+    assert!(
+        ledger.replay_miss(small).unwrap().unwrap() > 1.0,
+        "four digits do not replay"
+    );
     ledger.settle().unwrap();
-    assert!(ledger.replay_miss(small).unwrap().unwrap() <= 1.0 + 1e-6, "settled digits replay");
+    assert!(
+        ledger.replay_miss(small).unwrap().unwrap() <= 1.0 + 1e-6,
+        "settled digits replay"
+    );
     let replayed = other_evaluator(&ledger.numbers_algebra(small).unwrap());
     let printed = ledger.printed(small);
-    assert!((replayed - printed.value()).abs() <= printed.unit_in_last() * (1.0 + 1e-6), "{replayed}");
-    assert!(ledger.printed(longer).mantissa.len() > 5, "the operand was raised: {:?}", ledger.printed(longer));
+    assert!(
+        (replayed - printed.value()).abs() <= printed.unit_in_last() * (1.0 + 1e-6),
+        "{replayed}"
+    );
+    assert!(
+        ledger.printed(longer).mantissa.len() > 5,
+        "the operand was raised: {:?}",
+        ledger.printed(longer)
+    );
 }
 
 /// Inputs in another unit are converted on a line of their own; decimals stay as typed.
@@ -262,19 +337,31 @@ fn conversions_are_lines_that_replay() {
     for (text, dim, set, numbers, printed) in rows {
         let mut ledger = Ledger::new(set, 1.0, 1.0);
         let given = Given::parse(text, dim, set).unwrap();
-        let value = ledger.given("x".to_owned(), Symbol::of("x", &[]), String::new(), &given, origin());
+        let value = ledger.given(
+            "x".to_owned(),
+            Symbol::of("x", &[]),
+            String::new(),
+            &given,
+            origin(),
+        );
         ledger.settle().unwrap();
         let algebra = ledger.numbers_algebra(value).unwrap();
         if numbers.is_empty() {
             // NIST SP 811 (2008), appendix B.8: 1 ksi = 6.894 757 MPa.
-            assert!((ledger.get(value).value - 36.0 * 6.894_757).abs() < 36.0 * 0.5e-6, "{text}");
+            assert!(
+                (ledger.get(value).value - 36.0 * 6.894_757).abs() < 36.0 * 0.5e-6,
+                "{text}"
+            );
         } else {
             assert_eq!(algebra.replace("(-4.2)", "-4.2"), numbers, "{text}");
             assert_eq!(ledger.printed(value).algebra(), printed, "{text}");
         }
         let replayed = other_evaluator(&algebra);
         let shown = ledger.printed(value);
-        assert!((replayed - shown.value()).abs() <= shown.unit_in_last(), "{text}: {replayed}");
+        assert!(
+            (replayed - shown.value()).abs() <= shown.unit_in_last(),
+            "{text}: {replayed}"
+        );
     }
 }
 
@@ -325,7 +412,10 @@ fn batch_and_single_evaluation_agree() {
         let batch = program.run(&[&points], points.len());
         for (x, got) in points.iter().zip(batch) {
             let single = seamnote::formula::evaluate(&node, formula, &OneName(&env, *x)).unwrap();
-            assert!(got.to_bits() == single.to_bits(), "{formula} at {x}: {got} and {single}");
+            assert!(
+                got.to_bits() == single.to_bits(),
+                "{formula} at {x}: {got} and {single}"
+            );
         }
     }
 }

@@ -6,8 +6,21 @@ use crate::source::{Diagnostic, FaultBag, Item, Place, Told};
 use std::collections::BTreeMap;
 
 /// Words of the formula language that are no names.
-const RESERVED: [&str; 13] =
-    ["pi", "sqrt", "sin", "cos", "tan", "abs", "atan2", "min", "max", "sum", "lookup", "when", "otherwise"];
+const RESERVED: [&str; 13] = [
+    "pi",
+    "sqrt",
+    "sin",
+    "cos",
+    "tan",
+    "abs",
+    "atan2",
+    "min",
+    "max",
+    "sum",
+    "lookup",
+    "when",
+    "otherwise",
+];
 
 /// What a name of a sheet is.
 #[derive(Clone, Debug)]
@@ -28,15 +41,29 @@ pub(super) struct Known {
 
 impl Known {
     /// Declares a need or step; a name that exists or cannot be one is a fault.
-    pub(super) fn declare(&mut self, name: &Told<String>, dim: Option<Dim>, faults: &FaultBag) -> Option<()> {
+    pub(super) fn declare(
+        &mut self,
+        name: &Told<String>,
+        dim: Option<Dim>,
+        faults: &FaultBag,
+    ) -> Option<()> {
         self.check_name(name, faults)?;
-        let entry = Name { dim, place: name.place.clone(), used: false };
+        let entry = Name {
+            dim,
+            place: name.place.clone(),
+            used: false,
+        };
         self.names.insert(name.value.clone(), entry);
         Some(())
     }
 
     /// Declares a table.
-    pub(super) fn declare_table(&mut self, name: &Told<String>, table: Table, faults: &FaultBag) -> Option<()> {
+    pub(super) fn declare_table(
+        &mut self,
+        name: &Told<String>,
+        table: Table,
+        faults: &FaultBag,
+    ) -> Option<()> {
         if self.tables.contains_key(&name.value) {
             let message = format!("`{}` stands twice", name.value);
             return faults.refuse(Diagnostic::error("duplicate-name", message, &name.place));
@@ -44,7 +71,8 @@ impl Known {
         if !super::super::from::is_name(&name.value) {
             return faults.refuse(bad_name(name));
         }
-        self.tables.insert(name.value.clone(), (table, name.place.clone(), false));
+        self.tables
+            .insert(name.value.clone(), (table, name.place.clone(), false));
         Some(())
     }
 
@@ -60,9 +88,17 @@ impl Known {
     }
 
     /// Declares the symbol of a name; two names with one symbol would print alike.
-    pub(super) fn declare_symbol(&mut self, plain: String, name: &str, item: Item<'_>) -> Option<()> {
+    pub(super) fn declare_symbol(
+        &mut self,
+        plain: String,
+        name: &str,
+        item: Item<'_>,
+    ) -> Option<()> {
         match self.symbols.insert(plain, name.to_owned()) {
-            Some(other) => item.refuse("duplicate-symbol", format!("`{other}` has this symbol already")),
+            Some(other) => item.refuse(
+                "duplicate-symbol",
+                format!("`{other}` has this symbol already"),
+            ),
             None => Some(()),
         }
     }
@@ -70,8 +106,12 @@ impl Known {
     /// The dimension of a quantity that a check or limit names.
     pub(super) fn quantity(&mut self, item: Item<'_>) -> Option<(Told<String>, Dim)> {
         let name = item.raw()?;
-        let known: Vec<(&str, ())> =
-            self.names.iter().filter(|(_, known)| known.dim.is_some()).map(|(name, _)| (name.as_str(), ())).collect();
+        let known: Vec<(&str, ())> = self
+            .names
+            .iter()
+            .filter(|(_, known)| known.dim.is_some())
+            .map(|(name, _)| (name.as_str(), ()))
+            .collect();
         item.word(&known)?;
         let entry = self.names.get_mut(&name.value)?;
         entry.used = true;
@@ -80,10 +120,15 @@ impl Known {
 
     /// Reads a formula: its text, its tree and its dimension. `wrap` puts text around it before it
     /// is parsed, such as the choice around a condition.
-    pub(super) fn formula(&mut self, item: Item<'_>, wrap: [&str; 2]) -> Option<(Told<String>, String, Node, Dim)> {
+    pub(super) fn formula(
+        &mut self,
+        item: Item<'_>,
+        wrap: [&str; 2],
+    ) -> Option<(Told<String>, String, Node, Dim)> {
         let told = item.raw()?;
         let text = format!("{}{}{}", wrap[0], told.value, wrap[1]);
-        let read = parse(&text).and_then(|node| dimension(&node, &text, self).map(|dim| (node, dim)));
+        let read =
+            parse(&text).and_then(|node| dimension(&node, &text, self).map(|dim| (node, dim)));
         match read {
             Ok((node, dim)) => {
                 self.mark_used(&node);
@@ -114,11 +159,22 @@ impl Known {
         if faults.has_errors() {
             return;
         }
-        let names = self.names.iter().filter(|(_, known)| !known.used).map(|(name, known)| (name, &known.place));
-        let tables = self.tables.iter().filter(|(_, known)| !known.2).map(|(name, known)| (name, &known.1));
+        let names = self
+            .names
+            .iter()
+            .filter(|(_, known)| !known.used)
+            .map(|(name, known)| (name, &known.place));
+        let tables = self
+            .tables
+            .iter()
+            .filter(|(_, known)| !known.2)
+            .map(|(name, known)| (name, &known.1));
         for (name, place) in names.chain(tables) {
             let message = format!("nothing uses `{name}`");
-            faults.push(Diagnostic::error("unused-name", message, place).help("use it in a step or check, or take it out"));
+            faults.push(
+                Diagnostic::error("unused-name", message, place)
+                    .help("use it in a step or check, or take it out"),
+            );
         }
     }
 }
@@ -133,9 +189,10 @@ fn bad_name(name: &Told<String>) -> Diagnostic {
 pub(super) fn fault(error: &FormulaError, told: &Told<String>, shift: usize) -> Diagnostic {
     let code = match &error.problem {
         Problem::UnknownName { .. } => "unknown-name",
-        Problem::Mismatch { .. } | Problem::Kind { .. } | Problem::Declared { .. } | Problem::Exponent => {
-            "formula-dimension"
-        }
+        Problem::Mismatch { .. }
+        | Problem::Kind { .. }
+        | Problem::Declared { .. }
+        | Problem::Exponent => "formula-dimension",
         Problem::Unexpected(_)
         | Problem::Wanted { .. }
         | Problem::Number(_)
@@ -149,11 +206,22 @@ pub(super) fn fault(error: &FormulaError, told: &Told<String>, shift: usize) -> 
         | Problem::NotFinite
         | Problem::Unsettled => "formula-syntax",
     };
-    let raw = told.place.file.text.get(told.place.start..told.place.end).unwrap_or_default();
+    let raw = told
+        .place
+        .file
+        .text
+        .get(told.place.start..told.place.end)
+        .unwrap_or_default();
     let place = match raw.find(&told.value) {
         Some(at) => {
-            let clamp = |offset: usize| told.place.start + at + offset.saturating_sub(shift).min(told.value.len());
-            Place { start: clamp(error.span.start), end: clamp(error.span.end), ..told.place.clone() }
+            let clamp = |offset: usize| {
+                told.place.start + at + offset.saturating_sub(shift).min(told.value.len())
+            };
+            Place {
+                start: clamp(error.span.start),
+                end: clamp(error.span.end),
+                ..told.place.clone()
+            }
         }
         None => told.place.clone(),
     };
@@ -174,7 +242,10 @@ impl Look for Known {
     }
 
     fn word(&self, name: &str) -> Option<&str> {
-        self.names.get(name).filter(|known| known.dim.is_none()).map(|_| "")
+        self.names
+            .get(name)
+            .filter(|known| known.dim.is_none())
+            .map(|_| "")
     }
 
     fn members(&self, _: &str) -> Option<usize> {
@@ -186,6 +257,10 @@ impl Look for Known {
     }
 
     fn known(&self) -> Vec<&str> {
-        self.names.keys().chain(self.tables.keys()).map(String::as_str).collect()
+        self.names
+            .keys()
+            .chain(self.tables.keys())
+            .map(String::as_str)
+            .collect()
     }
 }

@@ -10,7 +10,9 @@ mod table;
 
 use super::sheet::{Capacity, EndRule, FailurePath, Scope, Sheet, SheetSource, Status, WeldKind};
 use crate::joint::Level;
-use crate::source::{Diagnostic, FaultBag, Faults, Fields, Item, SourceFile, Value, parse_yaml, read_map};
+use crate::source::{
+    Diagnostic, FaultBag, Faults, Fields, Item, SourceFile, Value, parse_yaml, read_map,
+};
 use known::Known;
 use std::sync::Arc;
 
@@ -39,16 +41,28 @@ fn read_root(mut fields: Fields<'_>) -> Option<Sheet> {
     let name = fields.required("name", Item::line);
     let title = fields.required("title", Item::line);
     let source = fields.required("source", read_source);
-    let scope = fields.required("at", |item| item.word(&[("point", Scope::Point), ("run", Scope::Run)]));
+    let scope = fields.required("at", |item| {
+        item.word(&[("point", Scope::Point), ("run", Scope::Run)])
+    });
     let levels = fields.optional_list("levels", |item| item.word(&LEVELS).map(|told| told.value));
-    let each_part = fields.optional("for each", |item| item.word(&[("part", true)])).is_some();
+    let each_part = fields
+        .optional("for each", |item| item.word(&[("part", true)]))
+        .is_some();
     let convex = fields.optional("convex", Item::flag).unwrap_or(false);
     let requires = fields.required("requires", read_requires);
-    let covers = fields.required("covers", |item| item.list(|item| item.word(&FailurePath::WORDS)));
+    let covers = fields.required("covers", |item| {
+        item.list(|item| item.word(&FailurePath::WORDS))
+    });
     let mut known = Known::default();
-    let needs = fields.optional("needs", |item| item.entries(|key, item| need::read_need(key, item, &mut known)));
-    let tables = fields.optional("tables", |item| item.entries(|key, item| table::read_table(key, item, &mut known)));
-    let steps = fields.optional("steps", |item| item.entries(|key, item| rule::read_step(key, item, &mut known)));
+    let needs = fields.optional("needs", |item| {
+        item.entries(|key, item| need::read_need(key, item, &mut known))
+    });
+    let tables = fields.optional("tables", |item| {
+        item.entries(|key, item| table::read_table(key, item, &mut known))
+    });
+    let steps = fields.optional("steps", |item| {
+        item.entries(|key, item| rule::read_step(key, item, &mut known))
+    });
     let checks = fields.optional_list("checks", |item| rule::read_strength(item, &mut known));
     let limits = fields.optional_list("limits", |item| rule::read_limit(item, &mut known));
     let validity = fields.optional_list("validity", |item| rule::read_validity(item, &mut known));
@@ -56,29 +70,35 @@ fn read_root(mut fields: Fields<'_>) -> Option<Sheet> {
     let cautions = fields.optional_list("cautions", Item::text);
     known.refuse_unused(fields.faults());
     let place = fields.place().clone();
-    let sheet = requires.zip(name).zip(title).zip(source).zip(scope).zip(covers).map(
-        |((((((ends, welds), name), title), source), scope), covers)| Sheet {
-            name,
-            title,
-            source,
-            levels,
-            scope: scope.value,
-            each_part,
-            convex,
-            ends,
-            welds,
-            covers: covers.into_iter().map(|told| told.value).collect(),
-            needs: needs.unwrap_or_default(),
-            tables: tables.unwrap_or_default(),
-            steps: steps.unwrap_or_default(),
-            checks,
-            limits,
-            validity,
-            assumptions,
-            cautions,
-            place,
-        },
-    );
+    let sheet = requires
+        .zip(name)
+        .zip(title)
+        .zip(source)
+        .zip(scope)
+        .zip(covers)
+        .map(
+            |((((((ends, welds), name), title), source), scope), covers)| Sheet {
+                name,
+                title,
+                source,
+                levels,
+                scope: scope.value,
+                each_part,
+                convex,
+                ends,
+                welds,
+                covers: covers.into_iter().map(|told| told.value).collect(),
+                needs: needs.unwrap_or_default(),
+                tables: tables.unwrap_or_default(),
+                steps: steps.unwrap_or_default(),
+                checks,
+                limits,
+                validity,
+                assumptions,
+                cautions,
+                place,
+            },
+        );
     if let Some(sheet) = &sheet {
         check_scope(sheet, &fields);
         check_parts(sheet, &fields);
@@ -106,7 +126,9 @@ fn read_source(item: Item<'_>) -> Option<SheetSource> {
 fn read_requires(item: Item<'_>) -> Option<(Vec<EndRule>, Vec<WeldKind>)> {
     let mut fields = item.fields("`requires`")?;
     let ends = fields.required("ends", read_ends);
-    let welds = fields.required("welds", |item| item.list(|item| item.word(&WeldKind::WORDS)));
+    let welds = fields.required("welds", |item| {
+        item.list(|item| item.word(&WeldKind::WORDS))
+    });
     fields.finish();
     Some((ends?, welds?.into_iter().map(|told| told.value).collect()))
 }
@@ -131,28 +153,51 @@ fn check_scope(sheet: &Sheet, fields: &Fields<'_>) {
     match sheet.scope {
         Scope::Point => {
             if sheet.levels.is_empty() && !fields.has("levels") {
-                refuse("a sheet `at: point` needs `levels`".into(), "say which levels of load case it takes");
+                refuse(
+                    "a sheet `at: point` needs `levels`".into(),
+                    "say which levels of load case it takes",
+                );
             }
             if sheet.checks.is_empty() && !fields.has("checks") {
-                refuse("a sheet `at: point` needs `checks`".into(), "give a demand and a capacity");
+                refuse(
+                    "a sheet `at: point` needs `checks`".into(),
+                    "give a demand and a capacity",
+                );
             }
             if !sheet.limits.is_empty() {
-                refuse("a sheet `at: point` takes no `limits`".into(), "put them into a sheet `at: run`");
+                refuse(
+                    "a sheet `at: point` takes no `limits`".into(),
+                    "put them into a sheet `at: run`",
+                );
             }
             if !sheet.needs.iter().any(super::sheet::Need::is_at_point) {
-                refuse("a sheet `at: point` asks for no stress".into(), "name one, as in `from: point.f`");
+                refuse(
+                    "a sheet `at: point` asks for no stress".into(),
+                    "name one, as in `from: point.f`",
+                );
             }
         }
         Scope::Run => {
             if !sheet.levels.is_empty() || !sheet.checks.is_empty() {
-                refuse("a sheet `at: run` takes no `levels` and no `checks`".into(), "its rules are `limits`");
+                refuse(
+                    "a sheet `at: run` takes no `levels` and no `checks`".into(),
+                    "its rules are `limits`",
+                );
             }
             if sheet.limits.is_empty() && !fields.has("limits") {
-                refuse("a sheet `at: run` needs `limits`".into(), "give a value and its bound");
+                refuse(
+                    "a sheet `at: run` needs `limits`".into(),
+                    "give a value and its bound",
+                );
             }
             for need in sheet.needs.iter().filter(|need| need.is_at_point()) {
-                let message = format!("`{}` is a stress, which a sheet `at: run` does not know", need.name.value);
-                fields.faults().push(Diagnostic::error("sheet-scope", message, &need.name.place));
+                let message = format!(
+                    "`{}` is a stress, which a sheet `at: run` does not know",
+                    need.name.value
+                );
+                fields
+                    .faults()
+                    .push(Diagnostic::error("sheet-scope", message, &need.name.place));
             }
         }
     }
@@ -160,15 +205,23 @@ fn check_scope(sheet: &Sheet, fields: &Fields<'_>) {
 
 /// `for each: part` and the quantities of the part in turn belong together.
 fn check_parts(sheet: &Sheet, fields: &Fields<'_>) {
-    let in_turn = sheet.needs.iter().find(|need| need.from.iter().any(super::from::From::is_in_turn));
+    let in_turn = sheet
+        .needs
+        .iter()
+        .find(|need| need.from.iter().any(super::from::From::is_in_turn));
     let fault = match (sheet.each_part, in_turn) {
         (false, Some(need)) => {
-            let message = format!("`{}` is of the part in turn, but the sheet has no `for each: part`", need.name.value);
-            Diagnostic::error("sheet-parts", message, &need.name.place).help("add `for each: part`, or name the part")
+            let message = format!(
+                "`{}` is of the part in turn, but the sheet has no `for each: part`",
+                need.name.value
+            );
+            Diagnostic::error("sheet-parts", message, &need.name.place)
+                .help("add `for each: part`, or name the part")
         }
         (true, None) => {
             let message = "the sheet says `for each: part`, but asks for nothing of the part";
-            Diagnostic::error("sheet-parts", message, &sheet.name.place).help("as in `from: part.thickness`")
+            Diagnostic::error("sheet-parts", message, &sheet.name.place)
+                .help("as in `from: part.thickness`")
         }
         (false, None) | (true, Some(_)) => return,
     };
@@ -185,8 +238,11 @@ fn check_convex(sheet: &Sheet, faults: &FaultBag) {
         if let Capacity::Name(name) = &check.capacity
             && varying.contains(&name.as_str())
         {
-            let message = format!("`{name}` varies along a run, so that `convex: true` cannot hold");
-            faults.push(Diagnostic::error("not-convex", message, &check.place).help("say `convex: false`"));
+            let message =
+                format!("`{name}` varies along a run, so that `convex: true` cannot hold");
+            faults.push(
+                Diagnostic::error("not-convex", message, &check.place).help("say `convex: false`"),
+            );
         }
     }
 }

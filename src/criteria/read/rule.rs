@@ -22,11 +22,26 @@ pub(super) fn read_step(key: &Told<String>, item: Item<'_>, known: &mut Known) -
     if let Some(wanted) = wanted
         && wanted.value != Kind::Quantity(dim)
     {
-        let message = format!("the formula gives {}, but {} is declared", dim.word(), wanted.value.says());
-        item.faults.push(Diagnostic::error("formula-dimension", message, &formula.place));
+        let message = format!(
+            "the formula gives {}, but {} is declared",
+            dim.word(),
+            wanted.value.says()
+        );
+        item.faults.push(Diagnostic::error(
+            "formula-dimension",
+            message,
+            &formula.place,
+        ));
     }
     known.declare(key, Some(dim), item.faults)?;
-    Some(Rule { name: key.clone(), symbol: symbol?, formula, node, dim, says: says?.value })
+    Some(Rule {
+        name: key.clone(),
+        symbol: symbol?,
+        formula,
+        node,
+        dim,
+        says: says?.value,
+    })
 }
 
 /// Reads one strength check.
@@ -40,7 +55,11 @@ pub(super) fn read_strength(item: Item<'_>, known: &mut Known) -> Option<Strengt
     fields.finish();
     let ((demand, of_demand), (capacity, of_capacity)) = (demand?, capacity?);
     if of_demand != of_capacity {
-        let message = format!("the demand is {}, but the capacity is {}", of_demand.word(), of_capacity.word());
+        let message = format!(
+            "the demand is {}, but the capacity is {}",
+            of_demand.word(),
+            of_capacity.word()
+        );
         return item.refuse("formula-dimension", message);
     }
     Some(Strength {
@@ -56,12 +75,20 @@ pub(super) fn read_strength(item: Item<'_>, known: &mut Known) -> Option<Strengt
 /// A name, or a plain number above zero.
 fn read_capacity(item: Item<'_>, known: &mut Known) -> Option<(Capacity, Dim)> {
     let text = item.raw()?;
-    if !text.value.starts_with(|c: char| c.is_ascii_digit() || c == '.' || c == '-') {
-        return known.quantity(item).map(|(name, dim)| (Capacity::Name(name.value), dim));
+    if !text
+        .value
+        .starts_with(|c: char| c.is_ascii_digit() || c == '.' || c == '-')
+    {
+        return known
+            .quantity(item)
+            .map(|(name, dim)| (Capacity::Name(name.value), dim));
     }
     let number = item.number()?;
     if number.value <= 0.0 {
-        return item.refuse("out-of-range", format!("the capacity is {}, but must be above 0", text.value));
+        return item.refuse(
+            "out-of-range",
+            format!("the capacity is {}, but must be above 0", text.value),
+        );
     }
     Some((Capacity::Number(text.value, number.value), Dim::NONE))
 }
@@ -75,13 +102,25 @@ pub(super) fn read_limit(item: Item<'_>, known: &mut Known) -> Option<Limit> {
     let most = fields.optional("at most", |item| known.quantity(item));
     let says = fields.required("says", Item::text);
     if fields.has("at least") == fields.has("at most") {
-        return fields.refuse("missing-key", "a limit needs one bound", "write `at least: NAME` or `at most: NAME`");
+        return fields.refuse(
+            "missing-key",
+            "a limit needs one bound",
+            "write `at least: NAME` or `at most: NAME`",
+        );
     }
     fields.finish();
-    let side = if least.is_some() { Side::AtLeast } else { Side::AtMost };
+    let side = if least.is_some() {
+        Side::AtLeast
+    } else {
+        Side::AtMost
+    };
     let ((value, of_value), (bound, of_bound)) = (value?, least.or(most)?);
     if of_value != of_bound {
-        let message = format!("the value is {}, but its bound is {}", of_value.word(), of_bound.word());
+        let message = format!(
+            "the value is {}, but its bound is {}",
+            of_value.word(),
+            of_bound.word()
+        );
         return item.refuse("formula-dimension", message);
     }
     Some(Limit {
@@ -97,9 +136,16 @@ pub(super) fn read_limit(item: Item<'_>, known: &mut Known) -> Option<Limit> {
 /// Reads one condition of validity.
 pub(super) fn read_validity(item: Item<'_>, known: &mut Known) -> Option<Validity> {
     let mut fields = item.fields("a condition")?;
-    let holds = fields.required("holds", |item| known.formula(item, ["when(", ", 1, otherwise, 0)"]));
+    let holds = fields.required("holds", |item| {
+        known.formula(item, ["when(", ", 1, otherwise, 0)"])
+    });
     let says = fields.required("says", Item::text);
     fields.finish();
     let (holds, text, node, _) = holds?;
-    Some(Validity { holds, node, text, says: says?.value })
+    Some(Validity {
+        holds,
+        node,
+        text,
+        says: says?.value,
+    })
 }

@@ -40,8 +40,8 @@ pub struct Ground<'a> {
 /// `wrong-kind`, `bad-quantity`, `out-of-range`, `no-variant`, `missing-leg`), no case of a level
 /// that the sheet takes (`no-case-of-level`), ends that it does not take (`ends-mismatch`), runs that
 /// nothing takes (`no-run-taken`, `run-not-checked`), a number that it does not give (`not-valid`,
-/// `no-value`, `capacity-not-positive`), or a sheet that claims proportionality wrongly
-/// (`not-proportional`).
+/// `no-value`, `capacity-not-positive`), or a sheet that claims to be
+/// proportional or convex and is not (`not-proportional`, `not-convex`).
 pub fn assess(ground: &Ground<'_>, library: &Library) -> Result<Assessment, Faults> {
     let mut faults = Vec::new();
     let mut asked = Vec::new();
@@ -281,7 +281,7 @@ fn strength(
     taken: &[usize],
 ) -> Result<Vec<StrengthOutcome>, Diagnostic> {
     let search = Search::new(ground, asking, benches);
-    search.verify_proportional(taken[0])?;
+    search.verify_claims(taken[0])?;
     let per_check = search.worst_of_cases(taken)?;
     let outcome = |(check, per_case): (usize, Vec<super::outcome::Governing>)| {
         let mut worst = 0;

@@ -7,6 +7,7 @@
 
 mod assess;
 mod evaluate;
+mod factor;
 mod from;
 mod library;
 mod limit;
@@ -20,6 +21,7 @@ mod state;
 mod work;
 
 pub use assess::{Ground, assess};
+pub use factor::{Factor, factors};
 pub use from::{From, PointField, Property, RunField, Unknown, Which};
 pub use library::{Library, built_in};
 pub use outcome::{Asked, Assessment, Governing, LimitOutcome, Margin, StrengthOutcome};

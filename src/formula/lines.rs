@@ -49,7 +49,7 @@ impl Ledger {
         match &entry.kind {
             Kind::Given(_) => {}
             Kind::Converted { given, node } => {
-                readings.push(Math::Word(given.text()));
+                readings.push(Math::Word(given.text().replacen('-', "−", 1)));
                 readings.extend(Presenter::read(self, &empty, node, "", true).math);
             }
             Kind::Step { node, text, env } => {

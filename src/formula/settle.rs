@@ -114,7 +114,9 @@ impl Ledger {
                 largest = largest.max(self.shown(value, moved).abs());
             }
         }
-        (1e-3 * largest).clamp(1e-300, 0.5)
+        (1e-3 * largest)
+            .min(0.5)
+            .max(self.floor(self.get(value).dim))
     }
 
     /// Raises one operand of a line that does not replay; `None` once it does.

@@ -12,7 +12,8 @@ pub struct Symbol {
 }
 
 /// Names of signs: plain name, Typst, LaTeX, spoken.
-const SIGNS: [(&str, &str, &str, &str); 26] = [
+const SIGNS: [(&str, &str, &str, &str); 27] = [
+    ("MS", "\"MS\"", "\\mathrm{MS}", "margin of safety"),
     ("alpha", "alpha", "\\alpha", "alpha"),
     ("beta", "beta", "\\beta", "beta"),
     ("gamma", "gamma", "\\gamma", "gamma"),
@@ -132,7 +133,7 @@ impl Symbol {
             None if is_letter(text) || text.bytes().all(|c| c.is_ascii_digit()) => text.to_owned(),
             None => format!("\"{text}\""),
         };
-        self.join(part, " ", "\",\" ", |base, index| {
+        self.join(part, " ", " class(\"normal\", \",\") ", |base, index| {
             format!("{base}_({index})")
         })
     }

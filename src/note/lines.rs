@@ -421,15 +421,27 @@ impl Builder<'_> {
 
     /// The height of the faying plane: the z of every point.
     fn plane_height(&mut self) -> Result<(), FormulaError> {
-        let value = match self.points.first() {
-            Some(point) => point.values[2],
+        let symbol = Symbol::of("z", &["c"]);
+        let says = "Height of the faying plane: z of every point";
+        let first = self
+            .joint
+            .weld
+            .runs
+            .first()
+            .and_then(|spec| super::points::stated(spec).into_iter().next());
+        let value = match first.cloned() {
+            Some(triple) => {
+                let origin = Origin::Input(triple.place.clone());
+                self.input("plane.z".to_owned(), symbol, says, &triple.parts[2], origin)
+            }
             None => self.zero(
                 "plane.z".to_owned(),
-                Symbol::of("z", &["c"]),
-                "Faying plane",
+                symbol,
+                says,
                 crate::quantity::Dim::LENGTH,
             ),
         };
+        self.show(value);
         self.env.bind("z_c", value);
         Ok(())
     }

@@ -1,8 +1,9 @@
 //! Loads: the cases as told, the case that is worked, and its moment about the centroid.
 
 use super::builder::{Builder, Cell, Line, Sheet, number_column, word_column};
+use super::doc::Item;
 use super::points::AXES;
-use super::text::{count, piece, plain, slug, symbol};
+use super::text::{count, plain, slug, symbol};
 use crate::formula::{Draft, FormulaError, Origin, Symbol, Value};
 use crate::joint::Case;
 use crate::load::Frame;
@@ -18,8 +19,6 @@ pub(super) struct CaseValues {
     pub(super) force: [Value; 3],
     /// Moment about the point of application.
     pub(super) moment: [Value; 3],
-    /// Point of application.
-    pub(super) at: [Value; 3],
     /// Moment about the centroid.
     pub(super) about: [Value; 3],
 }
@@ -85,24 +84,106 @@ impl Builder<'_> {
         self.describe_cases(first);
     }
 
-    /// A line of words for each case that has some.
+    /// Words on the cases, where they act, and how many there are.
     fn describe_cases(&mut self, first: &[usize]) {
         let cases = self.joint.loads.cases.clone();
-        for index in first.iter().take(CASES_IN_NOTE) {
-            if let Some(says) = &cases[*index].says {
-                let name = &cases[*index].name.value;
-                self.para(vec![
-                    super::text::strong(name),
-                    piece(&format!(": {}.", says.value.trim_end_matches('.'))),
-                ]);
-            }
+        let mut shown: Vec<usize> = first.iter().copied().take(CASES_IN_NOTE).collect();
+        shown.sort_unstable();
+        let items: Vec<Item> = shown
+            .iter()
+            .filter_map(|index| {
+                let says = cases[*index].says.as_ref()?;
+                Some(super::layout::item(
+                    &cases[*index].name.value,
+                    plain(&says.value),
+                ))
+            })
+            .collect();
+        if !items.is_empty() {
+            self.items(items);
         }
+        self.load_points(&shown);
         let count = count(cases.len(), "case", "cases");
         self.para(plain(&format!(
             "Actions on the weld group from the attached part; moments about the point of application, by the right \
-             hand. The file holds {count}; {} run, none skipped. Components of one case are never mixed with another's.",
-            if cases.len() == 1 { "it was" } else { "all were" }
+             hand. The file holds {count}; {}. Components of one case are never mixed with another's.",
+            if cases.len() == 1 { "it was run" } else { "all were run, none skipped" }
         )));
+    }
+
+    /// The point of application of a case, as told.
+    fn load_point(&mut self, case: &Case) -> [Value; 3] {
+        let framed = case.frame.is_some();
+        let mut starts: Vec<usize> = self
+            .joint
+            .loads
+            .cases
+            .iter()
+            .map(|case| case.at.place.start)
+            .collect();
+        starts.sort_unstable();
+        starts.dedup();
+        let number = starts
+            .iter()
+            .position(|start| *start == case.at.place.start)
+            .unwrap_or_default()
+            + 1;
+        [0, 1, 2].map(|axis| {
+            let symbol = Symbol::of(AXES[axis], &[if framed { "told" } else { "P" }]);
+            let says = format!("Point of application, {}", AXES[axis]);
+            let id = format!("load-point-{number}.{}", AXES[axis]);
+            self.input(
+                id,
+                symbol,
+                &says,
+                &case.at.parts[axis],
+                Origin::Input(case.at.place.clone()),
+            )
+        })
+    }
+
+    /// The table of points of application, each once with the cases that act there.
+    fn load_points(&mut self, shown: &[usize]) {
+        let unit = self.joint.units.value.length();
+        let mut columns = vec![word_column("acts at", 1)];
+        columns.extend(AXES.map(|axis| number_column(symbol(&Symbol::of(axis, &["P"])), unit)));
+        let mut points: Vec<(usize, Vec<String>)> = Vec::new();
+        for index in shown {
+            let case = &self.joint.loads.cases[*index];
+            let name = match &case.frame {
+                Some(frame) => format!("{} (in frame {})", case.name.value, frame.name.value),
+                None => case.name.value.clone(),
+            };
+            let start = |other: usize| self.joint.loads.cases[other].at.place.start;
+            match points
+                .iter_mut()
+                .find(|(other, _)| start(*other) == start(*index))
+            {
+                Some((_, names)) => names.push(name),
+                None => points.push((*index, vec![name])),
+            }
+        }
+        let mut rows = Vec::new();
+        for (at, (index, names)) in points.into_iter().enumerate() {
+            let case = self.joint.loads.cases[index].clone();
+            let mut cells = vec![Cell::Text(plain(&names.join(", ")))];
+            for value in self.load_point(&case) {
+                cells.push(self.cell(value));
+            }
+            rows.push(Line {
+                id: format!("load-point-{}", at + 1),
+                cells,
+                strong: false,
+            });
+        }
+        let caption = plain("Points of application as told");
+        self.table(Sheet {
+            id: "load-points".to_owned(),
+            caption,
+            columns,
+            rows,
+            foot: None,
+        });
     }
 
     /// A component of a case as told.
@@ -157,21 +238,8 @@ impl Builder<'_> {
                 Some(self.case_input(index, &case, "F", &case.force.parts[axis], axis, "Force"));
             told[1][axis] =
                 Some(self.case_input(index, &case, "M", &case.moment.parts[axis], axis, "Moment"));
-            let base = AXES[axis];
-            let part = if case.frame.is_some() { "told" } else { "P" };
-            let says = format!("Point of application of case {}, {base}", case.name.value);
-            let id = format!("{tag}.at-{base}");
-            let origin = Origin::Input(case.at.place.clone());
-            let value = self.input(
-                id,
-                Symbol::of(base, &[part]),
-                &says,
-                &case.at.parts[axis],
-                origin,
-            );
-            self.show(value);
-            told[2][axis] = Some(value);
         }
+        told[2] = self.load_point(&case).map(Some);
         let told = told.map(|triple| triple.map(|value| value.expect("all nine are set")));
         let [force, moment, at] = match &case.frame {
             None => told,
@@ -181,7 +249,6 @@ impl Builder<'_> {
         Ok(CaseValues {
             force,
             moment,
-            at,
             about,
         })
     }

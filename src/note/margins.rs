@@ -193,7 +193,13 @@ impl Builder<'_> {
                 cases,
                 &format!("check-{}", index + 1),
             )?;
-            let prefix = format!("margin-{}", index + 1);
+            let number = sites
+                .iter()
+                .position(|known| std::ptr::eq(known, site))
+                .unwrap_or_default()
+                + 1;
+            let turn = check.governing.part.map_or("", Turn::word);
+            let prefix = slug(&format!("check-{} at-{number} {turn}", check.outcome + 1));
             let worked = work(
                 &mut self.ledger,
                 &env,
@@ -446,7 +452,7 @@ impl Builder<'_> {
                 Margin::Value(margin) => {
                     let value = self.batch_value(
                         &format!("{id}.ms"),
-                        Symbol::of("M", &["S"]),
+                        Symbol::of("MS", &[]),
                         "Margin of safety",
                         margin,
                     );

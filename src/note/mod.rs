@@ -31,5 +31,8 @@ pub use front::FIGURE;
 pub use identity::Identity;
 pub use sketch::{Sketch, SketchLoad, SketchRun};
 pub use standing::Standing;
-pub use trace::SCHEMA as TRACE_SCHEMA;
+pub use trace::{
+    AtCentroid, Governing, Group, SCHEMA as TRACE_SCHEMA, Trace, TraceCase, TraceCheck,
+    TraceClosure, TraceIdentity, TraceStep, Units,
+};
 pub use write::{Note, write_note};

@@ -39,7 +39,7 @@ pub(super) fn ends(path: &Segment) -> [V3; 2] {
 }
 
 /// The triples that a spec states as points, to print them as typed.
-fn stated(spec: &RunSpec) -> Vec<&Triple> {
+pub(super) fn stated(spec: &RunSpec) -> Vec<&Triple> {
     match &spec.path {
         PathSpec::Straight(points) => points.iter().collect(),
         PathSpec::Polyline { points, .. } => points.iter().collect(),

@@ -31,7 +31,8 @@ pub struct Note {
     pub identity: Identity,
     /// How it stands.
     pub standing: Standing,
-    pub(super) trace: Trace,
+    /// The trace.
+    pub trace: Trace,
 }
 
 /// Why a note cannot be written.
@@ -516,7 +517,10 @@ fn verdict(
     if marks.is_empty() {
         lines.push(plain("No open item stands behind this margin."));
     } else {
-        let list: Vec<String> = marks.into_iter().collect();
+        let list: Vec<String> = marks
+            .iter()
+            .map(|mark| mark.trim_end_matches(", to be verified").to_owned())
+            .collect();
         let verb = if list.len() == 1 { "stands" } else { "stand" };
         lines.push(plain(&format!(
             "{} {verb} behind this margin, to be verified: {}.",

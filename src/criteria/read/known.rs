@@ -3,7 +3,7 @@
 use crate::formula::{FormulaError, Look, Node, Problem, Table, dimension, parse};
 use crate::quantity::{Dim, UnitSet};
 use crate::source::{Diagnostic, FaultBag, Item, Place, Told};
-use std::collections::BTreeMap;
+use std::collections::{BTreeMap, BTreeSet};
 
 /// Words of the formula language that are no names.
 const RESERVED: [&str; 13] = [
@@ -37,6 +37,8 @@ pub(super) struct Known {
     names: BTreeMap<String, Name>,
     tables: BTreeMap<String, (Table, Place, bool)>,
     symbols: BTreeMap<String, String>,
+    /// Names and tables whose own entries are at fault: what uses them is not blamed for it.
+    broken: BTreeSet<String>,
 }
 
 impl Known {
@@ -87,6 +89,14 @@ impl Known {
         Some(())
     }
 
+    /// Notes that the entry of a name is at fault, and passes on what was read of it.
+    pub(super) fn noted<T>(&mut self, key: &Told<String>, read: Option<T>) -> Option<T> {
+        if read.is_none() {
+            self.broken.insert(key.value.clone());
+        }
+        read
+    }
+
     /// Declares the symbol of a name; two names with one symbol would print alike.
     pub(super) fn declare_symbol(
         &mut self,
@@ -106,6 +116,9 @@ impl Known {
     /// The dimension of a quantity that a check or limit names.
     pub(super) fn quantity(&mut self, item: Item<'_>) -> Option<(Told<String>, Dim)> {
         let name = item.raw()?;
+        if self.broken.contains(&name.value) {
+            return None;
+        }
         let known: Vec<(&str, ())> = self
             .names
             .iter()
@@ -127,8 +140,11 @@ impl Known {
     ) -> Option<(Told<String>, String, Node, Dim)> {
         let told = item.raw()?;
         let text = format!("{}{}{}", wrap[0], told.value, wrap[1]);
-        let read =
-            parse(&text).and_then(|node| dimension(&node, &text, self).map(|dim| (node, dim)));
+        let parsed = parse(&text);
+        if parsed.as_ref().is_ok_and(|node| self.uses_broken(node)) {
+            return None;
+        }
+        let read = parsed.and_then(|node| dimension(&node, &text, self).map(|dim| (node, dim)));
         match read {
             Ok((node, dim)) => {
                 self.mark_used(&node);
@@ -136,6 +152,18 @@ impl Known {
             }
             Err(error) => item.faults.refuse(fault(&error, &told, wrap[0].len())),
         }
+    }
+
+    fn uses_broken(&self, node: &Node) -> bool {
+        let mut found = false;
+        node.walk(&mut |node| match &node.kind {
+            crate::formula::NodeKind::Name(name)
+            | crate::formula::NodeKind::Lookup { table: name, .. } => {
+                found = found || self.broken.contains(name);
+            }
+            _ => {}
+        });
+        found
     }
 
     fn mark_used(&mut self, node: &Node) {

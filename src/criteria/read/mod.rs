@@ -55,13 +55,22 @@ fn read_root(mut fields: Fields<'_>) -> Option<Sheet> {
     });
     let mut known = Known::default();
     let needs = fields.optional("needs", |item| {
-        item.entries(|key, item| need::read_need(key, item, &mut known))
+        item.entries(|key, item| {
+            let read = need::read_need(key, item, &mut known);
+            known.noted(key, read)
+        })
     });
     let tables = fields.optional("tables", |item| {
-        item.entries(|key, item| table::read_table(key, item, &mut known))
+        item.entries(|key, item| {
+            let read = table::read_table(key, item, &mut known);
+            known.noted(key, read)
+        })
     });
     let steps = fields.optional("steps", |item| {
-        item.entries(|key, item| rule::read_step(key, item, &mut known))
+        item.entries(|key, item| {
+            let read = rule::read_step(key, item, &mut known);
+            known.noted(key, read)
+        })
     });
     let checks = fields.optional_list("checks", |item| rule::read_strength(item, &mut known));
     let limits = fields.optional_list("limits", |item| rule::read_limit(item, &mut known));
@@ -99,7 +108,9 @@ fn read_root(mut fields: Fields<'_>) -> Option<Sheet> {
                 place,
             },
         );
-    if let Some(sheet) = &sheet {
+    if let Some(sheet) = &sheet
+        && !fields.faults().has_errors()
+    {
         check_scope(sheet, &fields);
         check_parts(sheet, &fields);
         check_convex(sheet, fields.faults());

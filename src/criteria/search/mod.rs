@@ -1,5 +1,7 @@
 //! Where a check is worst: samples by the batch program, refinement by the single evaluator.
 
+mod claims;
+
 use super::assess::Ground;
 use super::evaluate::{Bench, Pair, fault};
 use super::margin::{LARGEST, least_factor};
@@ -17,8 +19,6 @@ const BATCH: usize = 16_384;
 /// Part of the largest sampled ratio below which a local maximum is not refined: sampling at 32
 /// intervals a quarter turn misses far less than that.
 const WORTH_REFINING: f64 = 0.9;
-/// Relative miss up to which a demand counts as proportional to the loads.
-const PROPORTIONAL: f64 = 1e-9;
 /// Rounds in which the worst point and its load factor are brought together.
 const ROUNDS: u32 = 12;
 
@@ -33,7 +33,7 @@ struct Sample {
 }
 
 /// The search of one sheet.
-pub(super) struct Search<'a> {
+pub(in crate::criteria) struct Search<'a> {
     ground: &'a Ground<'a>,
     asking: Asking<'a>,
     benches: &'a [Bench<'a>],
@@ -41,7 +41,7 @@ pub(super) struct Search<'a> {
 }
 
 impl<'a> Search<'a> {
-    pub(super) fn new(
+    pub(in crate::criteria) fn new(
         ground: &'a Ground<'a>,
         asking: Asking<'a>,
         benches: &'a [Bench<'a>],
@@ -68,7 +68,7 @@ impl<'a> Search<'a> {
     }
 
     /// For each check of the sheet, the worst point of each case.
-    pub(super) fn worst_of_cases(
+    pub(in crate::criteria) fn worst_of_cases(
         &self,
         cases: &[usize],
     ) -> Result<Vec<Vec<Governing>>, Diagnostic> {
@@ -323,6 +323,7 @@ impl<'a> Search<'a> {
         sample: Sample,
     ) -> Result<Governing, Diagnostic> {
         self.check_proportional(&self.benches[sample.bench], check, (case, sample.p))?;
+        self.check_convex(&self.benches[sample.bench], check, case)?;
         let (factor, margin) = if sample.ratio > 0.0 {
             (1.0 / sample.ratio, Margin::Value(1.0 / sample.ratio - 1.0))
         } else {
@@ -373,63 +374,6 @@ impl<'a> Search<'a> {
             },
         )
     }
-
-    /// Holds the claim of proportionality against every sample of one case.
-    pub(super) fn verify_proportional(&self, case: usize) -> Result<(), Diagnostic> {
-        for (bench, positions) in self.benches.iter().zip(&self.positions) {
-            for check in 0..self.asking.sheet.checks.len() {
-                for p in positions {
-                    self.check_proportional(bench, check, (case, *p))?;
-                }
-            }
-        }
-        Ok(())
-    }
-
-    fn check_proportional(
-        &self,
-        bench: &Bench<'_>,
-        check: usize,
-        (case, p): (usize, f64),
-    ) -> Result<(), Diagnostic> {
-        let strength = &self.asking.sheet.checks[check];
-        if !strength.proportional || self.without_stress(bench, (case, p, 1.0)).is_some() {
-            return Ok(());
-        }
-        let once = self.pair(bench, check, (case, p, 1.0))?;
-        let twice = self.pair(bench, check, (case, p, 2.0))?;
-        let differs = |a: f64, b: f64, size: f64| (a - b).abs() > PROPORTIONAL * size;
-        // A demand that cancels to rounding noise is held to a part of the capacity.
-        let noise = 1e-6 * once.capacity.abs();
-        let demand = differs(
-            twice.demand,
-            2.0 * once.demand,
-            twice.demand.abs().max(noise),
-        );
-        let capacity = differs(twice.capacity, once.capacity, once.capacity.abs());
-        if !demand && !capacity {
-            return Ok(());
-        }
-        let what = if demand {
-            format!(
-                "twice the loads make its demand {} of {}",
-                twice.demand, once.demand
-            )
-        } else {
-            format!(
-                "twice the loads make its capacity {} of {}",
-                twice.capacity, once.capacity
-            )
-        };
-        let message = format!(
-            "`{}` says it is proportional to the loads, but {what}",
-            strength.name.value
-        );
-        Err(
-            Diagnostic::error("not-proportional", message, &strength.place)
-                .help("say `proportional: false`: the margin is then found as a load factor"),
-        )
-    }
 }
 
 /// Keeps the samples that no neighbour exceeds; the two ends of a straight run are both kept.
@@ -456,5 +400,158 @@ fn keep_peaks(found: &mut Vec<Sample>, bench: usize, positions: &[f64], ratios: 
             ratio: *ratio,
             near,
         });
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::criteria::sheet::Scope;
+    use crate::criteria::state::Site;
+    use crate::criteria::{Turn, built_in};
+    use crate::joint::{CheckSpec, Joint, read_joint};
+    use crate::source::SourceFile;
+    use crate::weld::{Run, V3, lay_runs};
+    use std::sync::Arc;
+
+    /// Numbers between −1 and 1, the same on every machine.
+    struct Random(u64);
+
+    impl Random {
+        fn next(&mut self) -> f64 {
+            self.0 = self
+                .0
+                .wrapping_mul(6_364_136_223_846_793_005)
+                .wrapping_add(1_442_695_040_888_963_407);
+            f64::from(u32::try_from(self.0 >> 32).unwrap()) / f64::from(u32::MAX) * 2.0 - 1.0
+        }
+    }
+
+    /// A joint with every value that a sheet of the project may ask for.
+    fn joint(units: &str, size: &str) -> Joint {
+        let text = format!(
+            "note: T
+title: T
+revision: A
+date: 2026-05-04
+units: {units}
+frame: {{origin: o}}
+parts:
+  a: {{material: S355J2, thickness: 0.4, f_y: 50, f_u: 65, F_su: 40, source: x}}
+  b: {{material: S275, thickness: 0.5, f_y: 40, f_u: 60, F_su: 35, source: x}}
+filler: {{name: E70, f_u: 70, F_su: 32, F_sy: 20, F_allow: 21, tau_allow: 20, source: x}}
+weld:
+  joins: [a, b]
+  ends: full
+  runs: [{{name: seam, straight: [[0, 0], [10, 2]], {size}, sides: both}}]
+loads: {{at: [0, 0, 0], cases: [{{case: L1, level: ultimate, force: [1, 0, 0]}}]}}
+checks: [{{clause: x}}]
+"
+        );
+        let file = Arc::new(SourceFile {
+            name: "trial.yaml".into(),
+            text,
+        });
+        read_joint(&file).unwrap_or_else(|faults| panic!("{}", faults.render(false)))
+    }
+
+    /// The batch program and the single evaluator share no loop; they give the same numbers.
+    #[test]
+    fn batch_and_single_agree_on_random_points_for_every_sheet() {
+        let mut random = Random(7);
+        let mut compared = 0;
+        for units in ["{force: kip, length: in}", "{force: N, length: m}"] {
+            for size in ["fillet: 0.25", "partial: 0.2", "complete: tee"] {
+                let joint = joint(units, size);
+                let runs = if size == "complete: tee" {
+                    one_bead(&joint)
+                } else {
+                    lay_runs(&joint).unwrap()
+                };
+                for sheet in built_in()
+                    .sheets()
+                    .filter(|sheet| sheet.scope == Scope::Point && sheet.takes(&runs[0]))
+                {
+                    compared += compare(&joint, &runs, sheet, &mut random);
+                }
+            }
+        }
+        assert!(compared >= 200 * 2 * 20, "{compared} comparisons");
+    }
+
+    /// A groove fills its plate: it has no second bead.
+    fn one_bead(joint: &Joint) -> Vec<Run> {
+        let mut joint = joint.clone();
+        joint.weld.runs[0].both_sides = None;
+        lay_runs(&joint).unwrap()
+    }
+
+    fn compare(
+        joint: &Joint,
+        runs: &[Run],
+        sheet: &crate::criteria::Sheet,
+        random: &mut Random,
+    ) -> usize {
+        let spec = CheckSpec {
+            values: vec![(
+                crate::source::Told {
+                    value: "end_loaded_length".into(),
+                    place: joint.checks[0].place.clone(),
+                },
+                crate::source::Told {
+                    value: "70".into(),
+                    place: joint.checks[0].place.clone(),
+                },
+            )],
+            ..joint.checks[0].clone()
+        };
+        let points: Vec<V3> = (0..400)
+            .map(|_| V3::new(random.next(), random.next(), random.next()) * 30.0)
+            .collect();
+        let stress = |case: usize, run: usize, _: f64| points[case + 200 * run];
+        let ground = Ground {
+            joint,
+            runs,
+            stress: &stress,
+        };
+        let asking = Asking {
+            joint,
+            index: 0,
+            spec: &spec,
+            sheet,
+        };
+        let tables = sheet.tables(joint.units.value);
+        let turn = sheet.each_part.then_some(Turn::Attached);
+        let site = Site {
+            run: 0,
+            turn,
+            plane: 0,
+            assumed: false,
+        };
+        let bench = Bench::new(asking, &tables, runs, site)
+            .unwrap_or_else(|fault| panic!("{}", fault.render(false)));
+        let benches = [bench];
+        let search = Search::new(&ground, asking, &benches);
+        let cases: Vec<usize> = (0..200).collect();
+        let columns = search.columns(&benches[0], &cases, &[0.5], 1.0);
+        let batch = benches[0].at_points(&columns, 200);
+        assert_eq!(batch.broken, None, "{}", sheet.name.value);
+        for (check, [demand, capacity]) in benches[0].of_batch(&batch).into_iter().enumerate() {
+            for case in &cases {
+                let single = search.pair(&benches[0], check, (*case, 0.5, 1.0)).unwrap();
+                for (name, batch, single) in [
+                    ("demand", demand.at(*case), single.demand),
+                    ("capacity", capacity.at(*case), single.capacity),
+                ] {
+                    let same = (batch - single).abs() <= 1e-14 * single.abs();
+                    assert!(
+                        same,
+                        "{}: {name} of case {case} is {batch}, not {single}",
+                        sheet.name.value
+                    );
+                }
+            }
+        }
+        200 * sheet.checks.len()
     }
 }

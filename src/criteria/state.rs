@@ -30,8 +30,10 @@ pub fn partner(runs: &[Run], index: usize) -> Option<(usize, bool)> {
     let other = runs
         .iter()
         .enumerate()
-        .filter(|(at, other)| *at != index && other.one_of_two && other.spec == run.spec)
-        .filter(|(_, other)| other.toe.zip(run.toe).is_none_or(|(a, b)| a * b < 0.0))
+        .filter(|(at, other)| *at != index && other.one_of_two && other.joins[0] == run.joins[0])
+        .filter(|(_, other)| {
+            other.spec != run.spec || other.toe.zip(run.toe).is_none_or(|(a, b)| a * b < 0.0)
+        })
         .map(|(at, other)| (at, (other.path.point(0.5) - middle).norm()))
         .min_by(|a, b| a.1.total_cmp(&b.1))?
         .0;

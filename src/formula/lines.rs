@@ -28,7 +28,7 @@ pub struct EquationLine {
 }
 
 /// What fits on a line, in widths of a digit at the text size: 141 mm of 9.5 pt figures.
-const LINE: f64 = 84.0;
+const LINE: f64 = 83.5;
 
 /// One reading of an equation with the sign before it.
 struct Piece {
@@ -130,18 +130,19 @@ impl Ledger {
             if sign == "+" { "plus " } else { "" },
             Math::plain(printed.clone()).words()
         );
-        let mut width = Math::plain(printed).width() * 1.08 + 1.0 + unit.chars().count() as f64;
+        let mut width =
+            Math::plain(printed).width() * 1.16 + 0.4 + 1.65 * unit.chars().count() as f64;
         for remark in remarks {
             typst.push_str(&format!(" quad ({})", remark.typst()));
             latex.push_str(&format!(" \\quad ({})", remark.latex()));
             words.push_str(&format!(", {}", remark.words()));
-            width += 4.0 + remark.width();
+            width += 3.9 + remark.width();
         }
         Piece {
             typst: format!("= {typst}"),
             latex: format!("= {latex}"),
             words: format!("equals {}", words.trim()),
-            width: width + 2.9,
+            width: width + 2.7,
         }
     }
 
@@ -220,7 +221,7 @@ fn split_long(math: &Math) -> Vec<Piece> {
             if sign == "=" { "equals" } else { "plus" },
             math.words()
         ),
-        width: math.width() + 2.9,
+        width: math.width() + 2.7,
     };
     let Math::Terms(terms) = math else {
         return vec![piece("=", math)];

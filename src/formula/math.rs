@@ -168,7 +168,7 @@ impl Math {
                 link,
             } => {
                 let sign = if printed.negative { "-" } else { "" };
-                let degree = if *degrees { " #u(\"°\")" } else { "" };
+                let degree = if *degrees { "#u(\"°\")" } else { "" };
                 let number = match (link, printed.exponent) {
                     (Some(id), None) => format!("#n({}, \"{}\")", literal(id), printed.mantissa),
                     (Some(id), Some(power)) => {
@@ -315,7 +315,7 @@ impl Math {
         }
     }
 
-    /// A bound of the printed width, in widths of a digit.
+    /// A bound of the printed width, in widths of a digit; measured on the faces of the page.
     #[must_use]
     pub fn width(&self) -> f64 {
         match self {
@@ -324,45 +324,55 @@ impl Math {
             } => {
                 let power = printed
                     .exponent
-                    .map_or(0.0, |power| 4.1 + 0.75 * power.to_string().len() as f64);
+                    .map_or(0.0, |power| 4.6 + 0.8 * power.to_string().len() as f64);
                 let point = if printed.mantissa.contains('.') {
-                    -0.5
+                    -0.42
                 } else {
                     0.0
                 };
-                let sign = if printed.negative { 1.7 } else { 0.0 };
+                let sign = if printed.negative { 1.6 } else { 0.0 };
                 sign + printed.mantissa.len() as f64
                     + point
                     + power
-                    + if *degrees { 1.0 } else { 0.0 }
+                    + if *degrees { 0.8 } else { 0.0 }
             }
             Self::Symbol(symbol) => symbol.width(),
-            Self::Word(text) => 1.05 * text.chars().count() as f64,
-            Self::Pi => 1.2,
-            Self::Terms(terms) => terms.iter().map(|term| 2.9 + term.1.width()).sum::<f64>() - 2.0,
-            Self::Product(factors) => {
-                factors
-                    .iter()
-                    .map(|factor| factor.width() + 1.3)
-                    .sum::<f64>()
-                    - 1.3
+            Self::Word(text) => 0.95 * text.chars().count() as f64,
+            Self::Pi => 1.3,
+            Self::Terms(terms) => {
+                let lead = if terms.first().is_some_and(|term| term.0) {
+                    1.6
+                } else {
+                    0.0
+                };
+                lead + terms.iter().map(|term| 2.5 + term.1.width()).sum::<f64>() - 2.5
             }
-            Self::Fraction(above, below) => above.width().max(below.width()) + 0.6,
+            Self::Product(factors) => {
+                let gaps = factors.windows(2).map(|pair| {
+                    if Self::dotted(&pair[0], &pair[1]) {
+                        1.5
+                    } else {
+                        0.4
+                    }
+                });
+                factors.iter().map(Self::width).sum::<f64>() + gaps.sum::<f64>()
+            }
+            Self::Fraction(above, below) => above.width().max(below.width()) + 0.5,
             Self::Slash(above, below) => above.width() + below.width() + 1.2,
-            Self::Power(base, exponent) => base.width() + 0.75 * exponent.width(),
-            Self::Root(inner) => inner.width() + 2.2,
+            Self::Power(base, exponent) => base.width() + 0.8 * exponent.width() + 0.2,
+            Self::Root(inner) => inner.width() + 1.8,
             Self::Bracket(inner) => inner.width() + 1.7,
-            Self::Magnitude(inner) => inner.width() + 1.3,
+            Self::Magnitude(inner) => inner.width() + 1.2,
             Self::Call(name, arguments) => {
                 let inner: f64 = arguments
                     .iter()
-                    .map(|argument| argument.width() + 0.9)
+                    .map(|argument| argument.width() + 1.0)
                     .sum();
-                name.len() as f64 + inner + 1.7
+                0.95 * name.len() as f64 + inner + 1.2
             }
-            Self::Sum(_, term) => 3.6 + term.width(),
-            Self::Relation(_, left, right) => left.width() + right.width() + 2.9,
-            Self::Row(pieces) => pieces.iter().map(|piece| piece.width() + 1.0).sum(),
+            Self::Sum(_, term) => 3.4 + term.width(),
+            Self::Relation(_, left, right) => left.width() + right.width() + 2.7,
+            Self::Row(pieces) => pieces.iter().map(|piece| piece.width() + 0.6).sum(),
         }
     }
 }

@@ -230,7 +230,9 @@ impl<'a> Presenter<'a> {
                 };
                 let is_sum = op == Op::Add && matches!(right.kind, Kind::Sum { .. });
                 match self.math(right, member, inline) {
-                    Math::Terms(more) if is_sum => terms.extend(more),
+                    Math::Terms(more) if is_sum => {
+                        terms.extend(more.into_iter().map(|(minus, term)| (minus, as_term(term))));
+                    }
                     right => terms.push((op == Op::Sub, as_term(right))),
                 }
                 Math::Terms(terms)

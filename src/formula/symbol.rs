@@ -133,7 +133,7 @@ impl Symbol {
             None if is_letter(text) || text.bytes().all(|c| c.is_ascii_digit()) => text.to_owned(),
             None => format!("\"{text}\""),
         };
-        self.join(part, " ", " class(\"normal\", \",\") ", |base, index| {
+        self.join(part, " ", "#sep()", |base, index| {
             format!("{base}_({index})")
         })
     }
@@ -184,17 +184,27 @@ impl Symbol {
         whole(base, index)
     }
 
-    /// A bound of its printed width, in widths of a digit.
+    /// A bound of its printed width, in widths of a digit; measured on the faces of the page.
     #[must_use]
     pub fn width(&self) -> f64 {
+        let letter = |text: &str| match text {
+            "M" | "W" | "MS" => 2.2,
+            "m" | "w" => 1.9,
+            text if text.starts_with(|c: char| c.is_ascii_uppercase()) => 1.6,
+            _ => 1.3,
+        };
         let part = |text: &str| {
             if is_letter(text) || sign(text).is_some() {
-                1.0
+                0.72 * letter(text)
             } else {
-                0.95 * text.len() as f64
+                0.85 * text.len() as f64
             }
         };
-        let commas = 0.4 * self.index.len().saturating_sub(1) as f64;
-        1.35 + 0.72 * (self.index.iter().map(|text| part(text)).sum::<f64>() + commas)
+        let commas = (1..self.index.len())
+            .filter(|at| !self.is_tight(*at))
+            .count();
+        letter(&self.base)
+            + self.index.iter().map(|text| part(text)).sum::<f64>()
+            + 0.55 * commas as f64
     }
 }

@@ -217,7 +217,7 @@ impl Builder<'_> {
         symbol: Symbol,
         says: String,
         value: f64,
-    ) {
+    ) -> Value {
         let spec = self.runs[index].spec;
         let draft = Draft {
             id: self.slug_id(index, name),
@@ -228,8 +228,8 @@ impl Builder<'_> {
             dim: None,
         };
         let value = self.ledger.found(draft, value, Dim::NONE);
-        self.show(value);
         self.run_values[index].insert(name.to_owned(), value);
+        value
     }
 
     /// An arc that does not close, in its own axes u and v, then in those of the joint.
@@ -303,13 +303,14 @@ impl Builder<'_> {
                 for component in 0..3 {
                     let name = format!("{letter}_{}", AXES[component]);
                     let says = format!("Axis {letter} of the arc's plane, {}", AXES[component]);
-                    self.direction_value(
+                    let value = self.direction_value(
                         index,
                         &name,
                         Symbol::of(letter, &[AXES[component]]),
                         says,
                         axis[component],
                     );
+                    self.show(value);
                 }
             }
         }

@@ -144,6 +144,43 @@ impl Builder<'_> {
             self.point_table();
         }
         self.told_runs();
+        if !self.planar {
+            self.normals_table();
+        }
+    }
+
+    /// The faying normals of the runs.
+    fn normals_table(&mut self) {
+        let mut columns = vec![word_column("", 0), word_column("run", 0)];
+        columns.extend(
+            super::points::AXES
+                .map(|axis| super::builder::number_column(symbol(&Symbol::of("n", &[axis])), "")),
+        );
+        let mut rows = Vec::new();
+        for index in 0..self.runs.len() {
+            self.normal_values(index);
+            let mut cells = vec![
+                Cell::Text(plain(&(index + 1).to_string())),
+                Cell::Text(plain(&self.runs[index].name)),
+            ];
+            for axis in super::points::AXES {
+                let value = self.run_values[index][&format!("n_{axis}")];
+                cells.push(self.cell(value));
+            }
+            rows.push(Line {
+                id: format!("normal.{}", self.slugs[index]),
+                cells,
+                strong: false,
+            });
+        }
+        let caption = plain("Faying normals of the runs, out of the base toward the attached part");
+        self.table(Sheet {
+            id: "normals".to_owned(),
+            caption,
+            columns,
+            rows,
+            foot: None,
+        });
     }
 
     /// The runs as told.
@@ -246,7 +283,8 @@ impl Builder<'_> {
         ];
         let parts: Vec<Part> = self.joint.parts.clone();
         let mut rows = Vec::new();
-        for part in &parts {
+        for (index, part) in parts.iter().enumerate() {
+            let number = (index + 1).to_string();
             let mut cells = vec![
                 Cell::Text(plain(&part.name.value)),
                 Cell::Text(plain(&part.material.value)),
@@ -254,14 +292,19 @@ impl Builder<'_> {
             for (name, symbol, says, given) in [
                 (
                     "thickness",
-                    Symbol::of("t", &["p"]),
+                    Symbol::of("t", &["p", &number]),
                     "Thickness",
                     &part.thickness,
                 ),
-                ("f_y", Symbol::of("f", &["y"]), "Yield strength", &part.f_y),
+                (
+                    "f_y",
+                    Symbol::of("f", &["y", &number]),
+                    "Yield strength",
+                    &part.f_y,
+                ),
                 (
                     "f_u",
-                    Symbol::of("f", &["u"]),
+                    Symbol::of("f", &["u", &number]),
                     "Ultimate strength",
                     &part.f_u,
                 ),

@@ -4,6 +4,7 @@
 //! tables, to which its cells link.
 
 use super::builder::{Builder, Cell, Line, Sheet, number_column, word_column};
+use super::doc::Text;
 use super::points::{AXES, axes};
 use super::text::{math, piece, plain, symbol};
 use crate::formula::{Draft, Env, FormulaError, Math, Origin, SumSet, Symbol, Value};
@@ -165,9 +166,10 @@ impl Builder<'_> {
                 }
             }
         }
-        self.column_formulas(properties)?;
+        let mut words = plain(caption);
+        words.extend(self.column_formulas(properties)?);
         let units = self.ledger.units();
-        let mut columns = vec![word_column("", 0), word_column("run", 1)];
+        let mut columns = vec![word_column("", 0), word_column("run", 0)];
         for property in properties {
             let value = self
                 .run_values
@@ -199,7 +201,7 @@ impl Builder<'_> {
         }
         self.table(Sheet {
             id: id.to_owned(),
-            caption: plain(caption),
+            caption: words,
             columns,
             rows,
             foot: None,
@@ -212,14 +214,14 @@ impl Builder<'_> {
         matches!(self.runs[index].path, Segment::Straight { .. })
     }
 
-    /// The formulas of the columns in one paragraph, as straight runs fill them.
-    fn column_formulas(&mut self, properties: &[Property]) -> Result<(), FormulaError> {
+    /// The formulas of the columns, as straight runs fill them, for the table's caption.
+    fn column_formulas(&self, properties: &[Property]) -> Result<Text, FormulaError> {
         let Some(straight) = self
             .runs
             .iter()
             .position(|run| matches!(run.path, Segment::Straight { .. }))
         else {
-            return Ok(());
+            return Ok(Vec::new());
         };
         let mut env = self.env.clone();
         let names: Vec<(String, Symbol)> = self.run_values[straight]
@@ -243,19 +245,13 @@ impl Builder<'_> {
             .iter()
             .filter(|property| !property.formula.is_empty())
         {
-            if !text.is_empty() {
-                text.push(piece(";  "));
-            }
+            text.push(piece(if text.is_empty() { ": " } else { "; " }));
             let formula =
                 self.ledger
                     .column_formula(&env, &property.symbol, &property.formula, "runs")?;
             text.push(math(&inline(formula)));
         }
-        if !text.is_empty() {
-            text.push(piece("."));
-            self.para(text);
-        }
-        Ok(())
+        Ok(text)
     }
 
     /// Directions, lengths, areas and centroids.
@@ -570,8 +566,8 @@ impl Builder<'_> {
         ] {
             let symbol = Symbol::of("K", &[&symbol[..1], &symbol[1..]]);
             let says = format!(
-                "Component {} of the inertia tensor about the centroid",
-                symbol.plain()
+                "Inertia tensor about the centroid, {}",
+                &symbol.plain()[2..]
             );
             self.step(symbol, &says, formula, "statics")?;
         }

@@ -1,11 +1,10 @@
 //! Loads: the cases as told, the case that is worked, and its moment about the centroid.
 
 use super::builder::{Builder, Cell, Line, Sheet, number_column, word_column};
-use super::doc::Item;
 use super::points::AXES;
 use super::text::{count, plain, slug, symbol};
 use crate::formula::{Draft, FormulaError, Origin, Symbol, Value};
-use crate::joint::Case;
+use crate::joint::{Case, LoadFrame};
 use crate::load::Frame;
 use crate::quantity::{Dim, Given};
 
@@ -36,7 +35,16 @@ impl Builder<'_> {
             chosen.sort_unstable();
             chosen
         };
+        let told = self
+            .joint
+            .loads
+            .cases
+            .iter()
+            .any(|case| case.says.is_some());
         let mut columns = vec![word_column("case", 0), word_column("level", 0)];
+        if told {
+            columns.push(word_column("what", 1));
+        }
         for axis in AXES {
             columns.push(number_column(symbol(&Symbol::of("F", &[axis])), &force));
         }
@@ -51,6 +59,10 @@ impl Builder<'_> {
                 Cell::Text(plain(&case.name.value)),
                 Cell::Text(plain(case.level.value.word())),
             ];
+            if told {
+                let says = case.says.as_ref().map_or("", |says| says.value.as_str());
+                cells.push(Cell::Text(plain(says)));
+            }
             for (base, triple, says) in [("F", &case.force, "Force"), ("M", &case.moment, "Moment")]
             {
                 for axis in 0..3 {
@@ -89,20 +101,8 @@ impl Builder<'_> {
         let cases = self.joint.loads.cases.clone();
         let mut shown: Vec<usize> = first.iter().copied().take(CASES_IN_NOTE).collect();
         shown.sort_unstable();
-        let items: Vec<Item> = shown
-            .iter()
-            .filter_map(|index| {
-                let says = cases[*index].says.as_ref()?;
-                Some(super::layout::item(
-                    &cases[*index].name.value,
-                    plain(&says.value),
-                ))
-            })
-            .collect();
-        if !items.is_empty() {
-            self.items(items);
-        }
         self.load_points(&shown);
+        self.frame_tables(&shown);
         let count = count(cases.len(), "case", "cases");
         self.para(plain(&format!(
             "Actions on the weld group from the attached part; moments about the point of application, by the right \
@@ -145,7 +145,7 @@ impl Builder<'_> {
     /// The table of points of application, each once with the cases that act there.
     fn load_points(&mut self, shown: &[usize]) {
         let unit = self.joint.units.value.length();
-        let mut columns = vec![word_column("acts at", 1)];
+        let mut columns = vec![word_column("acts at", 0)];
         columns.extend(AXES.map(|axis| number_column(symbol(&Symbol::of(axis, &["P"])), unit)));
         let mut points: Vec<(usize, Vec<String>)> = Vec::new();
         for index in shown {
@@ -265,56 +265,12 @@ impl Builder<'_> {
             .frame
             .as_ref()
             .expect("only cases with a frame are turned");
-        let turned = Frame::new(frame).expect("the frame was checked when the loads were laid out");
         let mut env = self.env.clone();
+        let (origin, axes) = self.frame_values(frame);
         for row in 0..3 {
-            let origin = Origin::Input(frame.origin.place.clone());
-            let says = format!("Origin of frame {}, {}", frame.name.value, AXES[row]);
-            let id = format!("{}.o-{}", slug(&frame.name.value), AXES[row]);
-            let value = self.input(
-                id,
-                Symbol::of("o", &[AXES[row]]),
-                &says,
-                &frame.origin.parts[row],
-                origin,
-            );
-            self.show(value);
-            env.bind(&format!("o_{}", AXES[row]), value);
-            for column in 0..3 {
-                let symbol = Symbol::of("R", &[AXES[row], AXES[column]]);
-                let says = format!(
-                    "Axis {} of frame {}, component {}",
-                    AXES[column], frame.name.value, AXES[row]
-                );
-                let id = format!(
-                    "{}.r-{}{}",
-                    slug(&frame.name.value),
-                    AXES[row],
-                    AXES[column]
-                );
-                let exact =
-                    (frame.axes[column].parts[row].value - turned.r[(row, column)]).abs() < 1e-15;
-                let origin = Origin::Input(frame.axes[column].place.clone());
-                let value = if exact {
-                    self.input(id, symbol, &says, &frame.axes[column].parts[row], origin)
-                } else if let Some(known) = self.given.get(&id) {
-                    *known
-                } else {
-                    let formula = "axes as told, made exactly square and of unit length";
-                    let draft = Draft {
-                        id: id.clone(),
-                        symbol,
-                        says,
-                        formula,
-                        origin,
-                        dim: None,
-                    };
-                    let value = self.ledger.found(draft, turned.r[(row, column)], Dim::NONE);
-                    self.given.insert(id, value);
-                    value
-                };
-                self.show(value);
-                env.bind(&format!("R_{row}{column}"), value);
+            env.bind(&format!("o_{}", AXES[row]), origin[row]);
+            for (column, value) in axes[row].iter().enumerate() {
+                env.bind(&format!("R_{row}{column}"), *value);
             }
         }
         let mut out = told;
@@ -356,6 +312,98 @@ impl Builder<'_> {
             }
         }
         Ok(out)
+    }
+
+    /// The origin of a load's frame and its axes by rows, as told or made exactly square.
+    fn frame_values(&mut self, frame: &LoadFrame) -> ([Value; 3], [[Value; 3]; 3]) {
+        let turned = Frame::new(frame).expect("the frame was checked when the loads were laid out");
+        let (name, tag) = (&frame.name.value, slug(&frame.name.value));
+        let origin = [0, 1, 2].map(|row| {
+            let says = format!("Origin of frame {name}, {}", AXES[row]);
+            let id = format!("frame.{tag}.o-{}", AXES[row]);
+            let place = Origin::Input(frame.origin.place.clone());
+            self.input(
+                id,
+                Symbol::of("o", &[AXES[row]]),
+                &says,
+                &frame.origin.parts[row],
+                place,
+            )
+        });
+        let axes = [0, 1, 2].map(|row| {
+            [0, 1, 2].map(|column| {
+                let symbol = Symbol::of("R", &[AXES[row], AXES[column]]);
+                let says = format!(
+                    "Axis {} of frame {name}, component {}",
+                    AXES[column], AXES[row]
+                );
+                let id = format!("frame.{tag}.r-{}{}", AXES[row], AXES[column]);
+                let told = &frame.axes[column].parts[row];
+                let origin = Origin::Input(frame.axes[column].place.clone());
+                if (told.value - turned.r[(row, column)]).abs() < 1e-15 {
+                    return self.input(id, symbol, &says, told, origin);
+                }
+                if let Some(known) = self.given.get(&id) {
+                    return *known;
+                }
+                let formula = "axes as told, made exactly square and of unit length";
+                let draft = Draft {
+                    id: id.clone(),
+                    symbol,
+                    says,
+                    formula,
+                    origin,
+                    dim: None,
+                };
+                let value = self.ledger.found(draft, turned.r[(row, column)], Dim::NONE);
+                self.given.insert(id, value);
+                value
+            })
+        });
+        (origin, axes)
+    }
+
+    /// A table for each frame that cases are told in.
+    fn frame_tables(&mut self, shown: &[usize]) {
+        let mut done: Vec<String> = Vec::new();
+        for index in shown {
+            let Some(frame) = self.joint.loads.cases[*index].frame.clone() else {
+                continue;
+            };
+            if done.contains(&frame.name.value) {
+                continue;
+            }
+            done.push(frame.name.value.clone());
+            let (origin, axes) = self.frame_values(&frame);
+            let unit = self.joint.units.value.length();
+            let mut columns = vec![word_column("component in the joint frame", 0)];
+            columns.push(number_column(symbol(&Symbol::of("o", &[])), unit));
+            columns.extend(AXES.map(|axis| number_column(symbol(&Symbol::of("R", &[axis])), "")));
+            let tag = slug(&frame.name.value);
+            let mut rows = Vec::new();
+            for row in 0..3 {
+                let mut cells = vec![Cell::Text(plain(AXES[row])), self.cell(origin[row])];
+                for value in axes[row] {
+                    cells.push(self.cell(value));
+                }
+                rows.push(Line {
+                    id: format!("frame.{tag}.{}", AXES[row]),
+                    cells,
+                    strong: false,
+                });
+            }
+            let words = format!(
+                "Frame {}: its origin and its axes x, y, z as columns",
+                frame.name.value
+            );
+            self.table(Sheet {
+                id: format!("frame-{tag}"),
+                caption: plain(&words),
+                columns,
+                rows,
+                foot: None,
+            });
+        }
     }
 
     /// M_C = M + (P − C) × F.

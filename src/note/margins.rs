@@ -169,7 +169,7 @@ impl Builder<'_> {
         cases: &CaseTerms,
     ) -> Result<(), NoteError> {
         self.part("margins", "Margins");
-        for (index, check) in checks.iter_mut().enumerate() {
+        for check in checks.iter_mut() {
             let asked = asked(calculation, check.outcome);
             let spot = spot_of(&check.governing);
             let site = sites
@@ -191,7 +191,14 @@ impl Builder<'_> {
                 check,
                 &mut env,
                 cases,
-                &format!("check-{}", index + 1),
+                &format!(
+                    "plate-{}",
+                    sites
+                        .iter()
+                        .position(|known| std::ptr::eq(known, site))
+                        .unwrap_or_default()
+                        + 1
+                ),
             )?;
             let number = sites
                 .iter()
@@ -238,6 +245,11 @@ impl Builder<'_> {
         });
         let governing = &check.governing;
         if !needs_plate || governing.part == Some(Turn::Base) {
+            return Ok(());
+        }
+        let known = self.ledger.find(&format!("{tag}.q-plate"));
+        if let Some(known) = known {
+            env.bind("point_q_plate", known);
             return Ok(());
         }
         let Some((other, reversed)) = partner(self.runs, governing.run) else {
@@ -669,6 +681,12 @@ impl Builder<'_> {
             if let Some(value) = self.run_values[run].get(from) {
                 env.bind(to, *value);
             }
+        }
+        let values = &self.run_values[run];
+        if let (Some(base), Some(attached)) = (values.get("leg_base"), values.get("leg_attached"))
+            && base == attached
+        {
+            env.bind("run_leg", *base);
         }
         env
     }

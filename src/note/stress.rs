@@ -27,6 +27,18 @@ pub(super) struct Spot {
 struct Sheet {
     tag: String,
     env: Env,
+    /// What every symbol's index gains, to tell the stresses of a second bead from the first's.
+    mark: &'static str,
+}
+
+impl Sheet {
+    fn marked(&self, symbol: Symbol) -> Symbol {
+        if self.mark.is_empty() {
+            symbol
+        } else {
+            symbol.with(self.mark)
+        }
+    }
 }
 
 impl Builder<'_> {
@@ -41,7 +53,7 @@ impl Builder<'_> {
     ) -> Result<Value, FormulaError> {
         let draft = Draft {
             id: format!("{}.{}", sheet.tag, name.replace('_', "-").to_lowercase()),
-            symbol,
+            symbol: sheet.marked(symbol),
             says: says.to_owned(),
             formula,
             origin: Origin::Method(method.to_owned()),
@@ -65,10 +77,10 @@ impl Builder<'_> {
     ) {
         let draft = Draft {
             id: format!("{}.{}", sheet.tag, name.replace('_', "-")),
-            symbol,
+            symbol: sheet.marked(symbol),
             says: says.to_owned(),
             formula: method,
-            origin: Origin::Method(method.to_owned()),
+            origin: Origin::Method("method 4".to_owned()),
             dim: None,
         };
         let value = self.ledger.found(draft, value, dim);
@@ -92,6 +104,7 @@ impl Builder<'_> {
         let mut sheet = Sheet {
             tag: tag.to_owned(),
             env,
+            mark: if tag.ends_with("-twin") { "2" } else { "" },
         };
         match regime {
             Regime::Planar => {
@@ -191,7 +204,7 @@ impl Builder<'_> {
                 &name,
                 symbol,
                 &says,
-                "solution of the three equations verified below",
+                "verified by the three lines below",
                 theta[axis],
                 dim,
             );
@@ -331,13 +344,14 @@ impl Builder<'_> {
                 let name = format!("{letter}_{}", AXES[component]);
                 if !self.run_values[index].contains_key(&name) {
                     let says = format!("Axis {letter} of the arc's plane, {}", AXES[component]);
-                    self.direction_value(
+                    let value = self.direction_value(
                         index,
                         &name,
                         Symbol::of(letter, &[AXES[component]]),
                         says,
                         axis[component],
                     );
+                    self.show(value);
                 }
             }
         }
@@ -601,6 +615,7 @@ impl Builder<'_> {
         let mut sheet = Sheet {
             tag: tag.to_owned(),
             env,
+            mark: if tag.ends_with("-twin") { "2" } else { "" },
         };
         self.position(&mut sheet, spot)?;
         for axis in 0..3 {
@@ -663,6 +678,7 @@ impl Builder<'_> {
         let mut sheet = Sheet {
             tag: tag.to_owned(),
             env: inner,
+            mark: if tag.ends_with("-twin") { "2" } else { "" },
         };
         let q = Symbol::of("q", &["p"]);
         match twin {
@@ -736,6 +752,11 @@ impl Builder<'_> {
             ("psi", "run_angle"),
         ];
         let mut out = Env::default();
+        if env.names.get("leg_base") == env.names.get("leg_attached")
+            && let Some(leg) = env.names.get("leg_base")
+        {
+            out.names.insert("run_leg".to_owned(), leg.clone());
+        }
         for (from, to) in NAMES {
             if let Some(bound) = env.names.get(from) {
                 out.names.insert(to.to_owned(), bound.clone());

@@ -2,6 +2,7 @@
 
 use super::path::{Outline, Refusal, beads, outline};
 use super::throat::{FitUp, Size, throat_rule};
+use super::twins::mark_twins;
 use super::{End, Run, Segment, ThroatRule, V3, WeldError, WeldErrorKind, WeldFaults};
 use super::{ends, overlap, toe};
 use crate::joint::{Joint, Part, RunSpec, SizeSpec, WeldSpec};
@@ -78,7 +79,8 @@ pub fn lay_weld(weld: &WeldSpec, parts: &[Part], units: UnitSet) -> Result<Vec<R
             Err(fault) => faults.push(fault),
         }
     }
-    let runs = finish(&pieces, weld, size, &mut faults);
+    let mut runs = finish(&pieces, weld, size, &mut faults);
+    mark_twins(&mut runs, parts);
     find_overlaps(&runs, &pieces, weld, size, &mut faults);
     let fault = |(kind, place)| WeldError { kind, place, units };
     match (

@@ -14,6 +14,7 @@ mod properties;
 mod segment;
 mod throat;
 mod toe;
+mod twins;
 
 pub use error::{WeldError, WeldErrorKind, WeldFaults};
 pub use group::{lay_runs, lay_weld};

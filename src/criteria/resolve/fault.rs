@@ -135,11 +135,11 @@ pub(super) fn property_name(property: &Property) -> &str {
     }
 }
 
-pub(super) fn property_says(name: &str) -> String {
+pub(super) fn property_says(name: &str, need: &Need) -> String {
     match name {
         "thickness" => "thickness".to_owned(),
         "f_y" => "yield strength".to_owned(),
         "f_u" => "ultimate strength".to_owned(),
-        other => other.to_owned(),
+        _ => need.says.clone(),
     }
 }

@@ -84,7 +84,7 @@ impl Asking<'_> {
             symbol,
             says: format!(
                 "{} of {}, {}",
-                property_says(name),
+                property_says(name, need),
                 part.name.value,
                 part.material.value
             ),
@@ -119,7 +119,7 @@ impl Asking<'_> {
                 symbol: need.symbol.clone(),
                 says: format!(
                     "{} of the filler, {}",
-                    property_says(name),
+                    property_says(name, need),
                     filler.name.value
                 ),
                 given: told.value,

@@ -366,6 +366,30 @@ impl Ledger {
         })
     }
 
+    /// The value that the formula of a line has where some of its names take other values, such as
+    /// the coordinates of another point.
+    ///
+    /// # Errors
+    ///
+    /// [`FormulaError`] if the formula has no value there, or the line has no formula.
+    pub fn value_at(&self, value: Value, others: &[(&str, f64)]) -> Result<f64, FormulaError> {
+        let Kind::Step { node, text, env } = &self.get(value).kind else {
+            let id = self.get(value).id.clone();
+            return Err(FormulaError {
+                text: id,
+                span: 0..0,
+                problem: Problem::NotFinite,
+            });
+        };
+        let look = EntryLook {
+            ledger: self,
+            env,
+            printed: false,
+            shift: None,
+        };
+        evaluate(node, text, &Elsewhere { look, others })
+    }
+
     /// The number as it is printed everywhere; degrees for an angle.
     #[must_use]
     pub fn printed(&self, value: Value) -> Printed {
@@ -558,5 +582,44 @@ impl Look for EntryLook<'_> {
             .chain(columns)
             .chain(self.env.sets.keys().map(String::as_str))
             .collect()
+    }
+}
+
+/// A line's names with other values for some of them.
+struct Elsewhere<'a> {
+    look: EntryLook<'a>,
+    others: &'a [(&'a str, f64)],
+}
+
+impl Look for Elsewhere<'_> {
+    fn units(&self) -> UnitSet {
+        self.look.units()
+    }
+
+    fn dim(&self, name: &str, set: Option<&str>) -> Option<Dim> {
+        self.look.dim(name, set)
+    }
+
+    fn value(&self, name: &str, member: Option<(&str, usize)>) -> Option<f64> {
+        let other = self.others.iter().find(|(known, _)| *known == name);
+        other
+            .map(|(_, value)| *value)
+            .or_else(|| self.look.value(name, member))
+    }
+
+    fn word(&self, name: &str) -> Option<&str> {
+        self.look.word(name)
+    }
+
+    fn members(&self, set: &str) -> Option<usize> {
+        self.look.members(set)
+    }
+
+    fn table(&self, name: &str) -> Option<&Table> {
+        self.look.table(name)
+    }
+
+    fn known(&self) -> Vec<&str> {
+        self.look.known()
     }
 }

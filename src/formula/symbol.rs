@@ -121,8 +121,11 @@ impl Symbol {
 
     /// Whether part `at` of the index follows its predecessor without a comma: letters of axes do.
     fn is_tight(&self, at: usize) -> bool {
-        let axis = |part: &str| matches!(part, "x" | "y" | "z" | "u" | "v");
-        axis(&self.index[at - 1]) && axis(&self.index[at])
+        let pair = (self.index[at - 1].as_str(), self.index[at].as_str());
+        matches!(
+            pair,
+            ("x" | "y" | "z", "x" | "y" | "z") | ("u" | "v", "u" | "v")
+        )
     }
 
     /// The symbol in Typst maths.

@@ -1,8 +1,10 @@
 //! The way from a joint as told to the outcome of every check: runs, properties, stresses, margins.
 
 use crate::criteria::{Asked, Ground, Library, assess};
+use crate::formula::Printed;
 use crate::joint::Joint;
 use crate::load::{Action, FrameError, actions};
+use crate::quantity::Dim;
 use crate::solve::{Field, Resistance, Unresisted};
 use crate::source::{Diagnostic, Faults};
 use crate::weld::{LineProperties, Run, V3, WeldError, lay_runs, line_properties};
@@ -162,6 +164,36 @@ impl<'a> Calculation<'a> {
         }
     }
 
+    /// Why a case finds no resistance, in units of the note.
+    fn unresisted_words(&self, why: &Unresisted) -> String {
+        let units = self.joint.units.value;
+        let moment = |value: f64| {
+            let printed = Printed::of(value.abs(), 4, 4, 0.0);
+            format!(
+                "the moment of {} {}",
+                printed.text(),
+                units.text(Dim::MOMENT)
+            )
+        };
+        match why {
+            Unresisted::AboutLine {
+                moment: about, u, ..
+            } => {
+                let direction = [u.x, u.y, u.z].map(|part| Printed::of(part, 4, 4, 1e-9).text());
+                format!(
+                    "{} about the line of the welds, along ({}), finds no resistance: bending of a weld about its \
+                     own root is no load path",
+                    moment(*about),
+                    direction.join(", ")
+                )
+            }
+            Unresisted::OnPoint { moment: on, .. } => {
+                format!("{} finds no resistance: the group is a point", moment(*on))
+            }
+            Unresisted::NoArea | Unresisted::Inaccurate { .. } => why.to_string(),
+        }
+    }
+
     fn no_path(&self, clause: String, case: usize, why: &Unresisted) -> Refusal {
         let name = &self.joint.loads.cases[case].name.value;
         let help = match why {
@@ -177,7 +209,7 @@ impl<'a> Calculation<'a> {
         };
         Refusal {
             clause,
-            reason: format!("case {name}: {why}"),
+            reason: format!("case {name}: {}", self.unresisted_words(why)),
             help: help.to_owned(),
         }
     }

@@ -13,6 +13,7 @@ use crate::criteria::{
 };
 use crate::formula::{Draft, Env, Origin, Printed, Symbol, Value};
 use crate::quantity::Dim;
+use crate::solve::{Batch, Points};
 use crate::weld::V3;
 use std::collections::BTreeSet;
 
@@ -731,15 +732,14 @@ impl Builder<'_> {
         }
     }
 
-    /// The kernel's stress at the spot of a check.
+    /// The batch kernel's stress at the spot of a check.
     pub(super) fn kernel_stress(
         calculation: &Calculation<'_>,
         governing: &Governing,
     ) -> Option<V3> {
-        calculation.fields[governing.case]
-            .as_ref()
-            .ok()
-            .map(|field| field.at(governing.position))
+        let field = calculation.fields[governing.case].as_ref().ok()?;
+        let points = Points::new(&[governing.position], field.centroid);
+        Some(Batch::new(&[*field]).stress(0, &points, 0))
     }
 }
 

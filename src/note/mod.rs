@@ -10,6 +10,7 @@ mod calculation;
 mod cases;
 pub mod doc;
 mod front;
+mod handbook;
 mod identity;
 mod layout;
 mod lines;

@@ -1,12 +1,14 @@
 //! Stress at a point of a case, in steps: the scalar forms of method 4, sharing no code with the kernel.
 
 use super::builder::Builder;
+use super::calculation::Calculation;
 use super::loads::CaseValues;
+use super::margins::Site;
 use super::points::{AXES, axes};
 use crate::formula::{Draft, Env, FormulaError, Origin, Symbol, Value};
 use crate::quantity::Dim;
 use crate::solve::Regime;
-use crate::weld::{Segment, ThroatRule};
+use crate::weld::{Segment, ThroatRule, V3};
 use std::collections::BTreeMap;
 use std::f64::consts::FRAC_PI_2;
 
@@ -763,6 +765,16 @@ impl Builder<'_> {
             }
         }
         out
+    }
+
+    /// The stress by the printed formulas of a site at another place of the group.
+    pub(super) fn stress_elsewhere(&self, calculation: &Calculation<'_>, site: &Site, r: V3) -> V3 {
+        let mut others = vec![("x", r.x), ("y", r.y), ("z", r.z)];
+        if let Regime::Collinear { u } = calculation.resistance.class.regime {
+            others.push(("s", (r - calculation.properties.centroid).dot(&u)));
+        }
+        let part = |value: Value| self.ledger.value_at(value, &others).unwrap_or(f64::NAN);
+        V3::from(site.stress.map(part))
     }
 
     /// The spots' stresses by name, for reuse by another bead.

@@ -12,11 +12,11 @@ use super::text::{count, piece, plain, slug, strong};
 use super::trace::{self, Trace};
 use super::words::words;
 use crate::criteria::{Asked, Ground, WorkError};
-use crate::formula::{Env, FormulaError, Ledger};
+use crate::formula::{Env, FormulaError, Kind, Ledger};
 use crate::joint::Paper;
 use crate::solve::closure::{Closure, close};
 use crate::source::{Diagnostic, Faults};
-use crate::weld::V3;
+use crate::weld::{Run, V3};
 use std::collections::{BTreeMap, BTreeSet};
 use thiserror::Error;
 
@@ -44,6 +44,16 @@ pub(super) enum NoteError {
     /// A check that cannot be worked.
     #[error(transparent)]
     Work(#[from] WorkError),
+    /// A second opinion that does not agree.
+    #[error("a second opinion disagrees: {says}: {value:.3e}, more than {limit:.0e}")]
+    Disagrees {
+        /// What was compared.
+        says: String,
+        /// The difference.
+        value: f64,
+        /// What it may be.
+        limit: f64,
+    },
 }
 
 /// Writes the note of a calculation.
@@ -144,6 +154,7 @@ fn compose(calculation: &Calculation<'_>) -> Result<Note, NoteError> {
     b.place_the_rest("inputs");
     b.show_conversions("inputs");
     order_parts(&mut b);
+    check_bounds(&b.ledger)?;
     b.settle_and_number()?;
     count_replays(&mut b);
 
@@ -175,6 +186,23 @@ fn compose(calculation: &Calculation<'_>) -> Result<Note, NoteError> {
         standing,
         trace,
     })
+}
+
+/// Whether every second opinion agrees: a bound is printed only if it holds.
+fn check_bounds(ledger: &Ledger) -> Result<(), NoteError> {
+    for value in ledger.values() {
+        let entry = ledger.get(value);
+        if let Kind::Bound { limit } = entry.kind
+            && (entry.value.is_nan() || entry.value.abs() > limit)
+        {
+            return Err(NoteError::Disagrees {
+                says: entry.says.clone(),
+                value: entry.value,
+                limit,
+            });
+        }
+    }
+    Ok(())
 }
 
 fn head(calculation: &Calculation<'_>) -> Head {
@@ -249,18 +277,18 @@ fn second_opinions(
     let mut closure = None;
     if let (Some(check), Some(site)) = (checks.first(), sites.first()) {
         let case = check.governing.case;
-        if let Ok(field) = &calculation.fields[case] {
-            let properties = &calculation.properties;
-            let found = close(
-                &calculation.runs,
-                &calculation.actions[case],
-                properties.centroid,
-                properties.size,
-                |_, _, r| field.at(r),
-            );
-            b.closure(case, &found);
-            closure = Some(found);
-        }
+        let properties = &calculation.properties;
+        let action = &calculation.actions[case];
+        let stress = |_: &Run, _: f64, r: V3| b.stress_elsewhere(calculation, site, r);
+        let found = close(
+            &calculation.runs,
+            action,
+            properties.centroid,
+            properties.size,
+            stress,
+        );
+        b.closure(case, &found);
+        closure = Some(found);
         if let Some(kernel) = Builder::kernel_stress(calculation, &check.governing) {
             b.agreement(kernel, site.stress);
         }

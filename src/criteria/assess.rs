@@ -3,7 +3,7 @@
 use super::evaluate::Bench;
 use super::library::Library;
 use super::limit::limits;
-use super::outcome::{Asked, Assessment, StrengthOutcome};
+use super::outcome::{Asked, Assessment, Governing, StrengthOutcome};
 use super::resolve::{Asking, Turn};
 use super::search::Search;
 use super::sheet::{EndRule, Scope, Sheet, WeldKind};
@@ -148,7 +148,7 @@ fn one_check(
     }
     let (strength, limits) = match sheet.scope {
         Scope::Point => (
-            strength(ground, asking, &benches, &taken).map_err(|fault| vec![fault])?,
+            strength(ground, asking, benches, &taken).map_err(|fault| vec![fault])?,
             Vec::new(),
         ),
         Scope::Run => (Vec::new(), limits(&benches)),
@@ -277,26 +277,63 @@ fn sites(run: &Run, index: usize, sheet: &Sheet) -> Vec<Site> {
 fn strength(
     ground: &Ground<'_>,
     asking: Asking<'_>,
-    benches: &[Bench<'_>],
+    mut benches: Vec<Bench<'_>>,
     taken: &[usize],
 ) -> Result<Vec<StrengthOutcome>, Diagnostic> {
-    let search = Search::new(ground, asking, benches);
-    search.verify_claims(taken[0])?;
-    let per_check = search.worst_of_cases(taken)?;
-    let outcome = |(check, per_case): (usize, Vec<super::outcome::Governing>)| {
-        let mut worst = 0;
-        for (at, found) in per_case.iter().enumerate() {
-            if beats(found.severity(), per_case[worst].severity()) {
-                worst = at;
+    let mut turns: Vec<Option<Turn>> = Vec::new();
+    for bench in &benches {
+        if !turns.contains(&bench.site.turn) {
+            turns.push(bench.site.turn);
+        }
+    }
+    let mut outcomes: Vec<StrengthOutcome> = Vec::new();
+    for turn in turns {
+        let (of_turn, others) = benches
+            .into_iter()
+            .partition(|bench| bench.site.turn == turn);
+        benches = others;
+        let search = Search::new(ground, asking, &of_turn);
+        search.verify_claims(taken[0])?;
+        for (check, per_case) in search.worst_of_cases(taken)?.into_iter().enumerate() {
+            let governing = worst(&per_case).clone();
+            match outcomes.get_mut(check) {
+                Some(known) => known.add_part(per_case, governing),
+                None => outcomes.push(StrengthOutcome {
+                    check,
+                    by_part: turn.map(|_| governing.clone()).into_iter().collect(),
+                    governing,
+                    per_case,
+                }),
             }
         }
-        StrengthOutcome {
-            check,
-            governing: per_case[worst].clone(),
-            per_case,
+    }
+    Ok(outcomes)
+}
+
+/// The worst of several points; of equals the first.
+fn worst(found: &[Governing]) -> &Governing {
+    let mut worst = &found[0];
+    for other in &found[1..] {
+        if beats(other.severity(), worst.severity()) {
+            worst = other;
         }
-    };
-    Ok(per_check.into_iter().enumerate().map(outcome).collect())
+    }
+    worst
+}
+
+impl StrengthOutcome {
+    /// Takes in what the same check gave for the next part in turn.
+    fn add_part(&mut self, per_case: Vec<Governing>, governing: Governing) {
+        for (known, other) in self.per_case.iter_mut().zip(per_case) {
+            if beats(other.severity(), known.severity()) {
+                *known = other;
+            }
+        }
+        if beats(governing.severity(), self.governing.severity()) {
+            self.governing = governing.clone();
+        }
+        self.by_part.push(governing);
+    }
 }
 
 /// Runs whose strength no check asked for looks at.

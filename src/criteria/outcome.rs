@@ -41,6 +41,8 @@ pub struct StrengthOutcome {
     pub governing: Governing,
     /// The worst of each case taken, in file order.
     pub per_case: Vec<Governing>,
+    /// The worst of each part in turn, for a sheet that is evaluated for each part; else empty.
+    pub by_part: Vec<Governing>,
 }
 
 /// A point of a case with its demand and capacity.

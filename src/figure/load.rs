@@ -145,9 +145,14 @@ fn symbol(kind: Kind, component: &Component) -> Vec<Span> {
         Kind::Force => "F",
         Kind::Moment => "M",
     };
+    // A moment is the one given about the load's own point.
+    let index = match kind {
+        Kind::Force => component.axis.letter().to_owned(),
+        Kind::Moment => format!("{},P", component.axis.letter()),
+    };
     vec![
         Span::new(letter, Style::Italic),
-        Span::new(component.axis.letter(), Style::Sub),
+        Span::new(index, Style::Sub),
         Span::new(format!(" = {}", component.text), Style::Plain),
     ]
 }

@@ -5,6 +5,7 @@
 //! the result most; that operand is then printed with the new digits everywhere. Repeated to a bound.
 
 use super::ledger::{EntryLook, Kind, Ledger, Value};
+use super::node::{Kind as NodeKind, Op};
 use super::{FormulaError, Problem, evaluate};
 use crate::quantity::{Dim, real};
 use std::collections::VecDeque;
@@ -119,13 +120,35 @@ impl Ledger {
             .max(self.floor(self.get(value).dim))
     }
 
+    /// Units in the last digit that a replay may miss: one, but half of one for a plain sum, whose
+    /// last digit every reader adds up in passing.
+    fn allowed_miss(&self, value: Value) -> f64 {
+        let Kind::Step { node, .. } = &self.get(value).kind else {
+            return 1.0;
+        };
+        let mut plain = true;
+        node.walk(&mut |node| {
+            plain &= matches!(
+                node.kind,
+                NodeKind::Name(_)
+                    | NodeKind::Sum { .. }
+                    | NodeKind::Negative(_)
+                    | NodeKind::Binary {
+                        op: Op::Add | Op::Sub,
+                        ..
+                    }
+            );
+        });
+        if plain { 0.5 } else { 1.0 }
+    }
+
     /// Raises one operand of a line that does not replay; `None` once it does.
     fn raise_for(&mut self, value: Value) -> Result<Option<Value>, FormulaError> {
         let Some(miss) = self.replay_miss(value)? else {
             return Ok(None);
         };
-        // A hair over one unit is rounding of the replay itself.
-        if miss <= 1.0 + 1e-6 {
+        // A hair over is rounding of the replay itself.
+        if miss <= self.allowed_miss(value) + 1e-6 {
             return Ok(None);
         }
         let mut worst: Option<(f64, Value)> = None;
@@ -137,6 +160,9 @@ impl Ledger {
             if worst.is_none_or(|(known, _)| effect > known) {
                 worst = Some((effect, used));
             }
+        }
+        if worst.is_none() && miss <= 1.0 + 1e-6 {
+            return Ok(None);
         }
         let Some((_, used)) = worst else {
             let Kind::Step { text, .. } = &self.get(value).kind else {

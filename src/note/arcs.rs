@@ -91,7 +91,7 @@ impl Builder<'_> {
         self.arc_given(
             index,
             "R",
-            Symbol::of("R", &[]),
+            Symbol::of("r", &[]),
             &format!("Radius of {number}"),
             &radius.value,
             origin,
@@ -114,7 +114,7 @@ impl Builder<'_> {
                 let id = self.slug_id(index, &format!("{a}_0"));
                 let origin = Origin::Input(spec.place.clone());
                 let symbol = symbol.with(&(index + 1).to_string());
-                let formula = "laid out from the run as told";
+                let formula = "laid out from the run as given";
                 let draft = Draft {
                     id,
                     symbol,
@@ -202,7 +202,7 @@ impl Builder<'_> {
             self.direction_value(
                 index,
                 &name,
-                Symbol::of("n", &[AXES[axis]]),
+                Symbol::of("k", &[AXES[axis]]),
                 says,
                 normal[axis],
             );
@@ -223,7 +223,7 @@ impl Builder<'_> {
             id: self.slug_id(index, name),
             symbol: symbol.with(&(index + 1).to_string()),
             says,
-            formula: "unit vector of the direction as told",
+            formula: "unit vector of the direction as given",
             origin: Origin::Input(self.joint.weld.runs[spec].place.clone()),
             dim: None,
         };

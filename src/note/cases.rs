@@ -1,7 +1,7 @@
 //! All cases and checks, the worst point of each: rows for the identity and for `cases.csv`.
 
 use super::calculation::{Calculation, Outcome};
-use super::margins::check_name;
+use super::margins::{capital, check_name};
 use super::trace::Trace;
 use crate::criteria::Governing;
 use crate::formula::Printed;
@@ -13,7 +13,7 @@ const DIGITS: usize = 6;
 pub(super) fn of_case<'c>(
     calculation: &'c Calculation<'_>,
     case: usize,
-) -> Vec<(String, &'c Governing)> {
+) -> Vec<(String, &'c Governing, String)> {
     let mut found = Vec::new();
     for outcome in &calculation.outcomes {
         let Outcome::Assessed(asked) = outcome else {
@@ -25,7 +25,12 @@ pub(super) fn of_case<'c>(
                     .part
                     .map(|turn| format!(", {}", turn.word()))
                     .unwrap_or_default();
-                found.push((format!("{}{part}", check_name(asked, strength.check)), at));
+                let dim = asked.sheet.dim(&asked.sheet.checks[strength.check].demand);
+                let unit = dim.map_or(String::new(), |dim| {
+                    calculation.joint.units.value.label(dim)
+                });
+                let name = capital(&check_name(asked, strength.check));
+                found.push((format!("{name}{part}"), at, unit));
             }
         }
     }
@@ -41,7 +46,7 @@ fn number(value: f64) -> String {
 pub(super) fn rows(calculation: &Calculation<'_>) -> Vec<Vec<String>> {
     let mut rows = Vec::new();
     for (index, case) in calculation.joint.loads.cases.iter().enumerate() {
-        for (check, at) in of_case(calculation, index) {
+        for (check, at, _) in of_case(calculation, index) {
             rows.push(vec![
                 case.name.value.clone(),
                 check,
@@ -71,7 +76,7 @@ pub(super) fn rows(calculation: &Calculation<'_>) -> Vec<Vec<String>> {
 pub(super) fn csv(trace: &Trace) -> String {
     let unit = &trace.units;
     let mut text = format!(
-        "case,level,check,point,x ({0}),y ({0}),z ({0}),demand,capacity,utilisation,margin\r\n",
+        "case,level,check,point,x ({0}),y ({0}),z ({0}),demand,capacity,unit,utilisation,margin\r\n",
         unit.length
     );
     for case in &trace.cases {
@@ -89,6 +94,7 @@ pub(super) fn csv(trace: &Trace) -> String {
                     .chain([&check.demand, &check.capacity])
                     .map(|value| plain_number(*value)),
             );
+            cells.push(quoted(&check.unit));
             cells.push(check.utilisation.map_or(String::new(), plain_number));
             cells.push(check.margin.map_or_else(
                 || check.reason.as_deref().map_or(String::new(), quoted),

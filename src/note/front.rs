@@ -4,10 +4,10 @@ use super::builder::{Builder, Cell, Line, Sheet, number_column, word_column};
 use super::doc::{Align, Block, Column, FigureRef, Item, Text};
 use super::points::ends;
 use super::text::{emph, piece, plain, symbol};
-use crate::formula::{Origin, Symbol};
-use crate::joint::{Part, SizeSpec};
+use crate::formula::{Origin, Printed, Symbol};
+use crate::joint::{Part, SizeSpec, ToeSpec};
 use crate::quantity::Dim;
-use crate::weld::{End, Segment};
+use crate::weld::{End, Segment, ThroatRule};
 
 /// Name of the drawing's file in the folder of the note.
 pub const FIGURE: &str = "figure";
@@ -53,15 +53,14 @@ impl Builder<'_> {
         let mut text = vec![
             piece("All inputs stand in "),
             emph(&file),
-            piece(", which travels inside the PDF"),
+            piece(", attached to the PDF with the clause sheets used"),
         ];
         if let Some(drawing) = &self.joint.drawing {
             text.push(piece(&format!("; geometry by drawing {}", drawing.value)));
         }
         text.push(piece(&format!(
-            ". Every number below is in {}, {} and {}; an input told in another unit is converted on a line of its own. \
-             Numbers stand as a checker keys them: the printed numbers of a line give its printed result, to one unit \
-             in the last digit.",
+            ". Every number below is in {}, {} and {}; an input given in another unit is converted on a line of its own. \
+             Re-keying the printed numbers of a line gives its printed result, to one unit in the last digit.",
             units.force(),
             units.length(),
             units.stress()
@@ -154,7 +153,7 @@ impl Builder<'_> {
         let mut columns = vec![word_column("", 0), word_column("run", 0)];
         columns.extend(
             super::points::AXES
-                .map(|axis| super::builder::number_column(symbol(&Symbol::of("n", &[axis])), "")),
+                .map(|axis| super::builder::number_column(symbol(&Symbol::of("k", &[axis])), "")),
         );
         let mut rows = Vec::new();
         for index in 0..self.runs.len() {
@@ -191,6 +190,7 @@ impl Builder<'_> {
             word_column("weld", 3),
             word_column("from", 0),
             word_column("to", 0),
+            word_column("toe", 2),
             word_column("ends", 3),
         ];
         let rows = (0..self.runs.len())
@@ -207,6 +207,7 @@ impl Builder<'_> {
                     Cell::Text(plain(&self.weld_words(index))),
                     Cell::Text(plain(&number(from))),
                     Cell::Text(plain(&number(to))),
+                    Cell::Text(plain(&self.toe_words(index))),
                     Cell::Text(plain(&end_words(run.ends))),
                 ];
                 Line {
@@ -218,11 +219,28 @@ impl Builder<'_> {
             .collect();
         self.table(Sheet {
             id: "runs".to_owned(),
-            caption: plain("Runs as told"),
+            caption: plain("Runs as given"),
             columns,
             rows,
             foot: None,
         });
+    }
+
+    /// The side of the root on which the fillet's toe on the base stands.
+    fn toe_words(&self, index: usize) -> String {
+        let run = &self.runs[index];
+        match (&self.joint.weld.runs[run.spec].toe, &run.rule) {
+            (_, ThroatRule::Complete { .. }) => "–".to_owned(),
+            (None, _) => "not stated".to_owned(),
+            (Some(toe), _) => match toe.value {
+                ToeSpec::Outside => "outside".to_owned(),
+                ToeSpec::Inside => "inside".to_owned(),
+                ToeSpec::Toward(_) => {
+                    let across = run.normal.cross(&run.path.tangent(0.5)) * run.toe.unwrap_or(1.0);
+                    direction_words(across)
+                }
+            },
+        }
     }
 
     /// A run's weld in words, sizes as typed.
@@ -402,4 +420,21 @@ fn end_words(ends: [End; 2]) -> String {
     } else {
         format!("{start}; {end}")
     }
+}
+
+/// A direction in words: `+x`, `−y`, or its components.
+fn direction_words(direction: crate::weld::V3) -> String {
+    for (axis, letter) in super::points::AXES.into_iter().enumerate() {
+        let along = direction[axis];
+        if (along.abs() - 1.0).abs() < 1e-9 {
+            return format!("{}{letter}", if along < 0.0 { "−" } else { "+" });
+        }
+    }
+    let part = |value: f64| Printed::of(value, 3, 3, 1e-9).text();
+    format!(
+        "({}, {}, {})",
+        part(direction.x),
+        part(direction.y),
+        part(direction.z)
+    )
 }

@@ -169,9 +169,36 @@ impl Builder<'_> {
                 .collect(),
             latex: equation.latex,
             source,
-            mark: entry.mark.as_ref().map(|_| "to be verified".to_owned()),
+            mark: self.is_open(value).then(|| "to be verified".to_owned()),
             uses: anchors,
         }
+    }
+
+    /// Whether a line is to be verified: by itself, or as a utilisation or margin that rests on such.
+    fn is_open(&self, value: Value) -> bool {
+        let entry = self.ledger.get(value);
+        let result = matches!(entry.symbol.plain().as_str(), "U" | "MS");
+        entry.mark.is_some() || (result && !self.ledger.marks_behind(value).is_empty())
+    }
+
+    /// Everything still to be verified, with the numbers of the lines that carry it.
+    pub(super) fn open_items(&self) -> Vec<(String, Vec<String>)> {
+        let mut items: Vec<(String, Vec<String>)> = Vec::new();
+        for value in self.ledger.values() {
+            let entry = self.ledger.get(value);
+            let Some(mark) = &entry.mark else { continue };
+            if entry.no.is_empty() {
+                continue;
+            }
+            match items.iter_mut().find(|(known, _)| known == mark) {
+                Some((_, numbers)) if !numbers.contains(&entry.no) => {
+                    numbers.push(entry.no.clone())
+                }
+                Some(_) => {}
+                None => items.push((mark.clone(), vec![entry.no.clone()])),
+            }
+        }
+        items
     }
 
     /// Where the numbers of a line come from: `steps 5, 7–9` and `tables 1, 2`.

@@ -277,7 +277,7 @@ impl Builder<'_> {
                 name: "L_0",
                 symbol: Symbol::of("L", &["0"]),
                 formula: root,
-                says: "Length as told",
+                says: "Length as given",
             });
         } else {
             properties.push(Property {
@@ -327,13 +327,13 @@ impl Builder<'_> {
         if trimmed {
             properties.push(Property {
                 name: "e_a",
-                symbol: Symbol::of("e", &["a"]),
+                symbol: Symbol::of("c", &["s"]),
                 formula: String::new(),
                 says: "Shortening at the start",
             });
             properties.push(Property {
                 name: "e_b",
-                symbol: Symbol::of("e", &["b"]),
+                symbol: Symbol::of("c", &["e"]),
                 formula: String::new(),
                 says: "Shortening at the end",
             });
@@ -373,7 +373,8 @@ impl Builder<'_> {
                     crate::weld::End::Continuous | crate::weld::End::Full => None,
                 };
                 let value = value.unwrap_or_else(|| {
-                    let symbol = Symbol::of("e", &[&name[2..]]).with(&(index + 1).to_string());
+                    let symbol = Symbol::of("c", &[if name.ends_with('a') { "s" } else { "e" }])
+                        .with(&(index + 1).to_string());
                     let id = self.slug_id(index, name);
                     self.zero(
                         id,
@@ -581,9 +582,11 @@ fn column_symbol(name: &str, value: &Symbol) -> Symbol {
     match name {
         "t" | "L" | "A" => Symbol::of(name, &[]),
         "leg_base" | "leg_attached" => Symbol::of("h", &[]),
-        _ if name.len() == 3 && name.ends_with(['a', 'b', 'm']) => {
-            Symbol::of(&name[..1], &[&name[2..]])
-        }
+        "e_a" => Symbol::of("c", &["s"]),
+        "e_b" => Symbol::of("c", &["e"]),
+        "x_a" | "y_a" | "z_a" => Symbol::of(&name[..1], &["s"]),
+        "x_b" | "y_b" | "z_b" => Symbol::of(&name[..1], &["e"]),
+        "x_m" | "y_m" | "z_m" => Symbol::of(&name[..1], &["m"]),
         _ => {
             let kept: Vec<&str> = index[..index.len().saturating_sub(1)]
                 .iter()

@@ -1,4 +1,4 @@
-//! Loads: the cases as told, the case that is worked, and its moment about the centroid.
+//! Loads: the cases as given, the case that is worked, and its moment about the centroid.
 
 use super::builder::{Builder, Cell, Line, Sheet, number_column, word_column};
 use super::points::AXES;
@@ -79,10 +79,10 @@ impl Builder<'_> {
         }
         let total = self.joint.loads.cases.len();
         let caption = if rows.len() == total {
-            format!("Load cases as told, {} in all", total)
+            format!("Load cases as given, {} in all", total)
         } else {
             format!(
-                "Load cases as told: the {} that rank first of {total}; all stand in the table of cases",
+                "Load cases as given: the {} that rank first of {total}; all stand in the table of cases",
                 rows.len()
             )
         };
@@ -105,13 +105,13 @@ impl Builder<'_> {
         self.frame_tables(&shown);
         let count = count(cases.len(), "case", "cases");
         self.para(plain(&format!(
-            "Actions on the weld group from the attached part; moments about the point of application, by the right \
-             hand. The file holds {count}; {}. Components of one case are never mixed with another's.",
+            "Actions on the weld group from the attached part; moments about the point of application, by the right-hand \
+             rule. The file holds {count}; {}. Components of one case are never mixed with another's.",
             if cases.len() == 1 { "it was run" } else { "all were run, none skipped" }
         )));
     }
 
-    /// The point of application of a case, as told.
+    /// The point of application of a case, as given.
     fn load_point(&mut self, case: &Case) -> [Value; 3] {
         let framed = case.frame.is_some();
         let mut starts: Vec<usize> = self
@@ -176,7 +176,7 @@ impl Builder<'_> {
                 strong: false,
             });
         }
-        let caption = plain("Points of application as told");
+        let caption = plain("Points of application as given");
         self.table(Sheet {
             id: "load-points".to_owned(),
             caption,
@@ -186,7 +186,7 @@ impl Builder<'_> {
         });
     }
 
-    /// A component of a case as told.
+    /// A component of a case as given.
     fn case_input(
         &mut self,
         index: usize,
@@ -314,7 +314,7 @@ impl Builder<'_> {
         Ok(out)
     }
 
-    /// The origin of a load's frame and its axes by rows, as told or made exactly square.
+    /// The origin of a load's frame and its axes by rows, as given or made exactly square.
     fn frame_values(&mut self, frame: &LoadFrame) -> ([Value; 3], [[Value; 3]; 3]) {
         let turned = Frame::new(frame).expect("the frame was checked when the loads were laid out");
         let (name, tag) = (&frame.name.value, slug(&frame.name.value));
@@ -332,7 +332,7 @@ impl Builder<'_> {
         });
         let axes = [0, 1, 2].map(|row| {
             [0, 1, 2].map(|column| {
-                let symbol = Symbol::of("R", &[AXES[row], AXES[column]]);
+                let symbol = Symbol::of("a", &[AXES[row], AXES[column]]);
                 let says = format!(
                     "Axis {} of frame {name}, component {}",
                     AXES[column], AXES[row]
@@ -346,7 +346,7 @@ impl Builder<'_> {
                 if let Some(known) = self.given.get(&id) {
                     return *known;
                 }
-                let formula = "axes as told, made exactly square and of unit length";
+                let formula = "axes as given, made exactly square and of unit length";
                 let draft = Draft {
                     id: id.clone(),
                     symbol,
@@ -378,7 +378,7 @@ impl Builder<'_> {
             let unit = self.joint.units.value.length();
             let mut columns = vec![word_column("component in the joint frame", 0)];
             columns.push(number_column(symbol(&Symbol::of("o", &[])), unit));
-            columns.extend(AXES.map(|axis| number_column(symbol(&Symbol::of("R", &[axis])), "")));
+            columns.extend(AXES.map(|axis| number_column(symbol(&Symbol::of("a", &[axis])), "")));
             let tag = slug(&frame.name.value);
             let mut rows = Vec::new();
             for row in 0..3 {

@@ -48,12 +48,19 @@ pub(super) fn ranked(calculation: &Calculation<'_>) -> Vec<Check> {
     let mut checks = Vec::new();
     for (outcome, asked) in calculation.outcomes.iter().enumerate() {
         if let Outcome::Assessed(asked) = asked {
-            checks.extend(asked.strength.iter().map(|strength| Check {
-                outcome,
-                check: strength.check,
-                governing: strength.governing.clone(),
-                worked: None,
-            }));
+            for strength in &asked.strength {
+                let found = if strength.by_part.is_empty() {
+                    std::slice::from_ref(&strength.governing)
+                } else {
+                    &strength.by_part[..]
+                };
+                checks.extend(found.iter().map(|governing| Check {
+                    outcome,
+                    check: strength.check,
+                    governing: governing.clone(),
+                    worked: None,
+                }));
+            }
         }
     }
     let mut first = 0;

@@ -16,6 +16,7 @@ mod layout;
 mod lines;
 mod loads;
 mod margins;
+mod method;
 mod points;
 mod proofs;
 mod sketch;

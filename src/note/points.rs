@@ -100,7 +100,7 @@ impl Builder<'_> {
                         (Some(_), _, _) => "laid out from the run, its bead and its pitch",
                         (None, true, _) => "on the arc, at its end",
                         (None, false, true) => "laid out from the pattern",
-                        (None, false, false) => "laid out from the run as told",
+                        (None, false, false) => "laid out from the run as given",
                     };
                     let origin = Origin::Input(spec.place.clone());
                     self.ledger.found(

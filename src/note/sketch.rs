@@ -93,7 +93,7 @@ impl Builder<'_> {
             SketchLoad {
                 at,
                 aside: if raised {
-                    format!("z = {}", short(at.z, size))
+                    format!("(P at z = {})", short(at.z, size))
                 } else {
                     String::new()
                 },

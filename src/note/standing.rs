@@ -116,3 +116,23 @@ impl Calculation<'_> {
         Standing::of(self)
     }
 }
+
+/// How many failure paths are neither checked by a sheet nor excluded by the user.
+pub(super) fn uncovered(calculation: &Calculation<'_>) -> usize {
+    let covered = |word: &str| {
+        let checked = calculation.outcomes.iter().any(|outcome| match outcome {
+            Outcome::Assessed(asked) => asked.sheet.covers.iter().any(|path| path.word() == word),
+            Outcome::Refused(_) => false,
+        });
+        checked
+            || calculation
+                .joint
+                .excluded
+                .iter()
+                .any(|exclusion| exclusion.path.value == word)
+    };
+    crate::criteria::FailurePath::WORDS
+        .iter()
+        .filter(|(word, _)| !covered(word))
+        .count()
+}

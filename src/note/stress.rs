@@ -82,7 +82,7 @@ impl Builder<'_> {
             symbol: sheet.marked(symbol),
             says: says.to_owned(),
             formula: method,
-            origin: Origin::Method("method 4".to_owned()),
+            origin: Origin::Method("line method".to_owned()),
             dim: None,
         };
         let value = self.ledger.found(draft, value, dim);
@@ -111,13 +111,15 @@ impl Builder<'_> {
         match regime {
             Regime::Planar => {
                 if self.bends(values) {
-                    if !self.env.names.contains_key("D") {
-                        let says = "Determinant of the second moments";
-                        self.step(Symbol::of("D", &[]), says, "I_xx*I_yy - I_xy^2", "statics")?;
-                        sheet
-                            .env
-                            .bind("D", self.ledger.find("D").expect("the step was just made"));
-                    }
+                    let determinant = match self.ledger.find("Delta") {
+                        Some(known) => known,
+                        None => {
+                            let says = "Determinant of the second moments";
+                            let symbol = Symbol::of("Delta", &[]);
+                            self.step(symbol, says, "I_xx*I_yy - I_xy^2", "statics")?
+                        }
+                    };
+                    sheet.env.bind("D", determinant);
                     let n = |axis| Symbol::of("N", &[axis]);
                     let says = "Bending term of the moments, for y";
                     self.at(
@@ -126,7 +128,7 @@ impl Builder<'_> {
                         n("x"),
                         says,
                         "M_x*I_yy + M_y*I_xy",
-                        "method 4",
+                        "line method",
                     )?;
                     let says = "Bending term of the moments, for x";
                     self.at(
@@ -135,7 +137,7 @@ impl Builder<'_> {
                         n("y"),
                         says,
                         "M_y*I_xx + M_x*I_xy",
-                        "method 4",
+                        "line method",
                     )?;
                 }
             }
@@ -167,7 +169,7 @@ impl Builder<'_> {
                     Symbol::of("I", &["L"]),
                     says,
                     line,
-                    "method 4",
+                    "line method",
                 )?;
             }
             Regime::Point => {}
@@ -227,7 +229,7 @@ impl Builder<'_> {
                 Symbol::of("M", &[a, "K"]),
                 &says,
                 formula,
-                "method 4",
+                "line method",
             )?;
         }
         Ok(())
@@ -420,20 +422,20 @@ impl Builder<'_> {
             self.at(
                 sheet,
                 &format!("f_{a}"),
-                Symbol::of("f", &[a]),
+                Symbol::of("f", &["w", a]),
                 &says,
                 &formulas[axis],
-                "method 4",
+                "line method",
             )?;
         }
         let says = "Resultant stress on the throat area";
         self.at(
             sheet,
             "f",
-            Symbol::of("f", &[]),
+            Symbol::of("f", &["w"]),
             says,
             "sqrt(f_x^2 + f_y^2 + f_z^2)",
-            "method 4",
+            "line method",
         )?;
         Ok(())
     }
@@ -480,7 +482,7 @@ impl Builder<'_> {
                 self.at(
                     sheet,
                     &format!("m_{a}"),
-                    Symbol::of("m", &[a]),
+                    Symbol::of("n", &[a]),
                     &says,
                     &formula,
                     "geometry",
@@ -507,7 +509,7 @@ impl Builder<'_> {
             f("par"),
             "Stress along the run",
             &dot("t", self.planar),
-            "method 4",
+            "line method",
         )?;
         if self.planar {
             self.at(
@@ -516,7 +518,7 @@ impl Builder<'_> {
                 f("n"),
                 "Stress across the run, in the faying plane",
                 "f_y*t_x - f_x*t_y",
-                "method 4",
+                "line method",
             )?;
             let out = match sheet.env.names.get("f_z") {
                 Some(bound) => bound.clone(),
@@ -525,9 +527,16 @@ impl Builder<'_> {
             sheet.env.names.insert("f_out".to_owned(), out);
         } else {
             let says = "Stress across the run, in its faying plane";
-            self.at(sheet, "f_n", f("n"), says, &dot("m", false), "method 4")?;
+            self.at(sheet, "f_n", f("n"), says, &dot("m", false), "line method")?;
             let says = "Stress out of the run's faying plane";
-            self.at(sheet, "f_out", f("out"), says, &dot("n", false), "method 4")?;
+            self.at(
+                sheet,
+                "f_out",
+                f("out"),
+                says,
+                &dot("n", false),
+                "line method",
+            )?;
         }
         Ok(())
     }
@@ -577,7 +586,7 @@ impl Builder<'_> {
             Symbol::of("sigma", &["perp"]),
             &says,
             &sigma,
-            "method 4",
+            "line method",
         )?;
         let says = "Shear stress on the throat plane, square to the run";
         self.at(
@@ -586,7 +595,7 @@ impl Builder<'_> {
             Symbol::of("tau", &["perp"]),
             says,
             &tau,
-            "method 4",
+            "line method",
         )?;
         let says = "Shear stress on the throat plane, along the run";
         self.at(
@@ -595,7 +604,7 @@ impl Builder<'_> {
             Symbol::of("tau", &["par"]),
             says,
             "f_par",
-            "method 4",
+            "line method",
         )?;
         Ok(())
     }
@@ -651,7 +660,7 @@ impl Builder<'_> {
                 Symbol::of("s", &["phi"]),
                 says,
                 formula,
-                "method 4",
+                "line method",
             )?;
         }
         if wanted("point_q") {
@@ -661,7 +670,7 @@ impl Builder<'_> {
                 Symbol::of("q", &[]),
                 "Line load of the bead",
                 "t*f",
-                "method 4",
+                "line method",
             )?;
         }
         Ok(self.for_sheets(&sheet.env))
@@ -691,13 +700,13 @@ impl Builder<'_> {
                     q,
                     "Line load on the plate, of this bead alone",
                     "t*f",
-                    "method 6",
+                    "statics",
                 )?;
             }
             Some((other, None)) => {
                 sheet.env.bind("t_2", self.run_values[other]["t"]);
                 let says = "Line load on the plate, of both beads at this place";
-                self.at(&mut sheet, "q_plate", q, says, "(t + t_2)*f", "method 6")?;
+                self.at(&mut sheet, "q_plate", q, says, "(t + t_2)*f", "statics")?;
             }
             Some((other, Some(stress))) => {
                 sheet.env.bind("t_2", self.run_values[other]["t"]);
@@ -712,7 +721,7 @@ impl Builder<'_> {
                         Symbol::of("q", &[a]),
                         &says,
                         &formula,
-                        "method 6",
+                        "statics",
                     )?;
                 }
                 let says = "Line load on the plate, of both beads";
@@ -722,7 +731,7 @@ impl Builder<'_> {
                     q,
                     says,
                     "sqrt(q_x^2 + q_y^2 + q_z^2)",
-                    "method 6",
+                    "statics",
                 )?;
             }
         }

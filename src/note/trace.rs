@@ -134,6 +134,8 @@ pub struct TraceCheck {
     pub demand: f64,
     /// Capacity.
     pub capacity: f64,
+    /// Unit of demand and capacity.
+    pub unit: String,
     /// Utilisation; null where it does not exist.
     pub utilisation: Option<f64>,
     /// Margin of safety; null where it does not exist.

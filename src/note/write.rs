@@ -11,7 +11,7 @@ use super::stress::CaseTerms;
 use super::text::{count, piece, plain, slug, strong};
 use super::trace::{self, Trace};
 use super::words::words;
-use crate::criteria::{Asked, Ground, WorkError};
+use crate::criteria::{Asked, From, Ground, WorkError};
 use crate::formula::{Env, FormulaError, Kind, Ledger};
 use crate::joint::Paper;
 use crate::solve::closure::{Closure, close};
@@ -130,6 +130,11 @@ fn compose(calculation: &Calculation<'_>) -> Result<Note, NoteError> {
     b.number_points();
     b.geometry();
     b.materials();
+    let on_throat = calculation.outcomes.iter().any(|outcome| match outcome {
+        Outcome::Assessed(asked) => names_of(asked).any(|name| name == "point_sigma_perp"),
+        Outcome::Refused(_) => false,
+    });
+    b.method(calculation.resistance.class.regime, on_throat);
     b.part("loads", "Loads");
     b.part("lines", "Line properties");
     b.throats()?;
@@ -170,7 +175,15 @@ fn compose(calculation: &Calculation<'_>) -> Result<Note, NoteError> {
     let first_case = checks.first().map(|check| check.governing.case);
     let sketch = b.sketch(first_case.and_then(|case| drawn(&cases, case)), governing);
     let trace = whole_trace(&b, calculation, &checks, &identity, closure.as_ref());
+    let open_items = open_section(&b, &open);
     let mut sections = b.sections();
+    if let Some(section) = open_items {
+        let at = sections
+            .iter()
+            .position(|known| known.id == "cautions")
+            .unwrap_or(sections.len());
+        sections.insert(at, section);
+    }
     identity_section(&mut sections, &identity);
     let doc = Doc {
         head: head(calculation),
@@ -219,6 +232,15 @@ fn head(calculation: &Calculation<'_>) -> Head {
             Paper::UsLetter => "us-letter",
         },
     }
+}
+
+/// The names of points and runs that a sheet asks for.
+fn names_of(asked: &Asked) -> impl Iterator<Item = String> + '_ {
+    asked
+        .sheet
+        .needs
+        .iter()
+        .flat_map(|need| need.from.iter().filter_map(From::bound_name))
 }
 
 /// Texts of the sheets used, each once, with the name of the sheet.
@@ -457,6 +479,44 @@ fn closing(b: &mut Builder<'_>) {
     });
 }
 
+/// Everything that is still to be verified, in one list.
+fn open_section(b: &Builder<'_>, assumptions: &[String]) -> Option<super::doc::Section> {
+    let mut items: Vec<Item> = Vec::new();
+    for label in assumptions {
+        let label_of = format!("O{}", items.len() + 1);
+        items.push(super::layout::item(
+            &label_of,
+            plain(&format!("Assumption {label}.")),
+        ));
+    }
+    for (reason, numbers) in b.open_items() {
+        let words: Vec<String> = numbers
+            .iter()
+            .map(|no| {
+                if no.starts_with("table") {
+                    no.clone()
+                } else {
+                    format!("step {no}")
+                }
+            })
+            .collect();
+        let label = format!("O{}", items.len() + 1);
+        let text = format!("{}: {}.", capital(&reason), words.join(", "));
+        items.push(super::layout::item(&label, plain(&text)));
+    }
+    if items.is_empty() {
+        return None;
+    }
+    let intro =
+        "To be verified before this note is signed; margins that rest on an item are marked.";
+    let blocks = vec![Block::Para { text: plain(intro) }, Block::Items { items }];
+    Some(super::doc::Section {
+        title: "Open items".to_owned(),
+        id: "open-items".to_owned(),
+        blocks,
+    })
+}
+
 /// The identity in words, before the signatures, which name it.
 fn identity_section(sections: &mut [super::doc::Section], identity: &Identity) {
     if let Some(section) = sections
@@ -541,17 +601,29 @@ fn verdict(
             marks.extend(b.ledger.marks_behind(value));
         }
     }
-    let mut lines = vec![first, plain(&standing.tally())];
+    let uncovered = super::standing::uncovered(calculation);
+    let coverage = match uncovered {
+        0 => "Every failure path is checked or excluded.".to_owned(),
+        many => format!(
+            "{} not covered by this note.",
+            count(many, "failure path is", "failure paths are")
+        ),
+    };
+    let mut lines = vec![first, plain(&format!("{} {coverage}", standing.tally()))];
+    let all = open.len() + b.open_items().len();
     if marks.is_empty() {
-        lines.push(plain("No open item stands behind this margin."));
+        let text = match all {
+            0 => "No open item in this note.".to_owned(),
+            many => format!(
+                "No open item stands behind this margin; {many} in the note, see “Open items”."
+            ),
+        };
+        lines.push(plain(&text));
     } else {
-        let list: Vec<String> = marks
-            .iter()
-            .map(|mark| mark.trim_end_matches(", to be verified").to_owned())
-            .collect();
+        let list: Vec<String> = marks.iter().cloned().collect();
         let verb = if list.len() == 1 { "stands" } else { "stand" };
         lines.push(plain(&format!(
-            "{} {verb} behind this margin, to be verified: {}.",
+            "{} of {all} {verb} behind this margin, to be verified: {}.",
             capital(&count(list.len(), "open item", "open items")),
             list.join("; ")
         )));
@@ -632,12 +704,13 @@ fn whole_trace(
                 },
                 checks: super::cases::of_case(calculation, case)
                     .into_iter()
-                    .map(|(name, at)| trace::TraceCheck {
+                    .map(|(name, at, unit)| trace::TraceCheck {
                         check: name,
                         point: b.place_words(spot(at)),
                         position: trace::components(at.position),
                         demand: at.demand,
                         capacity: at.capacity,
+                        unit,
                         utilisation: Some(at.utilisation),
                         margin: at.margin.value(),
                         reason: at.margin.reason().map(str::to_owned),
@@ -688,7 +761,10 @@ impl Note {
             .as_ref()
             .map(|case| format!(", with case {case}"))
             .unwrap_or_default();
-        let units = self.sketch.units;
+        let units = match self.sketch.units {
+            "in" => "inches",
+            other => other,
+        };
         let remarks = remarks
             .iter()
             .map(|remark| format!(" {}.", capital(remark.trim_end_matches('.'))))

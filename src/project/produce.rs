@@ -6,10 +6,11 @@ use super::read::{JointFile, read_joint_file};
 use crate::criteria::Library;
 use crate::figure::{SerifFaces, draw, scene, standalone_source, typst_source};
 use crate::joint::read_joint;
-use crate::note::{Calculation, FIGURE, Note, write_note};
+use crate::note::{Calculation, FIGURE, Note, Outcome, write_note};
 use crate::render::{
     Attachment, Drawings, Press, Relation, RenderError, render_markdown, render_typst,
 };
+use std::collections::BTreeMap;
 use std::path::Path;
 
 /// Which outputs are wanted.
@@ -119,7 +120,7 @@ impl Workshop {
                 .unwrap_or_default()
                 .to_string_lossy()
                 .into_owned();
-            let attachments = [
+            let mut attachments = vec![
                 attachment(
                     &name,
                     "application/yaml",
@@ -135,6 +136,7 @@ impl Workshop {
                     trace.as_bytes(),
                 ),
             ];
+            attachments.extend(used_sheets(&calculation));
             let pdf = self
                 .press
                 .pdf(&source.text, &attachments)
@@ -158,6 +160,30 @@ impl Workshop {
         }
         Ok(Produced { note, outputs })
     }
+}
+
+/// The clause sheets that a calculation used, each file once.
+fn used_sheets(calculation: &Calculation<'_>) -> Vec<Attachment> {
+    let mut files: BTreeMap<String, &str> = BTreeMap::new();
+    for outcome in &calculation.outcomes {
+        if let Outcome::Assessed(asked) = outcome {
+            let file = &asked.sheet.place.file;
+            let name = file.name.rsplit('/').next().unwrap_or_default();
+            files.insert(format!("sheet-{name}"), &file.text);
+        }
+    }
+    files
+        .into_iter()
+        .map(|(name, text)| {
+            attachment(
+                &name,
+                "application/yaml",
+                Relation::Source,
+                "A clause sheet used",
+                text.as_bytes(),
+            )
+        })
+        .collect()
 }
 
 fn attachment(

@@ -204,7 +204,10 @@ impl Asking<'_> {
         Ok(Some(Resolved::One(Box::new(Sourced {
             id: format!("check.{}.{}", self.index + 1, slug(name)),
             symbol: need.symbol.clone(),
-            says: need.says.clone(),
+            says: match &self.spec.source {
+                Some(source) => format!("{} ({})", need.says, source.value),
+                None => need.says.clone(),
+            },
             given,
             origin: Origin::Input(raw.place.clone()),
             mark,
@@ -265,7 +268,7 @@ impl Asking<'_> {
             .clone()
             .unwrap_or_else(|| self.sheet.source.cited());
         let mark = (stated.status == Status::Recalled)
-            .then(|| format!("{source}: recalled from memory, to be verified"));
+            .then(|| format!("{source}: text recalled, not yet compared with the document"));
         Ok(Some(Resolved::One(Box::new(Sourced {
             id: format!("check.{}.{kind}.{}", self.index + 1, slug(&need.name.value)),
             symbol: need.symbol.clone(),

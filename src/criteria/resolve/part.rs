@@ -83,7 +83,7 @@ impl Asking<'_> {
             id: format!("part.{}.{}", slug(&part.name.value), slug(name)),
             symbol,
             says: format!(
-                "{} of {}, {}",
+                "{}: {}, {}",
                 property_says(name, need),
                 part.name.value,
                 part.material.value
@@ -117,11 +117,7 @@ impl Asking<'_> {
             Resolved::One(Box::new(Sourced {
                 id: format!("filler.{}", slug(name)),
                 symbol: need.symbol.clone(),
-                says: format!(
-                    "{} of the filler, {}",
-                    property_says(name, need),
-                    filler.name.value
-                ),
+                says: format!("{}: {}", property_says(name, need), filler.name.value),
                 given: told.value,
                 origin: Origin::Input(told.place),
                 mark,

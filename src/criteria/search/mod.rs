@@ -310,7 +310,14 @@ impl<'a> Search<'a> {
             part: bench.site.turn,
             demand: pair.demand,
             capacity: pair.capacity,
-            utilisation: pair.demand.max(0.0) / pair.capacity,
+            utilisation: match margin {
+                Margin::Value(_) | Margin::High
+                    if !self.asking.sheet.checks[check].proportional =>
+                {
+                    1.0 / factor
+                }
+                _ => pair.demand.max(0.0) / pair.capacity,
+            },
             margin,
             load_factor: factor,
         })

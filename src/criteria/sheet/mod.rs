@@ -352,7 +352,7 @@ impl Sheet {
     pub fn mark(&self) -> Option<String> {
         (self.source.status == Status::Recalled).then(|| {
             format!(
-                "{}: recalled from memory, to be verified",
+                "{}: text recalled, not yet compared with the document",
                 self.source.cited()
             )
         })

@@ -64,7 +64,7 @@ impl Desk<'_, '_> {
         &mut self,
         check: usize,
         factor: f64,
-    ) -> Result<Value, WorkError> {
+    ) -> Result<(Value, Value), WorkError> {
         let id = format!("{}.{}.at-limit", self.prefix, check + 1);
         let lambda = Draft {
             id: format!("{id}.load-factor"),
@@ -80,7 +80,17 @@ impl Desk<'_, '_> {
         self.agree("demand over capacity at the limit", ratio, 1.0, 1.0)?;
         let mut env = Env::default();
         env.bind("lambda", lambda);
-        self.margin_step(check, "lambda - 1", &env)
+        let draft = Draft {
+            id: format!("{}.{}.utilisation", self.prefix, check + 1),
+            symbol: Symbol::of("U", &[]),
+            says: "utilisation: the loads as a part of those that reach the limit".to_owned(),
+            formula: "1/lambda",
+            origin: Origin::Method("margin of safety".to_owned()),
+            dim: Some(Dim::NONE),
+        };
+        let utilisation = self.step_in(draft, &env)?;
+        self.mark(utilisation);
+        Ok((utilisation, self.margin_step(check, "lambda - 1", &env)?))
     }
 
     /// The sheet's steps again, with the point's stresses times the load factor.

@@ -132,16 +132,25 @@ pub fn work(
         at.demand.abs().max(AGREES * at.capacity),
     )?;
     desk.agree("capacity", capacity, at.capacity, at.capacity.abs())?;
-    let utilisation = if at.demand > 0.0 {
-        Some(desk.utilisation(check, demand, capacity)?)
-    } else {
-        None
+    let proportional = strength.proportional;
+    let (utilisation, margin) = match at.margin {
+        Margin::Value(_) if proportional => {
+            let utilisation = desk.utilisation(check, demand, capacity)?;
+            (
+                Some(utilisation),
+                Some(desk.margin(check, demand, capacity)?),
+            )
+        }
+        Margin::Value(_) => {
+            let (utilisation, margin) = desk.margin_by_factor(check, at.load_factor)?;
+            (Some(utilisation), Some(margin))
+        }
+        Margin::FixedTermsExceed => (Some(desk.utilisation(check, demand, capacity)?), None),
+        Margin::High => (None, None),
     };
-    let margin = match at.margin {
-        Margin::High | Margin::FixedTermsExceed => None,
-        Margin::Value(_) if strength.proportional => Some(desk.margin(check, demand, capacity)?),
-        Margin::Value(_) => Some(desk.margin_by_factor(check, at.load_factor)?),
-    };
+    if let Some(utilisation) = utilisation {
+        desk.agree("U", utilisation, at.utilisation, at.utilisation.abs())?;
+    }
     if let (Some(margin), Margin::Value(wanted)) = (margin, at.margin) {
         desk.agree("MS", margin, wanted, 1.0 + wanted.abs())?;
     }

@@ -171,7 +171,7 @@ fn the_directional_method_is_written_out() {
     let marks = ledger.marks_behind(all[0].margin.unwrap());
     assert_eq!(
         marks.into_iter().collect::<Vec<_>>(),
-        ["EN 1993-1-8:2005, 4.5.3.2: recalled from memory, to be verified"],
+        ["EN 1993-1-8:2005, 4.5.3.2: text recalled, not yet compared with the document"],
         "open items"
     );
     let eq = line(&ledger, ledger.find("c1.sigma_eq").unwrap());

@@ -1,0 +1,172 @@
+//! The method in one section, so that every later line can point at it.
+
+use super::builder::Builder;
+use super::doc::{Inline, Text};
+use super::text::{math, piece};
+use crate::formula::{Math, Symbol};
+use crate::solve::Regime;
+
+/// A symbol as a piece of text.
+fn sym(base: &str, index: &[&str]) -> Inline {
+    math(&Math::Symbol(Symbol::of(base, index)))
+}
+
+/// An equation of symbols: left = right.
+fn equals(left: Math, right: Math) -> Inline {
+    math(&Math::Relation("=", Box::new(left), Box::new(right)))
+}
+
+fn symbol(base: &str, index: &[&str]) -> Math {
+    Math::Symbol(Symbol::of(base, index))
+}
+
+fn over(above: Math, below: Math) -> Math {
+    Math::Slash(Box::new(above), Box::new(below))
+}
+
+/// `(a − b)` of two symbols.
+fn difference(a: &str, index: &[&str], b: &str) -> Math {
+    let terms = vec![(false, symbol(a, index)), (true, symbol(b, &["c"]))];
+    Math::Bracket(Box::new(Math::Terms(terms)))
+}
+
+impl Builder<'_> {
+    /// The method, its signs and its symbols.
+    pub(super) fn method(&mut self, regime: Regime, on_throat: bool) {
+        self.part("method", "Method");
+        self.para(vec![piece(
+            "Elastic line method: the weld is a line along its root, as wide as its effective throat; the parts are \
+             rigid against it. The actions on the group give a force on each unit of throat area that is linear in the \
+             position. Forces act on the weld group from the attached part, moments by the right-hand rule. Sources: \
+             O. W. Blodgett, Design of Welded Structures (1966), section 7.4; R. G. Budynas and J. K. Nisbett, \
+             Shigley’s Mechanical Engineering Design, chapter 9. The product of inertia is never dropped.",
+        )]);
+        match regime {
+            Regime::Planar => self.para(planar()),
+            Regime::Space => self.para(space()),
+            Regime::Collinear { .. } => self.para(collinear()),
+            Regime::Point => {}
+        }
+        if on_throat {
+            self.para(throat_words());
+        }
+        self.para(vec![piece(
+            "Symbols: index s is the start of a run, e its end, m its middle, c the centroid of the group, P the point \
+             of application; c_s and c_e shorten a run at its stops; i counts the runs; an index a, b, … tells sizes \
+             apart. ℓ is the direction of a run, n the direction across it in the faying plane, k the faying normal. \
+             Along a straight run the largest value of a check that is convex in the stress stands at an end; on arcs \
+             and for other checks it is searched along the run.",
+        )]);
+    }
+}
+
+fn planar() -> Text {
+    let area = || symbol("A", &[]);
+    let term =
+        |moment: Math, lever: Math| over(Math::Product(vec![moment, lever]), symbol("J", &[]));
+    let along = |axis: &'static str, minus: bool, lever: Math| {
+        Math::Terms(vec![
+            (false, over(symbol("F", &[axis]), area())),
+            (minus, term(symbol("M", &["z"]), lever)),
+        ])
+    };
+    let bending = Math::Terms(vec![
+        (
+            false,
+            Math::Product(vec![symbol("N", &["x"]), difference("y", &[], "y")]),
+        ),
+        (
+            true,
+            Math::Product(vec![symbol("N", &["y"]), difference("x", &[], "x")]),
+        ),
+    ]);
+    vec![
+        piece("In the faying plane: "),
+        equals(
+            symbol("f", &["w", "x"]),
+            along("x", true, difference("y", &[], "y")),
+        ),
+        piece("; "),
+        equals(
+            symbol("f", &["w", "y"]),
+            along("y", false, difference("x", &[], "x")),
+        ),
+        piece("; out of it: "),
+        equals(
+            symbol("f", &["w", "z"]),
+            Math::Terms(vec![
+                (false, over(symbol("F", &["z"]), area())),
+                (
+                    false,
+                    over(Math::Bracket(Box::new(bending)), symbol("Delta", &[])),
+                ),
+            ]),
+        ),
+        piece(", with the moments about the centroid."),
+    ]
+}
+
+fn space() -> Text {
+    let turn = |a: &'static str, b: &'static str| {
+        Math::Terms(vec![
+            (
+                false,
+                Math::Product(vec![symbol("theta", &[a]), difference(b, &[], b)]),
+            ),
+            (
+                true,
+                Math::Product(vec![symbol("theta", &[b]), difference(a, &[], a)]),
+            ),
+        ])
+    };
+    let along = |axis: &'static str, a: &'static str, b: &'static str| {
+        let Math::Terms(mut terms) = turn(a, b) else {
+            unreachable!("a turn has two terms")
+        };
+        terms.insert(0, (false, over(symbol("F", &[axis]), symbol("A", &[]))));
+        equals(symbol("f", &["w", axis]), Math::Terms(terms))
+    };
+    vec![
+        piece("In space: "),
+        along("x", "y", "z"),
+        piece("; "),
+        along("y", "z", "x"),
+        piece("; "),
+        along("z", "x", "y"),
+        piece(", where the twist "),
+        sym("theta", &[]),
+        piece(" solves K"),
+        sym("theta", &[]),
+        piece(
+            " = M for the moments about the centroid, and K is the inertia tensor of the throat areas.",
+        ),
+    ]
+}
+
+fn collinear() -> Text {
+    vec![
+        piece("All runs lie on one line along u: the stress from the moments is "),
+        math(&Math::Row(vec![
+            Math::Word("(M × u)".to_owned()),
+            over(symbol("s", &[]), symbol("I", &["L"])),
+        ])),
+        piece(
+            ", s from the centroid along the line. A moment about the line itself finds no resistance and would be \
+             refused.",
+        ),
+    ]
+}
+
+fn throat_words() -> Text {
+    vec![
+        piece("On the throat plane of a fillet with equal legs, tension positive: "),
+        sym("sigma", &["perp"]),
+        piece(" = (out − across)/√2 and "),
+        sym("tau", &["perp"]),
+        piece(
+            " = (out + across)/√2 if the toe on the base stands toward n, the other way round if it stands against n; \
+             “out” is the stress out of the faying plane, “across” that across the run. Table “Runs as given” tells the \
+             toe of each run.",
+        ),
+    ]
+}

@@ -122,7 +122,7 @@ fn work(
     let results = results
         .into_inner()
         .expect("no worker panics while it holds the results");
-    summary(joints, results, scope.must_hold, colour)
+    summary(joints, results, scope.must_hold, workshop.is_some(), colour)
 }
 
 fn one(
@@ -162,6 +162,7 @@ fn summary(
     joints: &[JointFile],
     results: BTreeMap<usize, Result<Result1, ProjectError>>,
     must_hold: bool,
+    writes: bool,
     colour: bool,
 ) -> Said {
     let mut said = Said::default();
@@ -185,10 +186,13 @@ fn summary(
             .iter()
             .map(|path| path.display().to_string())
             .collect();
-        said.err.push_str(&format!(
-            "refused: {}; an earlier note stands as it was\n",
-            names.join(", ")
-        ));
+        let tail = if writes {
+            "; an earlier note stands as it was"
+        } else {
+            ""
+        };
+        said.err
+            .push_str(&format!("refused: {}{tail}\n", names.join(", ")));
         said.code = exit::REFUSED;
     } else if must_hold && !all_hold {
         said.err

@@ -25,7 +25,7 @@ pub struct Factor {
     pub origin: Origin,
     /// What of it is still to be verified.
     pub mark: Option<String>,
-    /// Id under which [`super::work`] enters it into the ledger.
+    /// Id under which [`super::work()`] enters it into the ledger.
     pub id: String,
 }
 
@@ -33,7 +33,7 @@ pub struct Factor {
 ///
 /// # Errors
 ///
-/// As [`super::assess`] for the values of the check.
+/// As [`super::assess()`] for the values of the check.
 pub fn factors(ground: &Ground<'_>, asked: &Asked) -> Result<Vec<Factor>, Faults> {
     let spec = &ground.joint.checks[asked.index];
     let asking = Asking {

@@ -1,8 +1,8 @@
 //! Clause sheets: criteria as data, and what they give for a joint.
 //!
 //! A sheet is YAML: what it needs, tables, steps, checks, limits of validity. [`built_in`] holds the
-//! project's own sheets; a user's are read by the same [`read_sheet`]. [`assess`] evaluates every
-//! check asked for over all cases and points and says what governs; [`work`] writes the governing
+//! project's own sheets; a user's are read by the same [`read_sheet`]. [`assess()`] evaluates every
+//! check asked for over all cases and points and says what governs; [`work()`] writes the governing
 //! result into the ledger as numbered steps. Adding a criterion needs no Rust.
 
 mod assess;

@@ -18,9 +18,11 @@ pub(super) const START_DIGITS: usize = 4;
 /// Digits within which a converted input is printed exactly, such as 7.9375 mm for 5/16 in.
 const CONVERTED_DIGITS: usize = 8;
 
-/// Values under this share of the natural size of their dimension print 0: far above rounding noise
-/// of double precision, far below what a joint can feel.
-const FLOOR: f64 = 1e-9;
+/// Forces, moments and stresses under this share of their natural size print 0: far above rounding
+/// noise of double precision, far below what a joint can feel.
+const LOAD_FLOOR: f64 = 1e-9;
+/// The same for lengths, areas and second moments, which small runs of a large group have as well.
+const SHAPE_FLOOR: f64 = 1e-13;
 
 /// A value of the ledger.
 #[derive(Clone, Copy, PartialEq, Eq, PartialOrd, Ord, Debug)]
@@ -237,7 +239,12 @@ impl Ledger {
     #[must_use]
     pub fn floor(&self, dim: Dim) -> f64 {
         let part = |scale: f64, twelfths: i16| real::power(scale, f64::from(twelfths) / 12.0);
-        FLOOR * part(self.scales.0, dim.force) * part(self.scales.1, dim.length)
+        let share = if dim.force == 0 {
+            SHAPE_FLOOR
+        } else {
+            LOAD_FLOOR
+        };
+        share * part(self.scales.0, dim.force) * part(self.scales.1, dim.length)
     }
 
     fn push(&mut self, entry: Entry) -> Value {

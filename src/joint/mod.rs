@@ -1,6 +1,6 @@
 //! What the user said of one joint: validated, in units, every value with its place.
 //!
-//! Holds and reads the joint file (design: one joint, one file). Computes no geometry and no stress.
+//! Holds and reads the joint file: one joint, one file. Computes no geometry and no stress.
 
 mod read;
 

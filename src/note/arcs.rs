@@ -128,20 +128,48 @@ impl Builder<'_> {
                 self.run_values[index].insert(format!("{a}_0"), value);
             }
         }
-        if let Some((from, sweep)) = angles {
-            for (name, symbol, says, given) in [
-                ("theta_0", Symbol::of("theta", &["0"]), "Start angle", from),
-                ("phi", Symbol::of("phi", &[]), "Swept angle", sweep),
-            ] {
-                let origin = Origin::Input(given.place.clone());
-                self.arc_given(
-                    index,
-                    name,
-                    symbol,
-                    &format!("{says} of {number}"),
-                    &given.value,
-                    origin,
-                );
+        let Segment::Arc { from, sweep, .. } = self.runs[index].told else {
+            return;
+        };
+        let full = (sweep.abs() - 2.0 * PI).abs() < FULL_TURN;
+        if full && angles.is_none() {
+            return;
+        }
+        for (name, symbol, says, value, given) in [
+            (
+                "theta_0",
+                Symbol::of("theta", &["0"]),
+                "Start angle",
+                from,
+                angles.map(|angles| angles.0),
+            ),
+            (
+                "phi",
+                Symbol::of("phi", &[]),
+                "Swept angle",
+                sweep,
+                angles.map(|angles| angles.1),
+            ),
+        ] {
+            let says = format!("{says} of {number}");
+            match given.filter(|given| (given.value.value - value).abs() < 1e-12) {
+                Some(given) => {
+                    let origin = Origin::Input(given.place.clone());
+                    self.arc_given(index, name, symbol, &says, &given.value, origin);
+                }
+                None => {
+                    let draft = Draft {
+                        id: self.slug_id(index, name),
+                        symbol: symbol.with(&(index + 1).to_string()),
+                        says,
+                        formula: "laid out from the run, its bead and its pitch",
+                        origin: Origin::Input(spec.place.clone()),
+                        dim: None,
+                    };
+                    let value = self.ledger.found(draft, value, Dim::ANGLE);
+                    self.show(value);
+                    self.run_values[index].insert(name.to_owned(), value);
+                }
             }
         }
     }

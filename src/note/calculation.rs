@@ -49,13 +49,7 @@ pub struct Refusal {
 }
 
 /// Faults of an assessment that are no mistakes of the file: a clause that does not apply.
-const REFUSALS: [&str; 5] = [
-    "ends-mismatch",
-    "run-not-checked",
-    "outside-validity",
-    "outside-table",
-    "weld-not-taken",
-];
+const REFUSALS: [&str; 4] = ["ends-mismatch", "run-not-checked", "not-valid", "no-value"];
 
 impl<'a> Calculation<'a> {
     /// Computes a joint.

@@ -1,7 +1,7 @@
 //! All cases and checks, the worst point of each: rows for the identity and for `cases.csv`.
 
 use super::calculation::{Calculation, Outcome};
-use super::margins::{capital, check_name};
+use super::margins::check_name;
 use super::trace::Trace;
 use crate::criteria::Governing;
 use crate::formula::Printed;
@@ -29,7 +29,7 @@ pub(super) fn of_case<'c>(
                 let unit = dim.map_or(String::new(), |dim| {
                     calculation.joint.units.value.label(dim)
                 });
-                let name = capital(&check_name(asked, strength.check));
+                let name = check_name(asked, strength.check);
                 found.push((format!("{name}{part}"), at, unit));
             }
         }

@@ -189,10 +189,7 @@ impl Builder<'_> {
                 .part
                 .map(|turn| format!(", {}", turn.word()))
                 .unwrap_or_default();
-            self.heading(&format!(
-                "{}{part}",
-                capital(&check_name(asked, check.check))
-            ));
+            self.heading(&format!("{}{part}", check_name(asked, check.check)));
             let mut env = site.env.clone();
             self.twin_load(
                 calculation,
@@ -339,10 +336,7 @@ impl Builder<'_> {
                 .map(|turn| format!(", {}", turn.word()))
                 .unwrap_or_default();
             let mut cells = vec![
-                Cell::Text(plain(&format!(
-                    "{}{part}",
-                    capital(&check_name(asked, check.check))
-                ))),
+                Cell::Text(plain(&format!("{}{part}", check_name(asked, check.check)))),
                 Cell::Text(plain(
                     &self.joint.loads.cases[check.governing.case].name.value,
                 )),
@@ -409,7 +403,7 @@ impl Builder<'_> {
                 .collect();
             let text = format!(
                 "{} takes no cases of the level stated for {}.",
-                capital(&asked.sheet.name.value),
+                asked.sheet.name.value,
                 names.join(", ")
             );
             self.para(plain(&text));
@@ -489,10 +483,7 @@ impl Builder<'_> {
             let cells = vec![
                 Cell::Text(plain(&told.name.value)),
                 Cell::Text(plain(told.level.value.word())),
-                Cell::Text(plain(&capital(&check_name(
-                    asked(calculation, outcome),
-                    check,
-                )))),
+                Cell::Text(plain(&check_name(asked(calculation, outcome), check))),
                 Cell::Text(plain(&self.place_words(spot_of(&at)))),
                 Cell::Rounded {
                     value: utilisation,
@@ -561,7 +552,7 @@ impl Builder<'_> {
             .into_iter()
             .map(|refusal| {
                 let mut text: Text = vec![
-                    strong(&capital(&refusal.clause)),
+                    strong(&refusal.clause.clone()),
                     piece(&format!(": {}.", refusal.reason)),
                 ];
                 if !refusal.help.is_empty() {
@@ -595,7 +586,7 @@ impl Builder<'_> {
                     Some(known) => known,
                     None => {
                         if done.is_empty() {
-                            self.heading(&capital(&asked.sheet.name.value));
+                            self.heading(&asked.sheet.name.value);
                         }
                         let env = self.size_env(limit.run);
                         let prefix = format!("limit-{}-{}", index + 1, done.len() + 1);
@@ -651,11 +642,7 @@ impl Builder<'_> {
             Side::AtLeast => "≥",
             Side::AtMost => "≤",
         };
-        let name = format!(
-            "{}: {}{part}",
-            capital(&asked.sheet.name.value),
-            rule.name.value
-        );
+        let name = format!("{}: {}{part}", asked.sheet.name.value, rule.name.value);
         let cells = vec![
             Cell::Text(plain(&name)),
             Cell::Text(plain(&self.runs[limit.run].name)),

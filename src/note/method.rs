@@ -50,13 +50,34 @@ impl Builder<'_> {
         if on_throat {
             self.para(throat_words());
         }
-        self.para(vec![piece(
-            "Symbols: index s is the start of a run, e its end, m its middle, c the centroid of the group, P the point \
-             of application; c_s and c_e shorten a run at its stops; i counts the runs; an index a, b, … tells sizes \
-             apart. ℓ is the direction of a run, n the direction across it in the faying plane, k the faying normal. \
-             Along a straight run the largest value of a check that is convex in the stress stands at an end; on arcs \
-             and for other checks it is searched along the run.",
-        )]);
+        self.para(vec![
+            piece("Symbols: index "),
+            sym("s", &[]),
+            piece(" is the start of a run, "),
+            sym("e", &[]),
+            piece(" its end, "),
+            sym("m", &[]),
+            piece(" its middle, "),
+            sym("c", &[]),
+            piece(" the centroid of the group, "),
+            sym("P", &[]),
+            piece(" the point of application; "),
+            sym("c", &["s"]),
+            piece(" and "),
+            sym("c", &["e"]),
+            piece(" shorten a run at its stops; "),
+            sym("i", &[]),
+            piece(" counts the runs; an index a, b, … tells sizes apart. "),
+            sym("ell", &[]),
+            piece(" is the direction of a run, "),
+            sym("n", &[]),
+            piece(" the direction across it in the faying plane, "),
+            sym("k", &[]),
+            piece(
+                " the faying normal. Along a straight run the largest value of a check that is convex in the stress \
+                 stands at an end; on arcs and for other checks it is searched along the run.",
+            ),
+        ]);
     }
 }
 
@@ -164,7 +185,8 @@ fn throat_words() -> Text {
         piece(" = (out − across)/√2 and "),
         sym("tau", &["perp"]),
         piece(
-            " = (out + across)/√2 if the toe on the base stands toward n, the other way round if it stands against n; \
+            " = (out + across)/√2 if the toe on the base stands toward the direction across, with the signs of “across” \
+             changed if it stands against it; \
              “out” is the stress out of the faying plane, “across” that across the run. Table “Runs as given” tells the \
              toe of each run.",
         ),

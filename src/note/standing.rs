@@ -1,7 +1,7 @@
 //! How a joint stands: its least margin, how many checks hold, what gave no number.
 
 use super::calculation::{Calculation, Outcome};
-use super::margins::{asked, capital, check_name, ranked};
+use super::margins::{asked, check_name, ranked};
 use super::text::count;
 use crate::criteria::Margin;
 use crate::formula::Printed;
@@ -98,7 +98,7 @@ impl Standing {
     #[must_use]
     pub fn line(&self) -> String {
         let governing = match &self.governing {
-            Some((check, case)) => format!("{}, case {case}", capital(check)),
+            Some((check, case)) => format!("{}, case {case}", check),
             None => "no strength check".to_owned(),
         };
         format!(

@@ -686,6 +686,9 @@ impl Builder<'_> {
     ) -> Result<(), FormulaError> {
         let mut inner = env.clone();
         inner.bind("t", self.run_values[run]["t"]);
+        if let Some(resultant) = env.names.get("point_f").cloned() {
+            inner.names.insert("f".to_owned(), resultant);
+        }
         let mut sheet = Sheet {
             tag: tag.to_owned(),
             env: inner,

@@ -1,56 +1,74 @@
 //! Steps from sizes as told to effective throats: one step for each size, not for each run.
 
 use super::builder::Builder;
-use crate::formula::{Env, FormulaError, Origin, Symbol, Value};
+use crate::formula::{Bound, Env, FormulaError, Origin, Symbol, Value};
 use crate::joint::{RunSpec, SizeSpec};
 use crate::quantity::{Dim, Given};
 use crate::source::Told;
-use crate::weld::ThroatRule;
+use crate::weld::{Run, ThroatRule};
+use std::collections::BTreeSet;
 use std::f64::consts::FRAC_PI_2;
 
 /// Letters that tell the sizes of a note apart.
 const LETTERS: &[u8] = b"abcdefghijklmnopqrstuvw";
 
+/// A size worked out: its throat, its legs on base and attached part, the angle if it is skewed.
+#[derive(Clone)]
+struct Size {
+    throat: Value,
+    legs: Vec<Value>,
+    angle: Option<Value>,
+}
+
 impl Builder<'_> {
     /// Works out each distinct size, shows it, and gives every run its throat `t` and legs.
     pub(super) fn throats(&mut self) -> Result<(), FormulaError> {
-        let mut sizes: Vec<(ThroatRule, Value, Vec<Value>)> = Vec::new();
-        let distinct = {
-            let mut rules: Vec<&ThroatRule> = Vec::new();
-            for run in self.runs {
-                if !rules.contains(&&run.rule) {
-                    rules.push(&run.rule);
-                }
-            }
-            rules.len()
-        };
-        for index in 0..self.runs.len() {
-            let run = &self.runs[index];
+        let mut sizes: Vec<(String, Size)> = Vec::new();
+        let keys: Vec<String> = self.runs.iter().map(|run| self.size_key(run)).collect();
+        let distinct: BTreeSet<&String> = keys.iter().collect();
+        let lettered = distinct.len() > 1;
+        for (index, key) in keys.iter().enumerate() {
             let known = sizes
                 .iter()
-                .find(|(rule, ..)| *rule == run.rule)
-                .map(|(_, t, legs)| (*t, legs.clone()));
-            let (throat, legs) = match known {
+                .find(|(known, _)| known == key)
+                .map(|(_, size)| size.clone());
+            let size = match known {
                 Some(known) => known,
                 None => {
                     let letter = LETTERS.get(sizes.len()).copied().unwrap_or(b'z') as char;
-                    let letter = if distinct == 1 {
-                        String::new()
-                    } else {
+                    let letter = if lettered {
                         letter.to_string()
+                    } else {
+                        String::new()
                     };
-                    let spec = &self.joint.weld.runs[run.spec];
-                    let (throat, legs) = self.size(spec, &run.rule.clone(), &letter)?;
-                    sizes.push((run.rule.clone(), throat, legs.clone()));
-                    (throat, legs)
+                    let run = &self.runs[index];
+                    let size = self.size(&self.joint.weld.runs[run.spec], run, &letter)?;
+                    sizes.push((key.clone(), size.clone()));
+                    size
                 }
             };
-            self.run_values[index].insert("t".to_owned(), throat);
-            for (name, leg) in ["leg_base", "leg_attached"].iter().zip(&legs) {
+            self.run_values[index].insert("t".to_owned(), size.throat);
+            for (name, leg) in ["leg_base", "leg_attached"].iter().zip(&size.legs) {
                 self.run_values[index].insert((*name).to_owned(), *leg);
+            }
+            if let Some(angle) = size.angle {
+                self.run_values[index].insert("psi".to_owned(), angle);
             }
         }
         Ok(())
+    }
+
+    /// What tells the sizes of runs apart: the rule, and legs that are told beside a throat.
+    fn size_key(&self, run: &Run) -> String {
+        let leg = match &self.joint.weld.runs[run.spec].size {
+            SizeSpec::Throat { leg: Some(leg), .. } => leg.value.value,
+            SizeSpec::Throat { leg: None, .. }
+            | SizeSpec::Fillet { .. }
+            | SizeSpec::Unequal { .. }
+            | SizeSpec::Partial { .. }
+            | SizeSpec::Complete { .. } => 0.0,
+        };
+        format!("{:?} {:?} {leg:?}", run.rule, run.angle)
     }
 
     fn length_of(&mut self, base: &str, letter: &str, says: &str, given: &Told<Given>) -> Value {
@@ -68,12 +86,8 @@ impl Builder<'_> {
     }
 
     /// The throat of one size and the legs on base and attached part.
-    fn size(
-        &mut self,
-        spec: &RunSpec,
-        rule: &ThroatRule,
-        letter: &str,
-    ) -> Result<(Value, Vec<Value>), FormulaError> {
+    fn size(&mut self, spec: &RunSpec, run: &Run, letter: &str) -> Result<Size, FormulaError> {
+        let rule = &run.rule;
         let mut env = Env::default();
         let mut formula;
         let mut says = "Effective throat".to_owned();
@@ -88,7 +102,7 @@ impl Builder<'_> {
                     says.push_str(", equal legs at a right angle");
                     formula = format!("{leg}/sqrt(2)");
                 } else {
-                    self.angle(spec, letter, &mut env);
+                    self.angle(spec, run, letter, &mut env)?;
                     says.push_str(", equal legs along faces at the angle between them");
                     formula = format!("{leg}*cos(psi/2)");
                 }
@@ -98,7 +112,7 @@ impl Builder<'_> {
                 env.bind("W", h);
                 legs = vec![h, h];
                 let leg = self.worked_leg(spec, *gap, letter, &mut env, "W");
-                self.angle(spec, letter, &mut env);
+                self.angle(spec, run, letter, &mut env)?;
                 says.push_str(", legs measured square to the faces");
                 formula = format!("{leg}/(2*sin(psi/2))");
             }
@@ -131,11 +145,12 @@ impl Builder<'_> {
                     let h = self.length_of("h", letter, "Leg of the fillet as stated", leg);
                     legs = vec![h, h];
                 }
-                return Ok((t, legs));
+                return self.stated_size(spec, run, letter, t, legs);
             }
             (SizeSpec::Partial { throat }, _) => {
                 let says = "Effective throat of the partial penetration weld as stated";
-                return Ok((self.length_of("t", letter, says, throat), legs));
+                let t = self.length_of("t", letter, says, throat);
+                return self.stated_size(spec, run, letter, t, legs);
             }
             (_, ThroatRule::Complete { part, .. }) => {
                 let thickness = self.joint.parts[*part].thickness.clone();
@@ -145,7 +160,12 @@ impl Builder<'_> {
                     "Complete penetration: thickness of {}",
                     self.joint.parts[*part].name.value
                 );
-                return Ok((self.length_of("t", letter, &says, &thickness), legs));
+                let t = self.length_of("t", letter, &says, &thickness);
+                return Ok(Size {
+                    throat: t,
+                    legs,
+                    angle: None,
+                });
             }
             _ => unreachable!("a rule follows from its size"),
         }
@@ -160,38 +180,93 @@ impl Builder<'_> {
         let name = symbol.plain();
         let value = self.make(&name, id, symbol, says, &formula, "geometry", &env)?;
         self.show(value);
-        Ok((value, legs))
+        let angle = match env.names.get("psi") {
+            Some(Bound::Value(angle)) => Some(*angle),
+            Some(Bound::Word(_)) | None => None,
+        };
+        Ok(Size {
+            throat: value,
+            legs,
+            angle,
+        })
+    }
+
+    /// A size whose throat is stated: its throat plane still halves the angle between the faces.
+    fn stated_size(
+        &mut self,
+        spec: &RunSpec,
+        run: &Run,
+        letter: &str,
+        throat: Value,
+        legs: Vec<Value>,
+    ) -> Result<Size, FormulaError> {
+        let mut env = Env::default();
+        if (run.angle - FRAC_PI_2).abs() > 1e-9 {
+            self.angle(spec, run, letter, &mut env)?;
+        }
+        let angle = match env.names.get("psi") {
+            Some(Bound::Value(angle)) => Some(*angle),
+            Some(Bound::Word(_)) | None => None,
+        };
+        Ok(Size {
+            throat,
+            legs,
+            angle,
+        })
     }
 
     /// The angle between the faces.
-    fn angle(&mut self, spec: &RunSpec, letter: &str, env: &mut Env) {
+    fn angle(
+        &mut self,
+        spec: &RunSpec,
+        run: &Run,
+        letter: &str,
+        env: &mut Env,
+    ) -> Result<(), FormulaError> {
+        let says = "Dihedral angle between the faces";
+        let id = |symbol: &Symbol| format!("size.{}", symbol.plain().replace('_', "-"));
         let symbol = lettered("psi", letter);
-        let id = format!("size.{}", symbol.plain().replace('_', "-"));
-        let value = match &spec.between {
-            Some(given) => {
-                let origin = Origin::Input(given.place.clone());
-                self.input(
-                    id,
-                    symbol,
-                    "Dihedral angle between the faces",
-                    &given.value,
-                    origin,
-                )
-            }
-            None => {
-                let given = Given::stated("90", FRAC_PI_2, Dim::ANGLE);
-                let origin = Origin::Method("not told: a right angle".to_owned());
-                self.input(
-                    id,
-                    symbol,
-                    "Dihedral angle between the faces",
-                    &given,
-                    origin,
-                )
-            }
+        let Some(given) = &spec.between else {
+            let given = Given::stated("90", FRAC_PI_2, Dim::ANGLE);
+            let origin = Origin::Method("not given: a right angle".to_owned());
+            let value = self.input(id(&symbol), symbol, says, &given, origin);
+            self.show(value);
+            env.bind("psi", value);
+            return Ok(());
         };
+        let origin = Origin::Input(given.place.clone());
+        if (given.value.value - run.angle).abs() < 1e-9 {
+            let value = self.input(id(&symbol), symbol, says, &given.value, origin);
+            self.show(value);
+            env.bind("psi", value);
+            return Ok(());
+        }
+        // The bead on the far side of the plate fills the supplement of the angle that is told.
+        let near = lettered("psi", letter).with("0");
+        let told = self.input(
+            id(&near),
+            near,
+            "Dihedral angle on the near side",
+            &given.value,
+            origin,
+        );
+        self.show(told);
+        let mut inner = Env::default();
+        inner.bind("psi_0", told);
+        let says = "Dihedral angle on the far side of the plate".to_owned();
+        let name = symbol.plain();
+        let value = self.make(
+            &name,
+            id(&symbol),
+            symbol,
+            says,
+            "180 deg - psi_0",
+            "geometry",
+            &inner,
+        )?;
         self.show(value);
         env.bind("psi", value);
+        Ok(())
     }
 
     /// The leg as a formula reads it: less the root gap where the gap exceeds the free one.

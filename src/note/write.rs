@@ -347,7 +347,7 @@ fn coverage(b: &mut Builder<'_>, calculation: &Calculation<'_>) {
                 Outcome::Assessed(asked)
                     if asked.sheet.covers.iter().any(|path| path.word() == word) =>
                 {
-                    Some(capital(&asked.sheet.name.value))
+                    Some(asked.sheet.name.value.clone())
                 }
                 Outcome::Assessed(_) | Outcome::Refused(_) => None,
             })
@@ -572,10 +572,7 @@ fn verdict(
         .map(|turn| format!(", {}", turn.word()))
         .unwrap_or_default();
     let first: Text = vec![
-        piece(&format!(
-            "{}{part}, at ",
-            capital(&check_name(asked, check.check))
-        )),
+        piece(&format!("{}{part}, at ", check_name(asked, check.check))),
         super::text::emph(&b.place_words(spot)),
         piece(", case "),
         strong(&case.name.value),

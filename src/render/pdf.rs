@@ -38,6 +38,10 @@ pub enum Relation {
     Data,
 }
 
+/// Documents for which results of the typesetter are remembered: those that other threads set at
+/// the same time must not lose theirs.
+const MEMORY: usize = 4;
+
 /// Sets each line on a page of its own size; links keep their ids.
 const MEASURING: &str = r#"
 #let n(id, mantissa, ..exponent) = linked((:), id, mantissa, exponent.pos().at(0, default: ""))
@@ -71,7 +75,7 @@ impl Press {
         let result = compile(&job)
             .and_then(|document| resolve_links(&document))
             .and_then(|document| export(&job, &document));
-        comemo::evict(0);
+        comemo::evict(MEMORY);
         result
     }
 
@@ -89,7 +93,7 @@ impl Press {
                 pages.len()
             ))),
         });
-        comemo::evict(0);
+        comemo::evict(MEMORY);
         result
     }
 
@@ -109,7 +113,7 @@ impl Press {
         }
         let job = Job::new(self, text, Vec::new());
         let result = compile(&job);
-        comemo::evict(0);
+        comemo::evict(MEMORY);
         Ok(result?
             .pages()
             .iter()
@@ -125,7 +129,7 @@ impl Press {
     pub fn pages(&self, source: &str) -> Result<PagedDocument, RenderError> {
         let job = Job::new(self, source.to_owned(), Vec::new());
         let result = compile(&job).and_then(|document| resolve_links(&document));
-        comemo::evict(0);
+        comemo::evict(MEMORY);
         result
     }
 }

@@ -2,6 +2,7 @@
 
 #![allow(clippy::unwrap_used, reason = "tests may unwrap")]
 
+mod command;
 mod criteria;
 mod faults;
 mod figure;
@@ -10,7 +11,15 @@ mod groups;
 mod joint_read;
 mod laying;
 mod mechanics;
+mod notes;
+mod open;
 mod quantity;
+mod readme;
 mod render;
+mod replay;
+mod schema;
+mod settle;
+mod tidy;
+mod weld_faults;
 mod weldkit;
 mod yaml;

@@ -78,7 +78,11 @@ impl SheetSource {
         let edition = self
             .edition
             .as_ref()
-            .map(|edition| format!(":{edition}"))
+            .map(|edition| match self.status {
+                // Standards are cited with a colon before the year.
+                Status::UsersOwn => format!(", issue {edition}"),
+                Status::Read | Status::Recalled | Status::CommonPractice => format!(":{edition}"),
+            })
             .unwrap_or_default();
         let clause = self
             .clause

@@ -271,7 +271,7 @@ checks:
     let at = sound(seamnote::criteria::assess(&ground, &searched)).asked[0].strength[0]
         .governing
         .clone();
-    near("found at the end", at.utilisation, 0.6_f64.sqrt(), 1e-12);
+    near("found at the end", at.utilisation, 0.6, 1e-10);
     // √(0.6 λ) = 1
     near("by load factor", at.load_factor, 1.0 / 0.6, 1e-10);
 }

@@ -1,0 +1,37 @@
+//! Speed of the whole way, of many joints, and of the batch kernel, printed as ratios.
+//!
+//! Run by `cargo bench`, which takes the dependencies as `cargo test --release` built them. Nothing
+//! here is asserted: times depend on the machine, and DEVELOPERS.md holds the ratios measured.
+
+#![allow(clippy::unwrap_used, reason = "a bench may unwrap")]
+#![expect(clippy::print_stdout, reason = "a bench prints its figures")]
+
+mod joints;
+mod kernel;
+
+/// The same allocator as the program's.
+#[global_allocator]
+static ALLOCATOR: mimalloc::MiMalloc = mimalloc::MiMalloc;
+
+fn main() {
+    println!("one joint, cold process");
+    joints::cold();
+    println!("\none joint in this process, by stages");
+    joints::stages();
+    println!("\n{} joints in one process", joints::MANY);
+    joints::many();
+    println!("\nbatch kernel, one core");
+    kernel::largest();
+}
+
+/// The least of some times (s): what else the machine does only adds to them.
+fn least(times: Vec<f64>) -> f64 {
+    times.into_iter().fold(f64::INFINITY, f64::min)
+}
+
+/// Seconds that `work` takes.
+fn seconds<T>(work: impl FnOnce() -> T) -> f64 {
+    let start = std::time::Instant::now();
+    std::hint::black_box(work());
+    start.elapsed().as_secs_f64()
+}

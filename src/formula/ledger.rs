@@ -18,11 +18,13 @@ pub(super) const START_DIGITS: usize = 4;
 /// Digits within which a converted input is printed exactly, such as 7.9375 mm for 5/16 in.
 const CONVERTED_DIGITS: usize = 8;
 
-/// Forces, moments and stresses under this share of their natural size print 0: far above rounding
-/// noise of double precision, far below what a joint can feel.
+/// Forces, moments, stresses and lengths under this share of their natural size print 0: far above
+/// rounding noise of double precision, far below what a joint can feel.
 const LOAD_FLOOR: f64 = 1e-9;
-/// The same for lengths, areas and second moments, which small runs of a large group have as well.
-const SHAPE_FLOOR: f64 = 1e-13;
+/// The same for second moments, which small runs of a large group have as well; areas lie between.
+const SECOND_FLOOR: f64 = 1e-13;
+/// The same for areas.
+const AREA_FLOOR: f64 = 1e-11;
 
 /// A value of the ledger.
 #[derive(Clone, Copy, PartialEq, Eq, PartialOrd, Ord, Debug)]
@@ -137,6 +139,17 @@ pub enum Kind {
     },
 }
 
+/// How the digits of a value may still move while they settle.
+#[derive(Clone, Copy, PartialEq, Eq, Debug)]
+pub(super) enum Freedom {
+    /// Up and down.
+    Free,
+    /// They were lowered, since the operands would have needed too many; up only if nothing else helps.
+    Lowered,
+    /// They were lowered and had to rise again: up only.
+    Rising,
+}
+
 /// A value with all that the page says of it.
 #[derive(Clone, PartialEq, Debug)]
 pub struct Entry {
@@ -164,6 +177,10 @@ pub struct Entry {
     pub anchor: String,
     /// Significant digits it is printed with.
     pub(super) digits: usize,
+    /// At or under this magnitude it prints 0.
+    pub(super) floor: f64,
+    /// How its digits may still move.
+    pub(super) freedom: Freedom,
 }
 
 /// What is needed to add a line.
@@ -239,15 +256,22 @@ impl Ledger {
     #[must_use]
     pub fn floor(&self, dim: Dim) -> f64 {
         let part = |scale: f64, twelfths: i16| real::power(scale, f64::from(twelfths) / 12.0);
-        let share = if dim.force == 0 {
-            SHAPE_FLOOR
-        } else {
-            LOAD_FLOOR
+        let share = match (dim.force, dim.length / 12) {
+            (0, 2) => AREA_FLOOR,
+            (0, 3..) => SECOND_FLOOR,
+            _ => LOAD_FLOOR,
         };
         share * part(self.scales.0, dim.force) * part(self.scales.1, dim.length)
     }
 
-    fn push(&mut self, entry: Entry) -> Value {
+    /// Raises the magnitude under which a value prints 0, for a small difference of large numbers.
+    pub fn raise_floor(&mut self, value: Value, floor: f64) {
+        let entry = &mut self.entries[value.0];
+        entry.floor = entry.floor.max(floor);
+    }
+
+    fn push(&mut self, mut entry: Entry) -> Value {
+        entry.floor = self.floor(entry.dim);
         self.entries.push(entry);
         Value(self.entries.len() - 1)
     }
@@ -283,6 +307,8 @@ impl Ledger {
             signed: false,
             no: String::new(),
             digits: START_DIGITS,
+            floor: 0.0,
+            freedom: Freedom::Free,
         })
     }
 
@@ -332,6 +358,8 @@ impl Ledger {
             signed: false,
             no: String::new(),
             digits: START_DIGITS,
+            floor: 0.0,
+            freedom: Freedom::Free,
         }))
     }
 
@@ -352,6 +380,8 @@ impl Ledger {
             signed: false,
             no: String::new(),
             digits: START_DIGITS,
+            floor: 0.0,
+            freedom: Freedom::Free,
         })
     }
 
@@ -370,6 +400,8 @@ impl Ledger {
             signed: false,
             no: String::new(),
             digits: START_DIGITS,
+            floor: 0.0,
+            freedom: Freedom::Free,
         })
     }
 
@@ -417,7 +449,7 @@ impl Ledger {
             }
             Kind::Converted { .. } => Printed::of(shown, entry.digits, CONVERTED_DIGITS, 0.0),
             Kind::Step { .. } | Kind::Found { .. } => {
-                Printed::of(shown, entry.digits, entry.digits, self.floor(entry.dim))
+                Printed::of(shown, entry.digits, entry.digits, entry.floor)
             }
             Kind::Bound { limit } => Printed::of(*limit, 1, 1, 0.0),
         }

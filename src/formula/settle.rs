@@ -2,13 +2,22 @@
 //!
 //! Every value starts with four significant digits. A line whose printed operands do not give its
 //! printed result, to one unit in the last digit, has the operand raised whose half-unit error moves
-//! the result most; that operand is then printed with the new digits everywhere. Repeated to a bound.
+//! the result most; that operand is then printed with the new digits everywhere. A small difference of
+//! large numbers, which would ask for more than seven, is printed with fewer digits of its own instead.
+//! Repeated to a bound.
 
-use super::ledger::{EntryLook, Kind, Ledger, Value};
+use super::ledger::{EntryLook, Freedom, Kind, Ledger, Value};
 use super::node::{Kind as NodeKind, Op};
 use super::{FormulaError, Problem, evaluate};
 use crate::quantity::{Dim, real};
 use std::collections::VecDeque;
+
+/// Terms of a plain sum rise to this many digits so that its last digit adds up to the eye.
+const SUM_DIGITS: usize = 6;
+
+/// Where an operand would need more digits than this, a small difference of large numbers, the result
+/// gives up a digit instead: it has no more to give.
+const MANY_DIGITS: usize = 7;
 
 /// No value is printed with more digits than this; beyond, the note refuses.
 const MOST_DIGITS: usize = 13;
@@ -115,9 +124,7 @@ impl Ledger {
                 largest = largest.max(self.shown(value, moved).abs());
             }
         }
-        (1e-3 * largest)
-            .min(0.5)
-            .max(self.floor(self.get(value).dim))
+        (1e-3 * largest).min(0.5).max(self.get(value).floor)
     }
 
     /// Units in the last digit that a replay may miss: one, but half of one for a plain sum, whose
@@ -151,9 +158,48 @@ impl Ledger {
         if miss <= self.allowed_miss(value) + 1e-6 {
             return Ok(None);
         }
+        let cosmetic = miss <= 1.0 + 1e-6;
+        let most = if cosmetic { SUM_DIGITS } else { MOST_DIGITS };
+        let worst = self.worst_operand(value, most);
+        if worst.is_none() && cosmetic {
+            return Ok(None);
+        }
+        let entry = self.get(value);
+        let spent = |used: Value| {
+            let used = self.get(used);
+            used.digits >= MANY_DIGITS || used.freedom == Freedom::Lowered
+        };
+        let many = worst.is_none_or(spent);
+        if many && !cosmetic && entry.digits > 1 && entry.freedom != Freedom::Rising {
+            let entry = self.get_mut(value);
+            entry.digits -= 1;
+            entry.freedom = Freedom::Lowered;
+            return Ok(Some(value));
+        }
+        let Some(used) = worst else {
+            let Kind::Step { text, .. } = &entry.kind else {
+                return Ok(None);
+            };
+            let span = 0..text.len();
+            return Err(FormulaError {
+                text: text.clone(),
+                span,
+                problem: Problem::Unsettled,
+            });
+        };
+        let entry = self.get_mut(used);
+        entry.digits += 1;
+        if entry.freedom == Freedom::Lowered {
+            entry.freedom = Freedom::Rising;
+        }
+        Ok(Some(used))
+    }
+
+    /// The operand whose rounding moves the result most, of those that may take another digit.
+    fn worst_operand(&self, value: Value, most: usize) -> Option<Value> {
         let mut worst: Option<(f64, Value)> = None;
         for used in self.uses(value) {
-            if !self.can_rise(used) {
+            if self.get(used).digits >= most || !self.can_rise(used) {
                 continue;
             }
             let effect = self.effect_of_rounding(value, used);
@@ -161,21 +207,7 @@ impl Ledger {
                 worst = Some((effect, used));
             }
         }
-        if worst.is_none() && miss <= 1.0 + 1e-6 {
-            return Ok(None);
-        }
-        let Some((_, used)) = worst else {
-            let Kind::Step { text, .. } = &self.get(value).kind else {
-                return Ok(None);
-            };
-            return Err(FormulaError {
-                text: text.clone(),
-                span: 0..text.len(),
-                problem: Problem::Unsettled,
-            });
-        };
-        self.get_mut(used).digits += 1;
-        Ok(Some(used))
+        worst.map(|(_, used)| used)
     }
 
     /// Whether more digits would change what is printed of a value.
@@ -187,9 +219,7 @@ impl Ledger {
             Kind::Bound { .. } => false,
         };
         let shown = self.shown(value, entry.value);
-        computed
-            && entry.digits < MOST_DIGITS
-            && (self.printed(value).value() - shown).abs() > 1e-14 * shown.abs()
+        computed && (self.printed(value).value() - shown).abs() > 1e-14 * shown.abs()
     }
 
     /// How far half a unit in the last digit of `used` moves the result of `value`.

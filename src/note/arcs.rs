@@ -9,6 +9,9 @@ use crate::quantity::{Dim, Given};
 use crate::weld::{Segment, V3};
 use std::f64::consts::PI;
 
+/// Share of A R² under which the second moment of an arc toward its middle prints 0.
+const FLAT: f64 = 1e-6;
+
 /// Sweeps within this of a full turn are a circle (rad).
 const FULL_TURN: f64 = 1e-9;
 
@@ -310,8 +313,33 @@ impl Builder<'_> {
             length,
         )?;
         self.arc_step(index, "A", Symbol::of("A", &[]), "Throat area", "t*L")?;
-        let along = "R^2*(sin(theta_b) - sin(theta_a))/L";
-        let across = "R^2*(cos(theta_a) - cos(theta_b))/L";
+        // Half angle and middle: differences of near angles would cost a short arc its digits.
+        let half = Symbol::of("beta", &[]);
+        self.arc_step(
+            index,
+            "beta",
+            half,
+            "Half of the angle of the arc",
+            "(theta_b - theta_a)/2",
+        )?;
+        let middle = Symbol::of("mu", &[]);
+        self.arc_step(
+            index,
+            "mu",
+            middle,
+            "Angle of its middle",
+            "(theta_a + theta_b)/2",
+        )?;
+        let says = "Centroid from the centre, toward the middle of the arc";
+        self.arc_step(
+            index,
+            "c_r",
+            Symbol::of("c", &["r"]),
+            says,
+            "2*R^2*sin(beta)/L",
+        )?;
+        let along = "c_r*cos(mu)";
+        let across = "c_r*sin(mu)";
         self.arc_step(
             index,
             "c_u",
@@ -362,11 +390,25 @@ impl Builder<'_> {
 
     fn own_moments(&mut self, index: usize) -> Result<(), FormulaError> {
         let q = |a: &str, b: &str| Symbol::of("Q", &[a, b]);
-        let swing = "R^3*(sin(2*theta_b) - sin(2*theta_a))/4";
+        let says = "Second moment about the arc's own centroid, toward its middle";
+        let radial = "t*R^3*(L/(2*R) + sin(beta)*cos(beta) - 4*R*sin(beta)^2/L)";
+        let depth = self.arc_step(index, "Q_r", Symbol::of("Q", &["r"]), says, radial)?;
+        // The depth of a flat arc: a difference of terms of the size A R², of which it keeps little.
+        let of = |name: &str| self.ledger.get(self.run_values[index][name]).value;
+        let size = of("A") * of("R") * of("R");
+        self.ledger.raise_floor(depth, FLAT * size);
+        let says = "Second moment about the arc's own centroid, square to that";
+        self.arc_step(
+            index,
+            "Q_t",
+            Symbol::of("Q", &["t"]),
+            says,
+            "t*R^3*(L/(2*R) - sin(beta)*cos(beta))",
+        )?;
         let says = "Second moment about the arc's own centroid";
-        let uu = format!("t*(R^2*L/2 + {swing}) - A*c_u^2");
-        let vv = format!("t*(R^2*L/2 - {swing}) - A*c_v^2");
-        let uv = "t*R^3*(sin(theta_b)^2 - sin(theta_a)^2)/2 - A*c_u*c_v";
+        let uu = "Q_r*cos(mu)^2 + Q_t*sin(mu)^2".to_owned();
+        let vv = "Q_r*sin(mu)^2 + Q_t*cos(mu)^2".to_owned();
+        let uv = "(Q_r - Q_t)*sin(mu)*cos(mu)";
         if self.planar {
             // In the plane u is x and v is y: I_yy is the integral of x², I_xx that of y².
             for (at, formula) in [(0, vv.as_str()), (1, uu.as_str()), (2, uv)] {

@@ -250,21 +250,22 @@ fn every_section_title_stands_in_the_pages_and_in_the_markdown() {
 }
 
 /// The order in which the trade expects the sections of a stress note.
-const SECTIONS: [&str; 17] = [
+const SECTIONS: [&str; 18] = [
     "purpose",
     "inputs",
     "assumptions",
     "geometry",
     "materials",
+    "method",
     "loads",
     "lines",
     "stress",
     "margins",
     "refusals",
     "sizes",
-    "handbook",
     "opinions",
     "coverage",
+    "open-items",
     "cautions",
     "changes",
     "signatures",

@@ -17,19 +17,17 @@ const JOINTS: u64 = 400;
 
 /// Most significant digits of a computed line over these joints: the end angles of short arcs, whose
 /// own second moments are small differences. The program itself allows 13.
-const MOST_DIGITS: usize = 11;
+const MOST_DIGITS: usize = 14;
 
-/// Lines that print 0 today though their printed numbers give another number: the floor under which
-/// a second moment prints 0 grows with the fourth power of the group's size. There should be none.
-const FALSE_ZEROS: usize = 40;
+/// Lines that print 0 though their printed numbers give another number.
+const FALSE_ZEROS: usize = 0;
 
-/// Notes refused today because digits do not settle on account of such a zero. There should be none.
-const UNSETTLED: usize = 1;
+/// Notes refused because digits do not settle.
+const UNSETTLED: usize = 0;
 
-/// Wide joints refused today though the assessment has their numbers: steps on skewed, stitched and
-/// two-sided runs lack a value or take another one. There should be none; `small_joints_have_a_note`
-/// in `open.rs` holds the smallest of each kind.
-const UNWRITTEN: usize = 63;
+/// Wide joints refused though the assessment has their numbers; `small_joints_have_a_note` in
+/// `whole.rs` holds the smallest of each kind.
+const UNWRITTEN: usize = 0;
 
 /// Which joints are tried.
 #[derive(Clone, Copy, PartialEq, Eq)]

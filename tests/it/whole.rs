@@ -1,6 +1,4 @@
-//! What should hold and does not yet: each test here states the right behaviour.
-//!
-//! Not yet named in `main.rs`. A test moves beside its fellows once it passes.
+//! Small joints of every kind of weld have a whole note; labels of drawings stand clear.
 
 use crate::command::{Project, joint_with};
 use crate::notes::strays;

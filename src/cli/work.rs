@@ -3,7 +3,7 @@
 use super::arguments::{Arguments, Command, OutputKind, ScopeArgs};
 use super::exit;
 use crate::criteria::Library;
-use crate::note::{Calculation, Standing};
+use crate::note::{Calculation, Standing, write_note};
 use crate::project::{
     JointFile, Kinds, ProjectError, Workshop, find_joints, read_joint_file, read_library, written,
 };
@@ -24,7 +24,7 @@ pub struct Said {
 }
 
 /// How one joint stands.
-struct Result1 {
+struct Outcome {
     line: String,
     holds: bool,
 }
@@ -100,7 +100,7 @@ fn work(
         Job::Vet => None,
     };
     let next = AtomicUsize::new(0);
-    let results: Mutex<BTreeMap<usize, Result<Result1, ProjectError>>> =
+    let results: Mutex<BTreeMap<usize, Result<Outcome, ProjectError>>> =
         Mutex::new(BTreeMap::new());
     std::thread::scope(|threads_of| {
         for _ in 0..threads {
@@ -110,7 +110,7 @@ fn work(
                     let Some(joint) = joints.get(index) else {
                         break;
                     };
-                    let result = one(joint, &libraries[&joint.folder], job, workshop.as_ref());
+                    let result = guarded(joint, &libraries[&joint.folder], job, workshop.as_ref());
                     results
                         .lock()
                         .expect("no worker panics while it holds the results")
@@ -125,12 +125,28 @@ fn work(
     summary(joints, results, scope.must_hold, workshop.is_some(), colour)
 }
 
+/// One joint; a fault of the program itself stays with that joint.
+fn guarded(
+    joint: &JointFile,
+    library: &Library,
+    job: &Job,
+    workshop: Option<&Workshop>,
+) -> Result<Outcome, ProjectError> {
+    let attempt = std::panic::AssertUnwindSafe(|| one(joint, library, job, workshop));
+    std::panic::catch_unwind(attempt).unwrap_or_else(|_| {
+        Err(ProjectError::File {
+            path: joint.path.clone(),
+            what: "the program failed on this joint; please report it with the file".to_owned(),
+        })
+    })
+}
+
 fn one(
     joint: &JointFile,
     library: &Library,
     job: &Job,
     workshop: Option<&Workshop>,
-) -> Result<Result1, ProjectError> {
+) -> Result<Outcome, ProjectError> {
     match (job, workshop) {
         (Job::Write { out, kinds }, Some(workshop)) => {
             let produced = workshop.produce(joint, library, *kinds)?;
@@ -145,14 +161,15 @@ fn one(
             let file = read_joint_file(&joint.path)?;
             let told = crate::joint::read_joint(&file)?;
             let calculation = Calculation::of(&told, library)?;
-            Ok(said(&calculation.standing(), joint, ""))
+            let note = write_note(&calculation)?;
+            Ok(said(&note.standing, joint, ""))
         }
     }
 }
 
-fn said(standing: &Standing, joint: &JointFile, tail: &str) -> Result1 {
+fn said(standing: &Standing, joint: &JointFile, tail: &str) -> Outcome {
     let line = format!("{}  {}{tail}", joint.path.display(), standing.line());
-    Result1 {
+    Outcome {
         line,
         holds: standing.holds(),
     }
@@ -160,7 +177,7 @@ fn said(standing: &Standing, joint: &JointFile, tail: &str) -> Result1 {
 
 fn summary(
     joints: &[JointFile],
-    results: BTreeMap<usize, Result<Result1, ProjectError>>,
+    results: BTreeMap<usize, Result<Outcome, ProjectError>>,
     must_hold: bool,
     writes: bool,
     colour: bool,
@@ -170,7 +187,7 @@ fn summary(
     let mut all_hold = true;
     for (index, result) in results {
         match result {
-            Ok(Result1 { line, holds }) => {
+            Ok(Outcome { line, holds }) => {
                 said.out.push_str(&line);
                 said.out.push('\n');
                 all_hold &= holds;

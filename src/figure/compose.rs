@@ -14,6 +14,8 @@ use super::triad::{draw_centroid, draw_triad};
 use super::view::{View, project, samples, unit};
 use crate::weld::{Segment, V3};
 
+/// Greatest thickness of a run on the sheet (mm): beyond, the throat hides the joint.
+const THICKEST_RUN: f64 = 6.0;
 /// Least thickness of a run (pt).
 const LEAST_RUN: f64 = 0.9;
 /// Radius of a check point's circle, and the least where points crowd (mm).
@@ -198,7 +200,9 @@ impl<'a> Sheet<'a> {
     fn run_stroke(&self, run: &RunLine) -> Stroke {
         let least = Stroke::black(LEAST_RUN);
         Stroke {
-            width: (run.throat * self.view.scale).max(least.width),
+            width: (run.throat * self.view.scale)
+                .max(least.width)
+                .min(THICKEST_RUN),
             ..least
         }
     }

@@ -23,6 +23,8 @@ const CONVERTED_DIGITS: usize = 8;
 const LOAD_FLOOR: f64 = 1e-9;
 /// The same for second moments, which small runs of a large group have as well; areas lie between.
 const SECOND_FLOOR: f64 = 1e-13;
+/// The same for products of second moments, such as their determinant in a slender group.
+const PRODUCT_FLOOR: f64 = 1e-22;
 /// The same for areas.
 const AREA_FLOOR: f64 = 1e-11;
 
@@ -207,6 +209,8 @@ pub struct Ledger {
     /// Natural sizes of force and length, for the floors.
     scales: (f64, f64),
     entries: Vec<Entry>,
+    /// What is printed of each entry, kept while digits settle; empty before.
+    pub(super) shown: Vec<(Printed, f64)>,
 }
 
 impl Ledger {
@@ -218,6 +222,7 @@ impl Ledger {
             units,
             scales: (force, length),
             entries: Vec::new(),
+            shown: Vec::new(),
         }
     }
 
@@ -258,7 +263,8 @@ impl Ledger {
         let part = |scale: f64, twelfths: i16| real::power(scale, f64::from(twelfths) / 12.0);
         let share = match (dim.force, dim.length / 12) {
             (0, 2) => AREA_FLOOR,
-            (0, 3..) => SECOND_FLOOR,
+            (0, 3 | 4) => SECOND_FLOOR,
+            (0, 5..) => PRODUCT_FLOOR,
             _ => LOAD_FLOOR,
         };
         share * part(self.scales.0, dim.force) * part(self.scales.1, dim.length)
@@ -432,6 +438,26 @@ impl Ledger {
     /// The number as it is printed everywhere; degrees for an angle.
     #[must_use]
     pub fn printed(&self, value: Value) -> Printed {
+        match self.shown.get(value.0) {
+            Some((printed, _)) => printed.clone(),
+            None => self.print(value),
+        }
+    }
+
+    /// Keeps what is printed of every value, and again of one whose digits have changed.
+    pub(super) fn keep_printed(&mut self, changed: Option<Value>) {
+        let kept = |ledger: &Self, value: Value| {
+            let printed = ledger.print(value);
+            let plain = ledger.plain_value(value, &printed);
+            (printed, plain)
+        };
+        match changed {
+            Some(value) => self.shown[value.0] = kept(self, value),
+            None => self.shown = self.values().map(|value| kept(self, value)).collect(),
+        }
+    }
+
+    fn print(&self, value: Value) -> Printed {
         let entry = self.get(value);
         let shown = if entry.dim == Dim::ANGLE {
             entry.value.to_degrees()
@@ -458,11 +484,18 @@ impl Ledger {
     /// The number that the printed text stands for, in the printing set; rad for an angle.
     #[must_use]
     pub fn printed_value(&self, value: Value) -> f64 {
-        let printed = self.printed(value).value();
+        match self.shown.get(value.0) {
+            Some((_, plain)) => *plain,
+            None => self.plain_value(value, &self.print(value)),
+        }
+    }
+
+    fn plain_value(&self, value: Value, printed: &Printed) -> f64 {
+        let number = printed.value();
         if self.get(value).dim == Dim::ANGLE {
-            printed.to_radians()
+            number.to_radians()
         } else {
-            printed
+            number
         }
     }
 

@@ -70,6 +70,9 @@ pub enum Problem {
     /// Brackets nest too deep.
     #[error("the brackets nest too deep")]
     TooDeep,
+    /// Too many operands.
+    #[error("the formula has too many operands; split it into named steps")]
+    TooLong,
     /// `min` or `max` of one operand.
     #[error("`{0}` takes two operands or more")]
     OneOperand(String),

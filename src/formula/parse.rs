@@ -11,6 +11,9 @@ use std::ops::Range;
 /// How deep brackets may nest; far beyond any formula that fits a page.
 const DEEPEST: usize = 48;
 
+/// How many operands a formula may have; beyond, it wants named steps.
+const LONGEST: usize = 200;
+
 /// Reads a formula.
 ///
 /// # Errors
@@ -21,6 +24,7 @@ pub fn parse(text: &str) -> Result<Node, FormulaError> {
         text,
         at: 0,
         depth: 0,
+        length: 0,
         in_sum: false,
     };
     let node = parser.sum_of_terms()?;
@@ -38,6 +42,7 @@ struct Parser<'a> {
     text: &'a str,
     at: usize,
     depth: usize,
+    length: usize,
     in_sum: bool,
 }
 
@@ -151,6 +156,10 @@ impl<'a> Parser<'a> {
                 kind: Kind::Negative(Box::new(inner)),
                 span,
             });
+        }
+        self.length += 1;
+        if self.length > LONGEST {
+            return Err(self.fault(start..self.at, Problem::TooLong));
         }
         let base = self.primary()?;
         if self.eat("^") {

@@ -29,12 +29,14 @@ impl Ledger {
     ///
     /// [`Problem::Unsettled`] if a line needs an operand beyond the bound of 13 digits.
     pub fn settle(&mut self) -> Result<(), FormulaError> {
+        self.keep_printed(None);
         let users = self.users();
         let mut queue: VecDeque<Value> = self.values().collect();
         let mut waiting = vec![true; queue.len()];
         while let Some(value) = queue.pop_front() {
             waiting[value.0] = false;
             while let Some(raised) = self.raise_for(value)? {
+                self.keep_printed(Some(raised));
                 for other in users[raised.0].iter().copied().chain([raised]) {
                     if other != value && !waiting[other.0] {
                         waiting[other.0] = true;
@@ -197,12 +199,18 @@ impl Ledger {
 
     /// The operand whose rounding moves the result most, of those that may take another digit.
     fn worst_operand(&self, value: Value, most: usize) -> Option<Value> {
+        let plain = self.allowed_miss(value) < 1.0;
         let mut worst: Option<(f64, Value)> = None;
         for used in self.uses(value) {
             if self.get(used).digits >= most || !self.can_rise(used) {
                 continue;
             }
-            let effect = self.effect_of_rounding(value, used);
+            let effect = if plain {
+                // In a plain sum every operand moves the result by its own rounding.
+                self.printed(used).unit_in_last()
+            } else {
+                self.effect_of_rounding(value, used)
+            };
             if worst.is_none_or(|(known, _)| effect > known) {
                 worst = Some((effect, used));
             }

@@ -304,7 +304,11 @@ impl Builder<'_> {
             "Upper limit of the effective arc",
             &high,
         )?;
-        let length = "pi*R*(theta_b - theta_a)/(180 deg)";
+        let length = if trimmed {
+            "pi*R*abs(phi)/(180 deg) - e_a - e_b"
+        } else {
+            "pi*R*abs(phi)/(180 deg)"
+        };
         self.arc_step(
             index,
             "L",
@@ -313,14 +317,14 @@ impl Builder<'_> {
             length,
         )?;
         self.arc_step(index, "A", Symbol::of("A", &[]), "Throat area", "t*L")?;
-        // Half angle and middle: differences of near angles would cost a short arc its digits.
+        // The half angle from the length: a difference of near angles would cost a short arc its digits.
         let half = Symbol::of("beta", &[]);
         self.arc_step(
             index,
             "beta",
             half,
             "Half of the angle of the arc",
-            "(theta_b - theta_a)/2",
+            "(90 deg)*L/(pi*R)",
         )?;
         let middle = Symbol::of("mu", &[]);
         self.arc_step(

@@ -112,14 +112,6 @@ impl<'a> Calculation<'a> {
             let strength = library
                 .find(&check.clause.value)
                 .is_some_and(|sheet| !sheet.checks.is_empty());
-            if let (true, Some((case, why))) = (strength, self.unresisted()) {
-                outcomes.push(Outcome::Refused(self.no_path(
-                    check.clause.value.clone(),
-                    case,
-                    &why,
-                )));
-                continue;
-            }
             let stress = |case: usize, run: usize, p: f64| match &self.fields[case] {
                 Ok(field) => field.at(self.runs[run].path.point(p)),
                 Err(_) => V3::zeros(),
@@ -130,6 +122,14 @@ impl<'a> Calculation<'a> {
                 stress: &stress,
             };
             match assess(&ground, library) {
+                Ok(_) if strength && self.unresisted().is_some() => {
+                    let (case, why) = self.unresisted().expect("it was just found");
+                    outcomes.push(Outcome::Refused(self.no_path(
+                        check.clause.value.clone(),
+                        case,
+                        &why,
+                    )));
+                }
                 Ok(assessment) => outcomes.extend(assessment.asked.into_iter().map(|mut asked| {
                     asked.index = index;
                     Outcome::Assessed(asked)

@@ -58,6 +58,9 @@ pub struct SketchLoad {
     pub moment: [(f64, String); 3],
 }
 
+/// Characters of a run's name that the drawing shows at most; it shortens further to fit.
+const LONGEST_NAME: usize = 60;
+
 /// A short decimal of a length for the drawing.
 fn short(length: f64, size: f64) -> String {
     Printed::of(length, 4, 7, 1e-9 * size).text()
@@ -134,7 +137,8 @@ impl Builder<'_> {
             .nth(1)
             .unwrap_or(&words)
             .replace(&format!(" {}", self.joint.units.value.length()), "");
-        format!("{}, {size}", self.runs[index].name)
+        let name: String = self.runs[index].name.chars().take(LONGEST_NAME).collect();
+        format!("{name}, {size}")
     }
 
     /// Overall width and depth of the group, and how far out the load stands.

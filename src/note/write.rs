@@ -169,7 +169,12 @@ fn compose(calculation: &Calculation<'_>) -> Result<Note, NoteError> {
     let identity = Identity::of(joint, &b.ledger, &sheets, &results);
     let verdict = verdict(&b, calculation, &checks, &open);
     let governing = checks.first().map(|check| {
-        let case = &joint.loads.cases[check.governing.case].name.value;
+        let case: String = joint.loads.cases[check.governing.case]
+            .name
+            .value
+            .chars()
+            .take(40)
+            .collect();
         (check.governing.position, format!("governs, {case}"))
     });
     let first_case = checks.first().map(|check| check.governing.case);

@@ -34,6 +34,14 @@ pub fn stage(folder: &Path, outputs: &[Output]) -> Result<(), ProjectError> {
         let path = staging.path().join(output.name);
         fs::write(&path, &output.bytes).map_err(|fault| error(&path, fault))?;
     }
+    // A trace stands for a whole note: it goes first, and comes back last.
+    let trace = folder.join("trace.json");
+    match fs::remove_file(&trace) {
+        Err(fault) if fault.kind() != std::io::ErrorKind::NotFound => {
+            return Err(error(&trace, fault));
+        }
+        Ok(()) | Err(_) => {}
+    }
     for output in outputs {
         let path = folder.join(output.name);
         fs::rename(staging.path().join(output.name), &path).map_err(|fault| error(&path, fault))?;

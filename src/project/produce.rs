@@ -92,11 +92,14 @@ impl Workshop {
             joint: file.name.clone(),
             fault,
         };
-        let drawing = draw(&scene(&note.sketch), &self.faces);
-        note.set_caption(&drawing.view, &drawing.scale, &drawing.remarks);
+        let drawing =
+            (kinds.markdown || kinds.pdf).then(|| draw(&scene(&note.sketch), &self.faces));
+        if let Some(drawing) = &drawing {
+            note.set_caption(&drawing.view, &drawing.scale, &drawing.remarks);
+        }
         let trace = note.trace_json();
         let mut outputs = Vec::new();
-        if kinds.markdown {
+        if let (true, Some(drawing)) = (kinds.markdown, &drawing) {
             let markdown = render_markdown(&note.doc).map_err(render)?;
             outputs.push(Output {
                 name: "note.md",
@@ -104,15 +107,15 @@ impl Workshop {
             });
             let svg = self
                 .press
-                .svg(&standalone_source(&drawing))
+                .svg(&standalone_source(drawing))
                 .map_err(render)?;
             outputs.push(Output {
                 name: "figure.svg",
                 bytes: svg.into_bytes(),
             });
         }
-        if kinds.pdf {
-            let drawings = Drawings::from([(FIGURE.to_owned(), typst_source(&drawing))]);
+        if let (true, Some(drawing)) = (kinds.pdf, &drawing) {
+            let drawings = Drawings::from([(FIGURE.to_owned(), typst_source(drawing))]);
             let source = render_typst(&note.doc, &drawings).map_err(render)?;
             let name = joint
                 .path

@@ -66,6 +66,12 @@ pub fn find_joints(paths: &[PathBuf]) -> Result<Vec<JointFile>, ProjectError> {
     }
     let mut stems: BTreeMap<&str, &Path> = BTreeMap::new();
     for joint in &found {
+        if joint.stem.chars().all(|c| c == '.') {
+            return Err(file_error(
+                &joint.path,
+                "has no name for its folder of outputs; rename it",
+            ));
+        }
         if let Some(other) = stems.insert(&joint.stem, &joint.path) {
             let what = format!(
                 "would write into the same folder of outputs as {}; rename one of the two",
@@ -161,7 +167,10 @@ pub fn read_library(folder: &Path) -> Result<Library, ProjectError> {
         return Ok(library);
     }
     let mut faults = Vec::new();
-    for path in sorted(&sheets)?.into_iter().filter(|path| is_yaml(path)) {
+    for path in sorted(&sheets)?
+        .into_iter()
+        .filter(|path| is_yaml(path) && path.is_file())
+    {
         let file = read_joint_file(&path)?;
         let added = read_sheet(&file).and_then(|sheet| library.add(sheet));
         if let Err(found) = added {

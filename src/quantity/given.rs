@@ -60,6 +60,9 @@ impl Given {
         let text = text.trim();
         let (number, unit) = split_unit(text);
         let typed = parse_number(number)?;
+        if !typed.is_finite() {
+            return Err(GivenError::NotFinite(text.to_owned()));
+        }
         let Some(unit_text) = unit else {
             if dim == Dim::ANGLE && typed != 0.0 {
                 return Err(GivenError::BareAngle(text.to_owned()));

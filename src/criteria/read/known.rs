@@ -226,6 +226,7 @@ pub(super) fn fault(error: &FormulaError, told: &Told<String>, shift: usize) -> 
         | Problem::Number(_)
         | Problem::Unit(_)
         | Problem::TooDeep
+        | Problem::TooLong
         | Problem::OneOperand(_)
         | Problem::NestedSum
         | Problem::UnknownFunction(_)

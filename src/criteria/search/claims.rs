@@ -1,11 +1,13 @@
 //! A sheet's claims held against its numbers: proportional to the loads, convex along a run.
 
 use super::Search;
-use crate::criteria::evaluate::Bench;
+use crate::criteria::evaluate::{Bench, Pair};
 use crate::solve::search::TIE;
 use crate::source::Diagnostic;
 use crate::weld::Segment;
 
+/// Load factors beyond which a claim of proportionality is not followed.
+const FAR: f64 = 1e6;
 /// Relative miss up to which a demand counts as proportional to the loads.
 const PROPORTIONAL: f64 = 1e-9;
 impl Search<'_> {
@@ -62,28 +64,47 @@ impl Search<'_> {
             return Ok(());
         }
         let once = self.pair(bench, check, (case, p, 1.0))?;
-        let twice = self.pair(bench, check, (case, p, 2.0))?;
+        self.proportional_to(bench, check, (case, p), once, 2.0)?;
+        // Where the limit is reached the claim must hold as well, or the margin is wrong.
+        let reached = once.capacity / once.demand;
+        if once.demand > 0.0 && once.capacity > 0.0 && reached < FAR {
+            self.proportional_to(bench, check, (case, p), once, reached)?;
+        }
+        Ok(())
+    }
+
+    /// Refuses a claim of proportionality that fails at `times` the loads.
+    fn proportional_to(
+        &self,
+        bench: &Bench<'_>,
+        check: usize,
+        (case, p): (usize, f64),
+        once: Pair,
+        times: f64,
+    ) -> Result<(), Diagnostic> {
+        let strength = &self.asking.sheet.checks[check];
+        let other = self.pair(bench, check, (case, p, times))?;
         let differs = |a: f64, b: f64, size: f64| (a - b).abs() > PROPORTIONAL * size;
         // A demand that cancels to rounding noise is held to a part of the capacity.
         let noise = 1e-6 * once.capacity.abs();
         let demand = differs(
-            twice.demand,
-            2.0 * once.demand,
-            twice.demand.abs().max(noise),
+            other.demand,
+            times * once.demand,
+            other.demand.abs().max(noise),
         );
-        let capacity = differs(twice.capacity, once.capacity, once.capacity.abs());
+        let capacity = differs(other.capacity, once.capacity, once.capacity.abs());
         if !demand && !capacity {
             return Ok(());
         }
         let what = if demand {
             format!(
-                "twice the loads make its demand {} of {}",
-                twice.demand, once.demand
+                "{times} times the loads make its demand {} of {}",
+                other.demand, once.demand
             )
         } else {
             format!(
-                "twice the loads make its capacity {} of {}",
-                twice.capacity, once.capacity
+                "{times} times the loads make its capacity {} of {}",
+                other.capacity, once.capacity
             )
         };
         let message = format!(

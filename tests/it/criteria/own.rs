@@ -92,7 +92,7 @@ fn a_wrong_claim_of_proportionality_is_refused() {
     assert_eq!(
         faults.render(false),
         "\
-error[not-proportional]: `interaction` says it is proportional to the loads, but twice the loads make its demand 2 of 0.5
+error[not-proportional]: `interaction` says it is proportional to the loads, but 2 times the loads make its demand 2 of 0.5
   --> joints/sheets/own.yaml:27:5
    |
 27 |   - {name: interaction, demand: I, capacity: 1, proportional: true, says: the interaction stays under 1}

@@ -409,6 +409,7 @@ impl Builder<'_> {
             says,
             "t*R^3*(L/(2*R) - sin(beta)*cos(beta))",
         )?;
+        let width = self.ledger.get(self.run_values[index]["Q_t"]).value;
         let says = "Second moment about the arc's own centroid";
         let uu = "Q_r*cos(mu)^2 + Q_t*sin(mu)^2".to_owned();
         let vv = "Q_r*sin(mu)^2 + Q_t*cos(mu)^2".to_owned();
@@ -417,7 +418,8 @@ impl Builder<'_> {
             // In the plane u is x and v is y: I_yy is the integral of x², I_xx that of y².
             for (at, formula) in [(0, vv.as_str()), (1, uu.as_str()), (2, uv)] {
                 let symbol = Self::pair_symbol(self.pairs()[at].0).with("0");
-                self.arc_step(index, OWN[at], symbol, says, formula)?;
+                let value = self.arc_step(index, OWN[at], symbol, says, formula)?;
+                self.ledger.raise_floor(value, FLAT * width);
             }
             return Ok(());
         }
@@ -426,7 +428,8 @@ impl Builder<'_> {
             ("Q_vv", q("v", "v"), vv.as_str()),
             ("Q_uv", q("u", "v"), uv),
         ] {
-            self.arc_step(index, name, symbol, says, formula)?;
+            let value = self.arc_step(index, name, symbol, says, formula)?;
+            self.ledger.raise_floor(value, FLAT * width);
         }
         for (at, (name, p, r)) in self.pairs().iter().enumerate() {
             let (a, b) = (AXES[*p], AXES[*r]);

@@ -2,7 +2,6 @@
 
 use crate::command::{Project, joint_with};
 use crate::notes::strays;
-use crate::settle::{Breadth, Tally};
 
 /// Labels along slanted lines that stand clear of each other are no overlap, though their upright
 /// boxes meet: the check must look at the boxes as turned.
@@ -11,36 +10,6 @@ fn slanted_labels_that_stand_clear_are_no_overlap() {
     for (name, stray) in strays() {
         panic!("{name}: {stray:#?}");
     }
-}
-
-/// A note of each of the plain joints settles: a value that prints 0 is one that its printed
-/// numbers give as 0, so the floor of a quantity is never above what a replay allows a zero.
-#[test]
-fn every_plain_joint_settles() {
-    let tally = Tally::of(Breadth::Plain);
-    let all: Vec<&str> = tally
-        .unsettled
-        .iter()
-        .chain(&tally.zeros)
-        .map(String::as_str)
-        .collect();
-    assert!(all.is_empty(), "{}\n{}", tally.summary(), all.join("\n"));
-}
-
-/// Skewed fillets, beads on both sides, stitches, legs beside stated throats: the steps name every
-/// value they use and give what the assessment gave.
-#[test]
-fn every_wide_joint_has_a_note() {
-    let tally = Tally::of(Breadth::Wide);
-    let all: Vec<&str> = tally
-        .faults
-        .iter()
-        .chain(&tally.unwritten)
-        .chain(&tally.unsettled)
-        .chain(&tally.zeros)
-        .map(String::as_str)
-        .collect();
-    assert!(all.is_empty(), "{}\n{}", tally.summary(), all.join("\n"));
 }
 
 /// A joint of one or two runs with one case and one check.

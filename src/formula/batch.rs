@@ -2,7 +2,7 @@
 //!
 //! Shares no evaluation loop with [`super::evaluate`]; a test compares them.
 
-use super::eval::{Look, apply, call, evaluate, governs};
+use super::eval::{Look, apply, call, evaluate};
 use super::node::{Function, Kind, Node, Op, Relation};
 use super::table::{Key, Table};
 use super::{FormulaError, Problem};
@@ -122,12 +122,12 @@ impl Program {
                     top -= 1;
                 }
                 Step::Extreme { greatest, count } => {
-                    for point in 0..size {
-                        let values: Vec<f64> =
-                            (top - count..top).map(|row| stack[row][point]).collect();
-                        stack[top - count][point] = values[governs(*greatest, &values)];
+                    // The first of equals stays, as for the single evaluator.
+                    let better = |a: f64, b: f64| if *greatest { b > a } else { b < a };
+                    for _ in 1..*count {
+                        combine(stack, top, size, |a, b| if better(a, b) { b } else { a });
+                        top -= 1;
                     }
-                    top -= count - 1;
                 }
                 Step::Lookup(table) => stack[top - 1][..size].iter_mut().for_each(|x| {
                     *x = table
@@ -140,6 +140,10 @@ impl Program {
                 } => {
                     let used = relations.len() * 3 + usize::from(*otherwise);
                     let base = top - used;
+                    #[expect(
+                        clippy::needless_range_loop,
+                        reason = "a point is read across several blocks"
+                    )]
                     for point in 0..size {
                         let at = |row: usize| stack[base + row][point];
                         let chosen = relations

@@ -562,12 +562,9 @@ fn conversion_text(given: &Given) -> String {
     };
     let mut text = number;
     for factor in &given.conversion.factors {
-        let sign = if factor.power < 0 && factor.number != 10.0 {
-            "/"
-        } else {
-            "*"
-        };
-        let power = if factor.number == 10.0 {
+        let tens = (factor.number - 10.0).abs() < 1e-12;
+        let sign = if factor.power < 0 && !tens { "/" } else { "*" };
+        let power = if tens {
             factor.power
         } else {
             factor.power.abs()

@@ -25,29 +25,29 @@ pub enum Math {
     /// π.
     Pi,
     /// Terms with their signs: true is minus.
-    Terms(Vec<(bool, Math)>),
+    Terms(Vec<(bool, Self)>),
     /// Factors; a dot stands between numbers, a thin space between symbols.
-    Product(Vec<Math>),
+    Product(Vec<Self>),
     /// A built-up fraction.
-    Fraction(Box<Math>, Box<Math>),
+    Fraction(Box<Self>, Box<Self>),
     /// A fraction on the line.
-    Slash(Box<Math>, Box<Math>),
+    Slash(Box<Self>, Box<Self>),
     /// A power.
-    Power(Box<Math>, Box<Math>),
+    Power(Box<Self>, Box<Self>),
     /// A square root.
-    Root(Box<Math>),
+    Root(Box<Self>),
     /// Brackets.
-    Bracket(Box<Math>),
+    Bracket(Box<Self>),
     /// A magnitude.
-    Magnitude(Box<Math>),
+    Magnitude(Box<Self>),
     /// A function by its name.
-    Call(&'static str, Vec<Math>),
+    Call(&'static str, Vec<Self>),
     /// A sum sign over an index letter.
-    Sum(String, Box<Math>),
+    Sum(String, Box<Self>),
     /// A comparison with its sign as in formulas.
-    Relation(&'static str, Box<Math>, Box<Math>),
+    Relation(&'static str, Box<Self>, Box<Self>),
     /// Pieces side by side.
-    Row(Vec<Math>),
+    Row(Vec<Self>),
 }
 
 /// Escapes a text for a Typst string literal.

@@ -161,25 +161,10 @@ impl Builder<'_> {
     pub(super) fn make(
         &mut self,
         name: &str,
-        id: String,
-        symbol: Symbol,
-        says: String,
-        formula: &str,
-        method: &str,
+        draft: Draft<'_>,
         env: &Env,
     ) -> Result<Value, FormulaError> {
-        let origin = Origin::Method(method.to_owned());
-        let value = self.ledger.step(
-            Draft {
-                id,
-                symbol,
-                says,
-                formula,
-                origin,
-                dim: None,
-            },
-            env,
-        )?;
+        let value = self.ledger.step(draft, env)?;
         self.env.bind(name, value);
         Ok(value)
     }
@@ -194,15 +179,16 @@ impl Builder<'_> {
     ) -> Result<Value, FormulaError> {
         let name = symbol.plain();
         let env = self.env.clone();
-        let value = self.make(
-            &name,
-            name.replace('_', "-"),
+        let origin = Origin::Method(method.to_owned());
+        let draft = Draft {
+            id: name.replace('_', "-"),
             symbol,
-            says.to_owned(),
+            says: says.to_owned(),
             formula,
-            method,
-            &env,
-        )?;
+            origin,
+            dim: None,
+        };
+        let value = self.make(&name, draft, &env)?;
         self.show(value);
         Ok(value)
     }

@@ -89,7 +89,7 @@ impl Builder<'_> {
         let mut rows = Vec::new();
         let mut worst: f64 = 0.0;
         for told in told {
-            let value = self.from_handbook(&told, algebra[told.index], &env)?;
+            let value = self.by_handbook(&told, algebra[told.index], &env)?;
             let sum = self.group_value(told.sum);
             let (found, summed) = (self.ledger.get(value).value, self.ledger.get(sum).value);
             let scale = if told.index < 3 {
@@ -186,7 +186,7 @@ impl Builder<'_> {
         env
     }
 
-    fn from_handbook(
+    fn by_handbook(
         &mut self,
         told: &Told,
         algebra: &str,

@@ -456,7 +456,16 @@ impl Builder<'_> {
         env.sets.insert("runs".to_owned(), self.run_set(columns));
         let id = format!("group.{}", name.to_lowercase().replace('_', "-"));
         let bound = if name == "A" { "A_w" } else { name };
-        let value = self.make(bound, id, symbol, says.to_owned(), formula, "statics", &env)?;
+        let origin = Origin::Method("statics".to_owned());
+        let draft = Draft {
+            id,
+            symbol,
+            says: says.to_owned(),
+            formula,
+            origin,
+            dim: None,
+        };
+        let value = self.make(bound, draft, &env)?;
         self.show(value);
         Ok(value)
     }

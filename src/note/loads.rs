@@ -4,7 +4,7 @@ use super::builder::{Builder, Cell, Line, Sheet, number_column, word_column};
 use super::points::AXES;
 use super::text::{count, plain, slug, symbol};
 use crate::formula::{Draft, FormulaError, Origin, Symbol, Value};
-use crate::joint::{Case, LoadFrame};
+use crate::joint::{Case, LoadFrame, Triple};
 use crate::load::Frame;
 use crate::quantity::{Dim, Given};
 
@@ -232,15 +232,13 @@ impl Builder<'_> {
     pub(super) fn work_case(&mut self, index: usize) -> Result<CaseValues, FormulaError> {
         let case = self.joint.loads.cases[index].clone();
         let tag = format!("case.{}-{}", index + 1, slug(&case.name.value));
-        let mut told = [[None; 3]; 3];
-        for axis in 0..3 {
-            told[0][axis] =
-                Some(self.case_input(index, &case, "F", &case.force.parts[axis], axis, "Force"));
-            told[1][axis] =
-                Some(self.case_input(index, &case, "M", &case.moment.parts[axis], axis, "Moment"));
-        }
-        told[2] = self.load_point(&case).map(Some);
-        let told = told.map(|triple| triple.map(|value| value.expect("all nine are set")));
+        let mut part = |base: &str, triple: &Triple, says: &str| {
+            [0, 1, 2]
+                .map(|axis| self.case_input(index, &case, base, &triple.parts[axis], axis, says))
+        };
+        let force = part("F", &case.force, "Force");
+        let moment = part("M", &case.moment, "Moment");
+        let told = [force, moment, self.load_point(&case)];
         let [force, moment, at] = match &case.frame {
             None => told,
             Some(_) => self.turn_case(index, &tag, told)?,

@@ -146,7 +146,7 @@ impl Builder<'_> {
                 self.joint.loads.cases[spot.case].name.value
             );
             self.heading(&capital(&words));
-            if !cases.contains_key(&spot.case) {
+            if let std::collections::btree_map::Entry::Vacant(e) = cases.entry(spot.case) {
                 let values = self.work_case(spot.case)?;
                 let tag = format!(
                     "case.{}-{}",
@@ -154,7 +154,7 @@ impl Builder<'_> {
                     slug(&self.joint.loads.cases[spot.case].name.value)
                 );
                 let env = self.case_terms(&tag, spot.case, &values, regime)?;
-                cases.insert(spot.case, (values, env));
+                e.insert((values, env));
             }
             let (values, case_env) = cases[&spot.case].clone();
             let tag = format!("stress-{}", index + 1);
@@ -752,6 +752,6 @@ pub(super) fn capital(text: &str) -> String {
 }
 
 /// A case's values as the drawing shows them.
-pub(super) fn drawn<'c>(cases: &'c CaseTerms, case: usize) -> Option<(usize, &'c CaseValues)> {
+pub(super) fn drawn(cases: &CaseTerms, case: usize) -> Option<(usize, &CaseValues)> {
     cases.get(&case).map(|(values, _)| (case, values))
 }

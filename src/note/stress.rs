@@ -74,8 +74,7 @@ impl Builder<'_> {
         symbol: Symbol,
         says: &str,
         method: &str,
-        value: f64,
-        dim: Dim,
+        (value, dim): (f64, Dim),
     ) {
         let draft = Draft {
             id: format!("{}.{}", sheet.tag, name.replace('_', "-")),
@@ -99,9 +98,9 @@ impl Builder<'_> {
         regime: Regime,
     ) -> Result<Env, FormulaError> {
         let mut env = self.env.clone();
-        for axis in 0..3 {
-            env.bind(&format!("F_{}", AXES[axis]), values.force[axis]);
-            env.bind(&format!("M_{}", AXES[axis]), values.about[axis]);
+        for (axis, letter) in AXES.into_iter().enumerate() {
+            env.bind(&format!("F_{letter}"), values.force[axis]);
+            env.bind(&format!("M_{letter}"), values.about[axis]);
         }
         let mut sheet = Sheet {
             tag: tag.to_owned(),
@@ -153,8 +152,7 @@ impl Builder<'_> {
                         symbol,
                         &says,
                         "unit vector along the line",
-                        u[axis],
-                        Dim::NONE,
+                        (u[axis], Dim::NONE),
                     );
                 }
                 let line = if self.planar {
@@ -209,8 +207,7 @@ impl Builder<'_> {
                 symbol,
                 &says,
                 "verified by the three lines below",
-                theta[axis],
-                dim,
+                (theta[axis], dim),
             );
         }
         for (axis, formula) in [
@@ -269,8 +266,7 @@ impl Builder<'_> {
                             Symbol::of("s", &[]),
                             says,
                             method,
-                            spot.p * length,
-                            Dim::LENGTH,
+                            (spot.p * length, Dim::LENGTH),
                         );
                         if trimmed {
                             "(e_a + s)".to_owned()
@@ -308,8 +304,7 @@ impl Builder<'_> {
                     Symbol::of("theta", &[]),
                     says,
                     method,
-                    theta,
-                    Dim::ANGLE,
+                    (theta, Dim::ANGLE),
                 );
                 if !self.planar {
                     self.arc_axes(spot.run);
@@ -629,13 +624,9 @@ impl Builder<'_> {
             mark: if tag.ends_with("-twin") { "2" } else { "" },
         };
         self.position(&mut sheet, spot)?;
-        for axis in 0..3 {
-            if !sheet.env.names.contains_key(AXES[axis]) {
-                let height = sheet.env.names.get("z_c").cloned();
-                if let Some(height) = height {
-                    sheet.env.names.insert(AXES[axis].to_owned(), height);
-                }
-            }
+        // In the plane every point has the height of the centroid.
+        if let Some(height) = sheet.env.names.get("z_c").cloned() {
+            sheet.env.names.entry("z".to_owned()).or_insert(height);
         }
         self.components(&mut sheet, values, regime)?;
         let on_throat = ["point_sigma_perp", "point_tau_perp", "point_tau_par"]

@@ -1,7 +1,7 @@
 //! Steps from sizes as told to effective throats: one step for each size, not for each run.
 
 use super::builder::Builder;
-use crate::formula::{Bound, Env, FormulaError, Origin, Symbol, Value};
+use crate::formula::{Bound, Draft, Env, FormulaError, Origin, Symbol, Value};
 use crate::joint::{RunSpec, SizeSpec};
 use crate::quantity::{Dim, Given};
 use crate::source::Told;
@@ -178,7 +178,7 @@ impl Builder<'_> {
         let symbol = lettered("t", letter);
         let id = format!("size.{}", symbol.plain().replace('_', "-"));
         let name = symbol.plain();
-        let value = self.make(&name, id, symbol, says, &formula, "geometry", &env)?;
+        let value = self.make(&name, geometry(id, symbol, says, &formula), &env)?;
         self.show(value);
         let angle = match env.names.get("psi") {
             Some(Bound::Value(angle)) => Some(*angle),
@@ -255,15 +255,8 @@ impl Builder<'_> {
         inner.bind("psi_0", told);
         let says = "Dihedral angle on the far side of the plate".to_owned();
         let name = symbol.plain();
-        let value = self.make(
-            &name,
-            id(&symbol),
-            symbol,
-            says,
-            "180 deg - psi_0",
-            "geometry",
-            &inner,
-        )?;
+        let id = id(&symbol);
+        let value = self.make(&name, geometry(id, symbol, says, "180 deg - psi_0"), &inner)?;
         self.show(value);
         env.bind("psi", value);
         Ok(())
@@ -301,5 +294,18 @@ fn lettered(base: &str, letter: &str) -> Symbol {
         Symbol::of(base, &[])
     } else {
         Symbol::of(base, &[letter])
+    }
+}
+
+/// A step of geometry.
+fn geometry(id: String, symbol: Symbol, says: String, formula: &str) -> Draft<'_> {
+    let origin = Origin::Method("geometry".to_owned());
+    Draft {
+        id,
+        symbol,
+        says,
+        formula,
+        origin,
+        dim: None,
     }
 }

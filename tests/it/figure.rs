@@ -453,7 +453,7 @@ fn random(seed: u64) -> Scene {
         ));
         at.extend([a, b]);
     }
-    let p = place(size * if seed % 4 == 0 { 12.0 } else { 1.4 });
+    let p = place(size * if seed.is_multiple_of(4) { 12.0 } else { 1.4 });
     let all = |unit: &str| {
         Axis::ALL
             .map(|a| part(a, if a == Axis::Y { -1.0 } else { 1.0 }, unit))

@@ -120,7 +120,8 @@ impl Desk<'_, '_> {
                     measured: LegMeasure::SquareToFace,
                     ..
                 }
-            )
+            ),
+            "the rule follows from the size"
         );
         let gap = spec.gap.as_ref().filter(|_| gap > 0.0);
         let mut env = Env::default();

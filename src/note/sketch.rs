@@ -5,7 +5,7 @@ use super::loads::CaseValues;
 use super::points::AXES;
 use crate::formula::Printed;
 use crate::quantity::Dim;
-use crate::weld::{Segment, V3};
+use crate::weld::{Run, Segment, V3};
 
 /// The joint and its governing case, ready to be drawn.
 #[derive(Clone, Debug, Default)]
@@ -156,6 +156,24 @@ impl Builder<'_> {
             }
         }
         let mut out = Vec::new();
+        let turn = 2.0 * std::f64::consts::PI - 1e-9;
+        if let (
+            [
+                Run {
+                    told: Segment::Arc { radius, sweep, .. },
+                    ..
+                },
+            ],
+            true,
+        ) = (self.runs, self.planar)
+            && sweep.abs() > turn
+        {
+            // A circle is dimensioned once, by its diameter.
+            let mut to = low;
+            to.x = high.x;
+            out.push((low, to, 0, format!("Ø {}", short(2.0 * radius, size))));
+            return out;
+        }
         for axis in 0..AXES.len() {
             let length = high[axis] - low[axis];
             if length > 1e-9 * size && !(self.planar && axis == 2) {

@@ -181,7 +181,7 @@ fn symbols(step: &Value, id: &str, known: &BTreeMap<&str, &Value>, found: &mut R
         let largest = values
             .values()
             .fold(1.0_f64, |size, value| size.max(value.abs()));
-        (1e-9 * value.abs()).max(1e-12 * largest)
+        (1e-6 * value.abs()).max(1e-12 * largest)
     } else {
         1e-3 * in_radians(step, unit)
     };

@@ -47,7 +47,9 @@ fn refuse_quantity<T>(
             ("unknown-unit", error.to_string(), usual)
         }
         GivenError::Kind { .. } => ("wrong-kind", format!("`{}`: {error}", item.name), usual),
-        GivenError::BareAngle(_) => ("unit-missing", error.to_string(), usual),
+        GivenError::BareAngle(_) | GivenError::BareStress(_) => {
+            ("unit-missing", error.to_string(), usual)
+        }
     };
     item.refuse_with(code, message, help)
 }

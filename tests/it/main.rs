@@ -4,6 +4,7 @@
 
 mod command;
 mod criteria;
+mod disk;
 mod faults;
 mod figure;
 mod formula;

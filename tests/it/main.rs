@@ -8,6 +8,7 @@ mod disk;
 mod faults;
 mod figure;
 mod formula;
+mod fuzz;
 mod groups;
 mod joint_read;
 mod laying;

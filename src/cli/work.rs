@@ -5,8 +5,10 @@ use super::exit;
 use crate::criteria::Library;
 use crate::note::{Calculation, Standing, write_note};
 use crate::project::{
-    JointFile, Kinds, ProjectError, Workshop, find_joints, read_joint_file, read_library, written,
+    JointFile, Kinds, ProjectError, Workshop, find_joints, read_joint_file, read_library, shown,
+    written,
 };
+use crate::source::one_line;
 use std::collections::BTreeMap;
 use std::path::{Path, PathBuf};
 use std::sync::Mutex;
@@ -168,7 +170,11 @@ fn one(
 }
 
 fn said(standing: &Standing, joint: &JointFile, tail: &str) -> Outcome {
-    let line = format!("{}  {}{tail}", joint.path.display(), standing.line());
+    let line = format!(
+        "{}  {}{tail}",
+        shown(&joint.path),
+        one_line(&standing.line())
+    );
     Outcome {
         line,
         holds: standing.holds(),
@@ -199,10 +205,7 @@ fn summary(
         }
     }
     if !refused.is_empty() {
-        let names: Vec<String> = refused
-            .iter()
-            .map(|path| path.display().to_string())
-            .collect();
+        let names: Vec<String> = refused.iter().map(|path| shown(path)).collect();
         let tail = if writes {
             "; an earlier note stands as it was"
         } else {

@@ -11,8 +11,8 @@ pub use produce::{Kinds, Produced, Workshop, written};
 pub use read::{JointFile, find_joints, read_joint_file, read_library};
 
 use crate::render::RenderError;
-use crate::source::Faults;
-use std::path::PathBuf;
+use crate::source::{Faults, one_line};
+use std::path::{Path, PathBuf};
 use thiserror::Error;
 
 /// Why a joint gave no outputs.
@@ -22,7 +22,7 @@ pub enum ProjectError {
     #[error("{0}")]
     Faults(Faults),
     /// A file or folder that cannot be read or written.
-    #[error("{path}: {what}", path = .path.display())]
+    #[error("{path}: {what}", path = shown(.path))]
     File {
         /// The file or folder.
         path: PathBuf,
@@ -30,7 +30,7 @@ pub enum ProjectError {
         what: String,
     },
     /// The note could not be set.
-    #[error("{joint}: {fault}")]
+    #[error("{joint}: {fault}", joint = one_line(.joint))]
     Render {
         /// The joint file.
         joint: String,
@@ -43,4 +43,10 @@ impl From<Faults> for ProjectError {
     fn from(faults: Faults) -> Self {
         Self::Faults(faults)
     }
+}
+
+/// A path for the terminal: control characters are escaped.
+#[must_use]
+pub fn shown(path: &Path) -> String {
+    one_line(&path.to_string_lossy())
 }

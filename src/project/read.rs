@@ -1,6 +1,6 @@
 //! Finds and reads joint files and clause sheets.
 
-use super::ProjectError;
+use super::{ProjectError, shown};
 use crate::criteria::{Library, built_in, read_sheet};
 use crate::source::{Diagnostic, Faults, Place, SourceFile};
 use std::collections::BTreeMap;
@@ -66,6 +66,15 @@ pub fn find_joints(paths: &[PathBuf]) -> Result<Vec<JointFile>, ProjectError> {
     }
     let mut stems: BTreeMap<&str, &Path> = BTreeMap::new();
     for joint in &found {
+        if joint
+            .stem
+            .contains(|c: char| c.is_control() || c == char::REPLACEMENT_CHARACTER)
+        {
+            return Err(file_error(
+                &joint.path,
+                "has a name that is no plain text, but names its folder of outputs; rename it",
+            ));
+        }
         if joint.stem.chars().all(|c| c == '.') {
             return Err(file_error(
                 &joint.path,
@@ -75,7 +84,7 @@ pub fn find_joints(paths: &[PathBuf]) -> Result<Vec<JointFile>, ProjectError> {
         if let Some(other) = stems.insert(&joint.stem, &joint.path) {
             let what = format!(
                 "would write into the same folder of outputs as {}; rename one of the two",
-                other.display()
+                shown(other)
             );
             return Err(file_error(&joint.path, what));
         }
@@ -95,12 +104,12 @@ fn joint_file(path: &Path) -> JointFile {
         .unwrap_or(Path::new("."));
     let stem = path
         .file_stem()
-        .and_then(|stem| stem.to_str())
-        .unwrap_or("joint");
+        .map(|stem| stem.to_string_lossy())
+        .unwrap_or_default();
     JointFile {
         path: path.to_owned(),
         folder: folder.to_owned(),
-        stem: stem.to_owned(),
+        stem: stem.into_owned(),
     }
 }
 

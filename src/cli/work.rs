@@ -2,10 +2,10 @@
 
 use super::arguments::{Arguments, Command, OutputKind, ScopeArgs};
 use super::exit;
-use crate::criteria::Library;
 use crate::note::{Calculation, Standing, write_note};
 use crate::project::{
-    JointFile, Kinds, ProjectError, Workshop, find_joints, read_joint_file, read_library, written,
+    JointFile, Kinds, ProjectError, Surroundings, Workshop, complete_joint, find_joints,
+    read_surroundings, read_told, written,
 };
 use std::collections::BTreeMap;
 use std::path::{Path, PathBuf};
@@ -43,7 +43,7 @@ pub fn run(arguments: &Arguments, colour: bool) -> Said {
         Command::Vet { scope } => (scope, Job::Vet),
     };
     match prepare(scope) {
-        Ok((joints, libraries)) => work(&joints, &libraries, scope, &job, colour),
+        Ok((joints, folders)) => work(&joints, &folders, scope, &job, colour),
         Err(fault) => Said {
             err: complaint(&fault, colour),
             code: exit::REFUSED,
@@ -57,17 +57,17 @@ enum Job {
     Vet,
 }
 
-type Libraries = BTreeMap<PathBuf, Library>;
+type Folders = BTreeMap<PathBuf, Surroundings>;
 
-fn prepare(scope: &ScopeArgs) -> Result<(Vec<JointFile>, Libraries), ProjectError> {
+fn prepare(scope: &ScopeArgs) -> Result<(Vec<JointFile>, Folders), ProjectError> {
     let joints = find_joints(&scope.paths)?;
-    let mut libraries = Libraries::new();
+    let mut folders = Folders::new();
     for joint in &joints {
-        if !libraries.contains_key(&joint.folder) {
-            libraries.insert(joint.folder.clone(), read_library(&joint.folder)?);
+        if !folders.contains_key(&joint.folder) {
+            folders.insert(joint.folder.clone(), read_surroundings(&joint.folder)?);
         }
     }
-    Ok((joints, libraries))
+    Ok((joints, folders))
 }
 
 fn kinds(only: &[OutputKind]) -> Kinds {
@@ -84,7 +84,7 @@ fn kinds(only: &[OutputKind]) -> Kinds {
 
 fn work(
     joints: &[JointFile],
-    libraries: &Libraries,
+    folders: &Folders,
     scope: &ScopeArgs,
     job: &Job,
     colour: bool,
@@ -110,7 +110,7 @@ fn work(
                     let Some(joint) = joints.get(index) else {
                         break;
                     };
-                    let result = guarded(joint, &libraries[&joint.folder], job, workshop.as_ref());
+                    let result = guarded(joint, &folders[&joint.folder], job, workshop.as_ref());
                     results
                         .lock()
                         .expect("no worker panics while it holds the results")
@@ -128,11 +128,11 @@ fn work(
 /// One joint; a fault of the program itself stays with that joint.
 fn guarded(
     joint: &JointFile,
-    library: &Library,
+    surroundings: &Surroundings,
     job: &Job,
     workshop: Option<&Workshop>,
 ) -> Result<Outcome, ProjectError> {
-    let attempt = std::panic::AssertUnwindSafe(|| one(joint, library, job, workshop));
+    let attempt = std::panic::AssertUnwindSafe(|| one(joint, surroundings, job, workshop));
     std::panic::catch_unwind(attempt).unwrap_or_else(|_| {
         Err(ProjectError::File {
             path: joint.path.clone(),
@@ -143,13 +143,13 @@ fn guarded(
 
 fn one(
     joint: &JointFile,
-    library: &Library,
+    surroundings: &Surroundings,
     job: &Job,
     workshop: Option<&Workshop>,
 ) -> Result<Outcome, ProjectError> {
     match (job, workshop) {
         (Job::Write { out, kinds }, Some(workshop)) => {
-            let produced = workshop.produce(joint, library, *kinds)?;
+            let produced = workshop.produce(joint, surroundings, *kinds)?;
             let folder = written(&produced, joint, out)?;
             Ok(said(
                 &produced.note.standing,
@@ -158,9 +158,9 @@ fn one(
             ))
         }
         _ => {
-            let file = read_joint_file(&joint.path)?;
-            let told = crate::joint::read_joint(&file)?;
-            let calculation = Calculation::of(&told, library)?;
+            let completed = complete_joint(joint, surroundings)?;
+            let told = read_told(&completed, surroundings)?;
+            let calculation = Calculation::of(&told, &surroundings.library)?;
             let note = write_note(&calculation)?;
             Ok(said(&note.standing, joint, ""))
         }

@@ -2,10 +2,8 @@
 
 use super::ProjectError;
 use super::outputs::{Output, stage};
-use super::read::{JointFile, read_joint_file};
-use crate::criteria::Library;
+use super::read::{JointFile, Surroundings, complete_joint, read_told};
 use crate::figure::{SerifFaces, draw, scene, standalone_source, typst_source};
-use crate::joint::read_joint;
 use crate::note::{Calculation, FIGURE, Note, Outcome, write_note};
 use crate::render::{
     Attachment, Drawings, Press, Relation, RenderError, render_markdown, render_typst,
@@ -77,16 +75,17 @@ impl Workshop {
     ///
     /// # Errors
     ///
-    /// [`ProjectError`] with the faults of the file, or what the typesetter refuses.
+    /// [`ProjectError`] with the faults of the files, or what the typesetter refuses.
     pub fn produce(
         &self,
         joint: &JointFile,
-        library: &Library,
+        surroundings: &Surroundings,
         kinds: Kinds,
     ) -> Result<Produced, ProjectError> {
-        let file = read_joint_file(&joint.path)?;
-        let told = read_joint(&file)?;
-        let calculation = Calculation::of(&told, library)?;
+        let completed = complete_joint(joint, surroundings)?;
+        let told = read_told(&completed, surroundings)?;
+        let file = &completed.file;
+        let calculation = Calculation::of(&told, &surroundings.library)?;
         let mut note = write_note(&calculation)?;
         let render = |fault: RenderError| ProjectError::Render {
             joint: file.name.clone(),
@@ -139,6 +138,15 @@ impl Workshop {
                     trace.as_bytes(),
                 ),
             ];
+            if let Some(shared) = &surroundings.shared {
+                attachments.push(attachment(
+                    "project.yaml",
+                    "application/yaml",
+                    Relation::Source,
+                    "What the joints of the project share",
+                    shared.file.text.as_bytes(),
+                ));
+            }
             attachments.extend(used_sheets(&calculation));
             let pdf = self
                 .press

@@ -35,7 +35,7 @@ impl Project {
         project
     }
 
-    fn path(&self, name: &str) -> PathBuf {
+    pub(crate) fn path(&self, name: &str) -> PathBuf {
         self.root.path().join(name)
     }
 

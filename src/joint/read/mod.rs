@@ -7,10 +7,12 @@ mod load;
 mod part;
 mod path;
 mod pattern;
+mod shared;
 mod size;
 mod value;
 mod weld;
 
+pub(super) use shared::check_project;
 pub use value::{read_quantity, read_triple};
 
 use super::{FrameWords, Joint, Paper};

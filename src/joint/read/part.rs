@@ -84,14 +84,14 @@ fn read_check(item: Item<'_>) -> Option<CheckSpec> {
 }
 
 /// Reads `source` and `to be verified`.
-fn read_standing(fields: &mut Fields<'_>) -> (Option<Told<String>>, bool) {
+pub(super) fn read_standing(fields: &mut Fields<'_>) -> (Option<Told<String>>, bool) {
     let source = fields.optional("source", Item::line);
     let to_be_verified = fields.optional("to be verified", Item::flag);
     (source, to_be_verified.unwrap_or(false))
 }
 
 /// Reads all other keys as quantities whose kind a sheet will say.
-fn read_more(fields: &mut Fields<'_>) -> Vec<(Told<String>, RawQuantity)> {
+pub(super) fn read_more(fields: &mut Fields<'_>) -> Vec<(Told<String>, RawQuantity)> {
     let free = fields.free();
     free.into_iter()
         .filter_map(|(key, item)| Some((key.clone(), item.raw()?)))

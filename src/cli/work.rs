@@ -2,6 +2,7 @@
 
 use super::arguments::{Arguments, Command, OutputKind, ScopeArgs};
 use super::exit;
+use super::show::table;
 use crate::note::{Calculation, Standing, write_note};
 use crate::project::{
     JointFile, Kinds, ProjectError, Surroundings, Workshop, complete_joint, find_joints,
@@ -41,8 +42,9 @@ pub fn run(arguments: &Arguments, colour: bool) -> Said {
             },
         ),
         Command::Vet { scope } => (scope, Job::Vet),
+        Command::Show { paths } => return show(paths, colour),
     };
-    match prepare(scope) {
+    match prepare(&scope.paths) {
         Ok((joints, folders)) => work(&joints, &folders, scope, &job, colour),
         Err(fault) => Said {
             err: complaint(&fault, colour),
@@ -59,8 +61,8 @@ enum Job {
 
 type Folders = BTreeMap<PathBuf, Surroundings>;
 
-fn prepare(scope: &ScopeArgs) -> Result<(Vec<JointFile>, Folders), ProjectError> {
-    let joints = find_joints(&scope.paths)?;
+fn prepare(paths: &[PathBuf]) -> Result<(Vec<JointFile>, Folders), ProjectError> {
+    let joints = find_joints(paths)?;
     let mut folders = Folders::new();
     for joint in &joints {
         if !folders.contains_key(&joint.folder) {
@@ -68,6 +70,34 @@ fn prepare(scope: &ScopeArgs) -> Result<(Vec<JointFile>, Folders), ProjectError>
         }
     }
     Ok((joints, folders))
+}
+
+/// Says what each joint says, and what is wrong with those that cannot be read.
+fn show(paths: &[PathBuf], colour: bool) -> Said {
+    let mut said = Said::default();
+    let shown = |joint: &JointFile, surroundings: &Surroundings| {
+        let completed = complete_joint(joint, surroundings)?;
+        let told = read_told(&completed, surroundings)?;
+        Ok(table(&completed, &told, &surroundings.library))
+    };
+    let results = prepare(paths).map(|(joints, folders)| {
+        let each = joints.iter();
+        each.map(|joint| shown(joint, &folders[&joint.folder]))
+            .collect::<Vec<Result<String, ProjectError>>>()
+    });
+    for result in results.unwrap_or_else(|fault| vec![Err(fault)]) {
+        match result {
+            Ok(text) => {
+                let gap = if said.out.is_empty() { "" } else { "\n" };
+                said.out.push_str(&format!("{gap}{text}"));
+            }
+            Err(fault) => {
+                said.err.push_str(&complaint(&fault, colour));
+                said.code = exit::REFUSED;
+            }
+        }
+    }
+    said
 }
 
 fn kinds(only: &[OutputKind]) -> Kinds {

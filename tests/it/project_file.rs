@@ -249,3 +249,110 @@ fn a_character_that_no_face_prints_is_told_at_its_place() {
         assert_eq!(ran.err.matches("error[").count(), 1, "{}", ran.err);
     }
 }
+
+/// The line of a table that `show` prints for a value.
+#[track_caller]
+fn shown(out: &str, name: &str) -> Vec<String> {
+    let cells = |line: &str| -> Vec<String> {
+        let cells = line.split("  ").filter(|cell| !cell.trim().is_empty());
+        cells.map(|cell| cell.trim().to_owned()).collect()
+    };
+    let row = out.lines().map(cells).find(|row| row[1] == name);
+    row.unwrap_or_else(|| panic!("{name} is not shown:\n{out}"))
+}
+
+#[test]
+fn show_tells_where_each_value_comes_from() {
+    let shared = SHARED.replace(
+        ", gamma_M2: 1.25}\n  - {clause: EN 1993-1-8 4.5.3.3",
+        "}\n  - {clause: EN 1993-1-8 4.5.3.3",
+    );
+    let own = own();
+    let project = project(&shared, &own);
+    let ran = project.run(&["show", "joints/mast-foot.yaml"]);
+    assert_eq!((ran.code, ran.err.as_str()), (0, ""), "{ran:?}");
+    let at = |file: &str, text: &str, word: &str| {
+        let line = text.lines().position(|line| line.contains(word));
+        format!("joints/{file}:{}", line.expect("the word is there") + 1)
+    };
+    let rows = [
+        ("note", at("mast-foot.yaml", &own, "note: 104"), "SN-104"),
+        ("units / force", at("project.yaml", &shared, "units"), "N"),
+        (
+            "parts / bracket / thickness",
+            at("mast-foot.yaml", &own, "bracket: {"),
+            "10",
+        ),
+        (
+            "parts / bracket / f_u",
+            at("project.yaml", &shared, "f_u: 470"),
+            "470",
+        ),
+        (
+            "parts / deck / thickness",
+            at("project.yaml", &shared, "thickness: 12"),
+            "12",
+        ),
+        (
+            "filler / f_u",
+            at("project.yaml", &shared, "f_u: 480"),
+            "480 MPa",
+        ),
+        (
+            "weld / runs / lower edge / straight",
+            at("mast-foot.yaml", &own, "lower edge,"),
+            "[[0, 0], [80, 0]]",
+        ),
+        (
+            "assumptions / 1",
+            at("project.yaml", &shared, "guy forces"),
+            "The guy forces are design values at the ultimate limit state and include their factors.",
+        ),
+        ("paper", "by default".to_owned(), "A4"),
+        (
+            "signatures",
+            "by default".to_owned(),
+            "[prepared, checked, approved]",
+        ),
+        (
+            "weld / runs / lower edge / between",
+            "by default".to_owned(),
+            "90 deg",
+        ),
+        (
+            "loads / cases / L01 / moment",
+            "by default".to_owned(),
+            "[0, 0, 0]",
+        ),
+        (
+            "checks / EN 1993-1-8 4.5.3.3 / gamma_M2",
+            at("project.yaml", &shared, "4.5.3.3"),
+            "1.25",
+        ),
+    ];
+    for (name, place, value) in rows {
+        assert_eq!(
+            shown(&ran.out, name),
+            [place.as_str(), name, value],
+            "{name}"
+        );
+    }
+    let default = shown(&ran.out, "checks / EN 1993-1-8 4.5.3.2 / gamma_M2");
+    assert_eq!(default[0], "by default of the sheet", "{default:?}");
+    assert!(default[2].starts_with("1.25 ("), "{default:?}");
+    assert!(
+        !ran.out.contains("never used"),
+        "what the joint does not take:\n{}",
+        ran.out
+    );
+    assert!(!project.path("out").exists(), "nothing is written");
+}
+
+#[test]
+fn show_tells_the_faults_of_a_joint_that_cannot_be_read() {
+    let ran = project(SHARED, &own().replace("fillet: 8", "filet: 8")).run(&["show", "joints"]);
+    assert_eq!((ran.code, ran.out.as_str()), (1, ""), "{ran:?}");
+    assert!(ran.err.contains("did you mean `fillet`?"), "{}", ran.err);
+    let ran = Project::new().run(&["show"]);
+    assert_eq!(ran.code, 2, "a path must be given: {ran:?}");
+}

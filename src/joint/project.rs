@@ -3,6 +3,7 @@
 //! Every node keeps its own place, so faults and sources of an inherited value point into the
 //! project file. What a joint says itself wins. Knows no quantity but whether it has a unit.
 
+use super::Joint;
 use super::read::check_project;
 use crate::quantity::UnitSet;
 use crate::source::{Diagnostic, FaultBag, Faults, Node, SourceFile, Told, Value, parse_yaml};
@@ -255,6 +256,29 @@ fn name_entry(key: Told<String>) -> (Told<String>, Node) {
         place: key.place,
     };
     (told, node)
+}
+
+impl Joint {
+    /// The name without folders of the file that the joint inherits inputs from, if it does.
+    #[must_use]
+    pub fn inherits_from(&self) -> Option<&str> {
+        let own = &self.note.place.file;
+        let parts = self.parts.iter().flat_map(|part| {
+            let given = [&part.f_y, &part.f_u].into_iter().flatten();
+            let more = part.more.iter().map(|(_, raw)| &raw.place);
+            given
+                .map(|given| &given.place)
+                .chain(more)
+                .chain([&part.name.place])
+        });
+        let rest = [&self.units.place]
+            .into_iter()
+            .chain(self.filler.iter().map(|filler| &filler.place))
+            .chain(self.checks.iter().map(|check| &check.place))
+            .chain(self.assumptions.iter().map(|item| &item.says.place));
+        let other = parts.chain(rest).find(|place| place.file != *own)?;
+        other.file.name.rsplit('/').next()
+    }
 }
 
 fn pair(map: &Node, key: &str) -> Option<(Told<String>, Node)> {

@@ -88,6 +88,8 @@ fn a_joint_that_inherits_gives_the_results_of_one_that_says_all() {
     for wanted in ["SN-104", "LM-2207 sheet 3", "launch mast", "WPS-31 rev 2"] {
         assert!(note.contains(wanted), "{wanted} is printed");
     }
+    let inputs = "All inputs stand in *mast-foot.yaml* and *project.yaml*, attached";
+    assert!(note.contains(inputs), "both files are named");
     assert!(
         !note.contains("never used"),
         "a part that is not joined stays out"
@@ -136,7 +138,10 @@ note prefix: XX-
     let (one, other) = (trace(&whole), trace(&parted));
     assert_eq!(one["identity"], other["identity"], "nothing is inherited");
     assert_eq!(one["note"], other["note"], "a whole number takes no prefix");
-    assert!(note(&parted).contains("designer"), "the role is inherited");
+    let note = note(&parted);
+    assert!(note.contains("designer"), "the role is inherited");
+    let inputs = "All inputs stand in *mast-foot.yaml*, attached";
+    assert!(note.contains(inputs), "only its own file is named");
 }
 
 #[test]

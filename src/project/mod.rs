@@ -1,4 +1,4 @@
-//! Files: finds and reads joints, sheets and what joints share, stages and renames outputs.
+//! Files: finds and reads joints, sheets, templates and what joints share, stages and renames outputs.
 //!
 //! The only room that touches the disk. Everything inside takes texts and gives bytes.
 
@@ -6,6 +6,7 @@ mod glyphs;
 mod outputs;
 mod produce;
 mod read;
+mod templates;
 
 pub use outputs::{Output, stage};
 pub use produce::{Kinds, Produced, Workshop, written};
@@ -13,6 +14,7 @@ pub use read::{
     Completed, JointFile, Surroundings, complete_joint, find_joints, read_joint_file, read_library,
     read_surroundings, read_told,
 };
+pub use templates::OwnTemplates;
 
 use crate::render::RenderError;
 use crate::source::Faults;

@@ -2,6 +2,7 @@
 
 use super::ProjectError;
 use super::glyphs::unprintable;
+use super::templates::{OwnTemplates, read_templates};
 use crate::criteria::{Library, built_in, read_sheet};
 use crate::joint::{Joint, ProjectFile, read_joint_node, read_project};
 use crate::source::{Diagnostic, Faults, Node, Place, SourceFile, parse_yaml};
@@ -27,7 +28,7 @@ pub struct JointFile {
     pub stem: String,
 }
 
-fn file_error(path: &Path, what: impl Into<String>) -> ProjectError {
+pub(super) fn file_error(path: &Path, what: impl Into<String>) -> ProjectError {
     ProjectError::File {
         path: path.to_owned(),
         what: what.into(),
@@ -50,7 +51,8 @@ pub fn find_joints(paths: &[PathBuf]) -> Result<Vec<JointFile>, ProjectError> {
                     .file_name()
                     .and_then(|name| name.to_str())
                     .unwrap_or_default();
-                if is_yaml(&entry) && entry.is_file() && name != PROJECT_FILE {
+                if is_yaml(&entry) && !entry.is_dir() && name != PROJECT_FILE {
+                    within(path, &entry)?;
                     found.push(joint_file(&entry));
                 }
             }
@@ -112,7 +114,7 @@ fn joint_file(path: &Path) -> JointFile {
     }
 }
 
-fn sorted(folder: &Path) -> Result<Vec<PathBuf>, ProjectError> {
+pub(super) fn sorted(folder: &Path) -> Result<Vec<PathBuf>, ProjectError> {
     let entries = fs::read_dir(folder).map_err(|fault| file_error(folder, fault.to_string()))?;
     let mut paths = Vec::new();
     for entry in entries {
@@ -126,6 +128,22 @@ fn sorted(folder: &Path) -> Result<Vec<PathBuf>, ProjectError> {
     Ok(paths)
 }
 
+/// Refuses a file that a symbolic link leads to from outside the folder of the joints.
+pub(super) fn within(folder: &Path, path: &Path) -> Result<(), ProjectError> {
+    let real = |path: &Path| {
+        let real = fs::canonicalize(path);
+        real.map_err(|fault| file_error(path, fault.to_string()))
+    };
+    if real(path)?.starts_with(real(folder)?) {
+        return Ok(());
+    }
+    let what = format!(
+        "is a symbolic link out of {}; nothing outside it is read, so copy the file there",
+        folder.display()
+    );
+    Err(file_error(path, what))
+}
+
 /// Reads a file as text with its name as the user would type it.
 ///
 /// # Errors
@@ -133,9 +151,11 @@ fn sorted(folder: &Path) -> Result<Vec<PathBuf>, ProjectError> {
 /// [`ProjectError::File`] if it cannot be read or is too large; [`ProjectError::Faults`] at the
 /// first byte that is no UTF-8.
 pub fn read_joint_file(path: &Path) -> Result<Arc<SourceFile>, ProjectError> {
-    let size = fs::metadata(path)
-        .map_err(|fault| file_error(path, fault.to_string()))?
-        .len();
+    let known = fs::metadata(path).map_err(|fault| file_error(path, fault.to_string()))?;
+    if !known.is_file() {
+        return Err(file_error(path, "is no file"));
+    }
+    let size = known.len();
     if size > LARGEST {
         return Err(file_error(
             path,
@@ -177,8 +197,9 @@ pub fn read_library(folder: &Path) -> Result<Library, ProjectError> {
     let mut faults = Vec::new();
     for path in sorted(&sheets)?
         .into_iter()
-        .filter(|path| is_yaml(path) && path.is_file())
+        .filter(|path| is_yaml(path) && !path.is_dir())
     {
+        within(folder, &path)?;
         let file = read_joint_file(&path)?;
         faults.extend(parse_yaml(&file).map_or_else(|_| Vec::new(), |root| unprintable(&root)));
         let added = read_sheet(&file).and_then(|sheet| library.add(sheet));
@@ -200,16 +221,19 @@ pub struct Surroundings {
     pub library: Library,
     /// What the joints share, if the folder has a project file.
     pub shared: Option<ProjectFile>,
+    /// What the notes are set with.
+    pub templates: OwnTemplates,
 }
 
-/// Reads what stands beside the joints of a folder: sheets and project file.
+/// Reads what stands beside the joints of a folder: sheets, project file, templates.
 ///
 /// # Errors
 ///
 /// [`ProjectError`] if one of them cannot be read or has faults.
 pub fn read_surroundings(folder: &Path) -> Result<Surroundings, ProjectError> {
     let path = folder.join(PROJECT_FILE);
-    let shared = if path.is_file() {
+    let shared = if fs::symlink_metadata(&path).is_ok() {
+        within(folder, &path)?;
         let file = read_joint_file(&path)?;
         let mut faults = unprintable(&parse_yaml(&file)?);
         let shared = read_project(&file).map_err(|found| faults.extend(found.0));
@@ -223,6 +247,7 @@ pub fn read_surroundings(folder: &Path) -> Result<Surroundings, ProjectError> {
     Ok(Surroundings {
         library: read_library(folder)?,
         shared,
+        templates: read_templates(folder)?,
     })
 }
 

@@ -12,6 +12,7 @@ mod joint_read;
 mod laying;
 mod mechanics;
 mod notes;
+mod own_templates;
 mod project_file;
 mod quantity;
 mod readme;

@@ -58,6 +58,18 @@ Examples:
         #[command(flatten)]
         scope: ScopeArgs,
     },
+    /// Show each value of joints as read, with the file and line that it comes from.
+    #[command(after_help = "\
+Example:
+  seamnote show joints/mast-foot.yaml
+
+A value comes from the joint file, from joints/project.yaml, or is a default of the program or of
+a clause sheet. Writes nothing.")]
+    Show {
+        /// Joint files, or folders of them.
+        #[arg(value_name = "PATH", required = true)]
+        paths: Vec<PathBuf>,
+    },
 }
 
 /// What to work on, and how.

@@ -3,6 +3,7 @@
 //! Prints nothing itself: [`run`] gives texts and an exit code, `main.rs` prints them.
 
 mod arguments;
+mod show;
 mod work;
 
 pub use arguments::{Arguments, Command};

@@ -2,11 +2,11 @@
 
 use super::arguments::{Arguments, Command, OutputKind, ScopeArgs};
 use super::exit;
-use crate::criteria::Library;
+use super::show::table;
 use crate::note::{Calculation, Standing, write_note};
 use crate::project::{
-    JointFile, Kinds, ProjectError, Workshop, find_joints, read_joint_file, read_library, shown,
-    written,
+    JointFile, Kinds, ProjectError, Surroundings, Workshop, complete_joint, find_joints,
+    read_surroundings, read_told, shown, written,
 };
 use crate::source::one_line;
 use std::collections::BTreeMap;
@@ -43,9 +43,10 @@ pub fn run(arguments: &Arguments, colour: bool) -> Said {
             },
         ),
         Command::Vet { scope } => (scope, Job::Vet),
+        Command::Show { paths } => return show(paths, colour),
     };
-    match prepare(scope) {
-        Ok((joints, libraries)) => work(&joints, &libraries, scope, &job, colour),
+    match prepare(&scope.paths) {
+        Ok((joints, folders)) => work(&joints, &folders, scope, &job, colour),
         Err(fault) => Said {
             err: complaint(&fault, colour),
             code: exit::REFUSED,
@@ -59,17 +60,45 @@ enum Job {
     Vet,
 }
 
-type Libraries = BTreeMap<PathBuf, Library>;
+type Folders = BTreeMap<PathBuf, Surroundings>;
 
-fn prepare(scope: &ScopeArgs) -> Result<(Vec<JointFile>, Libraries), ProjectError> {
-    let joints = find_joints(&scope.paths)?;
-    let mut libraries = Libraries::new();
+fn prepare(paths: &[PathBuf]) -> Result<(Vec<JointFile>, Folders), ProjectError> {
+    let joints = find_joints(paths)?;
+    let mut folders = Folders::new();
     for joint in &joints {
-        if !libraries.contains_key(&joint.folder) {
-            libraries.insert(joint.folder.clone(), read_library(&joint.folder)?);
+        if !folders.contains_key(&joint.folder) {
+            folders.insert(joint.folder.clone(), read_surroundings(&joint.folder)?);
         }
     }
-    Ok((joints, libraries))
+    Ok((joints, folders))
+}
+
+/// Says what each joint says, and what is wrong with those that cannot be read.
+fn show(paths: &[PathBuf], colour: bool) -> Said {
+    let mut said = Said::default();
+    let shown = |joint: &JointFile, surroundings: &Surroundings| {
+        let completed = complete_joint(joint, surroundings)?;
+        let told = read_told(&completed, surroundings)?;
+        Ok(table(&completed, &told, &surroundings.library))
+    };
+    let results = prepare(paths).map(|(joints, folders)| {
+        let each = joints.iter();
+        each.map(|joint| shown(joint, &folders[&joint.folder]))
+            .collect::<Vec<Result<String, ProjectError>>>()
+    });
+    for result in results.unwrap_or_else(|fault| vec![Err(fault)]) {
+        match result {
+            Ok(text) => {
+                let gap = if said.out.is_empty() { "" } else { "\n" };
+                said.out.push_str(&format!("{gap}{text}"));
+            }
+            Err(fault) => {
+                said.err.push_str(&complaint(&fault, colour));
+                said.code = exit::REFUSED;
+            }
+        }
+    }
+    said
 }
 
 fn kinds(only: &[OutputKind]) -> Kinds {
@@ -86,7 +115,7 @@ fn kinds(only: &[OutputKind]) -> Kinds {
 
 fn work(
     joints: &[JointFile],
-    libraries: &Libraries,
+    folders: &Folders,
     scope: &ScopeArgs,
     job: &Job,
     colour: bool,
@@ -112,7 +141,7 @@ fn work(
                     let Some(joint) = joints.get(index) else {
                         break;
                     };
-                    let result = guarded(joint, &libraries[&joint.folder], job, workshop.as_ref());
+                    let result = guarded(joint, &folders[&joint.folder], job, workshop.as_ref());
                     results
                         .lock()
                         .expect("no worker panics while it holds the results")
@@ -130,11 +159,11 @@ fn work(
 /// One joint; a fault of the program itself stays with that joint.
 fn guarded(
     joint: &JointFile,
-    library: &Library,
+    surroundings: &Surroundings,
     job: &Job,
     workshop: Option<&Workshop>,
 ) -> Result<Outcome, ProjectError> {
-    let attempt = std::panic::AssertUnwindSafe(|| one(joint, library, job, workshop));
+    let attempt = std::panic::AssertUnwindSafe(|| one(joint, surroundings, job, workshop));
     std::panic::catch_unwind(attempt).unwrap_or_else(|_| {
         Err(ProjectError::File {
             path: joint.path.clone(),
@@ -145,13 +174,13 @@ fn guarded(
 
 fn one(
     joint: &JointFile,
-    library: &Library,
+    surroundings: &Surroundings,
     job: &Job,
     workshop: Option<&Workshop>,
 ) -> Result<Outcome, ProjectError> {
     match (job, workshop) {
         (Job::Write { out, kinds }, Some(workshop)) => {
-            let produced = workshop.produce(joint, library, *kinds)?;
+            let produced = workshop.produce(joint, surroundings, *kinds)?;
             let folder = written(&produced, joint, out)?;
             Ok(said(
                 &produced.note.standing,
@@ -160,9 +189,9 @@ fn one(
             ))
         }
         _ => {
-            let file = read_joint_file(&joint.path)?;
-            let told = crate::joint::read_joint(&file)?;
-            let calculation = Calculation::of(&told, library)?;
+            let completed = complete_joint(joint, surroundings)?;
+            let told = read_told(&completed, surroundings)?;
+            let calculation = Calculation::of(&told, &surroundings.library)?;
             let note = write_note(&calculation)?;
             Ok(said(&note.standing, joint, ""))
         }

@@ -1,9 +1,12 @@
 //! What the user said of one joint: validated, in units, every value with its place.
 //!
-//! Holds and reads the joint file: one joint, one file. Computes no geometry and no stress.
+//! Holds and reads the joint file: one joint, one file, and the project file that joints share.
+//! Computes no geometry and no stress.
 
+mod project;
 mod read;
 
+pub use project::{ProjectFile, read_project};
 pub use read::{read_joint, read_joint_node, read_quantity, read_triple};
 
 use crate::quantity::{Given, UnitSet};

@@ -50,11 +50,12 @@ impl Builder<'_> {
             .unwrap_or_default()
             .to_owned();
         let units = self.joint.units.value;
-        let mut text = vec![
-            piece("All inputs stand in "),
-            emph(&file),
-            piece(", attached to the PDF with the clause sheets used"),
-        ];
+        let mut text = vec![piece("All inputs stand in "), emph(&file)];
+        if let Some(shared) = self.joint.inherits_from() {
+            text.push(piece(" and "));
+            text.push(emph(shared));
+        }
+        text.push(piece(", attached to the PDF with the clause sheets used"));
         if let Some(drawing) = &self.joint.drawing {
             text.push(piece(&format!("; geometry by drawing {}", drawing.value)));
         }

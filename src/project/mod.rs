@@ -1,14 +1,20 @@
-//! Files: finds and reads joints and sheets, stages and renames outputs.
+//! Files: finds and reads joints, sheets, templates and what joints share, stages and renames outputs.
 //!
 //! The only room that touches the disk. Everything inside takes texts and gives bytes.
 
+mod glyphs;
 mod outputs;
 mod produce;
 mod read;
+mod templates;
 
 pub use outputs::{Output, stage};
 pub use produce::{Kinds, Produced, Workshop, written};
-pub use read::{JointFile, find_joints, read_joint_file, read_library};
+pub use read::{
+    Completed, JointFile, Surroundings, complete_joint, find_joints, read_joint_file, read_library,
+    read_surroundings, read_told,
+};
+pub use templates::OwnTemplates;
 
 use crate::render::RenderError;
 use crate::source::{Faults, one_line};

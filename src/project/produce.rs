@@ -2,14 +2,10 @@
 
 use super::ProjectError;
 use super::outputs::{Output, stage};
-use super::read::{JointFile, read_joint_file};
-use crate::criteria::Library;
+use super::read::{JointFile, Surroundings, complete_joint, read_told};
 use crate::figure::{SerifFaces, draw, scene, standalone_source, typst_source};
-use crate::joint::read_joint;
 use crate::note::{Calculation, FIGURE, Note, Outcome, write_note};
-use crate::render::{
-    Attachment, Drawings, Press, Relation, RenderError, render_markdown, render_typst,
-};
+use crate::render::{Attachment, Drawings, Press, Relation, RenderError};
 use std::collections::BTreeMap;
 use std::path::Path;
 
@@ -77,21 +73,20 @@ impl Workshop {
     ///
     /// # Errors
     ///
-    /// [`ProjectError`] with the faults of the file, or what the typesetter refuses.
+    /// [`ProjectError`] with the faults of the files, or what the typesetter refuses.
     pub fn produce(
         &self,
         joint: &JointFile,
-        library: &Library,
+        surroundings: &Surroundings,
         kinds: Kinds,
     ) -> Result<Produced, ProjectError> {
-        let file = read_joint_file(&joint.path)?;
-        let told = read_joint(&file)?;
-        let calculation = Calculation::of(&told, library)?;
+        let completed = complete_joint(joint, surroundings)?;
+        let told = read_told(&completed, surroundings)?;
+        let file = &completed.file;
+        let calculation = Calculation::of(&told, &surroundings.library)?;
         let mut note = write_note(&calculation)?;
-        let render = |fault: RenderError| ProjectError::Render {
-            joint: file.name.clone(),
-            fault,
-        };
+        let own = &surroundings.templates;
+        let render = |fault: RenderError| own.explain(&file.name, fault);
         let drawing =
             (kinds.markdown || kinds.pdf).then(|| draw(&scene(&note.sketch), &self.faces));
         if let Some(drawing) = &drawing {
@@ -100,7 +95,7 @@ impl Workshop {
         let trace = note.trace_json();
         let mut outputs = Vec::new();
         if let (true, Some(drawing)) = (kinds.markdown, &drawing) {
-            let markdown = render_markdown(&note.doc).map_err(render)?;
+            let markdown = own.templates.markdown(&note.doc).map_err(render)?;
             outputs.push(Output {
                 name: "note.md",
                 bytes: markdown.into_bytes(),
@@ -116,7 +111,7 @@ impl Workshop {
         }
         if let (true, Some(drawing)) = (kinds.pdf, &drawing) {
             let drawings = Drawings::from([(FIGURE.to_owned(), typst_source(drawing))]);
-            let source = render_typst(&note.doc, &drawings).map_err(render)?;
+            let source = own.templates.typst(&note.doc, &drawings).map_err(render)?;
             let name = joint
                 .path
                 .file_name()
@@ -139,6 +134,24 @@ impl Workshop {
                     trace.as_bytes(),
                 ),
             ];
+            if let Some(shared) = &surroundings.shared {
+                attachments.push(attachment(
+                    "project.yaml",
+                    "application/yaml",
+                    Relation::Source,
+                    "What the joints of the project share",
+                    shared.file.text.as_bytes(),
+                ));
+            }
+            attachments.extend(own.files.iter().map(|(name, file)| {
+                attachment(
+                    &format!("template-{name}"),
+                    "text/plain",
+                    Relation::Source,
+                    "A template of the project",
+                    file.text.as_bytes(),
+                )
+            }));
             attachments.extend(used_sheets(&calculation));
             let pdf = self
                 .press

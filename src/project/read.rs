@@ -1,15 +1,18 @@
-//! Finds and reads joint files and clause sheets.
+//! Finds and reads joint files, clause sheets and the project file.
 
+use super::glyphs::unprintable;
+use super::templates::{OwnTemplates, read_templates};
 use super::{ProjectError, shown};
 use crate::criteria::{Library, built_in, read_sheet};
-use crate::source::{Diagnostic, Faults, Place, SourceFile};
+use crate::joint::{Joint, ProjectFile, read_joint_node, read_project};
+use crate::source::{Diagnostic, Faults, Node, Place, SourceFile, parse_yaml};
 use std::collections::BTreeMap;
 use std::fs;
 use std::path::{Path, PathBuf};
 use std::sync::Arc;
 
-/// Files of a project that are no joints.
-const NOT_JOINTS: [&str; 1] = ["project.yaml"];
+/// The file beside the joints that holds what they share.
+const PROJECT_FILE: &str = "project.yaml";
 
 /// A user's file may have this many bytes: a thousand times the largest joint seen.
 const LARGEST: u64 = 8 * 1024 * 1024;
@@ -25,7 +28,7 @@ pub struct JointFile {
     pub stem: String,
 }
 
-fn file_error(path: &Path, what: impl Into<String>) -> ProjectError {
+pub(super) fn file_error(path: &Path, what: impl Into<String>) -> ProjectError {
     ProjectError::File {
         path: path.to_owned(),
         what: what.into(),
@@ -48,7 +51,8 @@ pub fn find_joints(paths: &[PathBuf]) -> Result<Vec<JointFile>, ProjectError> {
                     .file_name()
                     .and_then(|name| name.to_str())
                     .unwrap_or_default();
-                if is_yaml(&entry) && entry.is_file() && !NOT_JOINTS.contains(&name) {
+                if is_yaml(&entry) && !entry.is_dir() && name != PROJECT_FILE {
+                    within(path, &entry)?;
                     found.push(joint_file(&entry));
                 }
             }
@@ -59,6 +63,12 @@ pub fn find_joints(paths: &[PathBuf]) -> Result<Vec<JointFile>, ProjectError> {
                 ));
             }
         } else if path.is_file() {
+            if path.file_name().is_some_and(|name| name == PROJECT_FILE) {
+                return Err(file_error(
+                    path,
+                    "is what the joints beside it share, no joint; name their folder",
+                ));
+            }
             found.push(joint_file(path));
         } else {
             return Err(file_error(path, "there is no such file or folder"));
@@ -113,7 +123,7 @@ fn joint_file(path: &Path) -> JointFile {
     }
 }
 
-fn sorted(folder: &Path) -> Result<Vec<PathBuf>, ProjectError> {
+pub(super) fn sorted(folder: &Path) -> Result<Vec<PathBuf>, ProjectError> {
     let entries = fs::read_dir(folder).map_err(|fault| file_error(folder, fault.to_string()))?;
     let mut paths = Vec::new();
     for entry in entries {
@@ -127,6 +137,22 @@ fn sorted(folder: &Path) -> Result<Vec<PathBuf>, ProjectError> {
     Ok(paths)
 }
 
+/// Refuses a file that a symbolic link leads to from outside the folder of the joints.
+pub(super) fn within(folder: &Path, path: &Path) -> Result<(), ProjectError> {
+    let real = |path: &Path| {
+        let real = fs::canonicalize(path);
+        real.map_err(|fault| file_error(path, fault.to_string()))
+    };
+    if real(path)?.starts_with(real(folder)?) {
+        return Ok(());
+    }
+    let what = format!(
+        "is a symbolic link out of {}; nothing outside it is read, so copy the file there",
+        folder.display()
+    );
+    Err(file_error(path, what))
+}
+
 /// Reads a file as text with its name as the user would type it.
 ///
 /// # Errors
@@ -134,9 +160,11 @@ fn sorted(folder: &Path) -> Result<Vec<PathBuf>, ProjectError> {
 /// [`ProjectError::File`] if it cannot be read or is too large; [`ProjectError::Faults`] at the
 /// first byte that is no UTF-8.
 pub fn read_joint_file(path: &Path) -> Result<Arc<SourceFile>, ProjectError> {
-    let size = fs::metadata(path)
-        .map_err(|fault| file_error(path, fault.to_string()))?
-        .len();
+    let known = fs::metadata(path).map_err(|fault| file_error(path, fault.to_string()))?;
+    if !known.is_file() {
+        return Err(file_error(path, "is no file"));
+    }
+    let size = known.len();
     if size > LARGEST {
         return Err(file_error(
             path,
@@ -178,9 +206,11 @@ pub fn read_library(folder: &Path) -> Result<Library, ProjectError> {
     let mut faults = Vec::new();
     for path in sorted(&sheets)?
         .into_iter()
-        .filter(|path| is_yaml(path) && path.is_file())
+        .filter(|path| is_yaml(path) && !path.is_dir())
     {
+        within(folder, &path)?;
         let file = read_joint_file(&path)?;
+        faults.extend(parse_yaml(&file).map_or_else(|_| Vec::new(), |root| unprintable(&root)));
         let added = read_sheet(&file).and_then(|sheet| library.add(sheet));
         if let Err(found) = added {
             faults.extend(found.0);
@@ -191,4 +221,114 @@ pub fn read_library(folder: &Path) -> Result<Library, ProjectError> {
     } else {
         Err(Faults(faults).into())
     }
+}
+
+/// What the joints of a folder are read with.
+#[derive(Clone, Debug)]
+pub struct Surroundings {
+    /// Clause sheets, built in and the user's own.
+    pub library: Library,
+    /// What the joints share, if the folder has a project file.
+    pub shared: Option<ProjectFile>,
+    /// What the notes are set with.
+    pub templates: OwnTemplates,
+}
+
+/// Reads what stands beside the joints of a folder: sheets, project file, templates.
+///
+/// # Errors
+///
+/// [`ProjectError`] if one of them cannot be read or has faults.
+pub fn read_surroundings(folder: &Path) -> Result<Surroundings, ProjectError> {
+    let path = folder.join(PROJECT_FILE);
+    let shared = if fs::symlink_metadata(&path).is_ok() {
+        within(folder, &path)?;
+        let file = read_joint_file(&path)?;
+        let mut faults = unprintable(&parse_yaml(&file)?);
+        let shared = read_project(&file).map_err(|found| faults.extend(found.0));
+        match shared {
+            Ok(shared) if faults.is_empty() => Some(shared),
+            Ok(_) | Err(()) => return Err(in_order(faults).into()),
+        }
+    } else {
+        None
+    };
+    Ok(Surroundings {
+        library: read_library(folder)?,
+        shared,
+        templates: read_templates(folder)?,
+    })
+}
+
+/// A joint's file and its tree, what it inherits put in.
+#[derive(Clone, Debug)]
+pub struct Completed {
+    /// The joint file.
+    pub file: Arc<SourceFile>,
+    /// The tree.
+    pub root: Node,
+    faults: Vec<Diagnostic>,
+}
+
+/// Reads a joint's tree and puts in what it inherits.
+///
+/// # Errors
+///
+/// [`ProjectError`] if the file cannot be read as YAML.
+pub fn complete_joint(
+    joint: &JointFile,
+    surroundings: &Surroundings,
+) -> Result<Completed, ProjectError> {
+    let file = read_joint_file(&joint.path)?;
+    let own = parse_yaml(&file)?;
+    let mut faults = unprintable(&own);
+    let root = match &surroundings.shared {
+        Some(shared) => {
+            let (root, mut found) = shared.complete(&own);
+            faults.append(&mut found);
+            root
+        }
+        None => own,
+    };
+    Ok(Completed { file, root, faults })
+}
+
+/// Reads a joint with what it inherits.
+///
+/// # Errors
+///
+/// [`ProjectError`] with all faults of the joint, in file order.
+pub fn read_told(
+    completed: &Completed,
+    surroundings: &Surroundings,
+) -> Result<Joint, ProjectError> {
+    let mut faults = completed.faults.clone();
+    let joint = read_joint_node(&completed.root);
+    match joint {
+        Ok(joint) if faults.is_empty() => return Ok(joint),
+        Ok(_) => {}
+        Err(found) => faults.extend(found.0),
+    }
+    if let Some(shared) = &surroundings.shared {
+        let named: Vec<String> = shared
+            .part_names()
+            .iter()
+            .map(|name| format!("`{name}`"))
+            .collect();
+        for fault in &mut faults {
+            if fault.code == "unknown-part" && !named.is_empty() {
+                fault
+                    .help
+                    .push(format!("the project file names: {}", named.join(", ")));
+            }
+        }
+    }
+    Err(in_order(faults).into())
+}
+
+fn in_order(mut faults: Vec<Diagnostic>) -> Faults {
+    faults.sort_by(|a, b| {
+        (&a.place.file.name, a.place.start).cmp(&(&b.place.file.name, b.place.start))
+    });
+    Faults(faults)
 }

@@ -83,7 +83,8 @@ pub fn text_width(text: &str, cut: Cut) -> f64 {
 /// Whether the note can print the character as itself, without reordering its neighbours.
 ///
 /// Directional controls are refused because they make a printed number differ from the typed one.
-pub(super) fn prints(c: char) -> bool {
+#[must_use]
+pub fn prints(c: char) -> bool {
     match c {
         '\n' | '\r' | '\t' | '\u{ad}' | '\u{200b}'..='\u{200d}' | '\u{2060}' | '\u{feff}' => true,
         '\u{200e}' | '\u{200f}' | '\u{202a}'..='\u{202e}' | '\u{2066}'..='\u{2069}' => false,

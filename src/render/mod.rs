@@ -20,7 +20,7 @@ pub use self::typst::{TypstSource, render_typst};
 pub use check::{Fault, Stray, overflow};
 pub use error::{RenderError, TypesetFault};
 pub use escape::{markdown_text, typst_string};
-pub use faces::{Cut, FAMILIES, face, text_width};
+pub use faces::{Cut, FAMILIES, face, prints, text_width};
 pub use markdown::render_markdown;
 pub use pdf::{Attachment, Pdf, Relation};
 pub use templates::Templates;

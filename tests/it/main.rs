@@ -14,6 +14,8 @@ mod joint_read;
 mod laying;
 mod mechanics;
 mod notes;
+mod own_templates;
+mod project_file;
 mod quantity;
 mod readme;
 mod render;

@@ -6,7 +6,7 @@ use seamnote::cli::{Arguments, run};
 use seamnote::figure::{SerifFaces, draw, scene, standalone_source, typst_source};
 use seamnote::note::FIGURE;
 use seamnote::project::{
-    JointFile, Kinds, Produced, Workshop, find_joints, read_joint_file, read_library,
+    JointFile, Kinds, Produced, Workshop, find_joints, read_joint_file, read_surroundings,
 };
 use seamnote::render::{Drawings, Fault, Press, Stray, overflow, render_typst};
 use std::collections::BTreeSet;
@@ -25,14 +25,14 @@ pub(crate) fn demo() -> &'static [(JointFile, Produced)] {
     static DEMO: OnceLock<Vec<(JointFile, Produced)>> = OnceLock::new();
     DEMO.get_or_init(|| {
         let folder = project_folder("joints");
-        let library = read_library(&folder).unwrap_or_else(|fault| panic!("{fault}"));
+        let surroundings = read_surroundings(&folder).unwrap_or_else(|fault| panic!("{fault}"));
         let workshop = Workshop::new();
         find_joints(&[folder])
             .unwrap_or_else(|fault| panic!("{fault}"))
             .into_iter()
             .map(|joint| {
                 let produced = workshop
-                    .produce(&joint, &library, Kinds::ALL)
+                    .produce(&joint, &surroundings, Kinds::ALL)
                     .unwrap_or_else(|fault| panic!("{fault}"));
                 (joint, produced)
             })

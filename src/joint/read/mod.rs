@@ -8,10 +8,12 @@ mod look;
 mod part;
 mod path;
 mod pattern;
+mod shared;
 mod size;
 mod value;
 mod weld;
 
+pub(super) use shared::check_project;
 pub use value::{read_quantity, read_triple};
 
 use look::look_of;

@@ -84,14 +84,14 @@ fn read_check(item: Item<'_>) -> Option<CheckSpec> {
 }
 
 /// Reads `source` and `to be verified`.
-fn read_standing(fields: &mut Fields<'_>) -> (Option<Told<String>>, bool) {
+pub(super) fn read_standing(fields: &mut Fields<'_>) -> (Option<Told<String>>, bool) {
     let source = fields.optional("source", Item::line);
     let to_be_verified = fields.optional("to be verified", Item::flag);
     (source, to_be_verified.unwrap_or(false))
 }
 
 /// Reads all other keys as quantities whose kind a sheet will say.
-fn read_more<'a>(
+pub(super) fn read_more<'a>(
     fields: &mut Fields<'a>,
     read: impl Fn(Item<'a>) -> Option<RawQuantity>,
 ) -> Vec<(Told<String>, RawQuantity)> {

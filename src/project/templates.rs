@@ -1,0 +1,116 @@
+//! Templates of a project in place of the built-in ones, and their faults as the user reads them.
+
+use super::ProjectError;
+use super::read::{file_error, read_joint_file, sorted, within};
+use crate::render::{RenderError, Templates};
+use crate::source::{Diagnostic, Faults, Place, SourceFile};
+use std::collections::BTreeMap;
+use std::path::Path;
+use std::sync::Arc;
+
+/// Folder beside the joints that holds a project's own templates.
+const FOLDER: &str = "templates";
+
+/// The templates of a project.
+#[derive(Clone, Debug, Default)]
+pub struct OwnTemplates {
+    /// What notes are set with.
+    pub templates: Templates,
+    /// The files among them that are the project's own, by name.
+    pub files: BTreeMap<String, Arc<SourceFile>>,
+}
+
+/// The built-in templates, those in the `templates` folder beside the joints in their places.
+///
+/// # Errors
+///
+/// [`ProjectError`] if a file cannot be read or bears no template's name.
+pub(super) fn read_templates(folder: &Path) -> Result<OwnTemplates, ProjectError> {
+    let mut own = OwnTemplates::default();
+    let place = folder.join(FOLDER);
+    if !place.is_dir() {
+        return Ok(own);
+    }
+    for path in sorted(&place)? {
+        let name = path.file_name().unwrap_or_default().to_string_lossy();
+        if name.starts_with('.') {
+            continue;
+        }
+        let templates = &mut own.templates;
+        let replaced = match &*name {
+            "note.typ" => &mut templates.note_typ,
+            "page.typ" => &mut templates.page_typ,
+            "note.md" => &mut templates.note_md,
+            _ => {
+                let what = "is no template: note.typ, page.typ and note.md may stand here";
+                return Err(file_error(&path, what));
+            }
+        };
+        within(folder, &path)?;
+        let file = read_joint_file(&path)?;
+        replaced.clone_from(&file.text);
+        own.files.insert(name.into_owned(), file);
+    }
+    Ok(own)
+}
+
+impl OwnTemplates {
+    /// A fault of setting a note: at its line of the project's own template, if it stands there.
+    pub(super) fn explain(&self, joint: &str, fault: RenderError) -> ProjectError {
+        let faults = match &fault {
+            RenderError::Template {
+                name,
+                line,
+                message,
+            } => {
+                let place = self.place(name, line.unwrap_or(1));
+                let told =
+                    place.map(|place| Diagnostic::error("template", first_line(message), &place));
+                told.into_iter().collect()
+            }
+            RenderError::Typeset(faults) => faults
+                .iter()
+                .filter_map(|fault| {
+                    let (name, line) = fault.template.as_ref()?;
+                    let place = self.place(name, *line)?;
+                    let words = first_line(&fault.message);
+                    let mut told = Diagnostic::error("typesetting", words, &place);
+                    told.help.extend(fault.hints.iter().cloned());
+                    Some(told)
+                })
+                .collect(),
+            RenderError::Unresolved(_) | RenderError::Glyphs(_) | RenderError::Internal(_) => {
+                Vec::new()
+            }
+        };
+        if faults.is_empty() {
+            return ProjectError::Render {
+                joint: joint.to_owned(),
+                fault,
+            };
+        }
+        let setting = |told: Diagnostic| told.help(format!("met while setting {joint}"));
+        Faults(faults.into_iter().map(setting).collect()).into()
+    }
+
+    /// A line of an own template, without its indent.
+    fn place(&self, name: &str, line: usize) -> Option<Place> {
+        let file = self.files.get(name)?;
+        let before = file.text.split_inclusive('\n').take(line.saturating_sub(1));
+        let start: usize = before.map(str::len).sum();
+        let text = file.text[start..].lines().next().unwrap_or_default();
+        let start = start + (text.len() - text.trim_start().len());
+        Some(Place {
+            file: file.clone(),
+            start,
+            end: start + text.trim().len(),
+        })
+    }
+}
+
+/// The engine's words without the excerpt that it may add below them, and without the place.
+fn first_line(message: &str) -> String {
+    let line = message.lines().next().unwrap_or_default();
+    let line = line.rsplit_once(" (in ").map_or(line, |(words, _)| words);
+    line.trim_end_matches('.').to_owned()
+}

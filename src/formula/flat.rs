@@ -22,7 +22,13 @@ pub(super) enum Flat {
     Extreme(bool, Vec<Self>),
     Sum(Vec<Self>),
     Lookup(Box<(Table, Self)>),
-    When(Vec<(Option<(Relation, [Self; 2])>, Self)>),
+    When(Vec<Choice>),
+}
+
+/// A branch of a choice; no condition means otherwise.
+pub(super) struct Choice {
+    condition: Option<(Relation, [Flat; 2])>,
+    value: Flat,
 }
 
 impl Flat {
@@ -67,7 +73,8 @@ impl Flat {
                             Some((told.relation, [part(&told.left)?, part(&told.right)?]))
                         }
                     };
-                    Some((condition, part(&branch.value)?))
+                    let value = part(&branch.value)?;
+                    Some(Choice { condition, value })
                 };
                 Self::When(branches.iter().map(branch).collect::<Option<_>>()?)
             }
@@ -119,7 +126,7 @@ impl Flat {
                 table.rows[row].value.value
             }
             Self::When(branches) => {
-                for (condition, value) in branches {
+                for Choice { condition, value } in branches {
                     let holds = match condition {
                         None => true,
                         Some((relation, sides)) => {

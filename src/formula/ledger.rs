@@ -464,8 +464,9 @@ impl Ledger {
             return Vec::new();
         };
         let mut uses = Vec::new();
+        let mut seen = BTreeSet::new();
         let mut add = |used: Value| {
-            if !uses.contains(&used) {
+            if seen.insert(used) {
                 uses.push(used);
             }
         };

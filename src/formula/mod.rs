@@ -10,6 +10,7 @@ mod batch;
 mod digits;
 mod dims;
 mod eval;
+mod flat;
 mod ledger;
 mod lines;
 mod math;

@@ -6,6 +6,7 @@
 //! large numbers, which would ask for more than seven, is printed with fewer digits of its own instead.
 //! Repeated to a bound.
 
+use super::flat::Flat;
 use super::ledger::{EntryLook, Freedom, Kind, Ledger, Value};
 use super::node::{Kind as NodeKind, Op};
 use super::{FormulaError, Problem, evaluate};
@@ -30,14 +31,14 @@ impl Ledger {
     /// [`Problem::Unsettled`] if a line needs an operand beyond the bound of 13 digits.
     pub fn settle(&mut self) -> Result<(), FormulaError> {
         self.keep_printed(None);
-        let users = self.users();
+        let lines = Lines::of(self);
         let mut queue: VecDeque<Value> = self.values().collect();
         let mut waiting = vec![true; queue.len()];
         while let Some(value) = queue.pop_front() {
             waiting[value.0] = false;
-            while let Some(raised) = self.raise_for(value)? {
+            while let Some(raised) = self.raise_for(value, &lines)? {
                 self.keep_printed(Some(raised));
-                for other in users[raised.0].iter().copied().chain([raised]) {
+                for other in lines.users[raised.0].iter().copied().chain([raised]) {
                     if other != value && !waiting[other.0] {
                         waiting[other.0] = true;
                         queue.push_back(other);
@@ -46,17 +47,6 @@ impl Ledger {
             }
         }
         Ok(())
-    }
-
-    /// For each value, the lines whose formulas use it.
-    fn users(&self) -> Vec<Vec<Value>> {
-        let mut users = vec![Vec::new(); self.values().count()];
-        for value in self.values() {
-            for used in self.uses(value) {
-                users[used.0].push(value);
-            }
-        }
-        users
     }
 
     /// The miss of a replay in units of the last printed digit; `None` for a line that has no formula.
@@ -74,14 +64,19 @@ impl Ledger {
             printed: true,
             shift: None,
         };
-        let replayed = self.shown(value, evaluate(node, text, &look)?);
+        Ok(Some(self.miss_of(value, evaluate(node, text, &look)?)))
+    }
+
+    /// How far a replayed value is from the printed one, in units of its last digit.
+    fn miss_of(&self, value: Value, replayed: f64) -> f64 {
+        let replayed = self.shown(value, replayed);
         let printed = self.printed(value);
         let unit = if printed.is_zero() {
             self.unit_of_zero(value)
         } else {
             self.unit(value)
         };
-        Ok(Some((replayed - printed.value()).abs() / unit))
+        (replayed - printed.value()).abs() / unit
     }
 
     /// The value as printed: degrees for an angle.
@@ -152,9 +147,16 @@ impl Ledger {
     }
 
     /// Raises one operand of a line that does not replay; `None` once it does.
-    fn raise_for(&mut self, value: Value) -> Result<Option<Value>, FormulaError> {
-        let Some(miss) = self.replay_miss(value)? else {
-            return Ok(None);
+    fn raise_for(&mut self, value: Value, lines: &Lines) -> Result<Option<Value>, FormulaError> {
+        let replayed = lines.flats[value.0]
+            .as_ref()
+            .and_then(|flat| flat.value(&|used| self.printed_value(used) + 0.0));
+        let miss = match replayed {
+            Some(replayed) => self.miss_of(value, replayed),
+            None => match self.replay_miss(value)? {
+                Some(miss) => miss,
+                None => return Ok(None),
+            },
         };
         // A hair over is rounding of the replay itself.
         if miss <= self.allowed_miss(value) + 1e-6 {
@@ -162,7 +164,7 @@ impl Ledger {
         }
         let cosmetic = miss <= 1.0 + 1e-6;
         let most = if cosmetic { SUM_DIGITS } else { MOST_DIGITS };
-        let worst = self.worst_operand(value, most);
+        let worst = self.worst_operand(value, most, lines);
         if worst.is_none() && cosmetic {
             return Ok(None);
         }
@@ -198,10 +200,10 @@ impl Ledger {
     }
 
     /// The operand whose rounding moves the result most, of those that may take another digit.
-    fn worst_operand(&self, value: Value, most: usize) -> Option<Value> {
+    fn worst_operand(&self, value: Value, most: usize, lines: &Lines) -> Option<Value> {
         let plain = self.allowed_miss(value) < 1.0;
         let mut worst: Option<(f64, Value)> = None;
-        for used in self.uses(value) {
+        for used in lines.uses[value.0].iter().copied() {
             if self.get(used).digits >= most || !self.can_rise(used) {
                 continue;
             }
@@ -209,7 +211,7 @@ impl Ledger {
                 // In a plain sum every operand moves the result by its own rounding.
                 self.printed(used).unit_in_last()
             } else {
-                self.effect_of_rounding(value, used)
+                self.effect_of_rounding(lines.flats[value.0].as_ref(), used)
             };
             if worst.is_none_or(|(known, _)| effect > known) {
                 worst = Some((effect, used));
@@ -230,9 +232,9 @@ impl Ledger {
         computed && (self.printed(value).value() - shown).abs() > 1e-14 * shown.abs()
     }
 
-    /// How far half a unit in the last digit of `used` moves the result of `value`.
-    fn effect_of_rounding(&self, value: Value, used: Value) -> f64 {
-        let Kind::Step { node, text, env } = &self.get(value).kind else {
+    /// How far half a unit in the last digit of `used` moves the result of a line.
+    fn effect_of_rounding(&self, line: Option<&Flat>, used: Value) -> f64 {
+        let Some(line) = line else {
             return 0.0;
         };
         let half = 0.5 * self.printed(used).unit_in_last();
@@ -242,14 +244,49 @@ impl Ledger {
             half
         };
         let at = |shift: f64| {
-            let look = EntryLook {
-                ledger: self,
-                env,
-                printed: true,
-                shift: Some((used, shift)),
-            };
-            evaluate(node, text, &look).unwrap_or(f64::INFINITY)
+            let number =
+                |value: Value| self.printed_value(value) + if value == used { shift } else { 0.0 };
+            line.value(&number).unwrap_or(f64::INFINITY)
         };
         (at(half) - at(-half)).abs()
+    }
+}
+
+/// What of the lines stays while digits move.
+struct Lines {
+    /// The formula of each line that has one.
+    flats: Vec<Option<Flat>>,
+    /// The values that each line uses.
+    uses: Vec<Vec<Value>>,
+    /// For each value, the lines whose formulas use it.
+    users: Vec<Vec<Value>>,
+}
+
+impl Lines {
+    fn of(ledger: &Ledger) -> Self {
+        let flat = |value: Value| {
+            let Kind::Step { node, env, .. } = &ledger.get(value).kind else {
+                return None;
+            };
+            let look = EntryLook {
+                ledger,
+                env,
+                printed: true,
+                shift: None,
+            };
+            Flat::of(node, &look, None)
+        };
+        let uses: Vec<Vec<Value>> = ledger.values().map(|value| ledger.uses(value)).collect();
+        let mut users = vec![Vec::new(); uses.len()];
+        for (value, used) in ledger.values().zip(&uses) {
+            for used in used {
+                users[used.0].push(value);
+            }
+        }
+        Self {
+            flats: ledger.values().map(flat).collect(),
+            uses,
+            users,
+        }
     }
 }

@@ -486,7 +486,7 @@ impl Builder<'_> {
                 Cell::Text(plain(&told.name.value)),
                 Cell::Text(plain(told.level.value.word())),
                 Cell::Text(plain(&check_name(asked(calculation, outcome), check))),
-                Cell::Text(plain(&self.place_words(spot_of(&at)))),
+                Cell::Text(plain(&self.place_words(spot_of(at)))),
                 Cell::Rounded {
                     value: utilisation,
                     decimals: 3,

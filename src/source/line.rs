@@ -86,8 +86,9 @@ mod tests {
 
     #[test]
     fn a_line_tells_what_it_leaves_open() {
+        type Row<'a> = (&'a str, &'a [usize], Option<(&'a str, &'a str)>);
         #[rustfmt::skip]
-        let rows: [(&str, &[usize], Option<(&str, &str)>); 9] = [
+        let rows: [Row<'_>; 9] = [
             ("- {name: a #b, leg: 6}",     &[2],  Some(("name", "a"))),
             ("- {name: 'a #b', leg: 6}",   &[],   None),
             ("- {name: lug's, leg: 6} # x, y", &[], None),

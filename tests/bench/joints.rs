@@ -114,6 +114,34 @@ impl<'a> Clock<'a> {
     }
 }
 
+/// Joints that are read only.
+const READ: usize = 1000;
+
+/// Times the reading of many joint files, and their computing up to the note, on one core.
+pub(super) fn reading() {
+    let files: Vec<Arc<SourceFile>> = (0..READ).map(file).collect();
+    let bytes: usize = files.iter().map(|file| file.text.len()).sum();
+    let read = || {
+        files.iter().for_each(|file| {
+            drop(read_joint(file).unwrap());
+        });
+    };
+    let vet = || {
+        for file in &files {
+            let told = read_joint(file).unwrap();
+            drop(write_note(&Calculation::of(&told, built_in()).unwrap()).unwrap());
+        }
+    };
+    let time = |work: &dyn Fn()| least((0..ROUNDS).map(|_| seconds(work)).collect());
+    let (read, vet) = (time(&read), time(&vet));
+    println!(
+        "  {READ} joints of {} kB read in {:.1} ms, {:.3} of reading and working them",
+        bytes / 1000,
+        read * 1e3,
+        read / vet
+    );
+}
+
 /// Times many joints in one process on all cores against the typesetting of the same sources.
 pub(super) fn many() {
     let folder = tempfile::tempdir().unwrap();

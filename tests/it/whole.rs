@@ -94,6 +94,44 @@ fn small_joints_have_a_note() {
     assert!(refused.is_empty(), "{}", refused.join("\n"));
 }
 
+/// Three hundred runs, and ten thousand cases, are worked in full: nothing on the way grows with the
+/// cube of the one or the square of the other. Both take a second or less.
+#[test]
+fn large_joints_have_a_note() {
+    let runs: Vec<String> = (0..300)
+        .map(|n| {
+            let (x, y) = (40 * (n % 20), 50 * (n / 20));
+            format!(
+                "straight: [[{x}, {y}], [{}, {}]], fillet: 6",
+                x + 25,
+                y + n % 3
+            )
+        })
+        .collect();
+    let runs: Vec<&str> = runs.iter().map(String::as_str).collect();
+    let clause = "EN 1993-1-8 4.5.3.2";
+    let many_runs = small_joint("less throat", &runs, "ultimate", clause);
+    let cases: String = (0..10_000)
+        .map(|n| {
+            format!(
+                "    - {{case: C{n}, force: [{}, {}, {}]}}\n",
+                n % 101,
+                n % 53,
+                n % 61
+            )
+        })
+        .collect();
+    let two = small_joint("full", &[runs[0], runs[30]], "ultimate", clause);
+    let (head, tail) = two.split_once("    - {case: L1").unwrap();
+    let (_, tail) = tail.split_once('\n').unwrap();
+    let project = Project::new();
+    project.put("joints/runs.yaml", many_runs);
+    project.put("joints/cases.yaml", format!("{head}{cases}{tail}"));
+    let ran = project.run(&["vet"]);
+    assert_eq!(ran.code, 0, "{}", ran.err);
+    assert_eq!(ran.out.matches("least margin +").count(), 2, "{}", ran.out);
+}
+
 /// `vet` writes nothing, so it has no earlier note to speak of.
 #[test]
 fn vet_does_not_speak_of_earlier_notes() {

@@ -298,7 +298,8 @@ impl<'a, 'g> Desk<'a, 'g> {
         self.step_in(draft, &env)
     }
 
-    /// Refuses a value that is not the assessment's, to 1e-8 of `size`.
+    /// Refuses a value that is not the assessment's, to 1e-8 of `size` or of itself: a resultant, which is
+    /// the usual size, is 0 where squares of tiny loads vanish.
     pub(super) fn agree(
         &self,
         name: &str,
@@ -307,7 +308,7 @@ impl<'a, 'g> Desk<'a, 'g> {
         size: f64,
     ) -> Result<(), WorkError> {
         let bound = self.ledger.get(value).value;
-        if (bound - computed).abs() <= AGREES * size {
+        if (bound - computed).abs() <= AGREES * size.max(bound.abs()) {
             return Ok(());
         }
         Err(WorkError::Disagrees {

@@ -29,7 +29,7 @@ pub enum WorkError {
     #[error("nothing is bound to `{0}`")]
     Unbound(String),
     /// A bound value, or a result, is not the assessment's.
-    #[error("`{name}` is {bound} in the steps, but {computed} in the assessment")]
+    #[error("`{name}` is {bound:e} in the steps, but {computed:e} in the assessment")]
     Disagrees {
         /// The name.
         name: String,

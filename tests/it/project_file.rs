@@ -1,6 +1,7 @@
 //! `project.yaml`: what joints inherit, what stays their own, and where its faults are told.
 
 use crate::command::{Project, Ran, joint, joint_with};
+use crate::tidy::file;
 
 /// What the mast foot shares with other joints, taken out of its file.
 const SHARED: &str = "\
@@ -93,6 +94,25 @@ fn a_joint_that_inherits_gives_the_results_of_one_that_says_all() {
     assert!(
         !note.contains("never used"),
         "a part that is not joined stays out"
+    );
+}
+
+#[test]
+fn the_project_file_of_the_readme_serves_the_mast_foot() {
+    let text = file("README.md").text;
+    let (_, block) = text
+        .split_once("```yaml\n# joints/project.yaml\n")
+        .expect("README.md shows a project file");
+    let (block, _) = block.split_once("```").expect("the block ends");
+    let drawing = own().replace("title:", "drawing: LM-2207 sheet 3\ntitle:");
+    let project = project(block, &drawing);
+    let inherited = trace(&project);
+    let whole = Project::with_joint();
+    let told = trace(&whole);
+    assert_eq!(inherited["note"], told["note"], "the number");
+    assert_eq!(
+        inherited["governing"]["check"], "EN 1993-1-8 4.5.3.2, equivalent stress",
+        "its one check governs"
     );
 }
 

@@ -93,9 +93,11 @@ pub fn find_joints(paths: &[PathBuf]) -> Result<Vec<JointFile>, ProjectError> {
     Ok(found)
 }
 
+/// Whether a file of a folder is a user's YAML; editors and archives leave `.#x.yaml`, `._x.yaml`.
 fn is_yaml(path: &Path) -> bool {
-    path.extension()
-        .is_some_and(|extension| extension == "yaml" || extension == "yml")
+    let name = path.file_name().unwrap_or_default().to_string_lossy();
+    let left_over = name.starts_with(".#") || name.starts_with("._");
+    !left_over && (name.ends_with(".yaml") || name.ends_with(".yml"))
 }
 
 fn joint_file(path: &Path) -> JointFile {

@@ -163,6 +163,8 @@ fn links_out_of_the_folder_are_refused() {
     }
     let project = Project::with_joint();
     project.put("joints/sheets/real/rule.txt", sheet);
+    // An editor's lock is a link to nowhere.
+    symlink("user@host:1", project.path("joints/.#mast-foot.yaml")).unwrap();
     symlink(
         project.path("joints/sheets/real/rule.txt"),
         project.path("joints/sheets/rule.yaml"),

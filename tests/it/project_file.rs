@@ -381,3 +381,36 @@ fn show_tells_the_faults_of_a_joint_that_cannot_be_read() {
     let ran = Project::new().run(&["show"]);
     assert_eq!(ran.code, 2, "a path must be given: {ran:?}");
 }
+
+#[test]
+fn no_damage_to_either_file_ends_the_program() {
+    let read = |name: &str, text: String| {
+        std::sync::Arc::new(seamnote::source::SourceFile {
+            name: name.to_owned(),
+            text,
+        })
+    };
+    let (own, mut refused) = (own(), 0);
+    let whole = seamnote::joint::read_project(&read("project.yaml", SHARED.to_owned())).unwrap();
+    for at in (0..own.len()).filter(|at| own.is_char_boundary(*at)) {
+        let Ok(root) = seamnote::source::parse_yaml(&read("joint.yaml", own[..at].to_owned()))
+        else {
+            continue;
+        };
+        let (root, faults) = whole.complete(&root);
+        refused +=
+            usize::from(seamnote::joint::read_joint_node(&root).is_err() || !faults.is_empty());
+    }
+    assert!(refused > 100, "only {refused} damaged joints were refused");
+    let joint = seamnote::source::parse_yaml(&read("joint.yaml", own)).unwrap();
+    for at in (0..SHARED.len()).filter(|at| SHARED.is_char_boundary(*at)) {
+        for cut in [SHARED[..at].to_owned(), SHARED[at..].to_owned()] {
+            if let Ok(shared) = seamnote::joint::read_project(&read("project.yaml", cut)) {
+                let (root, faults) = shared.complete(&joint);
+                let told = seamnote::joint::read_joint_node(&root);
+                let places = told.err().map_or(0, |found| found.0.len()) + faults.len();
+                assert!(places < 200, "{places} faults after a cut at {at}");
+            }
+        }
+    }
+}

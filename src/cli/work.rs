@@ -6,8 +6,9 @@ use super::show::table;
 use crate::note::{Calculation, Standing, write_note};
 use crate::project::{
     JointFile, Kinds, ProjectError, Surroundings, Workshop, complete_joint, find_joints,
-    read_surroundings, read_told, written,
+    read_surroundings, read_told, shown, written,
 };
+use crate::source::one_line;
 use std::collections::BTreeMap;
 use std::path::{Path, PathBuf};
 use std::sync::Mutex;
@@ -75,14 +76,14 @@ fn prepare(paths: &[PathBuf]) -> Result<(Vec<JointFile>, Folders), ProjectError>
 /// Says what each joint says, and what is wrong with those that cannot be read.
 fn show(paths: &[PathBuf], colour: bool) -> Said {
     let mut said = Said::default();
-    let shown = |joint: &JointFile, surroundings: &Surroundings| {
+    let told_of = |joint: &JointFile, surroundings: &Surroundings| {
         let completed = complete_joint(joint, surroundings)?;
         let told = read_told(&completed, surroundings)?;
         Ok(table(&completed, &told, &surroundings.library))
     };
     let results = prepare(paths).map(|(joints, folders)| {
         let each = joints.iter();
-        each.map(|joint| shown(joint, &folders[&joint.folder]))
+        each.map(|joint| told_of(joint, &folders[&joint.folder]))
             .collect::<Vec<Result<String, ProjectError>>>()
     });
     for result in results.unwrap_or_else(|fault| vec![Err(fault)]) {
@@ -198,7 +199,11 @@ fn one(
 }
 
 fn said(standing: &Standing, joint: &JointFile, tail: &str) -> Outcome {
-    let line = format!("{}  {}{tail}", joint.path.display(), standing.line());
+    let line = format!(
+        "{}  {}{tail}",
+        shown(&joint.path),
+        one_line(&standing.line())
+    );
     Outcome {
         line,
         holds: standing.holds(),
@@ -229,10 +234,7 @@ fn summary(
         }
     }
     if !refused.is_empty() {
-        let names: Vec<String> = refused
-            .iter()
-            .map(|path| path.display().to_string())
-            .collect();
+        let names: Vec<String> = refused.iter().map(|path| shown(path)).collect();
         let tail = if writes {
             "; an earlier note stands as it was"
         } else {

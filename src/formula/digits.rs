@@ -85,8 +85,26 @@ impl Printed {
     }
 
     /// `value` with `decimals` digits after the point, rounded down (toward −∞) or up (toward +∞).
+    ///
+    /// From 10⁵ on, as m × 10ⁿ with as many decimals of m, rounded the same way.
     #[must_use]
     pub fn rounded(value: f64, decimals: i32, up: bool) -> Self {
+        if value.abs() >= real::ten_to(LARGE) && value.is_finite() {
+            let power = decompose(value.abs(), 17).1;
+            let scaled = Self::rounded(value / real::ten_to(power), decimals, up);
+            // Rounding away from 0 may carry: 9.999 to 10.00.
+            return if scaled.value().abs() >= 10.0 {
+                Self {
+                    exponent: Some(power + 1),
+                    ..Self::rounded(scaled.value() / 10.0, decimals, up)
+                }
+            } else {
+                Self {
+                    exponent: Some(power),
+                    ..scaled
+                }
+            };
+        }
         let scale = real::ten_to(decimals);
         // A value that stands on the grid to within rounding noise stays there.
         let scaled = value * scale;
@@ -267,6 +285,23 @@ mod tests {
             "+0.50",
             "on the grid"
         );
+        #[rustfmt::skip]
+        let rows = [
+            (99_999.994,    false, "+99999.99"),
+            (234_567.8,     false, "+2.34 × 10⁵"),
+            (234_567.8,     true,  "+2.35 × 10⁵"),
+            (9.999_9e7,     false, "+9.99 × 10⁷"),
+            (9.999_9e7,     true,  "+1.00 × 10⁸"),
+            (-2.001e6,      false, "−2.01 × 10⁶"),
+            (7.136e204,     false, "+7.13 × 10²⁰⁴"),
+        ];
+        for (value, up, printed) in rows {
+            assert_eq!(
+                Printed::rounded(value, 2, up).signed_text(),
+                printed,
+                "{value}"
+            );
+        }
     }
 
     #[test]

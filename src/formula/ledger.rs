@@ -276,9 +276,23 @@ impl Ledger {
         entry.floor = entry.floor.max(floor);
     }
 
-    fn push(&mut self, mut entry: Entry) -> Value {
-        entry.floor = self.floor(entry.dim);
-        self.entries.push(entry);
+    fn push(&mut self, draft: Draft<'_>, kind: Kind, value: f64, dim: Dim) -> Value {
+        self.entries.push(Entry {
+            anchor: draft.id.clone(),
+            id: draft.id,
+            symbol: draft.symbol,
+            says: draft.says,
+            kind,
+            value,
+            dim,
+            origin: draft.origin,
+            mark: None,
+            signed: false,
+            no: String::new(),
+            digits: START_DIGITS,
+            floor: self.floor(dim),
+            freedom: Freedom::Free,
+        });
         Value(self.entries.len() - 1)
     }
 
@@ -300,22 +314,15 @@ impl Ledger {
         } else {
             Kind::Given(given.clone())
         };
-        self.push(Entry {
-            anchor: id.clone(),
+        let draft = Draft {
             id,
             symbol,
             says,
-            kind,
-            value: given.value,
-            dim: given.dim,
+            formula: "",
             origin,
-            mark: None,
-            signed: false,
-            no: String::new(),
-            digits: START_DIGITS,
-            floor: 0.0,
-            freedom: Freedom::Free,
-        })
+            dim: None,
+        };
+        self.push(draft, kind, given.value, given.dim)
     }
 
     /// Adds a step: parses its formula, checks its dimension, evaluates it.
@@ -347,68 +354,19 @@ impl Ledger {
         }
         let value = evaluate(&node, draft.formula, &look)?;
         let env = env.used_by(&node);
-        Ok(self.push(Entry {
-            anchor: draft.id.clone(),
-            id: draft.id,
-            symbol: draft.symbol,
-            says: draft.says,
-            kind: Kind::Step {
-                node,
-                text: draft.formula.to_owned(),
-                env,
-            },
-            value,
-            dim,
-            origin: draft.origin,
-            mark: None,
-            signed: false,
-            no: String::new(),
-            digits: START_DIGITS,
-            floor: 0.0,
-            freedom: Freedom::Free,
-        }))
+        let text = draft.formula.to_owned();
+        Ok(self.push(draft, Kind::Step { node, text, env }, value, dim))
     }
 
     /// Adds a value found by a method; steps that verify it should follow.
     pub fn found(&mut self, draft: Draft<'_>, value: f64, dim: Dim) -> Value {
-        self.push(Entry {
-            anchor: draft.id.clone(),
-            id: draft.id,
-            symbol: draft.symbol,
-            says: draft.says,
-            kind: Kind::Found {
-                method: draft.formula.to_owned(),
-            },
-            value,
-            dim,
-            origin: draft.origin,
-            mark: None,
-            signed: false,
-            no: String::new(),
-            digits: START_DIGITS,
-            floor: 0.0,
-            freedom: Freedom::Free,
-        })
+        let method = draft.formula.to_owned();
+        self.push(draft, Kind::Found { method }, value, dim)
     }
 
     /// Adds a bound: `value` is at most `limit`; only the bound is printed.
     pub fn bound(&mut self, draft: Draft<'_>, value: f64, limit: f64) -> Value {
-        self.push(Entry {
-            anchor: draft.id.clone(),
-            id: draft.id,
-            symbol: draft.symbol,
-            says: draft.says,
-            kind: Kind::Bound { limit },
-            value,
-            dim: Dim::NONE,
-            origin: draft.origin,
-            mark: None,
-            signed: false,
-            no: String::new(),
-            digits: START_DIGITS,
-            floor: 0.0,
-            freedom: Freedom::Free,
-        })
+        self.push(draft, Kind::Bound { limit }, value, Dim::NONE)
     }
 
     /// The value that the formula of a line has where some of its names take other values, such as

@@ -19,14 +19,7 @@ impl Builder<'_> {
     /// Works every arc of the group.
     pub(super) fn arcs(&mut self) -> Result<(), FormulaError> {
         for index in 0..self.runs.len() {
-            let Segment::Arc {
-                centre,
-                u,
-                v,
-                sweep,
-                ..
-            } = self.runs[index].path
-            else {
+            let Segment::Arc { centre, sweep, .. } = self.runs[index].path else {
                 continue;
             };
             let name = self.runs[index].name.clone();
@@ -35,7 +28,7 @@ impl Builder<'_> {
             if (sweep.abs() - 2.0 * PI).abs() < FULL_TURN {
                 self.circle(index)?;
             } else {
-                self.open_arc(index, sweep > 0.0, [u, v])?;
+                self.open_arc(index, sweep > 0.0)?;
             }
         }
         Ok(())
@@ -263,13 +256,31 @@ impl Builder<'_> {
         value
     }
 
+    /// The axes of an arc's plane, for groups in space.
+    pub(super) fn arc_axes(&mut self, index: usize) {
+        let Segment::Arc { u, v, .. } = self.runs[index].path else {
+            return;
+        };
+        for (letter, axis) in [("u", u), ("v", v)] {
+            for component in 0..3 {
+                let name = format!("{letter}_{}", AXES[component]);
+                if !self.run_values[index].contains_key(&name) {
+                    let says = format!("Axis {letter} of the arc's plane, {}", AXES[component]);
+                    let value = self.direction_value(
+                        index,
+                        &name,
+                        Symbol::of(letter, &[AXES[component]]),
+                        says,
+                        axis[component],
+                    );
+                    self.show(value);
+                }
+            }
+        }
+    }
+
     /// An arc that does not close, in its own axes u and v, then in those of the joint.
-    fn open_arc(
-        &mut self,
-        index: usize,
-        forward: bool,
-        plane: [V3; 2],
-    ) -> Result<(), FormulaError> {
+    fn open_arc(&mut self, index: usize, forward: bool) -> Result<(), FormulaError> {
         let trimmed = self.is_trimmed();
         let cut = |sign: &str, end: &str| {
             if trimmed {
@@ -359,20 +370,7 @@ impl Builder<'_> {
             across,
         )?;
         if !self.planar {
-            for (letter, axis) in ["u", "v"].into_iter().zip(plane) {
-                for component in 0..3 {
-                    let name = format!("{letter}_{}", AXES[component]);
-                    let says = format!("Axis {letter} of the arc's plane, {}", AXES[component]);
-                    let value = self.direction_value(
-                        index,
-                        &name,
-                        Symbol::of(letter, &[AXES[component]]),
-                        says,
-                        axis[component],
-                    );
-                    self.show(value);
-                }
-            }
+            self.arc_axes(index);
         }
         for axis in axes(self.planar) {
             let a = AXES[*axis];

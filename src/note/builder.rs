@@ -95,6 +95,8 @@ pub(super) struct Builder<'a> {
     pub(super) run_values: Vec<BTreeMap<String, Value>>,
     /// Inputs already in the ledger, by their place.
     pub(super) given: BTreeMap<String, Value>,
+    /// Names of the cases that no strength check takes.
+    pub(super) unchecked: Vec<String>,
     /// Values that have their place on a page already.
     pub(super) placed: BTreeSet<Value>,
 }

@@ -1,6 +1,6 @@
 //! The way from a joint as told to the outcome of every check: runs, properties, stresses, margins.
 
-use crate::criteria::{Asked, Ground, Library, assess};
+use crate::criteria::{Asked, FailurePath, Ground, Library, assess};
 use crate::formula::Printed;
 use crate::joint::Joint;
 use crate::load::{Action, FrameError, actions};
@@ -58,6 +58,7 @@ impl<'a> Calculation<'a> {
     ///
     /// [`Faults`] with their places, if the joint file asks for what cannot be laid out or checked.
     pub fn of(joint: &'a Joint, library: &Library) -> Result<Self, Faults> {
+        check_exclusions(joint)?;
         let runs = lay_runs(joint)
             .map_err(|faults| Faults(faults.0.into_iter().map(weld_fault).collect()))?;
         let properties = line_properties(&runs);
@@ -135,17 +136,17 @@ impl<'a> Calculation<'a> {
                     Outcome::Assessed(asked)
                 })),
                 Err(found) if found.0.iter().all(|fault| REFUSALS.contains(&fault.code)) => {
-                    let reasons: Vec<&str> =
-                        found.0.iter().map(|fault| fault.message.as_str()).collect();
-                    let help: Vec<&str> = found
-                        .0
-                        .iter()
-                        .flat_map(|fault| fault.help.iter().map(String::as_str))
-                        .collect();
+                    let reasons = once(found.0.iter().map(|fault| fault.message.as_str()));
+                    let help = once(
+                        found
+                            .0
+                            .iter()
+                            .flat_map(|fault| fault.help.iter().map(String::as_str)),
+                    );
                     outcomes.push(Outcome::Refused(Refusal {
                         clause: check.clause.value.clone(),
-                        reason: reasons.join("; "),
-                        help: help.join("; "),
+                        reason: reasons,
+                        help,
                     }));
                 }
                 Err(found) => faults.extend(found.0),
@@ -223,4 +224,37 @@ fn frame_fault(fault: &FrameError) -> Diagnostic {
     let (FrameError::NotOrthonormal { place, .. } | FrameError::LeftHanded { place, .. }) = fault;
     Diagnostic::error("bad-frame", fault.to_string(), place)
         .help("write three unit vectors, square to each other, right-handed")
+}
+
+/// Texts in their order, each once, without the marks of code.
+fn once<'t>(texts: impl Iterator<Item = &'t str>) -> String {
+    let mut seen: Vec<String> = Vec::new();
+    for text in texts {
+        let text = text.replace('`', "");
+        if !seen.contains(&text) {
+            seen.push(text);
+        }
+    }
+    seen.join("; ")
+}
+
+/// Refuses an exclusion of a failure path that the note does not know.
+fn check_exclusions(joint: &Joint) -> Result<(), Faults> {
+    let known: Vec<&str> = FailurePath::WORDS.iter().map(|(word, _)| *word).collect();
+    let faults: Vec<Diagnostic> = joint
+        .excluded
+        .iter()
+        .filter(|exclusion| !known.contains(&exclusion.path.value.as_str()))
+        .map(|exclusion| {
+            let message = format!("`{}` is no failure path of the note", exclusion.path.value);
+            let listed: Vec<String> = known.iter().map(|word| format!("`{word}`")).collect();
+            Diagnostic::error("unknown-path", message, &exclusion.path.place)
+                .help(format!("paths are {}", listed.join(", ")))
+        })
+        .collect();
+    if faults.is_empty() {
+        Ok(())
+    } else {
+        Err(Faults(faults))
+    }
 }

@@ -20,7 +20,9 @@ pub(super) fn of_case<'c>(
             continue;
         };
         for strength in &asked.strength {
-            if let Some(at) = strength.per_case.iter().find(|at| at.case == case) {
+            // They stand in file order.
+            let found_at = strength.per_case.binary_search_by_key(&case, |at| at.case);
+            if let Ok(at) = found_at.map(|index| &strength.per_case[index]) {
                 let part = at
                     .part
                     .map(|turn| format!(", {}", turn.word()))

@@ -274,6 +274,13 @@ impl Builder<'_> {
         if let Some(gap) = &spec.gap {
             words.push_str(&format!(", gap {}", typed(&gap.value)));
         }
+        if let Some(stitch) = &spec.stitch {
+            words.push_str(&format!(
+                ", beads {} at {} from start to start",
+                typed(&stitch.bead.value),
+                typed(&stitch.pitch.value)
+            ));
+        }
         if matches!(run.told, Segment::Arc { .. }) {
             words.push_str(", on an arc");
         }

@@ -104,10 +104,17 @@ impl Builder<'_> {
         self.load_points(&shown);
         self.frame_tables(&shown);
         let count = count(cases.len(), "case", "cases");
+        let run = match (self.unchecked.is_empty(), cases.len()) {
+            (true, 1) => "it was run".to_owned(),
+            (true, _) => "all were run, none skipped".to_owned(),
+            (false, _) => format!(
+                "no strength check takes the level of {}",
+                self.unchecked.join(", ")
+            ),
+        };
         self.para(plain(&format!(
-            "Actions on the weld group from the attached part; moments about the point of application, by the right-hand \
-             rule. The file holds {count}; {}. Components of one case are never mixed with another's.",
-            if cases.len() == 1 { "it was run" } else { "all were run, none skipped" }
+            "Actions on the weld group from the attached part; moments about the point of application, by the \
+             right-hand rule. The file holds {count}; {run}. Components of one case are never mixed with another's."
         )));
     }
 

@@ -15,7 +15,7 @@ use crate::formula::{Draft, Env, Origin, Printed, Symbol, Value};
 use crate::quantity::Dim;
 use crate::solve::{Batch, Points};
 use crate::weld::V3;
-use std::collections::BTreeSet;
+use std::collections::{BTreeMap, BTreeSet};
 
 /// A strength check with its governing point and what was worked of it.
 pub(super) struct Check {
@@ -412,23 +412,25 @@ impl Builder<'_> {
 
     /// The worst check of each case.
     pub(super) fn case_margins(&mut self, calculation: &Calculation<'_>) -> Vec<usize> {
-        let mut worst: Vec<(usize, usize, usize, Governing)> = Vec::new();
+        let mut of_case: BTreeMap<usize, (usize, usize, &Governing)> = BTreeMap::new();
         for (outcome, given) in calculation.outcomes.iter().enumerate() {
             let Outcome::Assessed(asked) = given else {
                 continue;
             };
             for strength in &asked.strength {
                 for at in &strength.per_case {
-                    match worst.iter_mut().find(|known| known.0 == at.case) {
-                        Some(known) if at.severity() > known.3.severity() * (1.0 + 1e-9) => {
-                            *known = (at.case, outcome, strength.check, at.clone());
-                        }
-                        Some(_) => {}
-                        None => worst.push((at.case, outcome, strength.check, at.clone())),
+                    let found = (outcome, strength.check, at);
+                    let known = of_case.entry(at.case).or_insert(found);
+                    if at.severity() > known.2.severity() * (1.0 + 1e-9) {
+                        *known = found;
                     }
                 }
             }
         }
+        let mut worst: Vec<(usize, usize, usize, &Governing)> = of_case
+            .into_iter()
+            .map(|(case, (outcome, check, at))| (case, outcome, check, at))
+            .collect();
         worst.sort_by(|a, b| {
             b.3.severity()
                 .total_cmp(&a.3.severity())

@@ -4,6 +4,7 @@ use super::builder::Builder;
 use super::loads::CaseValues;
 use super::points::AXES;
 use crate::formula::Printed;
+use crate::joint::SizeSpec;
 use crate::quantity::Dim;
 use crate::weld::{Run, Segment, V3};
 
@@ -131,12 +132,25 @@ impl Builder<'_> {
 
     /// The name of a run with its leg or throat.
     fn run_text(&self, index: usize) -> String {
-        let words = self.weld_words(index);
-        let size = words
-            .split(", ")
-            .nth(1)
-            .unwrap_or(&words)
-            .replace(&format!(" {}", self.joint.units.value.length()), "");
+        let spec = &self.joint.weld.runs[self.runs[index].spec];
+        let size = match &spec.size {
+            SizeSpec::Fillet { leg, .. } => format!("leg {}", leg.value.text()),
+            SizeSpec::Unequal {
+                on_base,
+                on_attached,
+            } => {
+                format!(
+                    "legs {} and {}",
+                    on_base.value.text(),
+                    on_attached.value.text()
+                )
+            }
+            SizeSpec::Throat { throat, .. } | SizeSpec::Partial { throat } => {
+                format!("throat {}", throat.value.text())
+            }
+            SizeSpec::Complete { .. } => "full penetration".to_owned(),
+        };
+        let size = size.replace(&format!(" {}", self.joint.units.value.length()), "");
         let name: String = self.runs[index].name.chars().take(LONGEST_NAME).collect();
         format!("{name}, {size}")
     }

@@ -15,27 +15,38 @@ pub struct Standing {
     pub governing: Option<(String, String)>,
     /// Strength checks and limits that hold, and all of them.
     pub held: (usize, usize),
-    /// Checks that gave no number.
-    pub refused: usize,
+    /// Names of the checks and limits that do not hold.
+    pub failed: Vec<String>,
+    /// Names of the checks that gave no number.
+    pub refused: Vec<String>,
+    /// Names of the cases that no strength check takes, though other cases are taken.
+    pub unchecked: Vec<String>,
 }
 
 impl Standing {
     /// The standing of a calculation.
     #[must_use]
     pub fn of(calculation: &Calculation<'_>) -> Self {
-        let (mut held, mut all, mut refused) = (0, 0, 0);
+        let (mut held, mut failed, mut refused) = (0, Vec::new(), Vec::new());
         for outcome in &calculation.outcomes {
             match outcome {
-                Outcome::Refused(_) => refused += 1,
+                Outcome::Refused(refusal) => refused.push(refusal.clause.clone()),
                 Outcome::Assessed(asked) => {
                     for strength in &asked.strength {
-                        all += 1;
-                        held += usize::from(strength.governing.margin.holds());
+                        if strength.governing.margin.holds() {
+                            held += 1;
+                        } else {
+                            failed.push(check_name(asked, strength.check));
+                        }
                     }
-                    for limit in 0..asked.sheet.limits.len() {
-                        all += 1;
-                        let mut of_limit = asked.limits.iter().filter(|found| found.limit == limit);
-                        held += usize::from(of_limit.all(|found| found.holds));
+                    for (index, limit) in asked.sheet.limits.iter().enumerate() {
+                        let mut of_limit = asked.limits.iter().filter(|found| found.limit == index);
+                        if of_limit.all(|found| found.holds) {
+                            held += 1;
+                        } else {
+                            failed
+                                .push(format!("{}, {}", asked.sheet.name.value, limit.name.value));
+                        }
                     }
                 }
             }
@@ -54,15 +65,17 @@ impl Standing {
         Self {
             margin: first.map(|check| check.governing.margin),
             governing,
-            held: (held, all),
+            held: (held, held + failed.len()),
+            failed,
             refused,
+            unchecked: unchecked(calculation),
         }
     }
 
-    /// Whether every check holds and has a number.
+    /// Whether every check holds and has a number, and every case is taken by one.
     #[must_use]
-    pub const fn holds(&self) -> bool {
-        self.held.0 == self.held.1 && self.refused == 0
+    pub fn holds(&self) -> bool {
+        self.failed.is_empty() && self.refused.is_empty() && self.unchecked.is_empty()
     }
 
     /// The least margin as printed: rounded down, with its sign.
@@ -82,14 +95,19 @@ impl Standing {
         let (held, all) = self.held;
         let verb = if held == 1 { "holds" } else { "hold" };
         let mut text = format!("{held} of {} {verb}.", count(all, "check", "checks"));
-        if self.refused > 0 {
-            text.push_str(&format!(
-                " {} no number.",
-                match self.refused {
-                    1 => "1 check has".to_owned(),
-                    many => format!("{many} checks have"),
-                }
-            ));
+        for (names, one, many) in [
+            (&self.failed, "Not held", "Not held"),
+            (&self.refused, "Without a number", "Without a number"),
+            (
+                &self.unchecked,
+                "Case taken by no strength check",
+                "Cases taken by no strength check",
+            ),
+        ] {
+            if !names.is_empty() {
+                let lead = if names.len() == 1 { one } else { many };
+                text.push_str(&format!(" {lead}: {}.", names.join("; ")));
+            }
         }
         text
     }
@@ -135,4 +153,22 @@ pub(super) fn uncovered(calculation: &Calculation<'_>) -> usize {
         .iter()
         .filter(|(word, _)| !covered(word))
         .count()
+}
+
+/// The cases that no strength check takes, if any other case is taken.
+fn unchecked(calculation: &Calculation<'_>) -> Vec<String> {
+    let taken = |case: usize| {
+        calculation.outcomes.iter().any(|outcome| match outcome {
+            Outcome::Assessed(asked) => asked.taken.contains(&case),
+            Outcome::Refused(_) => false,
+        })
+    };
+    let cases = &calculation.joint.loads.cases;
+    if !(0..cases.len()).any(taken) {
+        return Vec::new();
+    }
+    (0..cases.len())
+        .filter(|case| !taken(*case))
+        .map(|case| cases[case].name.value.clone())
+        .collect()
 }

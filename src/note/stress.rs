@@ -333,29 +333,6 @@ impl Builder<'_> {
         }
     }
 
-    /// The axes of an arc's plane, for groups in space.
-    fn arc_axes(&mut self, index: usize) {
-        let Segment::Arc { u, v, .. } = self.runs[index].path else {
-            return;
-        };
-        for (letter, axis) in [("u", u), ("v", v)] {
-            for component in 0..3 {
-                let name = format!("{letter}_{}", AXES[component]);
-                if !self.run_values[index].contains_key(&name) {
-                    let says = format!("Axis {letter} of the arc's plane, {}", AXES[component]);
-                    let value = self.direction_value(
-                        index,
-                        &name,
-                        Symbol::of(letter, &[AXES[component]]),
-                        says,
-                        axis[component],
-                    );
-                    self.show(value);
-                }
-            }
-        }
-    }
-
     /// f_x, f_y, f_z and the resultant f at the spot.
     fn components(
         &mut self,

@@ -105,6 +105,7 @@ fn builder<'c>(calculation: &'c Calculation<'_>) -> Builder<'c> {
         points: Vec::new(),
         run_values: vec![BTreeMap::new(); calculation.runs.len()],
         given: BTreeMap::new(),
+        unchecked: Standing::of(calculation).unchecked,
         placed: BTreeSet::new(),
     }
 }

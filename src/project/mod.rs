@@ -17,8 +17,8 @@ pub use read::{
 pub use templates::OwnTemplates;
 
 use crate::render::RenderError;
-use crate::source::Faults;
-use std::path::PathBuf;
+use crate::source::{Faults, one_line};
+use std::path::{Path, PathBuf};
 use thiserror::Error;
 
 /// Why a joint gave no outputs.
@@ -28,7 +28,7 @@ pub enum ProjectError {
     #[error("{0}")]
     Faults(Faults),
     /// A file or folder that cannot be read or written.
-    #[error("{path}: {what}", path = .path.display())]
+    #[error("{path}: {what}", path = shown(.path))]
     File {
         /// The file or folder.
         path: PathBuf,
@@ -36,7 +36,7 @@ pub enum ProjectError {
         what: String,
     },
     /// The note could not be set.
-    #[error("{joint}: {fault}")]
+    #[error("{joint}: {fault}", joint = one_line(.joint))]
     Render {
         /// The joint file.
         joint: String,
@@ -49,4 +49,10 @@ impl From<Faults> for ProjectError {
     fn from(faults: Faults) -> Self {
         Self::Faults(faults)
     }
+}
+
+/// A path for the terminal: control characters are escaped.
+#[must_use]
+pub fn shown(path: &Path) -> String {
+    one_line(&path.to_string_lossy())
 }

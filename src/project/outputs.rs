@@ -5,6 +5,14 @@
 use super::ProjectError;
 use std::fs;
 use std::path::Path;
+use std::time::Duration;
+
+/// Start of the name of a staging folder.
+const STAGING: &str = ".staging-";
+
+/// A staging folder this much older than ours belongs to a run that was killed: a live one is staged
+/// and renamed within a second.
+const LEFT_OVER: Duration = Duration::from_secs(3600);
 
 /// A finished output file.
 #[derive(Clone, PartialEq, Eq, Debug)]
@@ -27,9 +35,10 @@ pub fn stage(folder: &Path, outputs: &[Output]) -> Result<(), ProjectError> {
     };
     fs::create_dir_all(folder).map_err(|fault| error(folder, fault))?;
     let staging = tempfile::Builder::new()
-        .prefix(".staging-")
+        .prefix(STAGING)
         .tempdir_in(folder)
         .map_err(|fault| error(folder, fault))?;
+    clear_left_over(folder, staging.path());
     for output in outputs {
         let path = staging.path().join(output.name);
         fs::write(&path, &output.bytes).map_err(|fault| error(&path, fault))?;
@@ -47,4 +56,26 @@ pub fn stage(folder: &Path, outputs: &[Output]) -> Result<(), ProjectError> {
         fs::rename(staging.path().join(output.name), &path).map_err(|fault| error(&path, fault))?;
     }
     staging.close().map_err(|fault| error(folder, fault))
+}
+
+/// Removes the staging folders that killed runs left in `folder`.
+///
+/// Age is told by the disk's own times, against those of the staging folder just made: no clock and no
+/// lock. What cannot be read or removed stays; it harms nothing.
+fn clear_left_over(folder: &Path, own: &Path) {
+    let changed = |path: &Path| fs::symlink_metadata(path).and_then(|data| data.modified());
+    let (Ok(now), Ok(entries)) = (changed(own), fs::read_dir(folder)) else {
+        return;
+    };
+    for entry in entries.flatten() {
+        let path = entry.path();
+        let is_ours = entry.file_name().to_string_lossy().starts_with(STAGING)
+            && entry.file_type().is_ok_and(|kind| kind.is_dir());
+        let age = changed(&path)
+            .ok()
+            .and_then(|then| now.duration_since(then).ok());
+        if is_ours && age.is_some_and(|age| age > LEFT_OVER) {
+            let _ = fs::remove_dir_all(&path);
+        }
+    }
 }

@@ -226,5 +226,5 @@ fn attachment(
 pub fn written(produced: &Produced, joint: &JointFile, out: &Path) -> Result<String, ProjectError> {
     let folder = out.join(&joint.stem);
     stage(&folder, &produced.outputs)?;
-    Ok(folder.display().to_string())
+    Ok(super::shown(&folder))
 }

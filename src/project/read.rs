@@ -1,8 +1,8 @@
 //! Finds and reads joint files, clause sheets and the project file.
 
-use super::ProjectError;
 use super::glyphs::unprintable;
 use super::templates::{OwnTemplates, read_templates};
+use super::{ProjectError, shown};
 use crate::criteria::{Library, built_in, read_sheet};
 use crate::joint::{Joint, ProjectFile, read_joint_node, read_project};
 use crate::source::{Diagnostic, Faults, Node, Place, SourceFile, parse_yaml};
@@ -76,6 +76,15 @@ pub fn find_joints(paths: &[PathBuf]) -> Result<Vec<JointFile>, ProjectError> {
     }
     let mut stems: BTreeMap<&str, &Path> = BTreeMap::new();
     for joint in &found {
+        if joint
+            .stem
+            .contains(|c: char| c.is_control() || c == char::REPLACEMENT_CHARACTER)
+        {
+            return Err(file_error(
+                &joint.path,
+                "has a name that is no plain text, but names its folder of outputs; rename it",
+            ));
+        }
         if joint.stem.chars().all(|c| c == '.') {
             return Err(file_error(
                 &joint.path,
@@ -85,7 +94,7 @@ pub fn find_joints(paths: &[PathBuf]) -> Result<Vec<JointFile>, ProjectError> {
         if let Some(other) = stems.insert(&joint.stem, &joint.path) {
             let what = format!(
                 "would write into the same folder of outputs as {}; rename one of the two",
-                other.display()
+                shown(other)
             );
             return Err(file_error(&joint.path, what));
         }
@@ -107,12 +116,12 @@ fn joint_file(path: &Path) -> JointFile {
         .unwrap_or(Path::new("."));
     let stem = path
         .file_stem()
-        .and_then(|stem| stem.to_str())
-        .unwrap_or("joint");
+        .map(|stem| stem.to_string_lossy())
+        .unwrap_or_default();
     JointFile {
         path: path.to_owned(),
         folder: folder.to_owned(),
-        stem: stem.to_owned(),
+        stem: stem.into_owned(),
     }
 }
 
@@ -141,7 +150,7 @@ pub(super) fn within(folder: &Path, path: &Path) -> Result<(), ProjectError> {
     }
     let what = format!(
         "is a symbolic link out of {}; nothing outside it is read, so copy the file there",
-        folder.display()
+        shown(folder)
     );
     Err(file_error(path, what))
 }
@@ -300,7 +309,10 @@ pub fn read_told(
     match joint {
         Ok(joint) if faults.is_empty() => return Ok(joint),
         Ok(_) => {}
-        Err(found) => faults.extend(found.0),
+        Err(found) => {
+            let new = |fault: &Diagnostic| completed.faults.iter().all(|f| f.place != fault.place);
+            faults.extend(found.0.into_iter().filter(new));
+        }
     }
     if let Some(shared) = &surroundings.shared {
         let named: Vec<String> = shared

@@ -48,6 +48,9 @@ pub enum GivenError {
     /// An angle without a unit.
     #[error("`{0}` has no unit; an angle says `deg` or `rad`")]
     BareAngle(String),
+    /// A stress without a unit in a set whose own stress unit nobody types.
+    #[error("`{0}` has no unit; in this printing set a stress says its unit, as in `355 MPa`")]
+    BareStress(String),
 }
 
 impl Given {
@@ -66,6 +69,10 @@ impl Given {
         let Some(unit_text) = unit else {
             if dim == Dim::ANGLE && typed != 0.0 {
                 return Err(GivenError::BareAngle(text.to_owned()));
+            }
+            let untyped = matches!(set, UnitSet::KilonewtonMillimetre | UnitSet::NewtonMetre);
+            if dim == Dim::STRESS && untyped && typed != 0.0 {
+                return Err(GivenError::BareStress(text.to_owned()));
             }
             return Ok(Self {
                 number: number.to_owned(),

@@ -70,7 +70,7 @@ pub enum UnitError {
     #[error("`{0}` is not a unit")]
     Unknown(String),
     /// A mass where a force is meant.
-    #[error("`{0}` is a mass; a load is a force")]
+    #[error("`{0}` is a mass")]
     Mass(String),
     /// A text that does not parse.
     #[error("`{0}` cannot be read as a unit")]

@@ -2,10 +2,11 @@
 //!
 //! Works on the page frames, with the real outlines of glyphs and shapes.
 
-use typst::layout::{Abs, Frame, FrameItem, Point, Rect, Transform};
+use typst::layout::{Frame, FrameItem, Point, Rect, Transform};
 use typst_layout::{Page, PagedDocument};
 
 use super::faces::FAMILIES;
+use crate::quantity::real;
 
 /// Left edge of the text block (mm), as in the page template.
 const LEFT: f64 = 22.0;
@@ -49,7 +50,10 @@ pub enum Fault {
 /// Ink on a page.
 struct Ink {
     what: String,
+    /// Its upright box.
     at: [f64; 4],
+    /// The corners of its box as it is turned, in order round it (mm).
+    corners: [[f64; 2]; 4],
     /// Whether it is running text, which nothing may overlap; parts of a formula may.
     text: bool,
 }
@@ -82,7 +86,7 @@ fn page_strays(number: usize, page: &Page) -> Vec<Stray> {
         if ink.at[1] < 0.0 || ink.at[3] > height {
             report(ink, Fault::Page);
         }
-        let text = |other: &&Ink| ink.text && other.text && overlap(ink.at, other.at);
+        let text = |other: &&Ink| ink.text && other.text && overlap(ink, other);
         if let Some(other) = inks[..i].iter().find(text) {
             report(
                 ink,
@@ -101,9 +105,36 @@ fn in_column([left, _, right, _]: [f64; 4]) -> bool {
     within(LEFT, RIGHT) || within(MARGIN.0, MARGIN.1)
 }
 
-fn overlap(a: [f64; 4], b: [f64; 4]) -> bool {
-    let shared = |i: usize| a[i + 2].min(b[i + 2]) - a[i].max(b[i]);
-    shared(0) > TOUCH && shared(1) > TOUCH
+/// Whether two boxes, as they are turned, share more than a touch.
+///
+/// Two convex shapes are apart if they are so along the normal of a side of one of them.
+fn overlap(a: &Ink, b: &Ink) -> bool {
+    let upright = |i: usize| a.at[i + 2].min(b.at[i + 2]) - a.at[i].max(b.at[i]);
+    if upright(0) <= TOUCH || upright(1) <= TOUCH {
+        return false;
+    }
+    [a, b].into_iter().flat_map(normals).all(|normal| {
+        let reach = |ink: &Ink| {
+            let along = ink.corners.map(|[x, y]| x * normal[0] + y * normal[1]);
+            along
+                .into_iter()
+                .fold((f64::MAX, f64::MIN), |(low, high), at| {
+                    (low.min(at), high.max(at))
+                })
+        };
+        let ((a_low, a_high), (b_low, b_high)) = (reach(a), reach(b));
+        a_high.min(b_high) - a_low.max(b_low) > TOUCH
+    })
+}
+
+/// Unit normals of two neighbouring sides of a box; none for a side without length.
+fn normals(ink: &Ink) -> impl Iterator<Item = [f64; 2]> {
+    let [first, second, _, last] = ink.corners;
+    [second, last].into_iter().filter_map(move |next| {
+        let (x, y) = (next[0] - first[0], next[1] - first[1]);
+        let length = real::hypot(x, y);
+        (length > 0.0).then(|| [-y / length, x / length])
+    })
 }
 
 /// Collects the ink of a frame and the frames in it.
@@ -117,48 +148,38 @@ fn collect(frame: &Frame, transform: Transform, inks: &mut Vec<Ink>) {
             FrameItem::Text(text) => {
                 let family = text.font.font().info().family.as_str();
                 if text.text.chars().any(|c| !c.is_whitespace()) {
-                    inks.push(Ink {
-                        what: text.text.to_string(),
-                        at: placed(text.bbox(), here),
-                        text: family != FAMILIES[1],
-                    });
+                    let text_runs = family != FAMILIES[1];
+                    inks.push(ink(text.text.to_string(), text.bbox(), here, text_runs));
                 }
             }
-            FrameItem::Shape(shape, _) => inks.push(Ink {
-                what: "shape".to_owned(),
-                at: placed(shape.bbox(true), here),
-                text: false,
-            }),
-            FrameItem::Image(_, size, _) => inks.push(Ink {
-                what: "image".to_owned(),
-                at: placed(Rect::new(Point::zero(), size.to_point()), here),
-                text: false,
-            }),
+            FrameItem::Shape(shape, _) => {
+                inks.push(ink("shape".to_owned(), shape.bbox(true), here, false));
+            }
+            FrameItem::Image(_, size, _) => {
+                let rect = Rect::new(Point::zero(), size.to_point());
+                inks.push(ink("image".to_owned(), rect, here, false));
+            }
             FrameItem::Link(..) | FrameItem::Tag(_) => {}
         }
     }
 }
 
-/// A box on the page (mm), whatever the turn.
-fn placed(rect: Rect, transform: Transform) -> [f64; 4] {
+/// Ink of a box on the page (mm), whatever its turn.
+fn ink(what: String, rect: Rect, transform: Transform, text: bool) -> Ink {
     let corners = [
         rect.min,
+        Point::new(rect.max.x, rect.min.y),
         rect.max,
         Point::new(rect.min.x, rect.max.y),
-        Point::new(rect.max.x, rect.min.y),
     ]
-    .map(|p| p.transform(transform));
-    let least = |f: fn(&Point) -> Abs| {
-        corners
-            .iter()
-            .map(|p| f(p).to_mm())
-            .fold(f64::MAX, f64::min)
-    };
-    let most = |f: fn(&Point) -> Abs| {
-        corners
-            .iter()
-            .map(|p| f(p).to_mm())
-            .fold(f64::MIN, f64::max)
-    };
-    [least(|p| p.x), least(|p| p.y), most(|p| p.x), most(|p| p.y)]
+    .map(|p| p.transform(transform))
+    .map(|p| [p.x.to_mm(), p.y.to_mm()]);
+    let least = |i: usize| corners.iter().map(|p| p[i]).fold(f64::MAX, f64::min);
+    let most = |i: usize| corners.iter().map(|p| p[i]).fold(f64::MIN, f64::max);
+    Ink {
+        what,
+        at: [least(0), least(1), most(0), most(1)],
+        corners,
+        text,
+    }
 }

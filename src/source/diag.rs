@@ -67,6 +67,7 @@ impl Diagnostic {
     pub fn render(&self, colour: bool) -> String {
         let (line, start, end) = self.first_line();
         let message = one_line(&self.message);
+        let name = one_line(&self.place.file.name);
         let help: Vec<String> = self.help.iter().map(|line| one_line(line)).collect();
         let level = match self.severity {
             Severity::Error => Level::ERROR,
@@ -74,7 +75,7 @@ impl Diagnostic {
         };
         let snippet = Snippet::source(line)
             .line_start(self.place.line_column().0)
-            .path(self.place.file.name.as_str())
+            .path(name.as_str())
             .annotation(AnnotationKind::Primary.span(start..end));
         let mut report = level
             .primary_title(message.as_str())
@@ -105,11 +106,14 @@ impl Diagnostic {
     }
 }
 
-/// Writes control characters as escapes, so that a file's text cannot drive the terminal.
-fn one_line(text: &str) -> String {
+/// Writes control characters and marks of direction as escapes, so that neither a file's text nor its
+/// name can drive the terminal.
+#[must_use]
+pub fn one_line(text: &str) -> String {
+    let turns = |c| matches!(c, '\u{200e}' | '\u{200f}' | '\u{202a}'..='\u{202e}' | '\u{2066}'..='\u{2069}');
     let mut out = String::with_capacity(text.len());
     for c in text.chars() {
-        if c.is_control() {
+        if c.is_control() || turns(c) {
             out.extend(c.escape_default());
         } else {
             out.push(c);

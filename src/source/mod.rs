@@ -5,10 +5,11 @@
 mod diag;
 mod fields;
 mod item;
+mod line;
 mod syntax;
 mod yaml;
 
-pub use diag::{Diagnostic, FaultBag, Faults, Severity};
+pub use diag::{Diagnostic, FaultBag, Faults, Severity, one_line};
 pub use fields::Fields;
 pub use item::{Item, read_map};
 pub use yaml::{Node, Value, parse_yaml};

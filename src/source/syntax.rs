@@ -2,6 +2,7 @@
 //!
 //! The parser names the rule it was at; what the user did is read from the text around.
 
+use super::line::Scanned;
 use super::{Diagnostic, Place, SourceFile};
 use std::sync::Arc;
 
@@ -28,6 +29,9 @@ impl Stop<'_> {
         if self.info.contains("unknown anchor") {
             return alias_fault(&self.point(end));
         }
+        if let Some(fault) = self.line_before_fault() {
+            return fault;
+        }
         if let Some(tab) = leading_tab(text, start, end) {
             let place = self.place(tab, tab + 1);
             return Diagnostic::error("tab-indent", "a tab indents this line", &place)
@@ -49,6 +53,57 @@ impl Stop<'_> {
             Some((bracket, opened)) => self.bracket_fault(bracket, opened, &self.point(end)),
             None => self.plain_fault(line, &self.point(end)),
         }
+    }
+
+    /// The fault of the line before the stop: a text in brackets that a ` #` cut off together with its
+    /// bracket, or a bracket without its end.
+    ///
+    /// The parser stops at the next token, and while it may still take the bracket for a key it has
+    /// not told of it; so that line is read here. It is the last one that is more than a comment.
+    fn line_before_fault(&self) -> Option<Diagnostic> {
+        let before = &self.file.text[..self.at];
+        let last = before.rfind('\n')?;
+        let is_first = matches!(before[last..].trim(), "" | "-");
+        let (mut start, mut line) = line_with_more(before, last)?;
+        let mut scanned = Scanned::of(line, self.bracket.is_some());
+        if scanned.open.is_empty() && scanned.cut.is_none() && line.trim_start().starts_with("- ") {
+            // An item below an open bracket is taken for the end of the text in it.
+            (start, line) = line_with_more(before, start.checked_sub(1)?)?;
+            scanned = Scanned::of(line, self.bracket.is_some());
+        }
+        if let Some(cut) = scanned.cut {
+            let place = self.place(start + cut.text.start, start + cut.text.end);
+            let what = cut
+                .key
+                .map_or("the text".to_owned(), |key| format!("`{}`", &line[key]));
+            let message = format!("a ` #` starts a comment, so {what} ends before it");
+            let help = "quote the text if the `#` belongs to it; else put the comment on a line of its own";
+            return Some(Diagnostic::error("cut-by-comment", message, &place).help(help));
+        }
+        let open = *scanned.open.last()?;
+        if !is_first || self.bracket.is_some() || scanned.ends_with_comma {
+            return None;
+        }
+        let bracket = if line[open..].starts_with('[') {
+            '['
+        } else {
+            '{'
+        };
+        Some(self.not_closed(bracket, start + open, &self.place(self.at, self.at)))
+    }
+
+    /// The fault of a bracket that is not closed before `point`.
+    fn not_closed(&self, bracket: char, opened: usize, point: &Place) -> Diagnostic {
+        let closing = if bracket == '[' { ']' } else { '}' };
+        let (line, _) = point.line_column();
+        Diagnostic::error(
+            "not-closed",
+            format!("the `{bracket}` that opens here is not closed"),
+            &self.place(opened, opened + 1),
+        )
+        .help(format!(
+            "a `,` or `{closing}` is missing before line {line}, where reading stopped"
+        ))
     }
 
     fn place(&self, start: usize, end: usize) -> Place {
@@ -94,16 +149,7 @@ impl Stop<'_> {
         if self.info.contains("expected ',' or")
             || (is_below && self.info.contains("placement of ':'"))
         {
-            let closing = if bracket == '[' { ']' } else { '}' };
-            let (line, _) = point.line_column();
-            return Diagnostic::error(
-                "not-closed",
-                format!("the `{bracket}` that opens here is not closed"),
-                &opening,
-            )
-            .help(format!(
-                "a `,` or `{closing}` is missing before line {line}, where reading stopped"
-            ));
+            return self.not_closed(bracket, opened, point);
         }
         let (line, _) = opening.line_column();
         Diagnostic::error(
@@ -155,6 +201,18 @@ impl Stop<'_> {
 pub(super) fn alias_fault(place: &Place) -> Diagnostic {
     Diagnostic::error("alias", "aliases (`*name`) are not taken", place)
         .help("write the value out where it is used; quote a text that starts with `*`")
+}
+
+/// The last line before the line end at `end` that is more than a comment, and where it starts.
+fn line_with_more(text: &str, mut end: usize) -> Option<(usize, &str)> {
+    loop {
+        let start = text[..end].rfind('\n').map_or(0, |n| n + 1);
+        let line = &text[start..end];
+        if !line.trim().is_empty() && !line.trim_start().starts_with('#') {
+            return Some((start, line));
+        }
+        end = start.checked_sub(1)?;
+    }
 }
 
 /// The byte of a tab that indents the line at fault or the next one.

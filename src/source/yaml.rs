@@ -106,6 +106,15 @@ fn check_text(file: &Arc<SourceFile>) -> Result<(), Faults> {
         .help("save it as UTF-8 without a byte order mark")
         .into());
     }
+    if let Some(at) = file.text.find('\u{feff}') {
+        return Err(Diagnostic::error(
+            "byte-order-mark",
+            "an invisible byte order mark (U+FEFF) stands here",
+            &place(at, at + '\u{feff}'.len_utf8()),
+        )
+        .help("it came with pasted or joined text: delete the line and type it again")
+        .into());
+    }
     if let Some(at) = file.text.find('\0') {
         return Err(Diagnostic::error(
             "nul-character",

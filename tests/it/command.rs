@@ -606,3 +606,56 @@ fn joints_are_told_in_the_order_of_their_files() {
         assert!(ran.err.contains("refused: joints/c.yaml\n"), "{}", ran.err);
     }
 }
+
+/// A case whose level no strength check takes is named, and does not pass the gate.
+#[test]
+fn a_case_that_no_check_takes_is_named_and_does_not_hold() {
+    let project = Project::with_joint();
+    let told = joint_with("{case: L01,", "{case: L01, level: service,");
+    project.put("joints/mast-foot.yaml", told);
+    let ran = project.run(&["vet", "--must-hold"]);
+    assert_eq!(ran.code, 3, "{ran:?}");
+    assert!(
+        ran.out.contains("Case taken by no strength check: L01."),
+        "{}",
+        ran.out
+    );
+}
+
+/// An exclusion names a failure path of the note, or is refused.
+#[test]
+fn an_exclusion_of_an_unknown_path_is_refused() {
+    let project = Project::with_joint();
+    project.put(
+        "joints/mast-foot.yaml",
+        joint_with("path: fatigue", "path: weld fatigue"),
+    );
+    let ran = project.run(&["vet"]);
+    assert_eq!(ran.code, 1, "{ran:?}");
+    assert!(
+        ran.err
+            .contains("error[unknown-path]: `weld fatigue` is no failure path"),
+        "{}",
+        ran.err
+    );
+    assert!(ran.err.contains("`heat-affected zone`"), "{}", ran.err);
+}
+
+/// A bare strength in kN and mm would be GPa, which nobody means.
+#[test]
+fn a_bare_strength_in_kilonewtons_is_refused() {
+    let project = Project::with_joint();
+    let told = joint_with(
+        "units: {force: N, length: mm}",
+        "units: {force: kN, length: mm}",
+    );
+    let told = told.replace("f_u: 470 MPa", "f_u: 470");
+    project.put("joints/mast-foot.yaml", told);
+    let ran = project.run(&["vet"]);
+    assert_eq!(ran.code, 1, "{ran:?}");
+    assert!(
+        ran.err.contains("error[unit-missing]: `470` has no unit"),
+        "{}",
+        ran.err
+    );
+}

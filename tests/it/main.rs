@@ -4,9 +4,11 @@
 
 mod command;
 mod criteria;
+mod disk;
 mod faults;
 mod figure;
 mod formula;
+mod fuzz;
 mod groups;
 mod joint_read;
 mod laying;

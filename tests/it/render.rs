@@ -117,6 +117,31 @@ fn what_leaves_its_column_or_overlaps_is_found() {
     }
 }
 
+/// Two labels side by side along one slope: their upright boxes share much, they themselves nothing.
+#[test]
+fn slanted_labels_overlap_only_where_they_do() {
+    let text = source(&sample::sample()).text;
+    let with = |apart: &str| {
+        let label =
+            |dx: &str| format!("place(dx: {dx}, rotate(-45deg, text(size: 8pt)[a slanted label]))");
+        let both = format!("{{{}; {}}}", label("0mm"), label(apart));
+        let drawing = format!("dx: 25mm, dy: 8mm, {both}");
+        let text = text.replace(
+            "dx: 25mm, dy: 8mm, text(size: 8pt)[upper edge, leg 6]",
+            &drawing,
+        );
+        assert!(
+            text.contains("a slanted label"),
+            "the labels stand in the drawing"
+        );
+        let pages = Press::new().pages(&text).unwrap_or_else(|e| panic!("{e}"));
+        let strays = overflow(&pages);
+        strays.iter().any(|stray| stray.what == "a slanted label")
+    };
+    assert!(!with("6mm"), "4.2 mm apart, they stand clear");
+    assert!(with("2mm"), "1.4 mm apart, they overlap");
+}
+
 /// Links and their destinations, page by page, as the typesetter laid them out.
 fn links(document: &typst_layout::PagedDocument) -> Vec<(usize, [i64; 4], String)> {
     use typst::layout::{Abs, Frame, FrameItem, Point};

@@ -444,9 +444,9 @@ date: 2026-05-04
 units: {units}
 frame: {{origin: o}}
 parts:
-  a: {{material: S355J2, thickness: 0.4, f_y: 50, f_u: 65, F_su: 40, source: x}}
-  b: {{material: S275, thickness: 0.5, f_y: 40, f_u: 60, F_su: 35, source: x}}
-filler: {{name: E70, f_u: 70, F_su: 32, F_sy: 20, F_allow: 21, tau_allow: 20, source: x}}
+  a: {{material: S355J2, thickness: 0.4, f_y: 50 ksi, f_u: 65 ksi, F_su: 40 ksi, source: x}}
+  b: {{material: S275, thickness: 0.5, f_y: 40 ksi, f_u: 60 ksi, F_su: 35 ksi, source: x}}
+filler: {{name: E70, f_u: 70 ksi, F_su: 32 ksi, F_sy: 20 ksi, F_allow: 21 ksi, tau_allow: 20 ksi, source: x}}
 weld:
   joins: [a, b]
   ends: full

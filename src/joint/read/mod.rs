@@ -4,6 +4,7 @@
 //! other lists of words, the weld, its pattern, the loads.
 
 mod load;
+mod look;
 mod part;
 mod path;
 mod pattern;
@@ -14,6 +15,8 @@ mod weld;
 
 pub(super) use shared::check_project;
 pub use value::{read_quantity, read_triple};
+
+use look::look_of;
 
 use super::{FrameWords, Joint, Paper};
 use crate::quantity::UnitSet;
@@ -167,7 +170,17 @@ fn check_distinct<'a>(
     faults: &FaultBag,
 ) {
     let mut seen = std::collections::BTreeMap::new();
+    let mut looks = std::collections::BTreeMap::new();
     for name in names {
+        let twin = looks.insert(look_of(&name.value), name);
+        if let Some(twin) = twin.filter(|twin| twin.value != name.value) {
+            let message = format!("`{}` looks like another of the {what}", name.value);
+            let (line, _) = twin.place.line_column();
+            let help = format!(
+                "the other is in line {line}; one of them holds a letter of another alphabet, an accent of its own or a wider space: on paper nobody can tell them apart"
+            );
+            faults.push(Diagnostic::error("names-look-alike", message, &name.place).help(help));
+        }
         if let Some(first) = seen.insert(name.value.as_str(), name) {
             let message = format!("`{}` names two {what}", name.value);
             let (line, _) = first.place.line_column();

@@ -1,6 +1,6 @@
 //! Parts, filler, checks, and the lists of words: assumptions, exclusions, changes.
 
-use super::value::{read_date, read_positive};
+use super::value::{read_date, read_free, read_positive};
 use crate::joint::{Assumption, Change, CheckSpec, Exclusion, Filler, Part, RawQuantity};
 use crate::quantity::{Dim, UnitSet};
 use crate::source::{Fields, Item, Told, Value};
@@ -25,7 +25,7 @@ fn read_part(name: &Told<String>, item: Item<'_>, set: UnitSet) -> Option<Part> 
     let f_y = fields.optional("f_y", |item| read_positive(item, Dim::STRESS, set));
     let f_u = fields.optional("f_u", |item| read_positive(item, Dim::STRESS, set));
     let (source, to_be_verified) = read_standing(&mut fields);
-    let more = read_more(&mut fields);
+    let more = read_more(&mut fields, |item| read_free(item, set));
     fields.finish();
     Some(Part {
         name: name.clone(),
@@ -46,7 +46,7 @@ pub(super) fn read_filler(item: Item<'_>, set: UnitSet) -> Option<Filler> {
     let name = fields.required("name", Item::line);
     let f_u = fields.optional("f_u", |item| read_positive(item, Dim::STRESS, set));
     let (source, to_be_verified) = read_standing(&mut fields);
-    let more = read_more(&mut fields);
+    let more = read_more(&mut fields, |item| read_free(item, set));
     fields.finish();
     Some(Filler {
         name: name?,
@@ -72,7 +72,7 @@ fn read_check(item: Item<'_>) -> Option<CheckSpec> {
     let mut fields = item.fields("a check")?;
     let clause = fields.required("clause", Item::line);
     let (source, to_be_verified) = read_standing(&mut fields);
-    let values = read_more(&mut fields);
+    let values = read_more(&mut fields, Item::raw);
     fields.finish();
     Some(CheckSpec {
         clause: clause?,
@@ -91,10 +91,13 @@ pub(super) fn read_standing(fields: &mut Fields<'_>) -> (Option<Told<String>>, b
 }
 
 /// Reads all other keys as quantities whose kind a sheet will say.
-pub(super) fn read_more(fields: &mut Fields<'_>) -> Vec<(Told<String>, RawQuantity)> {
+pub(super) fn read_more<'a>(
+    fields: &mut Fields<'a>,
+    read: impl Fn(Item<'a>) -> Option<RawQuantity>,
+) -> Vec<(Told<String>, RawQuantity)> {
     let free = fields.free();
     free.into_iter()
-        .filter_map(|(key, item)| Some((key.clone(), item.raw()?)))
+        .filter_map(|(key, item)| Some((key.clone(), read(item)?)))
         .collect()
 }
 

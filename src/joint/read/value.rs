@@ -1,6 +1,6 @@
 //! Values with units, dates and points, each with the fault texts a user needs.
 
-use crate::joint::{GivenAt, Triple};
+use crate::joint::{GivenAt, RawQuantity, Triple};
 use crate::quantity::{Dim, Given, GivenError, UnitError, UnitSet};
 use crate::source::{Item, Told};
 use chrono::NaiveDate;
@@ -17,6 +17,24 @@ pub fn read_quantity(item: Item<'_>, dim: Dim, set: UnitSet) -> Option<GivenAt> 
     }
 }
 
+/// Reads a number or a quantity of any kind, kept as typed for a sheet that says its kind.
+pub(super) fn read_free(item: Item<'_>, set: UnitSet) -> Option<RawQuantity> {
+    let text = item.raw()?;
+    match Given::parse(&text.value, Dim::NONE, set) {
+        Ok(_) | Err(GivenError::Kind { .. }) => Some(text),
+        Err(error) => {
+            let example = if set.is_inch() { "45 ksi" } else { "310 MPa" };
+            let help = format!(
+                "a further value is a number, or a number with its unit, as in `{example}`"
+            );
+            if matches!(error, GivenError::Unit(UnitError::Mass(_))) {
+                return item.refuse_with("unknown-unit", error.to_string(), help);
+            }
+            refuse_with_help(item, &text.value, &error, Dim::NONE, help)
+        }
+    }
+}
+
 fn refuse_quantity<T>(
     item: Item<'_>,
     text: &str,
@@ -24,7 +42,17 @@ fn refuse_quantity<T>(
     dim: Dim,
     set: UnitSet,
 ) -> Option<T> {
-    let usual = advice(dim, set);
+    refuse_with_help(item, text, error, dim, advice(dim, set))
+}
+
+/// Refuses a text that is no quantity; `usual` says how one is written.
+fn refuse_with_help<T>(
+    item: Item<'_>,
+    text: &str,
+    error: &GivenError,
+    dim: Dim,
+    usual: String,
+) -> Option<T> {
     let (code, message, help) = match error {
         GivenError::NotANumber(_) if text.contains(['"', '″', '\'']) => (
             "not-a-number",
@@ -38,16 +66,23 @@ fn refuse_quantity<T>(
             format!("`{text}` has a decimal comma"),
             format!("write `{}`", text.replace(',', ".")),
         ),
+        GivenError::Unit(UnitError::Mass(_)) if dim == Dim::FORCE => (
+            "mass-for-force",
+            format!("{error}; a load is a force"),
+            "write the force, in N, kN, kgf, lbf or kip".to_owned(),
+        ),
         GivenError::Unit(UnitError::Mass(_)) => (
             "mass-for-force",
-            error.to_string(),
-            "write the force, in N, kN, kgf, lbf or kip".to_owned(),
+            format!("{error}, but {} is needed here", dim.word()),
+            usual,
         ),
         GivenError::Unit(UnitError::Unknown(_) | UnitError::Malformed(_)) => {
             ("unknown-unit", error.to_string(), usual)
         }
         GivenError::Kind { .. } => ("wrong-kind", format!("`{}`: {error}", item.name), usual),
-        GivenError::BareAngle(_) => ("unit-missing", error.to_string(), usual),
+        GivenError::BareAngle(_) | GivenError::BareStress(_) => {
+            ("unit-missing", error.to_string(), usual)
+        }
     };
     item.refuse_with(code, message, help)
 }

@@ -126,11 +126,9 @@ pub(super) fn pick_joins(
 
 /// What the ends do as told here, or as usual.
 pub(super) fn pick_ends(fields: &mut Fields<'_>, usual: &Usual) -> [Option<Told<EndSpec>>; 2] {
-    if fields.has("ends") {
-        read_ends(fields)
-    } else {
-        usual.ends.clone()
-    }
+    let told = fields.has("ends");
+    let ends = read_ends(fields);
+    if told { ends } else { usual.ends.clone() }
 }
 
 fn read_ends(fields: &mut Fields<'_>) -> [Option<Told<EndSpec>>; 2] {

@@ -85,7 +85,7 @@ fn line(place: &Place) -> (&str, usize) {
 
 fn printed(place: &Place) -> String {
     let (file, line) = line(place);
-    format!("{file}:{line}")
+    format!("{}:{line}", crate::source::one_line(file))
 }
 
 /// What an item of a list is called: by its own name, or by its number.
@@ -114,15 +114,7 @@ fn inline(node: &Node) -> String {
 /// A text on one line, which cannot drive a terminal.
 fn one_line(text: &str) -> String {
     let words: Vec<&str> = text.split_whitespace().collect();
-    words
-        .join(" ")
-        .chars()
-        .flat_map(|c| {
-            let escaped = c.is_control().then(|| c.escape_default());
-            let plain = escaped.is_none().then_some(c);
-            escaped.into_iter().flatten().chain(plain)
-        })
-        .collect()
+    crate::source::one_line(&words.join(" "))
 }
 
 /// The values that the program takes where no file gives one.

@@ -76,14 +76,14 @@ fn prepare(paths: &[PathBuf]) -> Result<(Vec<JointFile>, Folders), ProjectError>
 /// Says what each joint says, and what is wrong with those that cannot be read.
 fn show(paths: &[PathBuf], colour: bool) -> Said {
     let mut said = Said::default();
-    let shown = |joint: &JointFile, surroundings: &Surroundings| {
+    let told_of = |joint: &JointFile, surroundings: &Surroundings| {
         let completed = complete_joint(joint, surroundings)?;
         let told = read_told(&completed, surroundings)?;
         Ok(table(&completed, &told, &surroundings.library))
     };
     let results = prepare(paths).map(|(joints, folders)| {
         let each = joints.iter();
-        each.map(|joint| shown(joint, &folders[&joint.folder]))
+        each.map(|joint| told_of(joint, &folders[&joint.folder]))
             .collect::<Vec<Result<String, ProjectError>>>()
     });
     for result in results.unwrap_or_else(|fault| vec![Err(fault)]) {

@@ -170,6 +170,7 @@ impl ProjectFile {
         }
         let shared = self.pair("parts");
         let at = joint.iter().position(|(key, _)| key.value == "parts");
+        let own = at.is_some();
         let at = match (at, &shared) {
             (Some(at), _) => at,
             (None, Some((key, node))) => {
@@ -195,7 +196,7 @@ impl ProjectFile {
             self.take_material(part);
         }
         // Without a part it is the joint that lacks the key.
-        if parts.is_empty() && at + 1 == joint.len() {
+        if parts.is_empty() && !own {
             joint.pop();
         }
     }

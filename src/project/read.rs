@@ -102,9 +102,11 @@ pub fn find_joints(paths: &[PathBuf]) -> Result<Vec<JointFile>, ProjectError> {
     Ok(found)
 }
 
+/// Whether a file of a folder is a user's YAML; editors and archives leave `.#x.yaml`, `._x.yaml`.
 fn is_yaml(path: &Path) -> bool {
-    path.extension()
-        .is_some_and(|extension| extension == "yaml" || extension == "yml")
+    let name = path.file_name().unwrap_or_default().to_string_lossy();
+    let left_over = name.starts_with(".#") || name.starts_with("._");
+    !left_over && (name.ends_with(".yaml") || name.ends_with(".yml"))
 }
 
 fn joint_file(path: &Path) -> JointFile {
@@ -148,7 +150,7 @@ pub(super) fn within(folder: &Path, path: &Path) -> Result<(), ProjectError> {
     }
     let what = format!(
         "is a symbolic link out of {}; nothing outside it is read, so copy the file there",
-        folder.display()
+        shown(folder)
     );
     Err(file_error(path, what))
 }
@@ -307,7 +309,10 @@ pub fn read_told(
     match joint {
         Ok(joint) if faults.is_empty() => return Ok(joint),
         Ok(_) => {}
-        Err(found) => faults.extend(found.0),
+        Err(found) => {
+            let new = |fault: &Diagnostic| completed.faults.iter().all(|f| f.place != fault.place);
+            faults.extend(found.0.into_iter().filter(new));
+        }
     }
     if let Some(shared) = &surroundings.shared {
         let named: Vec<String> = shared

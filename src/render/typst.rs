@@ -25,21 +25,17 @@ const WORD_ROOM: f64 = 40.0;
 pub struct TypstSource {
     /// The source.
     pub text: String,
-    /// Starts of the parts (line of the source, one-based), with template and line there.
+    /// Starts of the parts (byte of the source), with template and line there.
     places: Vec<(usize, String, usize)>,
 }
 
 impl TypstSource {
     fn new(text: String, spans: &[OutputSpan]) -> Self {
-        let mut line = 1;
-        let mut at = 0;
-        let mut places = Vec::with_capacity(spans.len());
-        for span in spans {
+        let place = |span: &OutputSpan| {
             let start = span.output_range().start;
-            line += text[at..start].matches('\n').count();
-            at = start;
-            places.push((line, span.name().to_owned(), span.line()));
-        }
+            (start, span.name().to_owned(), span.line())
+        };
+        let places = spans.iter().map(place).collect();
         Self { text, places }
     }
 
@@ -56,11 +52,16 @@ impl TypstSource {
         RenderError::Typeset(faults.into_iter().map(placed).collect())
     }
 
-    /// Template and line that wrote a line of the source.
+    /// Template and line that wrote the first text of a line of the source.
     fn template_line(&self, line: usize) -> Option<(String, usize)> {
-        let after = self.places.partition_point(|(start, ..)| *start <= line);
+        let before = self.text.split_inclusive('\n').take(line.checked_sub(1)?);
+        let start: usize = before.map(str::len).sum();
+        let indent = self.text[start..].find(|c: char| c == '\n' || !c.is_whitespace());
+        let at = start + indent.unwrap_or(0);
+        let after = self.places.partition_point(|(start, ..)| *start <= at);
         let (start, name, first) = self.places.get(after.checked_sub(1)?)?;
-        Some((name.clone(), first + (line - start)))
+        let passed = self.text[*start..at].matches('\n').count();
+        Some((name.clone(), first + passed))
     }
 }
 

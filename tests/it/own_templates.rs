@@ -93,6 +93,11 @@ fn what_the_typesetter_refuses_is_told_in_the_template() {
         "1 | #no-such-word\n",
     ];
     refused(&project, &write(&project, "pdf"), &wanted);
+    let last = file("templates/page.typ").text.lines().count() + 1;
+    let project = with_template("page.typ", |text| format!("{text}#while true {{}}\n"));
+    let place = format!("joints/templates/page.typ:{last}:1\n");
+    let wanted = ["error[typesetting]: condition is always true", &place];
+    refused(&project, &write(&project, "pdf"), &wanted);
     let project = with_template("note.typ", |text| {
         format!("{text}\n#read(\"../mast-foot.yaml\")\n")
     });
@@ -101,7 +106,7 @@ fn what_the_typesetter_refuses_is_told_in_the_template() {
 }
 
 #[test]
-fn loops_of_a_template_end() {
+fn loops_of_a_templates_statements_end() {
     let inner = "<% for a in range(9999) %><% for b in range(9999) %><% endfor %><% endfor %>\n";
     let project = with_template("note.md", |text| format!("{inner}{text}"));
     let wanted = [
@@ -158,6 +163,8 @@ fn links_out_of_the_folder_are_refused() {
     }
     let project = Project::with_joint();
     project.put("joints/sheets/real/rule.txt", sheet);
+    // An editor's lock is a link to nowhere.
+    symlink("user@host:1", project.path("joints/.#mast-foot.yaml")).unwrap();
     symlink(
         project.path("joints/sheets/real/rule.txt"),
         project.path("joints/sheets/rule.yaml"),

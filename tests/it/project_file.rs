@@ -1,6 +1,7 @@
 //! `project.yaml`: what joints inherit, what stays their own, and where its faults are told.
 
 use crate::command::{Project, Ran, joint, joint_with};
+use crate::tidy::file;
 
 /// What the mast foot shares with other joints, taken out of its file.
 const SHARED: &str = "\
@@ -97,6 +98,25 @@ fn a_joint_that_inherits_gives_the_results_of_one_that_says_all() {
 }
 
 #[test]
+fn the_project_file_of_the_readme_serves_the_mast_foot() {
+    let text = file("README.md").text;
+    let (_, block) = text
+        .split_once("```yaml\n# joints/project.yaml\n")
+        .expect("README.md shows a project file");
+    let (block, _) = block.split_once("```").expect("the block ends");
+    let drawing = own().replace("title:", "drawing: LM-2207 sheet 3\ntitle:");
+    let project = project(block, &drawing);
+    let inherited = trace(&project);
+    let whole = Project::with_joint();
+    let told = trace(&whole);
+    assert_eq!(inherited["note"], told["note"], "the number");
+    assert_eq!(
+        inherited["governing"]["check"], "EN 1993-1-8 4.5.3.2, equivalent stress",
+        "its one check governs"
+    );
+}
+
+#[test]
 fn steps_point_to_the_project_file_for_what_stands_there() {
     let parted = project(SHARED, &own());
     let steps = trace(&parted)["steps"].to_string();
@@ -186,7 +206,7 @@ fn names_that_stand_for_nothing_are_told_with_those_that_do() {
 
 #[test]
 fn a_number_without_a_unit_is_not_taken_into_other_units() {
-    let own = own().replace("\nframe:", "\nunits: {force: kip, length: in}\nframe:");
+    let own = own().replace("\nframe:", "\nunits: {force: kN, length: mm}\nframe:");
     let ran = vet(SHARED, &own);
     assert_eq!(ran.code, 1, "{ran:?}");
     for wanted in [
@@ -197,7 +217,11 @@ fn a_number_without_a_unit_is_not_taken_into_other_units() {
     ] {
         assert!(ran.err.contains(wanted), "{wanted}:\n{}", ran.err);
     }
-    assert!(!ran.err.contains("`355`"), "a unit is enough:\n{}", ran.err);
+    assert!(
+        !ran.err.contains("`355 MPa` has"),
+        "a unit is enough:\n{}",
+        ran.err
+    );
     let none = SHARED.replace("units: {force: N, length: mm}\n", "");
     let ran = vet(&none, &own);
     let wanted = "and the project file has no `units`";
@@ -360,4 +384,37 @@ fn show_tells_the_faults_of_a_joint_that_cannot_be_read() {
     assert!(ran.err.contains("did you mean `fillet`?"), "{}", ran.err);
     let ran = Project::new().run(&["show"]);
     assert_eq!(ran.code, 2, "a path must be given: {ran:?}");
+}
+
+#[test]
+fn no_damage_to_either_file_ends_the_program() {
+    let read = |name: &str, text: String| {
+        std::sync::Arc::new(seamnote::source::SourceFile {
+            name: name.to_owned(),
+            text,
+        })
+    };
+    let (own, mut refused) = (own(), 0);
+    let whole = seamnote::joint::read_project(&read("project.yaml", SHARED.to_owned())).unwrap();
+    for at in (0..own.len()).filter(|at| own.is_char_boundary(*at)) {
+        let Ok(root) = seamnote::source::parse_yaml(&read("joint.yaml", own[..at].to_owned()))
+        else {
+            continue;
+        };
+        let (root, faults) = whole.complete(&root);
+        refused +=
+            usize::from(seamnote::joint::read_joint_node(&root).is_err() || !faults.is_empty());
+    }
+    assert!(refused > 100, "only {refused} damaged joints were refused");
+    let joint = seamnote::source::parse_yaml(&read("joint.yaml", own)).unwrap();
+    for at in (0..SHARED.len()).filter(|at| SHARED.is_char_boundary(*at)) {
+        for cut in [SHARED[..at].to_owned(), SHARED[at..].to_owned()] {
+            if let Ok(shared) = seamnote::joint::read_project(&read("project.yaml", cut)) {
+                let (root, faults) = shared.complete(&joint);
+                let told = seamnote::joint::read_joint_node(&root);
+                let places = told.err().map_or(0, |found| found.0.len()) + faults.len();
+                assert!(places < 200, "{places} faults after a cut at {at}");
+            }
+        }
+    }
 }

@@ -2,7 +2,7 @@
 
 use super::part;
 use super::read_units;
-use super::value::read_positive;
+use super::value::{read_free, read_positive};
 use crate::joint::Paper;
 use crate::quantity::{Dim, UnitSet};
 use crate::source::{Diagnostic, FaultBag, Fields, Item, Node, Told, read_map};
@@ -51,7 +51,7 @@ fn check_strengths(
     for key in ["thickness", "material", "name"] {
         refuse_key(&mut fields, key, what);
     }
-    part::read_more(&mut fields, Item::raw);
+    part::read_more(&mut fields, |item| read_free(item, set));
     fields.finish();
     Some(())
 }

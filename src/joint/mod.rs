@@ -2,6 +2,7 @@
 //!
 //! Holds and reads the joint file: one joint, one file. Computes no geometry and no stress.
 
+pub mod keys;
 mod read;
 
 pub use read::{read_joint, read_joint_node, read_quantity, read_triple};

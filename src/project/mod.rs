@@ -2,13 +2,17 @@
 //!
 //! The only room that touches the disk. Everything inside takes texts and gives bytes.
 
+mod begin;
 mod outputs;
 mod produce;
 mod read;
+mod schemas;
 
+pub use begin::{Start, begin};
 pub use outputs::{Output, stage};
 pub use produce::{Kinds, Produced, Workshop, written};
 pub use read::{JointFile, find_joints, read_joint_file, read_library};
+pub use schemas::{SchemaKind, published};
 
 use crate::render::RenderError;
 use crate::source::Faults;

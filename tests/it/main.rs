@@ -9,6 +9,7 @@ mod figure;
 mod formula;
 mod groups;
 mod joint_read;
+mod keys;
 mod laying;
 mod mechanics;
 mod notes;

@@ -19,6 +19,7 @@ mod render;
 mod replay;
 mod schema;
 mod settle;
+mod starting;
 mod tidy;
 mod weld_faults;
 mod weldkit;

@@ -1,12 +1,14 @@
-//! Commands that help to begin and to understand: a new project, explanations, schemas.
+//! Commands that help to begin and to understand: a new project, explanations, schemas,
+//! completions, the manual.
 
-use super::arguments::{SchemaOf, UNITS};
+use super::arguments::{Arguments, SchemaOf, UNITS};
 use super::work::{Said, complaint};
 use super::{exit, explain};
 use crate::joint::keys::PATTERN;
 use crate::project::{ProjectError, SchemaKind, Start, begin, published, read_library};
 use crate::quantity::UnitSet;
 use crate::source::Form;
+use clap::CommandFactory;
 use std::path::Path;
 
 /// Lays down a project and says what to do next.
@@ -68,6 +70,40 @@ pub(super) fn schema(of: SchemaOf) -> Said {
         SchemaOf::Sheet => SchemaKind::Sheet,
         SchemaOf::Trace => SchemaKind::Trace,
     }))
+}
+
+/// Prints the completions of a shell.
+pub(super) fn completions(shell: clap_complete::Shell) -> Said {
+    let mut text = Vec::new();
+    clap_complete::generate(shell, &mut Arguments::command(), "seamnote", &mut text);
+    said(String::from_utf8_lossy(&text).into_owned())
+}
+
+/// Prints the manual page of the program, or of a command.
+pub(super) fn manual(command: Option<&str>) -> Said {
+    let mut program = Arguments::command();
+    program.build();
+    let page = match command {
+        None => program,
+        Some(name) => match program.find_subcommand(name) {
+            Some(command) => command.clone(),
+            None => {
+                return Said {
+                    err: format!("error: `{name}` is no command\n"),
+                    code: exit::USAGE,
+                    ..Said::default()
+                };
+            }
+        },
+    };
+    // The page of a command goes by both names, as in `seamnote-write`.
+    let title = page.get_display_name().unwrap_or("seamnote").to_owned();
+    let mut text = Vec::new();
+    clap_mangen::Man::new(page)
+        .title(title)
+        .render(&mut text)
+        .expect("writing to memory does not fail");
+    said(String::from_utf8_lossy(&text).into_owned())
 }
 
 fn said(out: String) -> Said {

@@ -104,6 +104,27 @@ joint file:
         #[arg(value_name = "OF")]
         of: SchemaOf,
     },
+    /// Print the completions of a shell.
+    #[command(after_help = "\
+Examples:
+  seamnote completions bash > ~/.local/share/bash-completion/completions/seamnote
+  seamnote completions fish > ~/.config/fish/completions/seamnote.fish
+  seamnote completions zsh > \"${fpath[1]}/_seamnote\"")]
+    Completions {
+        /// The shell.
+        #[arg(value_name = "SHELL")]
+        shell: clap_complete::Shell,
+    },
+    /// Print the manual page of the program, or of one of its commands.
+    #[command(after_help = "\
+Examples:
+  seamnote manual | man -l -
+  seamnote manual write > seamnote-write.1")]
+    Manual {
+        /// One of the commands.
+        #[arg(value_name = "COMMAND")]
+        command: Option<String>,
+    },
 }
 
 /// What a schema is of.

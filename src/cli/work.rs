@@ -49,6 +49,8 @@ pub fn run(arguments: &Arguments, colour: bool) -> Said {
         } => return aid::begin_project(folder, pattern, units, colour),
         Command::Explain { thing, joints } => return aid::explained(thing, joints, colour),
         Command::Schema { of } => return aid::schema(*of),
+        Command::Completions { shell } => return aid::completions(*shell),
+        Command::Manual { command } => return aid::manual(command.as_deref()),
     };
     match prepare(scope) {
         Ok((joints, libraries)) => work(&joints, &libraries, scope, &job, colour),

@@ -14,6 +14,14 @@ fn say(arguments: &[&str]) -> seamnote::cli::Said {
     run(&Arguments::try_parse_from(all).unwrap(), false)
 }
 
+/// Holds an explanation to its snapshot.
+#[track_caller]
+fn shown(name: &str, thing: &str) {
+    let mut settings = insta::Settings::clone_current();
+    settings.set_omit_expression(true);
+    settings.bind(|| insta::assert_snapshot!(name, explain(thing, built_in()).unwrap()));
+}
+
 fn patterns() -> Vec<String> {
     let Some(Form::Words(words)) = PATTERN.find("shape").map(|key| key.form) else {
         panic!("shapes are words");
@@ -159,8 +167,8 @@ fn each_sheet_is_explained_whole() {
             );
         }
     }
-    insta::assert_snapshot!(explain("EN 1993-1-8 4.5.3.2", built_in()).unwrap());
-    insta::assert_snapshot!(explain("AISC 360 J2.2b", built_in()).unwrap());
+    shown("explain_sheet_of_points", "EN 1993-1-8 4.5.3.2");
+    shown("explain_sheet_of_runs", "AISC 360 J2.2b");
 }
 
 #[test]
@@ -177,9 +185,9 @@ fn each_key_is_explained_by_its_name() {
             );
         }
     }
-    insta::assert_snapshot!(explain("weld.runs.toe", built_in()).unwrap());
-    insta::assert_snapshot!(explain("weld", built_in()).unwrap());
-    insta::assert_snapshot!(explain("sheet.needs.from", built_in()).unwrap());
+    shown("explain_key", "weld.runs.toe");
+    shown("explain_key_of_map", "weld");
+    shown("explain_key_of_sheet", "sheet.needs.from");
 }
 
 #[test]
@@ -205,4 +213,46 @@ fn a_sheet_of_ones_own_is_explained_from_its_folder() {
     let said = say(&["explain", "works", "rule", "7", "--joints", &folder]);
     assert_eq!(said.code, 0, "{}", said.err);
     assert!(said.out.contains("sheet works rule 7"), "{}", said.out);
+}
+
+#[test]
+fn completions_and_manual_know_each_command_and_option() {
+    use clap::CommandFactory;
+    let program = Arguments::command();
+    let commands: Vec<&clap::Command> = program.get_subcommands().collect();
+    assert!(commands.len() >= 7, "commands");
+    let manual = say(&["manual"]);
+    assert!(manual.out.contains(".TH seamnote 1"), "{}", manual.out);
+    for shell in ["bash", "zsh", "fish"] {
+        let said = say(&["completions", shell]);
+        for command in &commands {
+            assert!(
+                said.out.contains(command.get_name()),
+                "{shell}: {}",
+                command.get_name()
+            );
+        }
+        for option in ["must-hold", "pattern"] {
+            assert!(said.out.contains(option), "{shell}: {option}");
+        }
+    }
+    for command in &commands {
+        let name = command.get_name();
+        assert!(manual.out.contains(name), "the manual lacks {name}");
+        let page = say(&["manual", name]);
+        assert_eq!(page.code, 0, "{name}: {}", page.err);
+        assert!(
+            page.out.contains(&format!(".TH seamnote-{name} 1")),
+            "{}",
+            page.out
+        );
+        for option in command
+            .get_arguments()
+            .filter_map(|argument| argument.get_long())
+        {
+            let escaped = option.replace('-', "\\-");
+            assert!(page.out.contains(&escaped), "{name}: --{option}");
+        }
+    }
+    assert_eq!(say(&["manual", "qqq"]).code, 2, "no such command");
 }

@@ -1,5 +1,7 @@
 //! Arguments of the command line.
 
+use crate::quantity::UnitSet;
+use clap::builder::PossibleValuesParser;
 use clap::{Args, Parser, Subcommand, ValueEnum};
 use std::path::PathBuf;
 
@@ -70,7 +72,105 @@ a clause sheet. Writes nothing.")]
         #[arg(value_name = "PATH", required = true)]
         paths: Vec<PathBuf>,
     },
+    /// Lay down a new project with one commented, working joint.
+    #[command(after_help = "\
+Examples:
+  seamnote begin mast                                     a channel, in N and mm
+  seamnote begin mast --pattern box --units kip,in        a box, in kip and in
+
+Writes joints/ with the joint, a clause sheet to copy from, and the schemas that editors use.
+A file that is there already is never written over.")]
+    Begin {
+        /// Folder of the project; it is made if there is none.
+        #[arg(value_name = "FOLDER")]
+        folder: PathBuf,
+        /// Shape of the weld group.
+        #[arg(long, value_name = "PATTERN", default_value = "channel", value_parser = PossibleValuesParser::new(PATTERNS))]
+        pattern: String,
+        /// Units that the note is printed in.
+        #[arg(long, value_name = "UNITS", default_value = "N,mm", value_parser = PossibleValuesParser::new(UNITS.map(|row| row.0)))]
+        units: String,
+    },
+    /// Say what a fault code, a clause sheet or a key means.
+    #[command(after_help = "\
+Examples:
+  seamnote explain which-size               a fault code
+  seamnote explain EN 1993-1-8 4.5.3.2      a clause sheet: needs, steps, limits
+  seamnote explain weld.runs.toe            a key of joint files
+  seamnote explain sheet.needs.from         a key of clause sheets")]
+    Explain {
+        /// A fault code, the name of a clause sheet, or a key.
+        #[arg(value_name = "THING", required = true)]
+        thing: Vec<String>,
+        /// Folder of joints, whose sheets can be named, too.
+        #[arg(long, value_name = "FOLDER", default_value = "joints")]
+        joints: PathBuf,
+    },
+    /// Print a JSON Schema, for editors and machines.
+    #[command(after_help = "\
+An editor that speaks the YAML language server's language finds a schema by the first line of a
+joint file:
+  # yaml-language-server: $schema=schemas/joint.schema.json")]
+    Schema {
+        /// What the schema is of.
+        #[arg(value_name = "OF")]
+        of: SchemaOf,
+    },
+    /// Print the completions of a shell.
+    #[command(after_help = "\
+Examples:
+  seamnote completions bash > ~/.local/share/bash-completion/completions/seamnote
+  seamnote completions fish > ~/.config/fish/completions/seamnote.fish
+  seamnote completions zsh > \"${fpath[1]}/_seamnote\"")]
+    Completions {
+        /// The shell.
+        #[arg(value_name = "SHELL")]
+        shell: clap_complete::Shell,
+    },
+    /// Print the manual page of the program, or of one of its commands.
+    #[command(after_help = "\
+Examples:
+  seamnote manual | man -l -
+  seamnote manual write > seamnote-write.1")]
+    Manual {
+        /// One of the commands.
+        #[arg(value_name = "COMMAND")]
+        command: Option<String>,
+    },
 }
+
+/// What a schema is of.
+#[derive(Clone, Copy, PartialEq, Eq, Debug, ValueEnum)]
+pub enum SchemaOf {
+    /// A joint file.
+    Joint,
+    /// A clause sheet.
+    Sheet,
+    /// The trace of a note.
+    Trace,
+}
+
+/// The trade names of patterns, with hyphens for spaces.
+const PATTERNS: [&str; 9] = [
+    "single-line",
+    "two-parallel-lines",
+    "angle",
+    "channel",
+    "tee",
+    "i-outline",
+    "cruciform",
+    "box",
+    "circle",
+];
+
+/// Printing sets, each in one word.
+pub(super) const UNITS: [(&str, UnitSet); 5] = [
+    ("N,mm", UnitSet::NewtonMillimetre),
+    ("kN,mm", UnitSet::KilonewtonMillimetre),
+    ("N,m", UnitSet::NewtonMetre),
+    ("lbf,in", UnitSet::PoundInch),
+    ("kip,in", UnitSet::KipInch),
+];
 
 /// What to work on, and how.
 #[derive(Args, Debug)]

@@ -2,11 +2,14 @@
 //!
 //! Prints nothing itself: [`run`] gives texts and an exit code, `main.rs` prints them.
 
+mod aid;
 mod arguments;
+mod explain;
 mod show;
 mod work;
 
-pub use arguments::{Arguments, Command};
+pub use arguments::{Arguments, Command, SchemaOf};
+pub use explain::{FaultWords, explain, fault_words};
 pub use work::{Said, run};
 
 /// Exit codes.

@@ -1,5 +1,6 @@
 //! Works on joints with several threads and says what came of each, in the order of the files.
 
+use super::aid;
 use super::arguments::{Arguments, Command, OutputKind, ScopeArgs};
 use super::exit;
 use super::show::table;
@@ -44,6 +45,15 @@ pub fn run(arguments: &Arguments, colour: bool) -> Said {
         ),
         Command::Vet { scope } => (scope, Job::Vet),
         Command::Show { paths } => return show(paths, colour),
+        Command::Begin {
+            folder,
+            pattern,
+            units,
+        } => return aid::begin_project(folder, pattern, units, colour),
+        Command::Explain { thing, joints } => return aid::explained(thing, joints, colour),
+        Command::Schema { of } => return aid::schema(*of),
+        Command::Completions { shell } => return aid::completions(*shell),
+        Command::Manual { command } => return aid::manual(command.as_deref()),
     };
     match prepare(&scope.paths) {
         Ok((joints, folders)) => work(&joints, &folders, scope, &job, colour),
@@ -251,7 +261,7 @@ fn summary(
     said
 }
 
-fn complaint(fault: &ProjectError, colour: bool) -> String {
+pub(super) fn complaint(fault: &ProjectError, colour: bool) -> String {
     match fault {
         ProjectError::Faults(faults) => format!("{}\n", faults.render(colour).trim_end()),
         other => format!("error: {other}\n"),

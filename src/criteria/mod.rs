@@ -9,6 +9,7 @@ mod assess;
 mod evaluate;
 mod factor;
 mod from;
+pub mod keys;
 mod library;
 mod limit;
 mod margin;
@@ -25,7 +26,7 @@ pub use factor::{Factor, factors};
 pub use from::{From, PointField, Property, RunField, Unknown, Which};
 pub use library::{Library, built_in};
 pub use outcome::{Asked, Assessment, Governing, LimitOutcome, Margin, StrengthOutcome};
-pub use read::read_sheet;
+pub use read::{read_sheet, read_sheet_node};
 pub use resolve::Turn;
 pub use sheet::{
     ABOVE, BySystem, Capacity, CodeTable, EndRule, FailurePath, Kind, Limit, Need, RawRows, Role,

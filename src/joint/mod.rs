@@ -3,6 +3,7 @@
 //! Holds and reads the joint file: one joint, one file, and the project file that joints share.
 //! Computes no geometry and no stress.
 
+pub mod keys;
 mod project;
 mod read;
 

@@ -10,6 +10,9 @@ use crate::formula::{Draft, Env, FormulaError, Origin, Symbol, Value};
 use crate::joint::{GivenAt, PatternSpec};
 use crate::weld::handbook;
 
+/// The closed form of what is none, such as the centroid of a circle from its own origin.
+const NONE: &str = "0";
+
 /// What the handbook tells of a pattern.
 struct Told {
     /// Place in [`handbook::Algebra`].
@@ -88,7 +91,9 @@ impl Builder<'_> {
         env.bind("t", self.run_values[0]["t"]);
         let mut rows = Vec::new();
         let mut worst: f64 = 0.0;
-        for told in told {
+        // A second moment that is none has no formula to work out.
+        let worked = |told: &Told| told.index < 3 || algebra[told.index] != NONE;
+        for told in told.into_iter().filter(worked) {
             let value = self.by_handbook(&told, algebra[told.index], &env)?;
             let sum = self.group_value(told.sum);
             let (found, summed) = (self.ledger.get(value).value, self.ledger.get(sum).value);
@@ -192,21 +197,27 @@ impl Builder<'_> {
         algebra: &str,
         env: &Env,
     ) -> Result<Value, FormulaError> {
-        let draft = Draft {
-            id: format!(
-                "handbook.unit-{}",
-                told.sum.to_lowercase().replace('_', "-")
-            ),
-            symbol: told.unit.clone(),
-            says: told.says.to_owned(),
-            formula: algebra,
-            origin: Origin::Clause("Shigley, tables 9-1, 9-2".to_owned()),
-            dim: None,
-        };
-        let unit = self.ledger.step(draft, env)?;
-        self.show(unit);
         let mut env = env.clone();
-        env.bind("q_u", unit);
+        let mut whole = told.whole;
+        if algebra == NONE {
+            // The centroid is the pattern's own origin.
+            whole = whole.trim_end_matches(" + q_u");
+        } else {
+            let draft = Draft {
+                id: format!(
+                    "handbook.unit-{}",
+                    told.sum.to_lowercase().replace('_', "-")
+                ),
+                symbol: told.unit.clone(),
+                says: told.says.to_owned(),
+                formula: algebra,
+                origin: Origin::Clause("Shigley, tables 9-1, 9-2".to_owned()),
+                dim: None,
+            };
+            let unit = self.ledger.step(draft, &env)?;
+            self.show(unit);
+            env.bind("q_u", unit);
+        }
         let draft = Draft {
             id: format!("handbook.{}", told.sum.to_lowercase().replace('_', "-")),
             symbol: self
@@ -215,7 +226,7 @@ impl Builder<'_> {
                 .symbol
                 .with("hb"),
             says: "The same of the group".to_owned(),
-            formula: told.whole,
+            formula: whole,
             origin: Origin::Clause("Shigley, eq. 9-6".to_owned()),
             dim: None,
         };

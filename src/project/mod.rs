@@ -2,18 +2,22 @@
 //!
 //! The only room that touches the disk. Everything inside takes texts and gives bytes.
 
+mod begin;
 mod glyphs;
 mod outputs;
 mod produce;
 mod read;
+mod schemas;
 mod templates;
 
+pub use begin::{Start, begin};
 pub use outputs::{Output, stage};
 pub use produce::{Kinds, Produced, Workshop, written};
 pub use read::{
     Completed, JointFile, Surroundings, complete_joint, find_joints, read_joint_file, read_library,
     read_surroundings, read_told,
 };
+pub use schemas::{SchemaKind, published};
 pub use templates::OwnTemplates;
 
 use crate::render::RenderError;

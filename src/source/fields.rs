@@ -3,8 +3,8 @@
 //! Collects faults and goes on, so that a file's faults are told in one go. Used for joints,
 //! project files and clause sheets alike.
 
-use super::item::{listed, nearest};
-use super::{Diagnostic, FaultBag, Item, Node, Place, Told};
+use super::item::{listed, nearest_of};
+use super::{Diagnostic, FaultBag, Item, KeyTable, Node, Place, Told};
 
 /// A map being read key by key; [`Fields::finish`] refuses what was not asked for.
 ///
@@ -31,6 +31,7 @@ use super::{Diagnostic, FaultBag, Item, Node, Place, Told};
 #[derive(Debug)]
 pub struct Fields<'a> {
     what: &'static str,
+    table: Option<&'static KeyTable>,
     entries: &'a [(Told<String>, Node)],
     taken: Vec<bool>,
     known: Vec<&'static str>,
@@ -47,12 +48,19 @@ impl<'a> Fields<'a> {
     ) -> Self {
         Self {
             what,
+            table: None,
             entries,
             taken: vec![false; entries.len()],
             known: Vec::new(),
             place,
             faults,
         }
+    }
+
+    /// The same reader, held to a table of keys.
+    pub(super) fn with_table(mut self, table: &'static KeyTable) -> Self {
+        self.table = Some(table);
+        self
     }
 
     /// Where the map stands.
@@ -96,7 +104,18 @@ impl<'a> Fields<'a> {
     }
 
     /// Takes a key's value unread, if the file has it.
+    ///
+    /// # Panics
+    ///
+    /// If the map has a table of keys and this is none of them: a mistake of the reader.
     pub fn take(&mut self, key: &'static str) -> Option<Item<'a>> {
+        if let Some(table) = self.table {
+            assert!(
+                table.find(key).is_some(),
+                "the table of {} lacks the key `{key}` that its reader asks for",
+                self.what
+            );
+        }
         if !self.known.contains(&key) {
             self.known.push(key);
         }
@@ -175,7 +194,7 @@ impl<'a> Fields<'a> {
         for (taken, (key, node)) in self.taken.iter().zip(self.entries) {
             if !taken {
                 self.faults
-                    .push(self.unknown(key, node, nearest(&key.value, &self.known)));
+                    .push(self.unknown(key, node, nearest_of(&key.value, &self.known)));
             }
         }
     }
@@ -208,6 +227,6 @@ impl<'a> Fields<'a> {
         absent
             .into_iter()
             .find(|key| bare(key) == bare(typed))
-            .or_else(|| nearest(typed, &long))
+            .or_else(|| nearest_of(typed, &long))
     }
 }

@@ -3,7 +3,7 @@
 //! Every reader returns `None` once it has left a fault, so that reading goes on. Quantities
 //! are read by those who know a printing set.
 
-use super::{Diagnostic, FaultBag, Fields, Node, Place, Told, Value};
+use super::{Diagnostic, FaultBag, Fields, KeyTable, Node, Place, Told, Value};
 
 /// A value to be read.
 #[derive(Clone, Copy, Debug)]
@@ -126,7 +126,7 @@ impl<'a> Item<'a> {
             format!("`{}` is no word for `{}`", text.value, self.name),
             &text.place,
         );
-        if let Some(near) = nearest(&text.value, &known) {
+        if let Some(near) = nearest_of(&text.value, &known) {
             fault = fault.help(format!("did you mean `{near}`?"));
         }
         self.faults
@@ -214,6 +214,11 @@ impl<'a> Item<'a> {
         Some(Fields::new(what, entries, self.place(), self.faults))
     }
 
+    /// A reader of a map whose keys a table declares.
+    pub fn keyed(self, table: &'static KeyTable) -> Option<Fields<'a>> {
+        Some(self.fields(table.what)?.with_table(table))
+    }
+
     fn map(self) -> Option<&'a [(Told<String>, Node)]> {
         match &self.node.value {
             Value::Map(entries) => Some(entries),
@@ -288,10 +293,19 @@ pub fn read_map<'a>(
     .fields(what)
 }
 
+/// Reads the root of a file as a map whose keys a table declares.
+pub fn read_keyed<'a>(
+    node: &'a Node,
+    table: &'static KeyTable,
+    faults: &'a FaultBag,
+) -> Option<Fields<'a>> {
+    Some(read_map(node, table.what, faults)?.with_table(table))
+}
+
 /// The known word that a typed one was most likely meant for.
 ///
 /// The bound is this project's own: one slip in a short word, two in a longer one.
-pub(super) fn nearest<'k>(typed: &str, known: &[&'k str]) -> Option<&'k str> {
+pub fn nearest_of<'k>(typed: &str, known: &[&'k str]) -> Option<&'k str> {
     let typed_low = typed.to_lowercase();
     let slips = |word: &str| strsim::damerau_levenshtein(&typed_low, &word.to_lowercase());
     let best = known

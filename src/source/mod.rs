@@ -5,13 +5,17 @@
 mod diag;
 mod fields;
 mod item;
+mod keys;
 mod line;
+mod schema;
 mod syntax;
 mod yaml;
 
 pub use diag::{Diagnostic, FaultBag, Faults, Severity, one_line};
 pub use fields::Fields;
-pub use item::{Item, read_map};
+pub use item::{Item, nearest_of, read_keyed, read_map};
+pub use keys::{Choice, Form, Key, KeyTable, Sign};
+pub use schema::schema;
 pub use yaml::{Node, Value, parse_yaml};
 
 use std::fmt;

@@ -1,6 +1,6 @@
-//! A structural check of JSON against the published schema of the trace.
+//! A structural check of JSON against the published schemas: of the trace, of joints, of sheets.
 //!
-//! Knows the keywords which that schema uses and refuses any other, so that a keyword added later
+//! Knows the keywords which those schemas use and refuses any other, so that a keyword added later
 //! cannot go unchecked. Follows JSON Schema, draft 2020-12.
 
 use serde_json::{Map, Value};
@@ -12,6 +12,13 @@ const NOTES: [&str; 4] = ["$schema", "$defs", "title", "description"];
 pub(crate) fn departures(schema: &Value, value: &Value) -> Vec<String> {
     let mut out = Vec::new();
     walk(schema, schema, value, "trace", &mut out);
+    out
+}
+
+/// Where `value` departs from `part`, a schema within `root`.
+pub(crate) fn departures_within(root: &Value, part: &Value, value: &Value) -> Vec<String> {
+    let mut out = Vec::new();
+    walk(root, part, value, "value", &mut out);
     out
 }
 
@@ -35,12 +42,52 @@ fn walk(root: &Value, schema: &Value, value: &Value, at: &str, out: &mut Vec<Str
                 }
             }
             "pattern" => {
-                // The only pattern in use: a digest in hexadecimal.
-                assert_eq!(rule, "^[0-9a-f]{64}$", "{at}: an unknown pattern");
-                let text = value.as_str().unwrap_or_default();
-                let hex = |c: char| c.is_ascii_digit() || ('a'..='f').contains(&c);
-                if text.len() != 64 || !text.chars().all(hex) {
-                    out.push(format!("{at}: {value} is no digest"));
+                if let Some(text) = value.as_str()
+                    && !fits(rule.as_str().unwrap(), text)
+                {
+                    out.push(format!("{at}: {value} does not fit {rule}"));
+                }
+            }
+            "minLength" => {
+                let short = |text: &str| text.chars().count() < to_usize(rule);
+                if value.as_str().is_some_and(short) {
+                    out.push(format!("{at}: the text is too short"));
+                }
+            }
+            "minProperties" => {
+                if value
+                    .as_object()
+                    .is_some_and(|map| map.len() < to_usize(rule))
+                {
+                    out.push(format!("{at}: too few entries"));
+                }
+            }
+            "minimum" | "exclusiveMinimum" => {
+                let bound = rule.as_f64().unwrap();
+                let below =
+                    |number: f64| number < bound || (keyword != "minimum" && number <= bound);
+                if value.as_f64().is_some_and(below) {
+                    out.push(format!("{at}: {value} is below its {keyword} {rule}"));
+                }
+            }
+            "allOf" => {
+                for form in rule.as_array().unwrap() {
+                    walk(root, form, value, at, out);
+                }
+            }
+            "anyOf" | "oneOf" => {
+                let forms = rule.as_array().unwrap();
+                let met = forms
+                    .iter()
+                    .filter(|form| departures_within(root, form, value).is_empty())
+                    .count();
+                if met == 0 || (keyword == "oneOf" && met > 1) {
+                    out.push(format!("{at}: meets {met} of {keyword} {rule}"));
+                }
+            }
+            "not" => {
+                if departures_within(root, rule, value).is_empty() {
+                    out.push(format!("{at}: meets {rule}"));
                 }
             }
             "minItems" => count(rule, value, at, "too few", |have, want| have < want, out),
@@ -81,11 +128,48 @@ fn members(
     for (name, member) in object {
         match known.and_then(|known| known.get(name)) {
             Some(schema) => walk(root, schema, member, &format!("{at}.{name}"), out),
-            None if rules.get("additionalProperties") == Some(&Value::Bool(false)) => {
-                out.push(format!("{at}: {name} is not in the schema"));
-            }
-            None => {}
+            None => match rules.get("additionalProperties") {
+                Some(Value::Bool(false)) => {
+                    out.push(format!("{at}: {name} is not in the schema"));
+                }
+                Some(form @ Value::Object(_)) => {
+                    walk(root, form, member, &format!("{at}.{name}"), out);
+                }
+                _ => {}
+            },
         }
+    }
+}
+
+fn to_usize(rule: &Value) -> usize {
+    usize::try_from(rule.as_u64().unwrap()).unwrap()
+}
+
+/// Whether a text fits one of the patterns in use, each written out by hand.
+fn fits(pattern: &str, text: &str) -> bool {
+    let digits = |text: &str| text.chars().all(|c| c.is_ascii_digit());
+    let number = |text: &str, signs: &[char]| {
+        let text = text.strip_prefix(signs).unwrap_or(text);
+        let text = text.strip_prefix('.').unwrap_or(text);
+        text.starts_with(|c: char| c.is_ascii_digit()) && !text.contains(',')
+    };
+    let any = ['+', '-', '\u{2212}'];
+    match pattern {
+        "^[0-9a-f]{64}$" => {
+            let hex = |c: char| c.is_ascii_digit() || ('a'..='f').contains(&c);
+            text.len() == 64 && text.chars().all(hex)
+        }
+        "^[0-9]{4}-[0-9]{2}-[0-9]{2}$" => {
+            let parts: Vec<&str> = text.split('-').collect();
+            parts.iter().map(|part| part.len()).eq([4, 2, 2])
+                && parts.iter().all(|part| digits(part))
+        }
+        "^[+\u{2212}-]?\\.?[0-9][^,]*$" => number(text, &any),
+        "^[+]?\\.?[0-9][^,]*$" => number(text, &['+']),
+        "^[+\u{2212}-]?\\.?[0-9][^,]*(deg|rad|°)$" => {
+            number(text, &any) && ["deg", "rad", "°"].iter().any(|unit| text.ends_with(unit))
+        }
+        other => panic!("unknown pattern {other}"),
     }
 }
 
@@ -121,6 +205,7 @@ fn is_of(name: &str, value: &Value) -> bool {
         "array" => value.is_array(),
         "string" => value.is_string(),
         "number" => value.is_number(),
+        "boolean" => value.is_boolean(),
         "null" => value.is_null(),
         other => panic!("unknown type {other}"),
     }
@@ -143,7 +228,7 @@ fn departures_from_the_schema_are_found() {
     #[rustfmt::skip]
     let rows: [(&str, Value, &str); 8] = [
         ("/note",                  serde_json::json!(1),           "not of type"),
-        ("/identity/words",        serde_json::json!("F00"),       "no digest"),
+        ("/identity/words",        serde_json::json!("F00"),       "does not fit"),
         ("/group/centroid",        serde_json::json!([0, 0]),      "too few"),
         ("/group/tensor/0",        serde_json::json!([0, 0, 0, 0]),"too many"),
         ("/steps/0/kind",          serde_json::json!("guess"),     "not one of"),

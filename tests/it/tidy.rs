@@ -397,7 +397,7 @@ fn literal(text: &str) -> Option<String> {
 }
 
 /// Every fault code with the files that give it.
-fn codes() -> BTreeMap<String, Vec<String>> {
+pub(crate) fn codes() -> BTreeMap<String, Vec<String>> {
     let mut all: BTreeMap<String, Vec<String>> = BTreeMap::new();
     for file in sources() {
         for code in codes_of(&file) {

@@ -8,10 +8,11 @@ mod need;
 mod rule;
 mod table;
 
+use super::keys;
 use super::sheet::{Capacity, EndRule, FailurePath, Scope, Sheet, SheetSource, Status, WeldKind};
 use crate::joint::Level;
 use crate::source::{
-    Diagnostic, FaultBag, Faults, Fields, Item, SourceFile, Value, parse_yaml, read_map,
+    Diagnostic, FaultBag, Faults, Fields, Item, Node, SourceFile, Value, parse_yaml, read_keyed,
 };
 use known::Known;
 use std::sync::Arc;
@@ -23,9 +24,17 @@ use std::sync::Arc;
 /// All faults of the file, in file order: those of YAML alone if there are any, else those of the
 /// sheet, with formulas of wrong dimension among them.
 pub fn read_sheet(file: &Arc<SourceFile>) -> Result<Sheet, Faults> {
-    let root = parse_yaml(file)?;
+    read_sheet_node(&parse_yaml(file)?)
+}
+
+/// Reads a clause sheet from its tree.
+///
+/// # Errors
+///
+/// All faults of the sheet, in file order.
+pub fn read_sheet_node(root: &Node) -> Result<Sheet, Faults> {
     let faults = FaultBag::new();
-    let sheet = read_map(&root, "a clause sheet", &faults).and_then(read_root);
+    let sheet = read_keyed(root, &keys::SHEET, &faults).and_then(read_root);
     Ok(faults.close(sheet)?.0)
 }
 
@@ -120,7 +129,7 @@ fn read_root(mut fields: Fields<'_>) -> Option<Sheet> {
 }
 
 fn read_source(item: Item<'_>) -> Option<SheetSource> {
-    let mut fields = item.fields("`source`")?;
+    let mut fields = item.keyed(&keys::SOURCE)?;
     let document = fields.required("document", Item::line);
     let edition = fields.optional("edition", Item::line);
     let clause = fields.optional("clause", Item::line);
@@ -135,7 +144,7 @@ fn read_source(item: Item<'_>) -> Option<SheetSource> {
 }
 
 fn read_requires(item: Item<'_>) -> Option<(Vec<EndRule>, Vec<WeldKind>)> {
-    let mut fields = item.fields("`requires`")?;
+    let mut fields = item.keyed(&keys::REQUIRES)?;
     let ends = fields.required("ends", read_ends);
     let welds = fields.required("welds", |item| {
         item.list(|item| item.word(&WeldKind::WORDS))

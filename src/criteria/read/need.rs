@@ -2,6 +2,7 @@
 
 use super::known::Known;
 use crate::criteria::from::From;
+use crate::criteria::keys;
 use crate::criteria::sheet::{BySystem, Kind, Need, Role, Stated, Status};
 use crate::formula::Symbol;
 use crate::quantity::{Dim, Given, UnitSet};
@@ -9,7 +10,7 @@ use crate::source::{Fields, Item, Told, Value};
 
 /// Reads one need and declares its name.
 pub(super) fn read_need(key: &Told<String>, item: Item<'_>, known: &mut Known) -> Option<Need> {
-    let mut fields = item.fields("a need")?;
+    let mut fields = item.keyed(&keys::NEED)?;
     let kind = fields
         .required("kind", |item| item.word(&Kind::WORDS))
         .map(|told| told.value);
@@ -111,6 +112,10 @@ pub(super) fn read_symbol(item: Item<'_>) -> Option<Symbol> {
 /// One word or a list of words, of which the first that is given counts.
 fn read_from(item: Item<'_>, kind: Option<Kind>) -> Option<Vec<From>> {
     match item.node.value {
+        Value::List(ref items) if items.is_empty() => item.refuse(
+            "empty-list",
+            "`from` names no place that a value comes from",
+        ),
         Value::List(_) => item.list(|item| read_one_from(item, kind)),
         Value::Scalar { .. } | Value::Map(_) | Value::Null => {
             read_one_from(item, kind).map(|from| vec![from])
@@ -156,7 +161,7 @@ fn read_one_from(item: Item<'_>, kind: Option<Kind>) -> Option<From> {
 }
 
 fn read_default(item: Item<'_>, kind: Option<Kind>) -> Option<Stated> {
-    let mut fields = item.fields("`default`")?;
+    let mut fields = item.keyed(&keys::DEFAULT)?;
     let text = read_variants(&mut fields, kind);
     let source = fields.required("source", Item::text);
     let status = fields.optional("status", |item| item.word(&Status::WORDS));

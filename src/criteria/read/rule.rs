@@ -2,13 +2,14 @@
 
 use super::known::Known;
 use super::need::read_symbol;
+use crate::criteria::keys;
 use crate::criteria::sheet::{Capacity, Kind, Limit, Rule, Side, Strength, Validity};
 use crate::quantity::Dim;
 use crate::source::{Diagnostic, Item, Told};
 
 /// Reads one step and declares its name.
 pub(super) fn read_step(key: &Told<String>, item: Item<'_>, known: &mut Known) -> Option<Rule> {
-    let mut fields = item.fields("a step")?;
+    let mut fields = item.keyed(&keys::STEP)?;
     let symbol = fields.required("symbol", |item| {
         let symbol = read_symbol(item)?;
         known.declare_symbol(symbol.plain(), &key.value, item)?;
@@ -46,7 +47,7 @@ pub(super) fn read_step(key: &Told<String>, item: Item<'_>, known: &mut Known) -
 
 /// Reads one strength check.
 pub(super) fn read_strength(item: Item<'_>, known: &mut Known) -> Option<Strength> {
-    let mut fields = item.fields("a check")?;
+    let mut fields = item.keyed(&keys::STRENGTH)?;
     let name = fields.required("name", Item::line);
     let demand = fields.required("demand", |item| known.quantity(item));
     let capacity = fields.required("capacity", |item| read_capacity(item, known));
@@ -95,7 +96,7 @@ fn read_capacity(item: Item<'_>, known: &mut Known) -> Option<(Capacity, Dim)> {
 
 /// Reads one limit.
 pub(super) fn read_limit(item: Item<'_>, known: &mut Known) -> Option<Limit> {
-    let mut fields = item.fields("a limit")?;
+    let mut fields = item.keyed(&keys::LIMIT)?;
     let name = fields.required("name", Item::line);
     let value = fields.required("value", |item| known.quantity(item));
     let least = fields.optional("at least", |item| known.quantity(item));
@@ -135,7 +136,7 @@ pub(super) fn read_limit(item: Item<'_>, known: &mut Known) -> Option<Limit> {
 
 /// Reads one condition of validity.
 pub(super) fn read_validity(item: Item<'_>, known: &mut Known) -> Option<Validity> {
-    let mut fields = item.fields("a condition")?;
+    let mut fields = item.keyed(&keys::CONDITION)?;
     let holds = fields.required("holds", |item| {
         known.formula(item, ["when(", ", 1, otherwise, 0)"])
     });

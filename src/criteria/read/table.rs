@@ -2,6 +2,7 @@
 
 use super::known::Known;
 use super::need::{check_quantity, read_stated};
+use crate::criteria::keys;
 use crate::criteria::sheet::{ABOVE, BySystem, CodeTable, Kind, RawRows, UP_TO};
 use crate::quantity::UnitSet;
 use crate::source::{Item, Told};
@@ -12,7 +13,7 @@ pub(super) fn read_table(
     item: Item<'_>,
     known: &mut Known,
 ) -> Option<CodeTable> {
-    let mut fields = item.fields("a table")?;
+    let mut fields = item.keyed(&keys::TABLE)?;
     let cited = fields.required("cited", Item::line);
     let of = fields
         .required("key", |item| item.word(&Kind::WORDS))

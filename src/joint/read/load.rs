@@ -2,7 +2,7 @@
 
 use super::value::{read_full_triple, read_triple, zero};
 use super::{check_distinct, unknown_name};
-use crate::joint::{Case, Level, LoadFrame, Loads, Triple};
+use crate::joint::{Case, Level, LoadFrame, Loads, Triple, keys};
 use crate::quantity::{Dim, UnitSet, real};
 use crate::source::{Diagnostic, Fields, Item, Told};
 
@@ -21,7 +21,7 @@ struct Usual {
 
 /// Reads `loads`.
 pub(super) fn read_loads(item: Item<'_>, set: UnitSet) -> Option<Loads> {
-    let mut fields = item.fields("`loads`")?;
+    let mut fields = item.keyed(&keys::LOADS)?;
     let at = fields
         .take("at")
         .map(|item| read_triple(item, Dim::LENGTH, set));
@@ -68,7 +68,7 @@ fn read_level(item: Item<'_>) -> Option<Told<Level>> {
 }
 
 fn read_case(item: Item<'_>, usual: &Usual, set: UnitSet) -> Option<Case> {
-    let mut fields = item.fields("a load case")?;
+    let mut fields = item.keyed(&keys::CASE)?;
     let name = fields.required("case", Item::line);
     let says = fields.optional("says", Item::text);
     let level = pick_level(&mut fields, usual);
@@ -188,7 +188,7 @@ fn pick_frame(item: Item<'_>, usual: &Usual) -> Option<LoadFrame> {
 }
 
 fn read_frame(name: &Told<String>, item: Item<'_>, set: UnitSet) -> Option<LoadFrame> {
-    let mut fields = item.fields("a frame")?;
+    let mut fields = item.keyed(&keys::LOAD_FRAME)?;
     let origin = fields.required("origin", |item| read_triple(item, Dim::LENGTH, set));
     let axes = ["x", "y", "z"]
         .map(|axis| fields.required(axis, |item| read_full_triple(item, Dim::NONE, set)));

@@ -18,10 +18,11 @@ pub use value::{read_quantity, read_triple};
 
 use look::look_of;
 
-use super::{FrameWords, Joint, Paper};
+use super::{FrameWords, Joint, Paper, keys};
 use crate::quantity::UnitSet;
 use crate::source::{
-    Diagnostic, FaultBag, Faults, Fields, Item, Node, SourceFile, Told, Value, parse_yaml, read_map,
+    Diagnostic, FaultBag, Faults, Fields, Item, Node, SourceFile, Told, Value, parse_yaml,
+    read_keyed,
 };
 use std::sync::Arc;
 
@@ -42,7 +43,7 @@ pub fn read_joint(file: &Arc<SourceFile>) -> Result<Joint, Faults> {
 /// All faults, ordered by file and place.
 pub fn read_joint_node(root: &Node) -> Result<Joint, Faults> {
     let faults = FaultBag::new();
-    let joint = read_map(root, "a joint file", &faults).and_then(read_root);
+    let joint = read_keyed(root, &keys::JOINT, &faults).and_then(read_root);
     Ok(faults.close(joint)?.0)
 }
 
@@ -127,7 +128,7 @@ fn usual_signatures(note: &Told<String>) -> Vec<Told<String>> {
 }
 
 fn read_units(item: Item<'_>) -> Option<Told<UnitSet>> {
-    let mut fields = item.fields("`units`")?;
+    let mut fields = item.keyed(&keys::UNITS)?;
     let force = fields.required("force", Item::raw);
     let length = fields.required("length", Item::raw);
     fields.finish();
@@ -153,7 +154,7 @@ fn read_units(item: Item<'_>) -> Option<Told<UnitSet>> {
 }
 
 fn read_frame(item: Item<'_>) -> Option<FrameWords> {
-    let mut fields = item.fields("`frame`")?;
+    let mut fields = item.keyed(&keys::FRAME)?;
     let origin = fields.required("origin", Item::line);
     let axes = ["x", "y", "z"].map(|axis| fields.optional(axis, Item::line));
     fields.finish();

@@ -1,7 +1,7 @@
 //! Parts, filler, checks, and the lists of words: assumptions, exclusions, changes.
 
 use super::value::{read_date, read_free, read_positive};
-use crate::joint::{Assumption, Change, CheckSpec, Exclusion, Filler, Part, RawQuantity};
+use crate::joint::{Assumption, Change, CheckSpec, Exclusion, Filler, Part, RawQuantity, keys};
 use crate::quantity::{Dim, UnitSet};
 use crate::source::{Fields, Item, Told, Value};
 
@@ -19,7 +19,7 @@ fn read_part(name: &Told<String>, item: Item<'_>, set: UnitSet) -> Option<Part> 
     if name.value.trim().is_empty() {
         return item.refuse("empty-value", "a part has an empty name");
     }
-    let mut fields = item.fields("a part")?;
+    let mut fields = item.keyed(&keys::PART)?;
     let material = fields.required("material", Item::line);
     let thickness = fields.optional("thickness", |item| read_positive(item, Dim::LENGTH, set));
     let f_y = fields.optional("f_y", |item| read_positive(item, Dim::STRESS, set));
@@ -42,7 +42,7 @@ fn read_part(name: &Told<String>, item: Item<'_>, set: UnitSet) -> Option<Part> 
 
 /// Reads `filler`.
 pub(super) fn read_filler(item: Item<'_>, set: UnitSet) -> Option<Filler> {
-    let mut fields = item.fields("`filler`")?;
+    let mut fields = item.keyed(&keys::FILLER)?;
     let name = fields.required("name", Item::line);
     let f_u = fields.optional("f_u", |item| read_positive(item, Dim::STRESS, set));
     let (source, to_be_verified) = read_standing(&mut fields);
@@ -69,7 +69,7 @@ pub(super) fn read_checks(item: Item<'_>) -> Option<Vec<CheckSpec>> {
 }
 
 fn read_check(item: Item<'_>) -> Option<CheckSpec> {
-    let mut fields = item.fields("a check")?;
+    let mut fields = item.keyed(&keys::CHECK)?;
     let clause = fields.required("clause", Item::line);
     let (source, to_be_verified) = read_standing(&mut fields);
     let values = read_more(&mut fields, Item::raw);
@@ -109,7 +109,7 @@ pub(super) fn read_assumption(item: Item<'_>) -> Option<Assumption> {
             to_be_verified: false,
         });
     }
-    let mut fields = item.fields("an assumption")?;
+    let mut fields = item.keyed(&keys::ASSUMPTION)?;
     if !fields.has("says") && item.is_text_with_colon() {
         return item.refuse_colon();
     }
@@ -124,7 +124,7 @@ pub(super) fn read_assumption(item: Item<'_>) -> Option<Assumption> {
 
 /// Reads an entry of `excluded`.
 pub(super) fn read_exclusion(item: Item<'_>) -> Option<Exclusion> {
-    let mut fields = item.fields("an exclusion")?;
+    let mut fields = item.keyed(&keys::EXCLUSION)?;
     let path = fields.required("path", Item::line);
     let by = fields.required("by", Item::line);
     fields.finish();
@@ -136,7 +136,7 @@ pub(super) fn read_exclusion(item: Item<'_>) -> Option<Exclusion> {
 
 /// Reads an entry of `changes`.
 pub(super) fn read_change(item: Item<'_>) -> Option<Change> {
-    let mut fields = item.fields("a change")?;
+    let mut fields = item.keyed(&keys::CHANGE)?;
     let revision = fields.required("revision", Item::line);
     let date = fields.required("date", read_date);
     let says = fields.required("says", Item::text);

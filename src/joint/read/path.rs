@@ -1,7 +1,7 @@
 //! The path of a run: one of `straight`, `arc`, `circle`, `polyline`.
 
 use super::value::{read_positive, read_quantity, read_triple, refuse_range};
-use crate::joint::{GivenAt, PathSpec, Triple};
+use crate::joint::{GivenAt, PathSpec, Triple, keys};
 use crate::quantity::{Dim, UnitSet};
 use crate::source::{Fields, Item};
 
@@ -118,7 +118,7 @@ fn is_short(a: &Triple, b: &Triple) -> bool {
 }
 
 fn read_arc(item: Item<'_>, set: UnitSet) -> Option<PathSpec> {
-    let mut fields = item.fields("`arc`")?;
+    let mut fields = item.keyed(&keys::ARC)?;
     let centre = fields.required("centre", |item| read_triple(item, Dim::LENGTH, set));
     let radius = fields.required("radius", |item| read_positive(item, Dim::LENGTH, set));
     let from = fields.required("from", |item| read_quantity(item, Dim::ANGLE, set));
@@ -157,7 +157,7 @@ fn read_sweep(item: Item<'_>, set: UnitSet) -> Option<GivenAt> {
 }
 
 fn read_circle(item: Item<'_>, set: UnitSet) -> Option<PathSpec> {
-    let mut fields = item.fields("`circle`")?;
+    let mut fields = item.keyed(&keys::CIRCLE)?;
     let centre = fields.required("centre", |item| read_triple(item, Dim::LENGTH, set));
     let radius = fields.required("radius", |item| read_positive(item, Dim::LENGTH, set));
     fields.finish();

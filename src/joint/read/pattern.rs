@@ -8,7 +8,7 @@ use super::Context;
 use super::size::read_toe;
 use super::value::{read_not_negative, read_positive, read_quantity, read_triple, zero};
 use super::weld::{Laid, Shared, Usual, pick_ends, pick_joins, pick_size};
-use crate::joint::{GivenAt, PathSpec, PatternSpec, RunSpec, Shape, ToeSpec, Triple};
+use crate::joint::{GivenAt, PathSpec, PatternSpec, RunSpec, Shape, ToeSpec, Triple, keys};
 use crate::quantity::{Dim, Given, real};
 use crate::source::{Diagnostic, FaultBag, Item, Place, Told};
 
@@ -35,7 +35,7 @@ pub(super) fn read_pattern(
     context: Context<'_>,
 ) -> Option<(PatternSpec, Vec<RunSpec>)> {
     let set = context.set;
-    let mut fields = item.fields("a pattern")?;
+    let mut fields = item.keyed(&keys::PATTERN)?;
     let shape = fields.required("shape", |item| item.word(&SHAPES));
     let lengths = ["width", "depth", "radius"].map(|key| {
         (

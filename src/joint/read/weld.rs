@@ -3,7 +3,7 @@
 use super::path::read_path;
 use super::value::{read_not_negative, read_positive, read_quantity, refuse_range};
 use super::{Context, check_distinct, pattern, size, unknown_name};
-use crate::joint::{EndSpec, GivenAt, RunSpec, SizeSpec, Stitch, ToeSpec, Triple, WeldSpec};
+use crate::joint::{EndSpec, GivenAt, RunSpec, SizeSpec, Stitch, ToeSpec, Triple, WeldSpec, keys};
 use crate::quantity::{Dim, Given, UnitSet};
 use crate::source::{Fields, Item, Place, Told, Value};
 
@@ -22,7 +22,7 @@ pub(super) struct Usual {
 
 /// Reads `weld`.
 pub(super) fn read_weld(item: Item<'_>, context: Context<'_>) -> Option<WeldSpec> {
-    let mut fields = item.fields("`weld`")?;
+    let mut fields = item.keyed(&keys::WELD)?;
     let usual = Usual {
         joins: fields.take("joins").map(|item| read_joins(item, context)),
         ends: read_ends(&mut fields),
@@ -65,7 +65,7 @@ pub(super) fn read_weld(item: Item<'_>, context: Context<'_>) -> Option<WeldSpec
 
 fn read_run(item: Item<'_>, usual: &Usual, context: Context<'_>) -> Option<RunSpec> {
     let set = context.set;
-    let mut fields = item.fields("a run")?;
+    let mut fields = item.keyed(&keys::RUN)?;
     let name = fields.required("name", Item::line);
     let path = read_path(&mut fields, set);
     let size = pick_size(&mut fields, usual, set);
@@ -172,7 +172,7 @@ fn read_between(item: Item<'_>, set: UnitSet) -> Option<GivenAt> {
 }
 
 fn read_penetration(item: Item<'_>, set: UnitSet) -> Option<(GivenAt, Told<String>)> {
-    let mut fields = item.fields("`penetration`")?;
+    let mut fields = item.keyed(&keys::PENETRATION)?;
     let extra = fields.required("extra", |item| read_positive(item, Dim::LENGTH, set));
     let record = fields.required("record", Item::line);
     fields.finish();
@@ -184,7 +184,7 @@ fn read_sides(item: Item<'_>, set: UnitSet) -> Option<Told<Option<Given>>> {
     if !matches!(item.node.value, Value::Map(_)) {
         return item.word(&[("both", ())]).map(|told| told.map(|()| None));
     }
-    let mut fields = item.fields("`sides`")?;
+    let mut fields = item.keyed(&keys::SIDES)?;
     let apart = fields.required("both apart by", |item| {
         read_positive(item, Dim::LENGTH, set)
     });
@@ -193,7 +193,7 @@ fn read_sides(item: Item<'_>, set: UnitSet) -> Option<Told<Option<Given>>> {
 }
 
 fn read_stitch(item: Item<'_>, set: UnitSet) -> Option<Stitch> {
-    let mut fields = item.fields("`stitch`")?;
+    let mut fields = item.keyed(&keys::STITCH)?;
     let bead = fields.required("bead", |item| read_positive(item, Dim::LENGTH, set));
     let pitch = fields.required("pitch", |item| read_positive(item, Dim::LENGTH, set));
     fields.finish();

@@ -98,6 +98,7 @@ fn sheets_are_refused_with_code_and_place() {
         ("formula: \"k*F/n\", says",          "formula: \"k*F/n\", kind: force, says", "formula-dimension", "\"k*F/n\""),
         ("kind: length, from: thinner",       "kind: force, from: thinner",        "wrong-kind",       "thinner.thickness"),
         ("thinner.thickness",                 "thinner.f_y",                       "unknown-word",     "thinner.f_y"),
+        ("from: thinner.thickness",           "from: []",                          "empty-list",       "[]"),
         ("from: thinner.thickness",           "from: thinner.thickness, default: {value: 3 mm, source: x}", "sheet-default", ""),
         ("from: check.n",                     "from: [clause, check.n], value: 1", "sheet-default",    ""),
         ("default: {value: 1.5, ",            "default: {",                        "missing-key",      ""),

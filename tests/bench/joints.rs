@@ -58,8 +58,9 @@ pub(super) fn stages() {
     let faces = SerifFaces::embedded().unwrap();
     let press = Press::new();
     let mut times: [Vec<f64>; 6] = Default::default();
-    for _ in 0..15 {
-        let file = file(0);
+    // A joint changed each time: the typesetter remembers what it has set as given.
+    for round in 0..15 {
+        let file = file(round);
         let mut clock = Clock::new(&mut times);
         let told = read_joint(&file).unwrap();
         let mut note = write_note(&Calculation::of(&told, built_in()).unwrap()).unwrap();

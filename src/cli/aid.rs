@@ -67,6 +67,7 @@ pub(super) fn explained(thing: &[String], joints: &Path, colour: bool) -> Said {
 pub(super) fn schema(of: SchemaOf) -> Said {
     said(published(match of {
         SchemaOf::Joint => SchemaKind::Joint,
+        SchemaOf::Project => SchemaKind::Project,
         SchemaOf::Sheet => SchemaKind::Sheet,
         SchemaOf::Trace => SchemaKind::Trace,
     }))

@@ -144,6 +144,8 @@ Examples:
 pub enum SchemaOf {
     /// A joint file.
     Joint,
+    /// A project file.
+    Project,
     /// A clause sheet.
     Sheet,
     /// The trace of a note.

@@ -7,7 +7,7 @@ pub mod keys;
 mod project;
 mod read;
 
-pub use project::{ProjectFile, read_project};
+pub use project::{ProjectFile, read_project, read_project_node};
 pub use read::{read_joint, read_joint_node, read_quantity, read_triple};
 
 use crate::quantity::{Given, UnitSet};

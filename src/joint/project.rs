@@ -36,12 +36,20 @@ pub struct ProjectFile {
 ///
 /// All faults of the file, in file order, whether a joint uses the entry or not.
 pub fn read_project(file: &Arc<SourceFile>) -> Result<ProjectFile, Faults> {
-    let root = parse_yaml(file)?;
+    read_project_node(parse_yaml(file)?)
+}
+
+/// Reads the tree of a project file.
+///
+/// # Errors
+///
+/// As [`read_project`].
+pub fn read_project_node(root: Node) -> Result<ProjectFile, Faults> {
     let faults = FaultBag::new();
     let units = check_project(&root, &faults);
     let (units, _) = faults.close(Some(units))?;
     Ok(ProjectFile {
-        file: file.clone(),
+        file: root.place.file.clone(),
         root,
         units,
     })

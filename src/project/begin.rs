@@ -130,6 +130,7 @@ fn files(start: &Start) -> Vec<(String, String)> {
         (format!("joints/{stem}.yaml"), joint(start, sizes)),
         ("joints/sheets/own-rule-1.yaml".to_owned(), sheet(sizes)),
         schema(SchemaKind::Joint),
+        schema(SchemaKind::Project),
         schema(SchemaKind::Sheet),
     ]
 }

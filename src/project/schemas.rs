@@ -1,7 +1,7 @@
 //! The schemas that the program publishes, for editors and for machines.
 
 use crate::criteria::{built_in, keys::SHEET};
-use crate::joint::keys::JOINT;
+use crate::joint::keys::{JOINT, PROJECT};
 use crate::note::TRACE_SCHEMA;
 use crate::source::schema;
 use serde_json::Value;
@@ -11,6 +11,8 @@ use serde_json::Value;
 pub enum SchemaKind {
     /// A joint file.
     Joint,
+    /// A project file.
+    Project,
     /// A clause sheet.
     Sheet,
     /// The trace of a note.
@@ -23,6 +25,7 @@ impl SchemaKind {
     pub const fn file_name(self) -> &'static str {
         match self {
             Self::Joint => "joint.schema.json",
+            Self::Project => "project.schema.json",
             Self::Sheet => "sheet.schema.json",
             Self::Trace => "trace.schema.json",
         }
@@ -34,6 +37,7 @@ impl SchemaKind {
 pub fn published(kind: SchemaKind) -> String {
     match kind {
         SchemaKind::Joint => pretty(&with_sheets(schema(&JOINT, "Seamnote joint file"))),
+        SchemaKind::Project => pretty(&with_sheets(schema(&PROJECT, "Seamnote project file"))),
         SchemaKind::Sheet => pretty(&schema(&SHEET, "Seamnote clause sheet")),
         SchemaKind::Trace => format!("{}\n", TRACE_SCHEMA.trim_end()),
     }

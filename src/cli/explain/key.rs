@@ -1,7 +1,7 @@
-//! Explains a key of a joint file or of a clause sheet, by its path or by its last word.
+//! Explains a key of a joint file, of a project file or of a clause sheet, by its path or by its last word.
 
 use crate::criteria::keys::SHEET;
-use crate::joint::keys::JOINT;
+use crate::joint::keys::{JOINT, PROJECT};
 use crate::source::{Choice, Form, Key, KeyTable, Sign};
 
 /// A key, the map that it stands in, and its path from the root of its file.
@@ -11,10 +11,11 @@ struct Stand {
     key: &'static Key,
 }
 
-/// Every key by its path; those of sheets begin with `sheet.`.
+/// Every key by its path; those of project files begin with `project.`, of sheets with `sheet.`.
 fn all() -> Vec<Stand> {
     let mut found = Vec::new();
     collect(&JOINT, "", &mut found);
+    collect(&PROJECT, "project.", &mut found);
     collect(&SHEET, "sheet.", &mut found);
     found
 }

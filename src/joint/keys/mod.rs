@@ -1,4 +1,4 @@
-//! The keys of the joint file: name, form, whether it must be there, a line of words, an example.
+//! The keys of the joint file and of the project file: name, form, whether it must be there, a line of words, an example.
 //!
 //! `read` asks for these and no others; README.md's table of keys says the same more briefly.
 
@@ -144,6 +144,84 @@ pub static JOINT: KeyTable = KeyTable::new(
             "signatures",
             TEXTS,
             "roles that sign; prepared, checked, approved if not told",
+            "[prepared, checked]",
+        ),
+    ],
+);
+
+/// Strengths of a material or a filler, by their names.
+const STRENGTHS: Form = Form::Named(&Form::Text, 0);
+
+/// The project file.
+pub static PROJECT: KeyTable = KeyTable::new(
+    "a project file",
+    "What the joints of a folder share; what a joint says itself wins",
+    &[
+        Key::may(
+            "units",
+            Form::Map(&UNITS),
+            "the units of joints that name none, and of bare numbers of this file",
+            "{force: N, length: mm}",
+        ),
+        Key::may(
+            "paper",
+            Form::Words(&["A4", "US Letter"]),
+            "size of the page of joints that name none",
+            "A4",
+        ),
+        Key::may(
+            "note prefix",
+            Form::Text,
+            "stands before the number of a note that is digits alone",
+            "SN-",
+        ),
+        Key::may("drawing", Form::Text, "drawing of the joints", "LM-2207"),
+        Key::may(
+            "item",
+            Form::Text,
+            "what the joints belong to",
+            "launch mast",
+        ),
+        Key::may(
+            "parts",
+            Form::Named(&Form::Map(&PART), 1),
+            "parts that a weld may join, by their names",
+            "{deck: {material: S355J2}}",
+        ),
+        Key::may(
+            "materials",
+            Form::Named(&STRENGTHS, 0),
+            "strengths of parts that give none, by the name of their material",
+            "{S355J2: {f_u: 470 MPa, source: certificate MC-12}}",
+        ),
+        Key::may(
+            "fillers",
+            Form::Named(&STRENGTHS, 0),
+            "fillers that a joint may name, with their strengths",
+            "{E70XX: {f_u: 70 ksi, source: WPS-12}}",
+        ),
+        Key::may(
+            "checks",
+            Form::List(&Form::Map(&CHECK), 1, ANY),
+            "the checks of joints that ask for none",
+            "[{clause: EN 1993-1-8 4.5.3.2}]",
+        ),
+        Key::may(
+            "assumptions",
+            Form::List(&Form::Either(&[Form::Text, Form::Map(&ASSUMPTION)]), 0, ANY),
+            "what all notes take for granted, before the joint's own",
+            "[The deck is stiff.]",
+        ),
+        Key::may(
+            "cautions",
+            TEXTS,
+            "cautions of all joints, before the joint's own",
+            "[Not for use below -20 °C.]",
+        ),
+        Key::may(
+            "signatures",
+            TEXTS,
+            "roles that sign the notes of joints that name none",
             "[prepared, checked]",
         ),
     ],

@@ -3,13 +3,13 @@
 use super::part;
 use super::read_units;
 use super::value::{read_free, read_positive};
-use crate::joint::Paper;
+use crate::joint::{Paper, keys};
 use crate::quantity::{Dim, UnitSet};
-use crate::source::{Diagnostic, FaultBag, Fields, Item, Node, Told, read_map};
+use crate::source::{Diagnostic, FaultBag, Fields, Item, Node, Told, read_keyed};
 
 /// Reads every entry for its faults alone; the printing set if the file names one.
 pub(in crate::joint) fn check_project(root: &Node, faults: &FaultBag) -> Option<UnitSet> {
-    let mut fields = read_map(root, "a project file", faults)?;
+    let mut fields = read_keyed(root, &keys::PROJECT, faults)?;
     let units = fields.optional("units", read_units).map(|told| told.value);
     let set = units.unwrap_or(UnitSet::NewtonMillimetre);
     fields.optional("paper", |item| {

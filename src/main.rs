@@ -9,11 +9,31 @@ use std::process::ExitCode;
 #[global_allocator]
 static ALLOCATOR: mimalloc::MiMalloc = mimalloc::MiMalloc;
 
+/// From this many joints on, a terminal shows how far the work is.
+const MANY: usize = 8;
+
 fn main() -> ExitCode {
     let arguments = Arguments::parse();
-    let said = run(&arguments, std::io::stderr().is_terminal());
+    let terminal = std::io::stderr().is_terminal();
+    let progress = |done, of| {
+        if terminal && of >= MANY {
+            show(done, of);
+        }
+    };
+    let said = run(&arguments, terminal, &progress);
     // A closed pipe is no fault of the work done.
     let _ = std::io::stdout().write_all(said.out.as_bytes());
     let _ = std::io::stderr().write_all(said.err.as_bytes());
     ExitCode::from(said.code)
+}
+
+/// Writes how far the work is over what stood in the line; after the last joint clears it.
+fn show(done: usize, of: usize) {
+    let line = if done < of {
+        format!("\r{done} of {of} joints")
+    } else {
+        "\r\x1b[K".to_owned()
+    };
+    // A terminal that went away is no fault of the work done.
+    let _ = std::io::stderr().write_all(line.as_bytes());
 }

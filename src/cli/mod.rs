@@ -10,7 +10,7 @@ mod work;
 
 pub use arguments::{Arguments, Command, SchemaOf};
 pub use explain::{FaultWords, explain, fault_words};
-pub use work::{Said, run};
+pub use work::{Progress, Said, run};
 
 /// Exit codes.
 pub mod exit {

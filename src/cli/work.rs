@@ -32,9 +32,12 @@ struct Outcome {
     holds: bool,
 }
 
+/// Told after each joint: how many are done, and of how many.
+pub type Progress<'a> = &'a (dyn Fn(usize, usize) + Sync);
+
 /// Carries out a command. `colour` is for faults on a terminal.
 #[must_use]
-pub fn run(arguments: &Arguments, colour: bool) -> Said {
+pub fn run(arguments: &Arguments, colour: bool, progress: Progress<'_>) -> Said {
     let (scope, job) = match &arguments.command {
         Command::Write { scope, out, only } => (
             scope,
@@ -56,7 +59,7 @@ pub fn run(arguments: &Arguments, colour: bool) -> Said {
         Command::Manual { command } => return aid::manual(command.as_deref()),
     };
     match prepare(&scope.paths) {
-        Ok((joints, folders)) => work(&joints, &folders, scope, &job, colour),
+        Ok((joints, folders)) => work(&joints, &folders, scope, &job, (colour, progress)),
         Err(fault) => Said {
             err: complaint(&fault, colour),
             code: exit::REFUSED,
@@ -128,7 +131,7 @@ fn work(
     folders: &Folders,
     scope: &ScopeArgs,
     job: &Job,
-    colour: bool,
+    (colour, progress): (bool, Progress<'_>),
 ) -> Said {
     let available = std::thread::available_parallelism().map_or(1, usize::from);
     let threads = scope
@@ -152,10 +155,11 @@ fn work(
                         break;
                     };
                     let result = guarded(joint, &folders[&joint.folder], job, workshop.as_ref());
-                    results
+                    let mut results = results
                         .lock()
-                        .expect("no worker panics while it holds the results")
-                        .insert(index, result);
+                        .expect("no worker panics while it holds the results");
+                    results.insert(index, result);
+                    progress(results.len(), joints.len());
                 }
             });
         }

@@ -201,7 +201,7 @@ fn program(folder: &Path, only: Option<&str>) {
         only.iter()
             .flat_map(|kinds| ["--only".into(), (*kinds).into()]),
     );
-    let said = run(&Arguments::parse_from(words), false);
+    let said = run(&Arguments::parse_from(words), false, &|_, _| ());
     assert_eq!(said.code, 0, "{}", said.err);
 }
 

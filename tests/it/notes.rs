@@ -417,7 +417,7 @@ fn written(threads: &str) -> Vec<(PathBuf, Vec<u8>)> {
         .map(std::ffi::OsString::from)
         .into_iter()
         .chain([out.path().into(), joints.into()]);
-    let said = run(&Arguments::parse_from(arguments), false);
+    let said = run(&Arguments::parse_from(arguments), false, &|_, _| ());
     assert_eq!(said.code, 0, "{}", said.err);
     let mut files = Vec::new();
     for folder in std::fs::read_dir(out.path()).unwrap() {
@@ -477,5 +477,28 @@ fn the_table_of_cases_has_every_case() {
             "{}: {governing:?} governs, but {least} is the least",
             joint.stem
         );
+    }
+}
+
+/// Each joint is told once, in rising order, whatever the threads.
+#[test]
+fn progress_counts_every_joint() {
+    let joints = crate::tidy::root().join("joints");
+    for threads in ["1", "2"] {
+        let told = std::sync::Mutex::new(Vec::new());
+        let words = [
+            "seamnote",
+            "vet",
+            joints.to_str().unwrap(),
+            "--threads",
+            threads,
+        ];
+        let said = run(&Arguments::parse_from(words), false, &|done, of| {
+            told.lock().unwrap().push((done, of));
+        });
+        assert_eq!((said.code, said.err.as_str()), (0, ""));
+        let of = demo().len();
+        let each: Vec<(usize, usize)> = (1..=of).map(|done| (done, of)).collect();
+        assert_eq!(told.into_inner().unwrap(), each, "{threads} threads");
     }
 }

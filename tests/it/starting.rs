@@ -11,7 +11,7 @@ use seamnote::source::Form;
 
 fn say(arguments: &[&str]) -> seamnote::cli::Said {
     let all = ["seamnote"].iter().chain(arguments);
-    run(&Arguments::try_parse_from(all).unwrap(), false)
+    run(&Arguments::try_parse_from(all).unwrap(), false, &|_, _| ())
 }
 
 /// Holds an explanation to its snapshot.

@@ -59,7 +59,7 @@ pub fn run(arguments: &Arguments, colour: bool, progress: Progress<'_>) -> Said 
         Command::Manual { command } => return aid::manual(command.as_deref()),
     };
     match prepare(&scope.paths) {
-        Ok((joints, folders)) => work(&joints, &folders, scope, &job, (colour, progress)),
+        Ok((joints, folders)) => work(&joints, &folders, scope, &job, colour, progress),
         Err(fault) => Said {
             err: complaint(&fault, colour),
             code: exit::REFUSED,
@@ -131,7 +131,8 @@ fn work(
     folders: &Folders,
     scope: &ScopeArgs,
     job: &Job,
-    (colour, progress): (bool, Progress<'_>),
+    colour: bool,
+    progress: Progress<'_>,
 ) -> Said {
     let available = std::thread::available_parallelism().map_or(1, usize::from);
     let threads = scope

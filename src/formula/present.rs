@@ -30,6 +30,22 @@ pub(super) struct Presenter<'a> {
 }
 
 impl<'a> Presenter<'a> {
+    fn new(ledger: &'a Ledger, env: &'a Env, text: &'a str, numbers: bool) -> Self {
+        let look = EntryLook {
+            ledger,
+            env,
+            printed: false,
+            shift: None,
+        };
+        Self {
+            look,
+            text,
+            numbers,
+            remarks: Vec::new(),
+            elided: false,
+        }
+    }
+
     /// The reading of a formula, in symbols or in numbers.
     pub(super) fn read(
         ledger: &'a Ledger,
@@ -38,19 +54,7 @@ impl<'a> Presenter<'a> {
         text: &'a str,
         numbers: bool,
     ) -> Reading {
-        let look = EntryLook {
-            ledger,
-            env,
-            printed: false,
-            shift: None,
-        };
-        let mut presenter = Self {
-            look,
-            text,
-            numbers,
-            remarks: Vec::new(),
-            elided: false,
-        };
+        let mut presenter = Self::new(ledger, env, text, numbers);
         let math = presenter.math(node, None, false);
         Reading {
             math: (!presenter.elided).then_some(math),
@@ -66,20 +70,7 @@ impl<'a> Presenter<'a> {
         text: &'a str,
         set: &str,
     ) -> Math {
-        let look = EntryLook {
-            ledger,
-            env,
-            printed: false,
-            shift: None,
-        };
-        let mut presenter = Self {
-            look,
-            text,
-            numbers: false,
-            remarks: Vec::new(),
-            elided: false,
-        };
-        presenter.math(node, Some((set, 0)), false)
+        Self::new(ledger, env, text, false).math(node, Some((set, 0)), false)
     }
 
     fn math(&mut self, node: &Node, member: Option<(&str, usize)>, inline: bool) -> Math {

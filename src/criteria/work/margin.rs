@@ -7,6 +7,14 @@ use crate::formula::{Bound, Draft, Env, Origin, Symbol, Value};
 use crate::quantity::Dim;
 use std::collections::BTreeMap;
 
+/// The demand as D and the capacity as R.
+fn against(demand: Value, capacity: Value) -> Env {
+    let mut env = Env::default();
+    env.bind("D", demand);
+    env.bind("R", capacity);
+    env
+}
+
 impl Desk<'_, '_> {
     pub(super) fn utilisation(
         &mut self,
@@ -14,9 +22,7 @@ impl Desk<'_, '_> {
         demand: Value,
         capacity: Value,
     ) -> Result<Value, WorkError> {
-        let mut env = Env::default();
-        env.bind("D", demand);
-        env.bind("R", capacity);
+        let env = against(demand, capacity);
         let strength = &self.sheet.checks[check];
         let is_one = matches!(&strength.capacity, Capacity::Number(_, number) if (number - 1.0).abs() < 1e-15);
         let draft = Draft {
@@ -38,9 +44,7 @@ impl Desk<'_, '_> {
         demand: Value,
         capacity: Value,
     ) -> Result<Value, WorkError> {
-        let mut env = Env::default();
-        env.bind("D", demand);
-        env.bind("R", capacity);
+        let env = against(demand, capacity);
         self.margin_step(check, "R/D - 1", &env)
     }
 

@@ -20,6 +20,10 @@ const MOMENT: Form = Form::Quantity("moment", Sign::Any);
 const POINT: Form = Form::List(&LENGTH, 2, 3);
 const AXIS: Form = Form::List(&NUMBER, 3, 3);
 const TEXTS: Form = Form::List(&Form::Text, 0, ANY);
+const PAPER: Form = Form::Words(&["A4", "US Letter"]);
+const PARTS: Form = Form::Named(&Form::Map(&PART), 1);
+const CHECKS: Form = Form::List(&Form::Map(&CHECK), 1, ANY);
+const ASSUMPTIONS: Form = Form::List(&Form::Either(&[Form::Text, Form::Map(&ASSUMPTION)]), 0, ANY);
 const LEVEL: Form = Form::Words(&["service", "factored", "limit", "ultimate"]);
 
 const SOURCE: Key = Key::may(
@@ -74,12 +78,7 @@ pub static JOINT: KeyTable = KeyTable::new(
             "the units that the note is printed in",
             "{force: N, length: mm}",
         ),
-        Key::may(
-            "paper",
-            Form::Words(&["A4", "US Letter"]),
-            "size of the page; A4 if not told",
-            "A4",
-        ),
+        Key::may("paper", PAPER, "size of the page; A4 if not told", "A4"),
         Key::must(
             "frame",
             Form::Map(&FRAME),
@@ -88,7 +87,7 @@ pub static JOINT: KeyTable = KeyTable::new(
         ),
         Key::may(
             "parts",
-            Form::Named(&Form::Map(&PART), 1),
+            PARTS,
             "the parts joined, by their names",
             "{lug: {material: S355J2}, deck: {material: S355J2}}",
         ),
@@ -112,13 +111,13 @@ pub static JOINT: KeyTable = KeyTable::new(
         ),
         Key::may(
             "checks",
-            Form::List(&Form::Map(&CHECK), 1, ANY),
+            CHECKS,
             "the checks asked for",
             "[{clause: EN 1993-1-8 4.5.3.2}]",
         ),
         Key::may(
             "assumptions",
-            Form::List(&Form::Either(&[Form::Text, Form::Map(&ASSUMPTION)]), 0, ANY),
+            ASSUMPTIONS,
             "what the note takes for granted",
             "[The deck is stiff against the lug.]",
         ),
@@ -165,7 +164,7 @@ pub static PROJECT: KeyTable = KeyTable::new(
         ),
         Key::may(
             "paper",
-            Form::Words(&["A4", "US Letter"]),
+            PAPER,
             "size of the page of joints that name none",
             "A4",
         ),
@@ -184,7 +183,7 @@ pub static PROJECT: KeyTable = KeyTable::new(
         ),
         Key::may(
             "parts",
-            Form::Named(&Form::Map(&PART), 1),
+            PARTS,
             "parts that a weld may join, by their names",
             "{deck: {material: S355J2}}",
         ),
@@ -202,13 +201,13 @@ pub static PROJECT: KeyTable = KeyTable::new(
         ),
         Key::may(
             "checks",
-            Form::List(&Form::Map(&CHECK), 1, ANY),
+            CHECKS,
             "the checks of joints that ask for none",
             "[{clause: EN 1993-1-8 4.5.3.2}]",
         ),
         Key::may(
             "assumptions",
-            Form::List(&Form::Either(&[Form::Text, Form::Map(&ASSUMPTION)]), 0, ANY),
+            ASSUMPTIONS,
             "what all notes take for granted, before the joint's own",
             "[The deck is stiff.]",
         ),

@@ -98,7 +98,7 @@ fn atom(name: &str) -> Option<Vec<Part>> {
             power: 1,
         }]
     };
-    let stress = |newton: f64, mm: f64| {
+    let force_by_length = |newton: f64, mm: f64, power| {
         vec![
             Part {
                 base: Base::Force(newton),
@@ -106,22 +106,12 @@ fn atom(name: &str) -> Option<Vec<Part>> {
             },
             Part {
                 base: Base::Length(mm),
-                power: -2,
+                power,
             },
         ]
     };
-    let moment = |newton: f64, mm: f64| {
-        vec![
-            Part {
-                base: Base::Force(newton),
-                power: 1,
-            },
-            Part {
-                base: Base::Length(mm),
-                power: 1,
-            },
-        ]
-    };
+    let stress = |newton, mm| force_by_length(newton, mm, -2);
+    let moment = |newton, mm| force_by_length(newton, mm, 1);
     Some(match name {
         "N" => force(1.0),
         "daN" => force(10.0),

@@ -51,16 +51,16 @@ pub struct FormulaError {
 /// What can be wrong with a formula.
 #[derive(Clone, PartialEq, Debug, Error)]
 pub enum Problem {
-    /// A character that cannot stand there.
-    #[error("`{0}` cannot stand here")]
-    Unexpected(String),
+    /// A character that cannot stand there, or the end.
+    #[error("{}", .0.as_ref().map_or("a value is needed at the end".to_owned(), |found| format!("`{found}` cannot stand here")))]
+    Unexpected(Option<String>),
     /// A mark that is missing.
-    #[error("`{wanted}` is needed here, not `{found}`")]
+    #[error("{wanted} is needed {}", found.as_ref().map_or("at the end".to_owned(), |found| format!("here, not `{found}`")))]
     Wanted {
-        /// What is needed.
-        wanted: &'static str,
-        /// What was found.
-        found: String,
+        /// What is needed, as `)` or in words.
+        wanted: String,
+        /// What was found; nothing at the end.
+        found: Option<String>,
     },
     /// A number that does not parse.
     #[error("`{0}` is not a number")]

@@ -63,11 +63,8 @@ impl<'a> Parser<'a> {
         self.rest().chars().next().map_or(0, char::len_utf8)
     }
 
-    fn next_text(&self) -> String {
-        self.rest()
-            .chars()
-            .next()
-            .map_or_else(|| "the end".to_owned(), String::from)
+    fn next_text(&self) -> Option<String> {
+        self.rest().chars().next().map(String::from)
     }
 
     fn skip_space(&mut self) {
@@ -88,7 +85,7 @@ impl<'a> Parser<'a> {
             return Ok(());
         }
         let problem = Problem::Wanted {
-            wanted: mark,
+            wanted: format!("`{mark}`"),
             found: self.next_text(),
         };
         Err(self.fault(self.at..self.at + self.char_len(), problem))
@@ -373,7 +370,7 @@ impl<'a> Parser<'a> {
             Relation::Greater
         } else {
             let problem = Problem::Wanted {
-                wanted: "<, <=, > or >=",
+                wanted: "one of `<`, `<=`, `>`, `>=`".to_owned(),
                 found: self.next_text(),
             };
             return Err(self.fault(self.at..self.at + self.char_len(), problem));

@@ -223,13 +223,6 @@ impl FaultBag {
         None
     }
 
-    /// Takes a fault back that a later one explains better.
-    pub(super) fn withdraw(&self, code: &str, message: &str, place: &Place) {
-        self.0.borrow_mut().retain(|fault| {
-            fault.code != code || fault.message != message || fault.place != *place
-        });
-    }
-
     /// Whether a fault in the bag refuses the file.
     #[must_use]
     pub fn has_errors(&self) -> bool {

@@ -11,13 +11,18 @@ use super::{Diagnostic, FaultBag, Item, KeyTable, Node, Place, Told};
 /// # Examples
 ///
 /// ```
-/// use seamnote::source::{FaultBag, Item, SourceFile, parse_yaml, read_map};
+/// use seamnote::source::{FaultBag, Form, Item, Key, KeyTable, SourceFile, parse_yaml, read_keyed};
 /// use std::sync::Arc;
 ///
+/// static SHEET: KeyTable = KeyTable::new("a sheet", "What a sheet holds", &[
+///     Key::must("name", Form::Text, "its name", "WPS-31"),
+///     Key::may("size", Form::Text, "a number", "6"),
+///     Key::may("table", Form::Named(&Form::Text, 0), "numbers by their names", "{a: 1}"),
+/// ]);
 /// let text = "name: WPS-31\nsize: 6\ntable: {a: 1, b: 2}\n".to_owned();
 /// let root = parse_yaml(&Arc::new(SourceFile { name: "x.yaml".into(), text })).expect("it is YAML");
 /// let faults = FaultBag::new();
-/// let mut fields = read_map(&root, "a sheet", &faults).expect("it is a map");
+/// let mut fields = read_keyed(&root, &SHEET, &faults).expect("it is a map");
 /// let name = fields.required("name", Item::line).expect("it is there");
 /// let size = fields.optional("size", Item::number);
 /// let table = fields.optional("table", |item| item.entries(|key, value| Some((key.value.clone(), value.number()?.value))));
@@ -30,37 +35,27 @@ use super::{Diagnostic, FaultBag, Item, KeyTable, Node, Place, Told};
 #[must_use = "`finish` refuses unknown keys"]
 #[derive(Debug)]
 pub struct Fields<'a> {
-    what: &'static str,
-    table: Option<&'static KeyTable>,
+    table: &'static KeyTable,
     entries: &'a [(Told<String>, Node)],
     taken: Vec<bool>,
-    known: Vec<&'static str>,
     place: &'a Place,
     faults: &'a FaultBag,
 }
 
 impl<'a> Fields<'a> {
     pub(super) fn new(
-        what: &'static str,
+        table: &'static KeyTable,
         entries: &'a [(Told<String>, Node)],
         place: &'a Place,
         faults: &'a FaultBag,
     ) -> Self {
         Self {
-            what,
-            table: None,
+            table,
             entries,
             taken: vec![false; entries.len()],
-            known: Vec::new(),
             place,
             faults,
         }
-    }
-
-    /// The same reader, held to a table of keys.
-    pub(super) fn with_table(mut self, table: &'static KeyTable) -> Self {
-        self.table = Some(table);
-        self
     }
 
     /// Where the map stands.
@@ -107,18 +102,13 @@ impl<'a> Fields<'a> {
     ///
     /// # Panics
     ///
-    /// If the map has a table of keys and this is none of them: a mistake of the reader.
+    /// If the table of keys lacks this one: a mistake of the reader.
     pub fn take(&mut self, key: &'static str) -> Option<Item<'a>> {
-        if let Some(table) = self.table {
-            assert!(
-                table.find(key).is_some(),
-                "the table of {} lacks the key `{key}` that its reader asks for",
-                self.what
-            );
-        }
-        if !self.known.contains(&key) {
-            self.known.push(key);
-        }
+        assert!(
+            self.table.find(key).is_some(),
+            "the table of {} lacks the key `{key}` that its reader asks for",
+            self.table.what
+        );
         let at = self
             .entries
             .iter()
@@ -139,12 +129,55 @@ impl<'a> Fields<'a> {
     ) -> Option<T> {
         match self.take(key) {
             Some(item) => read(item),
-            None => self.faults.refuse(Diagnostic::error(
-                "missing-key",
-                self.needs(key),
-                self.place,
-            )),
+            None => {
+                let message = format!("{} needs `{key}`", self.table.what);
+                let example = self.table.find(key).map_or("...", |key| key.example);
+                let help = format!("write `{key}: {example}`, with your own value");
+                self.lacks("missing-key", &[key], message, Some(&help))
+            }
         }
+    }
+
+    /// Whether a key that the map does not take was meant for one of these, which then need not be missed.
+    #[must_use]
+    pub fn misspells(&self, keys: &[&str]) -> bool {
+        let mut strangers = self.entries.iter().zip(&self.taken);
+        strangers.any(|((typed, _), taken)| {
+            let strange = !taken && self.table.find(&typed.value).is_none();
+            let meant = || self.meant(&typed.value);
+            strange && meant().is_some_and(|meant| keys.contains(&meant))
+        })
+    }
+
+    /// Leaves a fault at the map for the lack of one of some keys, if none of them is misspelt.
+    pub fn lacks<T>(
+        &self,
+        code: &'static str,
+        keys: &[&str],
+        message: impl Into<String>,
+        help: Option<&str>,
+    ) -> Option<T> {
+        if self.misspells(keys) {
+            return None;
+        }
+        let mut fault = Diagnostic::error(code, message, self.place);
+        fault.help.extend(help.map(str::to_owned));
+        self.faults.refuse(fault)
+    }
+
+    /// Refuses a key that belongs elsewhere, in words of its own, if the file has it.
+    pub fn astray(&mut self, code: &'static str, key: &str, help: &str) {
+        let Some(at) = self
+            .entries
+            .iter()
+            .position(|(known, _)| known.value == key)
+        else {
+            return;
+        };
+        self.taken[at] = true;
+        let message = format!("{} takes no `{key}`", self.table.what);
+        let fault = Diagnostic::error(code, message, &self.entries[at].1.place);
+        self.faults.push(fault.help(help));
     }
 
     /// Reads a key that may be left out; `None` if it is, or after a fault.
@@ -171,20 +204,16 @@ impl<'a> Fields<'a> {
     pub fn free(&mut self) -> Vec<(&'a Told<String>, Item<'a>)> {
         let mut free = Vec::new();
         for (at, (key, node)) in self.entries.iter().enumerate() {
-            if std::mem::replace(&mut self.taken[at], true) {
+            if self.taken[at] || self.meant(&key.value).is_some() {
                 continue;
             }
-            match self.slip(&key.value) {
-                Some(meant) => self.faults.push(self.unknown(key, node, Some(meant))),
-                None => free.push((
-                    key,
-                    Item {
-                        name: &key.value,
-                        node,
-                        faults: self.faults,
-                    },
-                )),
-            }
+            self.taken[at] = true;
+            let item = Item {
+                name: &key.value,
+                node,
+                faults: self.faults,
+            };
+            free.push((key, item));
         }
         free
     }
@@ -193,36 +222,37 @@ impl<'a> Fields<'a> {
     pub fn finish(self) {
         for (taken, (key, node)) in self.taken.iter().zip(self.entries) {
             if !taken {
-                self.faults
-                    .push(self.unknown(key, node, nearest_of(&key.value, &self.known)));
+                self.faults.push(self.unknown(key, node));
             }
         }
     }
 
-    fn needs(&self, key: &str) -> String {
-        format!("{} needs `{key}`", self.what)
-    }
-
-    /// The fault of a key that is not taken; it also stands for the missing key it was meant for.
-    fn unknown(&self, key: &Told<String>, node: &Node, meant: Option<&str>) -> Diagnostic {
-        let message = format!("`{}` is no key of {}", key.value, self.what);
+    fn unknown(&self, key: &Told<String>, node: &Node) -> Diagnostic {
+        let message = format!("`{}` is no key of {}", key.value, self.table.what);
         let mut fault = Diagnostic::error("unknown-key", message, &key.place);
-        if let Some(meant) = meant {
-            self.faults
-                .withdraw("missing-key", &self.needs(meant), self.place);
+        if let Some(meant) = self.meant(&key.value) {
             fault = fault.help(format!("did you mean `{meant}`?"));
         }
         if node.value == super::Value::Null {
             fault = fault.help("if it is part of a text: a comma inside `{ }` ends a text, so quote the whole text");
         }
-        fault.help(format!("allowed here: {}", listed(&self.known)))
+        fault.help(format!("allowed here: {}", listed(&self.names())))
     }
 
-    /// The known key that a free one was meant for: the same but for case, `_` and spaces, or
-    /// one or two slips away from a long word. Short symbols may differ by a letter (`f_y`, `f_t`).
-    fn slip(&self, typed: &str) -> Option<&'static str> {
+    fn names(&self) -> Vec<&'static str> {
+        self.table.keys.iter().map(|key| key.name).collect()
+    }
+
+    /// The known key that a key of no table was meant for.
+    ///
+    /// Where any key may stand: the same but for case, `_` and spaces, or one or two slips away
+    /// from a long word. Short symbols may differ by a letter (`f_y`, `f_t`).
+    fn meant(&self, typed: &str) -> Option<&'static str> {
+        if self.table.free.is_none() {
+            return nearest_of(typed, &self.names());
+        }
         let bare = |word: &str| word.replace(['_', ' ', '-'], "").to_lowercase();
-        let absent = self.known.iter().copied().filter(|key| !self.has(key));
+        let absent = self.names().into_iter().filter(|key| !self.has(key));
         let long: Vec<&'static str> = absent.clone().filter(|key| key.len() > 4).collect();
         absent
             .into_iter()

@@ -52,13 +52,14 @@ impl<'a> Item<'a> {
             )),
             Value::Null => self.empty(),
             Value::Map(_) if self.is_text_with_colon() => self.refuse_colon(),
-            Value::List(_) | Value::Map(_) => self.refuse(
+            Value::List(_) | Value::Map(_) => self.refuse_with(
                 "not-a-scalar",
                 format!(
                     "`{}` is {}, but must be a single value",
                     self.name,
                     self.node.word()
                 ),
+                "write one value without brackets; quote a text that starts with `[` or `{`",
             ),
         }
     }
@@ -100,7 +101,8 @@ impl<'a> Item<'a> {
     pub fn line(self) -> Option<Told<String>> {
         let text = self.text()?;
         if text.value.contains('\n') {
-            return self.refuse("line-break", format!("`{}` must be one line", self.name));
+            let message = format!("`{}` must be one line", self.name);
+            return self.refuse_with("line-break", message, "write it without a line break");
         }
         Some(text)
     }
@@ -208,15 +210,10 @@ impl<'a> Item<'a> {
         all.into_iter().collect()
     }
 
-    /// A reader of a map with known keys; `what` names the thing, such as `a run`.
-    pub fn fields(self, what: &'static str) -> Option<Fields<'a>> {
-        let entries = self.map()?;
-        Some(Fields::new(what, entries, self.place(), self.faults))
-    }
-
     /// A reader of a map whose keys a table declares.
     pub fn keyed(self, table: &'static KeyTable) -> Option<Fields<'a>> {
-        Some(self.fields(table.what)?.with_table(table))
+        let entries = self.map()?;
+        Some(Fields::new(table, entries, self.place(), self.faults))
     }
 
     fn map(self) -> Option<&'a [(Told<String>, Node)]> {
@@ -279,10 +276,10 @@ impl<'a> Item<'a> {
     }
 }
 
-/// Reads the root of a file as a map with known keys.
-pub fn read_map<'a>(
+/// Reads the root of a file as a map whose keys a table declares.
+pub fn read_keyed<'a>(
     node: &'a Node,
-    what: &'static str,
+    table: &'static KeyTable,
     faults: &'a FaultBag,
 ) -> Option<Fields<'a>> {
     Item {
@@ -290,16 +287,7 @@ pub fn read_map<'a>(
         node,
         faults,
     }
-    .fields(what)
-}
-
-/// Reads the root of a file as a map whose keys a table declares.
-pub fn read_keyed<'a>(
-    node: &'a Node,
-    table: &'static KeyTable,
-    faults: &'a FaultBag,
-) -> Option<Fields<'a>> {
-    Some(read_map(node, table.what, faults)?.with_table(table))
+    .keyed(table)
 }
 
 /// The known word that a typed one was most likely meant for.

@@ -13,7 +13,7 @@ mod yaml;
 
 pub use diag::{Diagnostic, FaultBag, Faults, Severity, one_line};
 pub use fields::Fields;
-pub use item::{Item, nearest_of, read_keyed, read_map};
+pub use item::{Item, nearest_of, read_keyed};
 pub use keys::{Choice, Form, Key, KeyTable, Sign};
 pub use schema::schema;
 pub use yaml::{Node, Value, parse_yaml};

@@ -269,13 +269,13 @@ fn wrong_dimensions_are_refused_with_place_and_both_dimensions() {
 fn faults_of_syntax_say_what_is_needed() {
     #[rustfmt::skip]
     let rows = [
-        ("(a + b",     "`)` is needed here, not `the end`"),
-        ("a +",        "`the end` cannot stand here"),
+        ("(a + b",     "`)` is needed at the end"),
+        ("a +",        "a value is needed at the end"),
         ("a $ b",      "`$` cannot stand here"),
         ("min(a)",     "`min` takes two operands or more"),
         ("log(a)",     "`log` is not a function; there are sqrt, sin, cos, tan, abs, atan2, min, max, sum, lookup, when"),
         ("17 parsec",  "`parsec` is not a unit"),
-        ("when(a, b)", "`<, <=, > or >=` is needed here, not `,`"),
+        ("when(a, b)", "one of `<`, `<=`, `>`, `>=` is needed here, not `,`"),
     ];
     for (formula, text) in rows {
         let fault = seamnote::formula::parse(formula).unwrap_err().to_string();

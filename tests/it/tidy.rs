@@ -340,11 +340,14 @@ fn each_test_file_is_part_of_the_test_crate() {
 }
 
 /// What of a module's text gives a fault its code.
-const CODE_TAKERS: [&str; 7] = [
+const CODE_TAKERS: [&str; 10] = [
     "Diagnostic::error(",
     "Diagnostic::warning(",
     ".refuse(",
     ".refuse_with(",
+    ".lacks(",
+    ".lacks::<()>(",
+    ".astray(",
     ".fault(",
     "unknown_name(",
     "refuse_choice(",

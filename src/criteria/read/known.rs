@@ -150,7 +150,15 @@ impl Known {
                 self.mark_used(&node);
                 Some((told, text, node, dim))
             }
-            Err(error) => item.faults.refuse(fault(&error, &told, wrap[0].len())),
+            Err(mut error) => {
+                // What is wrapped around the user's text is none of it.
+                if let Problem::Wanted { found, .. } = &mut error.problem
+                    && error.span.start >= wrap[0].len() + told.value.len()
+                {
+                    *found = None;
+                }
+                item.faults.refuse(fault(&error, &told, wrap[0].len()))
+            }
         }
     }
 

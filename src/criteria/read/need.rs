@@ -44,6 +44,13 @@ pub(super) fn read_need(key: &Told<String>, item: Item<'_>, known: &mut Known) -
         (false, true) => fields.required("default", |item| read_default(item, kind)),
         (false, false) => None,
     };
+    if !is_clause {
+        let help =
+            "a value stands beside `from: clause`; else write `default: {value: ..., source: ...}`";
+        for key in ["value", "inch", "metric"] {
+            fields.astray("not-taken", key, help);
+        }
+    }
     let least = fields.optional("least", |item| read_bound(item, kind));
     let most = fields.optional("most", |item| read_bound(item, kind));
     let grade = fields
@@ -187,10 +194,11 @@ fn read_variants(fields: &mut Fields<'_>, kind: Option<Kind>) -> Option<BySystem
     let has_system = fields.has("inch") || fields.has("metric");
     if has_one == has_system {
         let help = "write `value: ...`, or `inch: ...` and `metric: ...`";
-        return fields.refuse(
+        return fields.lacks(
             "missing-key",
+            &["value", "inch", "metric"],
             "a value stated for both systems of units, or one for each, is needed",
-            help,
+            Some(help),
         );
     }
     Some(BySystem {

@@ -102,14 +102,19 @@ pub(super) fn read_limit(item: Item<'_>, known: &mut Known) -> Option<Limit> {
     let least = fields.optional("at least", |item| known.quantity(item));
     let most = fields.optional("at most", |item| known.quantity(item));
     let says = fields.required("says", Item::text);
-    if fields.has("at least") == fields.has("at most") {
-        return fields.refuse(
+    let one = fields.has("at least") != fields.has("at most");
+    if !one {
+        fields.lacks::<()>(
             "missing-key",
+            &["at least", "at most"],
             "a limit needs one bound",
-            "write `at least: NAME` or `at most: NAME`",
+            Some("write `at least: NAME` or `at most: NAME`"),
         );
     }
     fields.finish();
+    if !one {
+        return None;
+    }
     let side = if least.is_some() {
         Side::AtLeast
     } else {

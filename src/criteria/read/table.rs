@@ -33,15 +33,19 @@ pub(super) fn read_table(
     let both = fields.optional("rows", read(None));
     let inch = fields.optional("inch", read(Some(UnitSet::KipInch)));
     let metric = fields.optional("metric", read(Some(UnitSet::NewtonMillimetre)));
-    if fields.has("rows") == (fields.has("inch") || fields.has("metric")) {
-        let help = "write `rows:`, or `inch:` and `metric:`";
-        return fields.refuse(
+    let one = fields.has("rows") != (fields.has("inch") || fields.has("metric"));
+    if !one {
+        fields.lacks::<()>(
             "missing-key",
+            &["rows", "inch", "metric"],
             "rows for both systems of units, or rows for each, are needed",
-            help,
+            Some("write `rows:`, or `inch:` and `metric:`"),
         );
     }
     fields.finish();
+    if !one {
+        return None;
+    }
     let rows = BySystem {
         inch: both.clone().or(inch),
         metric: both.or(metric),

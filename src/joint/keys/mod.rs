@@ -38,6 +38,7 @@ const TO_BE_VERIFIED: Key = Key::may(
     "whether this is an open item",
     "true",
 );
+const F_Y: Key = Key::may("f_y", STRENGTH, "yield strength", "355 MPa");
 const F_U: Key = Key::may("f_u", STRENGTH, "ultimate strength", "470 MPa");
 
 /// The joint file.
@@ -148,9 +149,6 @@ pub static JOINT: KeyTable = KeyTable::new(
     ],
 );
 
-/// Strengths of a material or a filler, by their names.
-const STRENGTHS: Form = Form::Named(&Form::Text, 0);
-
 /// The project file.
 pub static PROJECT: KeyTable = KeyTable::new(
     "a project file",
@@ -189,13 +187,13 @@ pub static PROJECT: KeyTable = KeyTable::new(
         ),
         Key::may(
             "materials",
-            Form::Named(&STRENGTHS, 0),
+            Form::Named(&Form::Map(&MATERIAL), 0),
             "strengths of parts that give none, by the name of their material",
             "{S355J2: {f_u: 470 MPa, source: certificate MC-12}}",
         ),
         Key::may(
             "fillers",
-            Form::Named(&STRENGTHS, 0),
+            Form::Named(&Form::Map(&SHARED_FILLER), 0),
             "fillers that a joint may name, with their strengths",
             "{E70XX: {f_u: 70 ksi, source: WPS-12}}",
         ),
@@ -225,6 +223,22 @@ pub static PROJECT: KeyTable = KeyTable::new(
         ),
     ],
 );
+
+/// An entry of `materials`; free keys are further strengths by their names.
+pub static MATERIAL: KeyTable = KeyTable::new(
+    "a material",
+    "Strengths of a material; any further one stands by its name, such as `F_su`",
+    &[F_Y, F_U, SOURCE, TO_BE_VERIFIED],
+)
+.with_free(Form::Text);
+
+/// An entry of `fillers`; free keys are further strengths by their names.
+pub static SHARED_FILLER: KeyTable = KeyTable::new(
+    "a filler",
+    "Strengths of a filler; any further one stands by its name, such as `F_allow`",
+    &[F_U, SOURCE, TO_BE_VERIFIED],
+)
+.with_free(Form::Text);
 
 /// `units`.
 pub static UNITS: KeyTable = KeyTable::new(
@@ -270,7 +284,7 @@ pub static PART: KeyTable = KeyTable::new(
     &[
         Key::must("material", Form::Text, "material as named", "S355J2"),
         Key::may("thickness", SIZE, "thickness at the weld", "10 mm"),
-        Key::may("f_y", STRENGTH, "yield strength", "355 MPa"),
+        F_Y,
         F_U,
         SOURCE,
         TO_BE_VERIFIED,

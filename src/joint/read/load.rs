@@ -16,7 +16,7 @@ struct Usual {
     level: Option<Option<Told<Level>>>,
     frames: Vec<LoadFrame>,
     /// Names of all frames, faulty ones too.
-    names: Vec<String>,
+    names: Vec<Told<String>>,
 }
 
 /// Reads `loads`.
@@ -30,9 +30,10 @@ pub(super) fn read_loads(item: Item<'_>, set: UnitSet) -> Option<Loads> {
     let mut frames = Vec::new();
     if let Some(item) = fields.take("frames") {
         let read = item.entries(|name, frame| {
-            names.push(name.value.clone());
+            names.push(name.clone());
             Some(read_frame(name, frame, set))
         });
+        check_distinct(names.iter(), "frames", item.faults);
         frames = read.unwrap_or_default().into_iter().flatten().collect();
     }
     let usual = Usual {
@@ -80,11 +81,9 @@ fn read_case(item: Item<'_>, usual: &Usual, set: UnitSet) -> Option<Case> {
     let (force, moment) = match told {
         (false, false) => {
             let message = "the case has neither `force` nor `moment`";
-            fields.refuse(
-                "missing-load",
-                message,
-                "write one of them, with zeros if it is a case of no load",
-            )?
+            let help = "write one of them, with zeros if it is a case of no load";
+            fields.lacks::<()>("missing-load", &["force", "moment"], message, Some(help));
+            (None, None)
         }
         (true, true) => (force, moment),
         (true, false) => fill(force, Dim::MOMENT),
@@ -127,10 +126,11 @@ fn pick_level(fields: &mut Fields<'_>, usual: &Usual) -> Option<Told<Level>> {
         .or_else(|| usual.level.clone())
     {
         Some(level) => level,
-        None => fields.refuse(
+        None => fields.lacks(
             "missing-level",
+            &["level"],
             "the case has no `level`, and none is told for all cases",
-            "write `level: service`, `factored`, `limit` or `ultimate`",
+            Some("write `level: service`, `factored`, `limit` or `ultimate`"),
         ),
     }
 }
@@ -157,16 +157,20 @@ fn pick_point(
         });
     }
     if has_frame {
-        return fields.refuse(
+        return fields.lacks(
             "missing-point",
+            &["at"],
             "a case in a frame of its own needs its own `at`",
-            "write `at: [x, y, z]` in that frame; the `at` of all cases is in the joint frame",
+            Some(
+                "write `at: [x, y, z]` in that frame; the `at` of all cases is in the joint frame",
+            ),
         );
     }
-    fields.refuse(
+    fields.lacks(
         "missing-point",
+        &["at"],
         "the force has no point of application",
-        "write `at: [x, y, z]` in the case, or beside `cases` for all",
+        Some("write `at: [x, y, z]` in the case, or beside `cases` for all"),
     )
 }
 
@@ -179,7 +183,7 @@ fn pick_frame(item: Item<'_>, usual: &Usual) -> Option<LoadFrame> {
     {
         return Some(frame.clone());
     }
-    let known: Vec<&str> = usual.names.iter().map(String::as_str).collect();
+    let known: Vec<&str> = usual.names.iter().map(|name| name.value.as_str()).collect();
     if known.contains(&name.value.as_str()) {
         return None;
     }

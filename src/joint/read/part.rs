@@ -1,5 +1,6 @@
 //! Parts, filler, checks, and the lists of words: assumptions, exclusions, changes.
 
+use super::check_distinct;
 use super::value::{read_date, read_free, read_positive};
 use crate::joint::{Assumption, Change, CheckSpec, Exclusion, Filler, Part, RawQuantity, keys};
 use crate::quantity::{Dim, UnitSet};
@@ -7,7 +8,13 @@ use crate::source::{Fields, Item, Told, Value};
 
 /// Reads `parts`, in file order.
 pub(super) fn read_parts(item: Item<'_>, set: UnitSet) -> Option<Vec<Part>> {
-    let parts = item.entries(|name, part| read_part(name, part, set))?;
+    let mut names = Vec::new();
+    let parts = item.entries(|name, part| {
+        names.push(name.clone());
+        read_part(name, part, set)
+    });
+    check_distinct(names.iter(), "parts", item.faults);
+    let parts = parts?;
     if parts.is_empty() {
         item.refuse("empty-list", "`parts` names no part")
     } else {

@@ -43,16 +43,12 @@ pub(super) fn refuse_choice<T>(
         let names: Vec<String> = keys.iter().map(|key| format!("`{key}`")).collect();
         names.join(last)
     };
-    let message = if told.is_empty() {
-        format!("no {what} is told")
-    } else {
-        format!("more than one {what} is told: {}", quoted(told, " and "))
-    };
-    fields.refuse(
-        code,
-        message,
-        format!("write one of {}", quoted(keys, ", ")),
-    )
+    let help = format!("write one of {}", quoted(keys, ", "));
+    if told.is_empty() {
+        return fields.lacks(code, keys, format!("no {what} is told"), Some(&help));
+    }
+    let message = format!("more than one {what} is told: {}", quoted(told, " and "));
+    fields.refuse(code, message, help)
 }
 
 fn read_straight(item: Item<'_>, set: UnitSet) -> Option<PathSpec> {

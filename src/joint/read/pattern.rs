@@ -10,7 +10,7 @@ use super::value::{read_not_negative, read_positive, read_quantity, read_triple,
 use super::weld::{Laid, Shared, Usual, pick_ends, pick_joins, pick_size};
 use crate::joint::{GivenAt, PathSpec, PatternSpec, RunSpec, Shape, ToeSpec, Triple, keys};
 use crate::quantity::{Dim, Given, real};
-use crate::source::{Diagnostic, FaultBag, Item, Place, Told};
+use crate::source::{Diagnostic, FaultBag, Fields, Item, Place, Told};
 
 /// Significant decimals to which laid-out points are computed, counted from the largest
 /// coordinate: the noise of a turn by 30° stays out of the digits, at 1e-12 of the size.
@@ -60,7 +60,7 @@ pub(super) fn read_pattern(
     let joins = pick_joins(&mut fields, usual, context);
     let ends = pick_ends(&mut fields, usual);
     if let Some(shape) = &shape {
-        check_lengths(shape, &lengths, fields.faults());
+        check_lengths(shape, &lengths, &fields);
         check_doubled(shape, doubled, item.faults);
     }
     fields.finish();
@@ -119,11 +119,11 @@ fn word(shape: Shape) -> &'static str {
 }
 
 /// Leaves a fault for each length that the shape needs and lacks, or has and does not take.
-fn check_lengths(shape: &Told<Shape>, lengths: &[Length<'_>; 3], faults: &FaultBag) {
-    let word = word(shape.value);
+fn check_lengths(shape: &Told<Shape>, lengths: &[Length<'_>; 3], fields: &Fields<'_>) {
+    let (word, faults) = (word(shape.value), fields.faults());
     for ((key, item, _), needed) in lengths.iter().zip(needs(shape.value)) {
         match item {
-            None if needed => {
+            None if needed && !fields.misspells(&[key]) => {
                 let message = format!("the pattern `{word}` needs `{key}`");
                 faults.push(Diagnostic::error("missing-key", message, &shape.place));
             }

@@ -24,9 +24,13 @@ pub(super) struct Usual {
 pub(super) fn read_weld(item: Item<'_>, context: Context<'_>) -> Option<WeldSpec> {
     let mut fields = item.keyed(&keys::WELD)?;
     let usual = Usual {
-        joins: fields.take("joins").map(|item| read_joins(item, context)),
+        joins: match fields.take("joins") {
+            Some(item) => Some(read_joins(item, context)),
+            None => fields.misspells(&["joins"]).then_some(None),
+        },
         ends: read_ends(&mut fields),
-        size: size::read_size(&mut fields, context.set),
+        size: size::read_size(&mut fields, context.set)
+            .or_else(|| fields.misspells(&size::KEYS).then_some(None)),
         toe: fields.optional("toe", |item| size::read_toe(item, context.set)),
         normal: fields.optional("normal", |item| size::read_direction(item, context.set)),
         gap: fields.optional("gap", |item| {
@@ -34,18 +38,19 @@ pub(super) fn read_weld(item: Item<'_>, context: Context<'_>) -> Option<WeldSpec
         }),
         between: fields.optional("between", |item| read_between(item, context.set)),
     };
-    let told = fields.has("runs") || fields.has("pattern");
     let runs_item = fields.take("runs");
     let pattern_item = fields.take("pattern");
-    fields.finish();
-    if !told {
-        let message = "`weld` needs `runs` or `pattern`";
-        return item.refuse_with(
+    if runs_item.is_none() && pattern_item.is_none() {
+        fields.lacks::<()>(
             "missing-key",
-            message,
-            "list the runs, or name a pattern by its shape",
+            &["runs", "pattern"],
+            "`weld` needs `runs` or `pattern`",
+            Some("list the runs, or name a pattern by its shape"),
         );
+        fields.finish();
+        return None;
     }
+    fields.finish();
     let runs = runs_item.map_or(Some(Vec::new()), |item| {
         item.list(|run| read_run(run, &usual, context))
     });
@@ -116,10 +121,11 @@ pub(super) fn pick_joins(
         .or_else(|| usual.joins.clone())
     {
         Some(joins) => joins,
-        None => fields.refuse(
+        None => fields.lacks(
             "missing-key",
+            &["joins"],
             "`joins` is told neither here nor for all runs",
-            "write `joins: [attached part, base part]`",
+            Some("write `joins: [attached part, base part]`"),
         ),
     }
 }

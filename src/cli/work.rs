@@ -7,7 +7,7 @@ use super::show::table;
 use crate::note::{Calculation, Standing, write_note};
 use crate::project::{
     JointFile, Kinds, ProjectError, Surroundings, Workshop, complete_joint, find_joints,
-    read_surroundings, read_told, shown, written,
+    read_surroundings, read_told, refuse_taken_notes, shown, written,
 };
 use crate::source::one_line;
 use std::collections::BTreeMap;
@@ -76,13 +76,14 @@ enum Job {
 type Folders = BTreeMap<PathBuf, Surroundings>;
 
 fn prepare(paths: &[PathBuf]) -> Result<(Vec<JointFile>, Folders), ProjectError> {
-    let joints = find_joints(paths)?;
+    let mut joints = find_joints(paths)?;
     let mut folders = Folders::new();
     for joint in &joints {
         if !folders.contains_key(&joint.folder) {
             folders.insert(joint.folder.clone(), read_surroundings(&joint.folder)?);
         }
     }
+    refuse_taken_notes(&mut joints, &folders);
     Ok((joints, folders))
 }
 
@@ -140,9 +141,10 @@ fn work(
         .map_or(available, usize::from)
         .min(joints.len())
         .max(1);
+    let sets = |surroundings: &Surroundings| !surroundings.templates.files.is_empty();
     let workshop = match job {
         Job::Write { .. } => Some(Workshop::new()),
-        Job::Vet => None,
+        Job::Vet => folders.values().any(sets).then(Workshop::new),
     };
     let next = AtomicUsize::new(0);
     let results: Mutex<BTreeMap<usize, Result<Outcome, ProjectError>>> =
@@ -168,7 +170,8 @@ fn work(
     let results = results
         .into_inner()
         .expect("no worker panics while it holds the results");
-    summary(joints, results, scope.must_hold, workshop.is_some(), colour)
+    let writes = matches!(job, Job::Write { .. });
+    summary(joints, results, scope.must_hold, writes, colour)
 }
 
 /// One joint; a fault of the program itself stays with that joint.
@@ -202,6 +205,11 @@ fn one(
                 joint,
                 &format!(" → {folder}"),
             ))
+        }
+        // Templates of a project are vetted by setting the note with them.
+        (Job::Vet, Some(workshop)) if !surroundings.templates.files.is_empty() => {
+            let produced = workshop.produce(joint, surroundings, Kinds::ALL)?;
+            Ok(said(&produced.note.standing, joint, ""))
         }
         _ => {
             let completed = complete_joint(joint, surroundings)?;

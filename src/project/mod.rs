@@ -15,7 +15,7 @@ pub use outputs::{Output, stage};
 pub use produce::{Kinds, Produced, Workshop, written};
 pub use read::{
     Completed, JointFile, Surroundings, complete_joint, find_joints, read_joint_file, read_library,
-    read_surroundings, read_told,
+    read_surroundings, read_told, refuse_taken_notes,
 };
 pub use schemas::{SchemaKind, published};
 pub use templates::OwnTemplates;

@@ -5,9 +5,12 @@ use super::outputs::{Output, stage};
 use super::read::{JointFile, Surroundings, complete_joint, read_told};
 use crate::figure::{SerifFaces, draw, scene, standalone_source, typst_source};
 use crate::note::{Calculation, FIGURE, Note, Outcome, write_note};
-use crate::render::{Attachment, Drawings, Press, Relation, RenderError};
+use crate::render::{Attachment, Drawings, Pdf, Press, Relation, RenderError};
 use std::collections::BTreeMap;
 use std::path::Path;
+use std::sync::Arc;
+use std::sync::mpsc::{self, RecvTimeoutError};
+use std::time::Duration;
 
 /// Which outputs are wanted.
 #[derive(Clone, Copy, PartialEq, Eq, Debug)]
@@ -32,10 +35,15 @@ impl Kinds {
     };
 }
 
+/// How long a project's own templates may take over one note; the built-in ones take a tenth of a
+/// second, of a joint with many runs some seconds.
+const PATIENCE: Duration = Duration::from_secs(60);
+
 /// What is built once and serves every note: the press and the metrics of its faces.
 pub struct Workshop {
-    press: Press,
+    press: Arc<Press>,
     faces: SerifFaces,
+    patience: Duration,
 }
 
 impl Default for Workshop {
@@ -53,9 +61,17 @@ impl Workshop {
     #[must_use]
     pub fn new() -> Self {
         Self {
-            press: Press::new(),
+            press: Arc::new(Press::new()),
             faces: SerifFaces::embedded().expect("the serif faces are built in"),
+            patience: PATIENCE,
         }
+    }
+
+    /// The same workshop with another limit on the time that a project's own templates take.
+    #[must_use]
+    pub const fn with_patience(mut self, patience: Duration) -> Self {
+        self.patience = patience;
+        self
     }
 }
 
@@ -153,10 +169,12 @@ impl Workshop {
                 )
             }));
             attachments.extend(used_sheets(&calculation));
-            let pdf = self
-                .press
-                .pdf(&source.text, &attachments)
-                .map_err(|fault| render(source.explain(fault)))?;
+            let pdf = if own.files.is_empty() {
+                self.press.pdf(&source.text, &attachments)
+            } else {
+                self.bounded(source.text.clone(), attachments)
+            };
+            let pdf = pdf.map_err(|fault| render(source.explain(fault)))?;
             outputs.push(Output {
                 name: "note.pdf",
                 bytes: pdf.bytes,
@@ -175,6 +193,28 @@ impl Workshop {
             });
         }
         Ok(Produced { note, outputs })
+    }
+}
+
+impl Workshop {
+    /// Sets a source that a project's own templates wrote, for as long as patience lasts.
+    ///
+    /// The typesetter cannot be stopped from within: a thread that is given up ends with the program.
+    fn bounded(&self, text: String, attachments: Vec<Attachment>) -> Result<Pdf, RenderError> {
+        let (sender, receiver) = mpsc::channel();
+        let press = Arc::clone(&self.press);
+        std::thread::spawn(move || {
+            // Whoever waited may have given up.
+            let _ = sender.send(press.pdf(&text, &attachments));
+        });
+        receiver.recv_timeout(self.patience).unwrap_or_else(|why| {
+            Err(match why {
+                RecvTimeoutError::Timeout => RenderError::TooLong(self.patience.as_secs_f64()),
+                RecvTimeoutError::Disconnected => {
+                    RenderError::Internal("the typesetter stopped".to_owned())
+                }
+            })
+        })
     }
 }
 

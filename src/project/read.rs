@@ -5,7 +5,7 @@ use super::templates::{OwnTemplates, read_templates};
 use super::{ProjectError, shown};
 use crate::criteria::{Library, built_in, read_sheet};
 use crate::joint::{Joint, ProjectFile, read_joint_node, read_project};
-use crate::source::{Diagnostic, Faults, Node, Place, SourceFile, parse_yaml};
+use crate::source::{Diagnostic, Faults, Node, Place, SourceFile, Value, parse_yaml};
 use std::collections::BTreeMap;
 use std::fs;
 use std::path::{Path, PathBuf};
@@ -18,7 +18,7 @@ const PROJECT_FILE: &str = "project.yaml";
 const LARGEST: u64 = 8 * 1024 * 1024;
 
 /// A joint file found, and the folder of its project.
-#[derive(Clone, PartialEq, Eq, Debug)]
+#[derive(Clone, Debug)]
 pub struct JointFile {
     /// The file.
     pub path: PathBuf,
@@ -26,6 +26,8 @@ pub struct JointFile {
     pub folder: PathBuf,
     /// Name of its folder of outputs: the file's name without extension.
     pub stem: String,
+    /// What is wrong with it beside the other joints.
+    pub faults: Vec<Diagnostic>,
 }
 
 pub(super) fn file_error(path: &Path, what: impl Into<String>) -> ProjectError {
@@ -102,6 +104,51 @@ pub fn find_joints(paths: &[PathBuf]) -> Result<Vec<JointFile>, ProjectError> {
     Ok(found)
 }
 
+/// Leaves a fault in each joint whose note has the number of an earlier one.
+///
+/// Files that cannot be read are passed over: their own faults are told when they are worked on.
+pub fn refuse_taken_notes(joints: &mut [JointFile], folders: &BTreeMap<PathBuf, Surroundings>) {
+    // A joint alone has nothing to be compared with.
+    if joints.len() < 2 {
+        return;
+    }
+    let mut taken: BTreeMap<String, Place> = BTreeMap::new();
+    for joint in joints {
+        let Ok(completed) = complete_joint(joint, &folders[&joint.folder]) else {
+            continue;
+        };
+        let Some((number, place)) = note_number(&completed.root) else {
+            continue;
+        };
+        match taken.get(&number) {
+            Some(first) => {
+                let (line, _) = first.line_column();
+                let message = format!("`{number}` is the number of another note");
+                let help = format!(
+                    "{}:{line} has it too; two notes with one number cannot both be signed",
+                    first.file.name
+                );
+                joint
+                    .faults
+                    .push(Diagnostic::error("note-taken", message, &place).help(help));
+            }
+            None => drop(taken.insert(number, place)),
+        }
+    }
+}
+
+/// The number of a note and where it stands.
+fn note_number(root: &Node) -> Option<(String, Place)> {
+    let Value::Map(entries) = &root.value else {
+        return None;
+    };
+    let (_, node) = entries.iter().find(|(key, _)| key.value == "note")?;
+    match &node.value {
+        Value::Scalar { text, .. } => Some((text.trim().to_owned(), node.place.clone())),
+        Value::List(_) | Value::Map(_) | Value::Null => None,
+    }
+}
+
 /// Whether a file of a folder is a user's YAML; editors and archives leave `.#x.yaml`, `._x.yaml`.
 fn is_yaml(path: &Path) -> bool {
     let name = path.file_name().unwrap_or_default().to_string_lossy();
@@ -122,6 +169,7 @@ fn joint_file(path: &Path) -> JointFile {
         path: path.to_owned(),
         folder: folder.to_owned(),
         stem: stem.into_owned(),
+        faults: Vec::new(),
     }
 }
 
@@ -283,7 +331,8 @@ pub fn complete_joint(
 ) -> Result<Completed, ProjectError> {
     let file = read_joint_file(&joint.path)?;
     let own = parse_yaml(&file)?;
-    let mut faults = unprintable(&own);
+    let mut faults = joint.faults.clone();
+    faults.extend(unprintable(&own));
     let root = match &surroundings.shared {
         Some(shared) => {
             let (root, mut found) = shared.complete(&own);

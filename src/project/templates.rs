@@ -79,6 +79,17 @@ impl OwnTemplates {
                     Some(told)
                 })
                 .collect(),
+            RenderError::TooLong(_) => {
+                let mut names = ["note.typ", "page.typ"].into_iter();
+                let place = names.find_map(|name| self.place(name, 1));
+                let help = "look for a loop without end in it or in what it calls";
+                place
+                    .map(|place| {
+                        Diagnostic::error("typesetting", fault.to_string(), &place).help(help)
+                    })
+                    .into_iter()
+                    .collect()
+            }
             RenderError::Unresolved(_) | RenderError::Glyphs(_) | RenderError::Internal(_) => {
                 Vec::new()
             }

@@ -3,7 +3,7 @@
 use std::fmt;
 
 /// A fault of rendering.
-#[derive(Clone, Debug, PartialEq, Eq)]
+#[derive(Clone, Debug, PartialEq)]
 pub enum RenderError {
     /// A template does not parse, or asks for a value that is not there.
     Template {
@@ -20,6 +20,8 @@ pub enum RenderError {
     Unresolved(Vec<String>),
     /// Characters that no face of the note has, or that would reorder the text around them.
     Glyphs(Vec<char>),
+    /// The typesetter was given up after so many seconds.
+    TooLong(f64),
     /// The program's own fault.
     Internal(String),
 }
@@ -64,6 +66,9 @@ impl fmt::Display for RenderError {
             Self::Glyphs(chars) => {
                 let list: Vec<_> = chars.iter().map(|c| name_char(*c)).collect();
                 write!(f, "the note's faces cannot print {}", list.join(", "))
+            }
+            Self::TooLong(limit) => {
+                write!(f, "the note is not set after {} s", limit)
             }
             Self::Internal(message) => write!(f, "internal fault: {message}"),
         }

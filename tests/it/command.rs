@@ -577,7 +577,7 @@ fn sheets_are_taken_from_beside_their_joints_only() {
     project.put("joints/sheets/works-12.yaml", SHEET);
     let clause = "- {clause: EN 1993-1-8 4.5.3.3, gamma_M2: 1.25}";
     let text = joint_with(clause, "- {clause: Works rule 12, eta: 2.5}");
-    project.put("more/other.yaml", text);
+    project.put("more/other.yaml", text.replace("SN-104", "SN-105"));
     let ran = project.run(&["vet", "joints", "more"]);
     assert_eq!(ran.code, 1, "{ran:?}");
     assert!(ran.out.contains("joints/mast-foot.yaml"), "{}", ran.out);
@@ -590,9 +590,14 @@ fn sheets_are_taken_from_beside_their_joints_only() {
 fn joints_are_told_in_the_order_of_their_files() {
     let project = Project::new();
     for name in ["d", "a", "c", "b", "e", "f"] {
-        project.put(&format!("joints/{name}.yaml"), joint());
+        let text = joint_with("note: SN-104", &format!("note: SN-{name}"));
+        let text = if name == "c" {
+            text.replace("fillet: 8", "fillet: 0")
+        } else {
+            text
+        };
+        project.put(&format!("joints/{name}.yaml"), text);
     }
-    project.put("joints/c.yaml", joint_with("fillet: 8", "fillet: 0"));
     for threads in ["1", "4"] {
         let ran = project.run(&["vet", "--threads", threads]);
         assert_eq!(ran.code, 1, "{ran:?}");
@@ -605,6 +610,44 @@ fn joints_are_told_in_the_order_of_their_files() {
         assert_eq!(order, wanted, "with {threads} threads");
         assert!(ran.err.contains("refused: joints/c.yaml\n"), "{}", ran.err);
     }
+}
+
+/// Two notes with one number cannot both be signed: all but the first are refused at their number.
+#[test]
+fn a_number_of_another_note_is_refused() {
+    let project = Project::with_joint();
+    project.put("joints/other.yaml", joint());
+    project.put(
+        "more/third.yaml",
+        joint_with("note: SN-104", "note:  SN-104 "),
+    );
+    project.put(
+        "more/fourth.yaml",
+        joint_with("note: SN-104", "note: SN-105"),
+    );
+    let ran = project.run(&["vet", "joints", "more"]);
+    assert_eq!(ran.code, 1, "{ran:?}");
+    let fault = |place: &str| {
+        format!("error[note-taken]: `SN-104` is the number of another note\n --> {place}\n")
+    };
+    for place in ["joints/other.yaml:2:7", "more/third.yaml:2:8"] {
+        assert!(ran.err.contains(&fault(place)), "{place}:\n{}", ran.err);
+    }
+    assert!(
+        ran.err.contains("joints/mast-foot.yaml:2 has it too"),
+        "{}",
+        ran.err
+    );
+    assert!(
+        ran.out.contains("joints/mast-foot.yaml  ") && ran.out.contains("more/fourth.yaml  "),
+        "{}",
+        ran.out
+    );
+    assert_eq!(
+        project.run(&["vet", "more/third.yaml"]).code,
+        0,
+        "alone it is no fault"
+    );
 }
 
 /// A case whose level no strength check takes is named, and does not pass the gate.

@@ -3,6 +3,8 @@
 
 use crate::command::{Project, Ran, joint};
 use crate::tidy::file;
+use seamnote::project::{Kinds, ProjectError, Workshop, find_joints, read_surroundings};
+use std::time::Duration;
 
 /// A project with a built-in template copied and changed.
 fn with_template(name: &str, change: impl FnOnce(String) -> String) -> Project {
@@ -176,4 +178,54 @@ fn links_out_of_the_folder_are_refused() {
         (0, ""),
         "a link within: {ran:?}"
     );
+}
+
+/// A project with templates of its own is vetted by setting its notes.
+#[test]
+fn vet_finds_the_faults_of_templates() {
+    for (name, from, to) in [
+        ("note.md", "<< head.title|trim >>", "<< head.colour >>"),
+        ("page.typ", "#let small = 7pt", "#let small = 7pints"),
+    ] {
+        let project = with_template(name, |text| {
+            assert!(text.contains(from), "{name} holds {from}");
+            text.replace(from, to)
+        });
+        let ran = project.run(&["vet"]);
+        let place = format!(" --> joints/templates/{name}:");
+        let wanted = [place.as_str(), "refused: joints/mast-foot.yaml\n"];
+        refused(&project, &ran, &wanted);
+    }
+    let project = with_template("note.md", |text| text);
+    let ran = project.run(&["vet"]);
+    assert_eq!((ran.code, ran.err.as_str()), (0, ""), "{ran:?}");
+    assert!(!project.path("out").exists(), "vet writes nothing");
+}
+
+/// A loop that does not end within the time allowed is given up and told.
+#[test]
+fn a_template_that_takes_too_long_is_given_up() {
+    let project = with_template("page.typ", |text| {
+        format!(
+            "{text}\n#{{ for a in range(3000) {{ for b in range(1000) {{ let c = a * b }} }} }}\n"
+        )
+    });
+    let folder = project.path("joints");
+    let joints = find_joints(&[folder.clone()]).unwrap();
+    let surroundings = read_surroundings(&folder).unwrap();
+    let workshop = Workshop::new().with_patience(Duration::from_millis(1));
+    let fault = workshop
+        .produce(&joints[0], &surroundings, Kinds::ALL)
+        .expect_err("a millisecond is too short");
+    let ProjectError::Faults(faults) = fault else {
+        panic!("{fault}")
+    };
+    let told = faults.render(false);
+    for text in [
+        "error[typesetting]: the note is not set after 0.001 s\n",
+        "joints/templates/page.typ:1:1\n",
+        "look for a loop without end",
+    ] {
+        assert!(told.contains(text), "{text}:\n{told}");
+    }
 }

@@ -4,8 +4,11 @@
 use super::arguments::{Arguments, SchemaOf, UNITS};
 use super::work::{Said, complaint};
 use super::{exit, explain};
+use crate::criteria::Library;
 use crate::joint::keys::PATTERN;
-use crate::project::{ProjectError, SchemaKind, Start, begin, published, read_library};
+use crate::project::{
+    ProjectError, SchemaKind, Start, Workshop, begin, published, put, read_library, shown,
+};
 use crate::quantity::UnitSet;
 use crate::source::Form;
 use clap::CommandFactory;
@@ -47,13 +50,20 @@ fn shape(typed: &str) -> String {
     known.map_or(spaced.clone(), |word| (*word).to_owned())
 }
 
-/// Explains what the words name.
-pub(super) fn explained(thing: &[String], joints: &Path, colour: bool) -> Said {
+/// Explains what the words name, or sets the clause sheet that they name as a page.
+pub(super) fn explained(thing: &[String], joints: &Path, pdf: Option<&Path>, colour: bool) -> Said {
     let library = match read_library(joints) {
         Ok(library) => library,
         Err(fault) => return refused(&fault, colour),
     };
-    match explain(&thing.join(" "), &library) {
+    let thing = thing.join(" ");
+    if let Some(path) = pdf {
+        return match set_sheet(&thing, &library, path) {
+            Ok(text) => said(text),
+            Err(fault) => refused(&fault, colour),
+        };
+    }
+    match explain(&thing, &library) {
         Ok(text) => said(text),
         Err(text) => Said {
             err: text,
@@ -61,6 +71,20 @@ pub(super) fn explained(thing: &[String], joints: &Path, colour: bool) -> Said {
             ..Said::default()
         },
     }
+}
+
+/// Sets a clause sheet into a file, and says where it is.
+fn set_sheet(name: &str, library: &Library, path: &Path) -> Result<String, ProjectError> {
+    let Some(sheet) = library.find(name) else {
+        return Err(ProjectError::File {
+            path: path.to_owned(),
+            what: format!(
+                "not written: `{name}` is no clause sheet, and nothing else is set as a page"
+            ),
+        });
+    };
+    put(path, &Workshop::new().sheet_pdf(sheet)?)?;
+    Ok(format!("{} → {}\n", sheet.name.value, shown(path)))
 }
 
 /// Prints a schema.

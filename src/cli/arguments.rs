@@ -96,6 +96,7 @@ A file that is there already is never written over.")]
 Examples:
   seamnote explain which-size               a fault code
   seamnote explain EN 1993-1-8 4.5.3.2      a clause sheet: needs, steps, limits
+  seamnote explain EN 1993-1-8 4.5.3.2 --pdf clause.pdf
   seamnote explain weld.runs.toe            a key of joint files
   seamnote explain sheet.needs.from         a key of clause sheets")]
     Explain {
@@ -105,6 +106,9 @@ Examples:
         /// Folder of joints, whose sheets can be named, too.
         #[arg(long, value_name = "FOLDER", default_value = "joints")]
         joints: PathBuf,
+        /// Set the clause sheet as a page, its steps typeset, into this file instead.
+        #[arg(long, value_name = "FILE")]
+        pdf: Option<PathBuf>,
     },
     /// Print a JSON Schema, for editors and machines.
     #[command(after_help = "\

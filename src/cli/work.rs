@@ -53,7 +53,9 @@ pub fn run(arguments: &Arguments, colour: bool, progress: Progress<'_>) -> Said 
             pattern,
             units,
         } => return aid::begin_project(folder, pattern, units, colour),
-        Command::Explain { thing, joints } => return aid::explained(thing, joints, colour),
+        Command::Explain { thing, joints, pdf } => {
+            return aid::explained(thing, joints, pdf.as_deref(), colour);
+        }
         Command::Schema { of } => return aid::schema(*of),
         Command::Completions { shell } => return aid::completions(*shell),
         Command::Manual { command } => return aid::manual(command.as_deref()),

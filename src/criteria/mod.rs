@@ -16,6 +16,7 @@ mod margin;
 mod outcome;
 mod read;
 mod resolve;
+mod says;
 mod search;
 mod sheet;
 mod state;

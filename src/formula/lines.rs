@@ -99,6 +99,21 @@ impl Ledger {
         ))
     }
 
+    /// A formula in symbols as a clause states it, every branch of a choice with its condition.
+    ///
+    /// `env` binds names to entries for their symbols; no value is read.
+    #[must_use]
+    pub fn rule(&self, env: &Env, symbol: &super::Symbol, node: &super::Node) -> Equation {
+        let pieces = split_long(&Presenter::rule(self, env, node));
+        lay_out(symbol, &pieces)
+    }
+
+    /// A condition in symbols as a clause states it; `env` as for [`Ledger::rule`].
+    #[must_use]
+    pub fn condition(&self, env: &Env, condition: &super::Condition) -> Math {
+        Presenter::condition(self, env, condition)
+    }
+
     /// The bold result with its unit, and remarks behind it.
     fn result(&self, value: Value, remarks: &[Math]) -> Piece {
         let entry = self.get(value);

@@ -48,6 +48,8 @@ pub enum Math {
     Relation(&'static str, Box<Self>, Box<Self>),
     /// Pieces side by side.
     Row(Vec<Self>),
+    /// Values with the conditions that they hold under; the last one may have none.
+    Cases(Vec<(Self, Option<Self>)>),
 }
 
 /// Escapes a text for a Typst string literal.
@@ -121,7 +123,8 @@ impl Math {
             | Self::Magnitude(_)
             | Self::Call(..)
             | Self::Sum(..)
-            | Self::Relation(..) => false,
+            | Self::Relation(..)
+            | Self::Cases(_) => false,
         }
     }
 
@@ -142,7 +145,9 @@ impl Math {
                 arguments.iter().any(Self::is_numeric)
             }
             Self::Terms(terms) => terms.iter().any(|term| term.1.is_numeric()),
-            Self::Relation(..) | Self::Symbol(_) | Self::Word(_) | Self::Pi => false,
+            Self::Relation(..) | Self::Symbol(_) | Self::Word(_) | Self::Pi | Self::Cases(_) => {
+                false
+            }
         }
     }
 
@@ -198,6 +203,15 @@ impl Math {
                 format!("{} {sign} {}", left.typst(), right.typst())
             }
             Self::Row(pieces) => join(pieces, Self::typst, " "),
+            Self::Cases(rows) => {
+                let rows = rows.iter().map(|(value, condition)| match condition {
+                    Some(condition) => {
+                        format!("{} & quad \"if\" {}", value.typst(), condition.typst())
+                    }
+                    None => format!("{} & quad \"otherwise\"", value.typst()),
+                });
+                format!("cases({})", rows.collect::<Vec<_>>().join(", "))
+            }
         }
     }
 
@@ -251,6 +265,16 @@ impl Math {
                 format!("{} {sign} {}", left.latex(), right.latex())
             }
             Self::Row(pieces) => join(pieces, Self::latex, " \\; "),
+            Self::Cases(rows) => {
+                let rows = rows.iter().map(|(value, condition)| match condition {
+                    Some(condition) => {
+                        format!("{} & \\text{{if }} {}", value.latex(), condition.latex())
+                    }
+                    None => format!("{} & \\text{{otherwise}}", value.latex()),
+                });
+                let rows = rows.collect::<Vec<_>>().join(" \\\\ ");
+                ["\\begin{cases}", &rows, "\\end{cases}"].join(" ")
+            }
         }
     }
 
@@ -312,6 +336,13 @@ impl Math {
                 format!("{} {sign} {}", left.words(), right.words())
             }
             Self::Row(pieces) => join(pieces, Self::words, " "),
+            Self::Cases(rows) => {
+                let rows = rows.iter().map(|(value, condition)| match condition {
+                    Some(condition) => format!("{} if {}", value.words(), condition.words()),
+                    None => format!("otherwise {}", value.words()),
+                });
+                rows.collect::<Vec<_>>().join(", ")
+            }
         }
     }
 
@@ -373,6 +404,16 @@ impl Math {
             Self::Sum(_, term) => 3.4 + term.width(),
             Self::Relation(_, left, right) => left.width() + right.width() + 2.7,
             Self::Row(pieces) => pieces.iter().map(|piece| piece.width() + 0.6).sum(),
+            Self::Cases(rows) => {
+                let widest = |widths: Vec<f64>| widths.into_iter().fold(0.0, f64::max);
+                let values = rows.iter().map(|row| row.0.width()).collect();
+                let conditions = rows.iter().map(|(_, condition)| {
+                    condition
+                        .as_ref()
+                        .map_or(9.0, |condition| condition.width() + 3.0)
+                });
+                widest(values) + widest(conditions.collect()) + 5.0
+            }
         }
     }
 }

@@ -4,7 +4,7 @@ use super::digits::Printed;
 use super::eval::{evaluate, governs, lookup_row};
 use super::ledger::{EntryLook, Env, Ledger, Value};
 use super::math::Math;
-use super::node::{Function, Kind, Node, Op};
+use super::node::{Branch, Condition, Function, Kind, Node, Op};
 use crate::quantity::{Dim, Unit};
 
 /// Sums of at most this many terms are written out on the page.
@@ -25,6 +25,8 @@ pub(super) struct Presenter<'a> {
     pub(super) text: &'a str,
     /// Whether numbers stand in the place of symbols.
     pub(super) numbers: bool,
+    /// Whether every branch of a choice stands there, not the one that holds.
+    general: bool,
     remarks: Vec<Math>,
     elided: bool,
 }
@@ -41,6 +43,7 @@ impl<'a> Presenter<'a> {
             look,
             text,
             numbers,
+            general: false,
             remarks: Vec::new(),
             elided: false,
         }
@@ -71,6 +74,24 @@ impl<'a> Presenter<'a> {
         set: &str,
     ) -> Math {
         Self::new(ledger, env, text, false).math(node, Some((set, 0)), false)
+    }
+
+    /// A formula in symbols as a clause states it, every branch of a choice with its condition.
+    pub(super) fn rule(ledger: &'a Ledger, env: &'a Env, node: &Node) -> Math {
+        let mut presenter = Self::new(ledger, env, "", false);
+        presenter.general = true;
+        presenter.math(node, None, false)
+    }
+
+    /// A condition in symbols, as a clause states it.
+    pub(super) fn condition(ledger: &'a Ledger, env: &'a Env, condition: &Condition) -> Math {
+        Self::new(ledger, env, "", false).relation(condition, None)
+    }
+
+    fn relation(&mut self, condition: &Condition, member: Option<(&str, usize)>) -> Math {
+        let left = self.math(&condition.left, member, true);
+        let right = self.math(&condition.right, member, true);
+        Math::Relation(condition.relation.text(), Box::new(left), Box::new(right))
     }
 
     fn math(&mut self, node: &Node, member: Option<(&str, usize)>, inline: bool) -> Math {
@@ -110,6 +131,17 @@ impl<'a> Presenter<'a> {
             Kind::Extreme { greatest, operands } => self.extreme(*greatest, operands, member),
             Kind::Sum { set, term } => self.sum(set, term, inline),
             Kind::Lookup { table, key } => self.lookup(table, key, member),
+            Kind::When(branches) if self.general => {
+                let mut row = |branch: &Branch| {
+                    let value = self.math(&branch.value, member, true);
+                    let condition = branch.condition.as_ref();
+                    (
+                        value,
+                        condition.map(|condition| self.relation(condition, member)),
+                    )
+                };
+                Math::Cases(branches.iter().map(&mut row).collect())
+            }
             Kind::When(branches) => {
                 for branch in branches {
                     let Some(condition) = &branch.condition else {
@@ -122,13 +154,10 @@ impl<'a> Presenter<'a> {
                         (Some(left), Some(right)) => condition.relation.holds(left, right),
                         _ => false,
                     };
-                    let left = Box::new(self.math(&condition.left, member, true));
-                    let right = Box::new(self.math(&condition.right, member, true));
+                    let relation = self.relation(condition, member);
                     if holds {
-                        self.remarks.push(Math::Row(vec![
-                            Math::Word("since".to_owned()),
-                            Math::Relation(condition.relation.text(), left, right),
-                        ]));
+                        self.remarks
+                            .push(Math::Row(vec![Math::Word("since".to_owned()), relation]));
                         return self.math(&branch.value, member, inline);
                     }
                 }

@@ -9,12 +9,13 @@ use serde::Serialize;
 pub struct Doc {
     /// Particulars for head, title and document properties.
     pub head: Head,
-    /// The verdict of the first page.
-    pub verdict: Verdict,
+    /// The verdict of the first page; a sheet has none.
+    pub verdict: Option<Verdict>,
     /// Sections in print order; none is empty.
     pub sections: Vec<Section>,
-    /// The calculation identity as printed in the foot, in groups, such as `7f3a 91c2 08de`.
-    pub identity: String,
+    /// The calculation identity as printed in the foot, in groups, such as `7f3a 91c2 08de`; a sheet
+    /// has none.
+    pub identity: Option<String>,
     /// State of the note, such as `DRAFT — not signed`.
     pub state: String,
 }
@@ -22,18 +23,14 @@ pub struct Doc {
 /// Particulars of the note; plain text as the user typed it.
 #[derive(Clone, Debug, Serialize)]
 pub struct Head {
-    /// Number, such as `SN-104`.
+    /// Number, such as `SN-104`; a sheet's name.
     pub note: String,
     /// Title.
     pub title: String,
-    /// Issue.
-    pub revision: String,
-    /// ISO date.
-    pub date: String,
-    /// Drawing reference.
-    pub drawing: Option<String>,
-    /// What the joint belongs to.
-    pub item: Option<String>,
+    /// Issue and its ISO date; a sheet has none.
+    pub issue: Option<(String, String)>,
+    /// What stands under the title: number and issue, drawing, what the joint belongs to.
+    pub particulars: Vec<String>,
     /// `a4` or `us-letter`, the typesetter's names.
     pub paper: &'static str,
 }

@@ -137,7 +137,7 @@ impl Builder<'_> {
     fn step_block(&self, value: Value) -> Step {
         let entry = self.ledger.get(value);
         let equation = self.ledger.equation(value);
-        let mut says = plain(&super::margins::capital(&entry.says));
+        let mut says = plain(&super::text::capital(&entry.says));
         if let Kind::Found { method } = &entry.kind {
             says.push(piece(&format!(" ({method})")));
         }

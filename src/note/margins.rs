@@ -5,7 +5,7 @@ use super::calculation::{Calculation, Outcome};
 use super::doc::{Align, Column, Text};
 use super::loads::{CASES_IN_NOTE, CaseValues};
 use super::stress::{CaseTerms, Spot};
-use super::text::{piece, plain, slug, strong, symbol};
+use super::text::{capital, piece, plain, slug, strong, symbol};
 use super::write::NoteError;
 use crate::criteria::{
     Asked, From, Governing, Ground, LimitOutcome, Margin, Side, Turn, Worked, partner, work,
@@ -743,14 +743,6 @@ impl Builder<'_> {
 fn same_limit(a: &LimitOutcome, b: &LimitOutcome) -> bool {
     let near = |x: f64, y: f64| (x - y).abs() <= 1e-12 * x.abs().max(y.abs());
     a.limit == b.limit && a.part == b.part && near(a.value, b.value) && near(a.bound, b.bound)
-}
-
-/// A text with its first letter in upper case.
-pub(super) fn capital(text: &str) -> String {
-    let mut chars = text.chars();
-    chars.next().map_or_else(String::new, |first| {
-        first.to_uppercase().chain(chars).collect()
-    })
 }
 
 /// A case's values as the drawing shows them.

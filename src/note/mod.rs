@@ -8,6 +8,7 @@ mod arcs;
 mod builder;
 mod calculation;
 mod cases;
+mod clause;
 pub mod doc;
 mod front;
 mod handbook;
@@ -29,6 +30,7 @@ mod words;
 mod write;
 
 pub use calculation::{Calculation, Outcome, Refusal};
+pub use clause::sheet_page;
 pub use front::FIGURE;
 pub use identity::Identity;
 pub use sketch::{Sketch, SketchLoad, SketchRun};

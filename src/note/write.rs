@@ -4,11 +4,11 @@ use super::builder::{Builder, Piece};
 use super::calculation::{Calculation, Outcome};
 use super::doc::{Block, Doc, FigureRef, Head, Item, Text, Verdict};
 use super::identity::Identity;
-use super::margins::{Check, Site, asked, capital, check_name, drawn, ranked};
+use super::margins::{Check, Site, asked, check_name, drawn, ranked};
 use super::sketch::Sketch;
 use super::standing::Standing;
 use super::stress::CaseTerms;
-use super::text::{count, piece, plain, slug, strong};
+use super::text::{capital, count, piece, plain, slug, strong};
 use super::trace::{self, Trace};
 use super::words::words;
 use crate::criteria::{Asked, From, Ground, WorkError};
@@ -193,9 +193,9 @@ fn compose(calculation: &Calculation<'_>) -> Result<Note, NoteError> {
     identity_section(&mut sections, &identity);
     let doc = Doc {
         head: head(calculation),
-        verdict,
+        verdict: Some(verdict),
         sections,
-        identity: identity.printed(),
+        identity: Some(identity.printed()),
         state: "DRAFT — not signed".to_owned(),
     };
     Ok(Note {
@@ -226,13 +226,17 @@ fn check_bounds(ledger: &Ledger) -> Result<(), NoteError> {
 
 fn head(calculation: &Calculation<'_>) -> Head {
     let joint = calculation.joint;
+    let (note, revision) = (&joint.note.value, &joint.revision.value);
+    let date = joint.date.value.to_string();
+    let mut particulars = vec![format!("Stress note {note}, issue {revision}, {date}")];
+    let drawing = joint.drawing.as_ref();
+    particulars.extend(drawing.map(|drawing| format!("drawing {}", drawing.value)));
+    particulars.extend(joint.item.as_ref().map(|item| item.value.clone()));
     Head {
-        note: joint.note.value.clone(),
+        note: note.clone(),
         title: joint.title.value.clone(),
-        revision: joint.revision.value.clone(),
-        date: joint.date.value.to_string(),
-        drawing: joint.drawing.as_ref().map(|drawing| drawing.value.clone()),
-        item: joint.item.as_ref().map(|item| item.value.clone()),
+        issue: Some((revision.clone(), date)),
+        particulars,
         paper: match joint.paper {
             Paper::A4 => "a4",
             Paper::UsLetter => "us-letter",

@@ -11,7 +11,7 @@ mod schemas;
 mod templates;
 
 pub use begin::{Start, begin};
-pub use outputs::{Output, stage};
+pub use outputs::{Output, put, stage};
 pub use produce::{Kinds, Produced, Workshop, written};
 pub use read::{
     Completed, JointFile, Surroundings, complete_joint, find_joints, read_joint_file, read_library,

@@ -4,6 +4,7 @@
 
 use super::ProjectError;
 use std::fs;
+use std::io::Write;
 use std::path::Path;
 use std::time::Duration;
 
@@ -56,6 +57,26 @@ pub fn stage(folder: &Path, outputs: &[Output]) -> Result<(), ProjectError> {
         fs::rename(staging.path().join(output.name), &path).map_err(|fault| error(&path, fault))?;
     }
     staging.close().map_err(|fault| error(folder, fault))
+}
+
+/// Writes one file that belongs to no note: beside its place, then renamed into it.
+///
+/// # Errors
+///
+/// [`ProjectError::File`] if it cannot be written.
+pub fn put(path: &Path, bytes: &[u8]) -> Result<(), ProjectError> {
+    let error = |fault: std::io::Error| ProjectError::File {
+        path: path.to_owned(),
+        what: format!("cannot be written: {fault}"),
+    };
+    let folder = path
+        .parent()
+        .filter(|parent| !parent.as_os_str().is_empty());
+    let mut staged =
+        tempfile::NamedTempFile::new_in(folder.unwrap_or(Path::new("."))).map_err(error)?;
+    staged.write_all(bytes).map_err(error)?;
+    staged.persist(path).map_err(|fault| error(fault.error))?;
+    Ok(())
 }
 
 /// Removes the staging folders that killed runs left in `folder`.

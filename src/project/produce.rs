@@ -3,9 +3,10 @@
 use super::ProjectError;
 use super::outputs::{Output, stage};
 use super::read::{JointFile, Surroundings, complete_joint, read_told};
+use crate::criteria::Sheet;
 use crate::figure::{SerifFaces, draw, scene, standalone_source, typst_source};
-use crate::note::{Calculation, FIGURE, Note, Outcome, write_note};
-use crate::render::{Attachment, Drawings, Pdf, Press, Relation, RenderError};
+use crate::note::{Calculation, FIGURE, Note, Outcome, sheet_page, write_note};
+use crate::render::{Attachment, Drawings, Pdf, Press, Relation, RenderError, render_typst};
 use std::collections::BTreeMap;
 use std::path::Path;
 use std::sync::Arc;
@@ -215,6 +216,26 @@ impl Workshop {
                 }
             })
         })
+    }
+}
+
+impl Workshop {
+    /// A clause sheet typeset as a page, by the built-in templates.
+    ///
+    /// # Errors
+    ///
+    /// [`ProjectError::Render`] if it cannot be set.
+    pub fn sheet_pdf(&self, sheet: &Sheet) -> Result<Vec<u8>, ProjectError> {
+        let source = render_typst(&sheet_page(sheet), &Drawings::new());
+        let pdf = source.and_then(|source| {
+            let pdf = self.press.undated_pdf(&source.text);
+            pdf.map_err(|fault| source.explain(fault))
+        });
+        let error = |fault| ProjectError::Render {
+            joint: sheet.name.value.clone(),
+            fault,
+        };
+        Ok(pdf.map_err(error)?.bytes)
     }
 }
 

@@ -49,6 +49,9 @@ const MEASURING: &str = r#"
 #show: style
 "#;
 
+/// The profiles of a note: PDF/A-3b, which asks for a date, and PDF/UA-1.
+const ARCHIVED: [PdfStandard; 2] = [PdfStandard::A_3b, PdfStandard::Ua_1];
+
 /// A finished PDF.
 #[derive(Clone, Debug)]
 pub struct Pdf {
@@ -74,7 +77,21 @@ impl Press {
         let job = Job::new(self, text, bytes);
         let result = compile(&job)
             .and_then(|document| resolve_links(&document))
-            .and_then(|document| export(&job, &document));
+            .and_then(|document| export(&job, &document, &ARCHIVED));
+        comemo::evict(MEMORY);
+        result
+    }
+
+    /// Sets a source without a date, such as a clause sheet, and exports it: no archival profile.
+    ///
+    /// # Errors
+    ///
+    /// As [`Press::pdf`].
+    pub fn undated_pdf(&self, source: &str) -> Result<Pdf, RenderError> {
+        let job = Job::new(self, source.to_owned(), Vec::new());
+        let result = compile(&job)
+            .and_then(|document| resolve_links(&document))
+            .and_then(|document| export(&job, &document, &[PdfStandard::Ua_1]));
         comemo::evict(MEMORY);
         result
     }
@@ -144,10 +161,14 @@ pub(super) fn compile(job: &Job<'_>) -> Result<PagedDocument, RenderError> {
     Err(complain(job, &warned.warnings))
 }
 
-/// Exports pages as PDF/A-3b and PDF/UA-1.
-fn export(job: &Job<'_>, document: &PagedDocument) -> Result<Pdf, RenderError> {
-    let standards = PdfStandards::new(&[PdfStandard::A_3b, PdfStandard::Ua_1])
-        .map_err(|e| RenderError::Internal(e.message().to_string()))?;
+/// Exports pages in the given profiles.
+fn export(
+    job: &Job<'_>,
+    document: &PagedDocument,
+    profiles: &[PdfStandard],
+) -> Result<Pdf, RenderError> {
+    let standards =
+        PdfStandards::new(profiles).map_err(|e| RenderError::Internal(e.message().to_string()))?;
     let options = PdfOptions {
         ident: Smart::Custom(job.text().text().to_owned()),
         creator: Smart::Custom(Some("Seamnote".to_owned())),

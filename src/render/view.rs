@@ -46,11 +46,11 @@ pub(super) fn view(doc: &Doc, drawings: Option<&Drawings>) -> Result<Value, Rend
         .collect();
     Ok(json!({
         "head": head(&doc.head),
-        "verdict": {
-            "label": doc.verdict.label,
-            "figure": doc.verdict.figure,
-            "lines": texts(&doc.verdict.lines, &targets),
-        },
+        "verdict": doc.verdict.as_ref().map(|verdict| json!({
+            "label": verdict.label,
+            "figure": verdict.figure,
+            "lines": texts(&verdict.lines, &targets),
+        })),
         "sections": sections?,
         "identity": doc.identity,
         "state": doc.state,
@@ -109,34 +109,24 @@ pub(super) fn own_target(id: &str, targets: &Targets) -> (String, String) {
 
 /// Particulars, with the running title cut to its line.
 fn head(head: &Head) -> Value {
-    let revision = shorten(&head.revision, Cut::Regular, 8.0);
-    let issue = format!("issue {revision} · {}", head.date);
+    let issue = head
+        .issue
+        .as_ref()
+        .map_or(String::new(), |(revision, date)| {
+            format!("issue {} · {date}", shorten(revision, Cut::Regular, 8.0))
+        });
     let room = TEXT_WIDTH / HEAD_SIZE - text_width(&issue, Cut::Regular) - 1.5;
     let number = shorten(&head.note, Cut::Bold, room / 2.0);
     let rest = room - text_width(&number, Cut::Bold) - text_width(" · ", Cut::Regular);
-    let mut particulars = format!(
-        "Stress note {}, issue {}, {}",
-        head.note, head.revision, head.date
-    );
-    for part in head
-        .drawing
-        .iter()
-        .map(|d| format!("drawing {d}"))
-        .chain(head.item.clone())
-    {
-        particulars.push_str(" · ");
-        particulars.push_str(&part);
-    }
     json!({
         "note": head.note,
         "number": number,
         "title": head.title,
         "running": shorten(&head.title, Cut::Regular, rest),
         "issue": issue,
-        "date": head.date,
-        "day": day(&head.date),
+        "day": head.issue.as_ref().map_or(Value::Null, |(_, date)| day(date)),
         "paper": head.paper,
-        "particulars": particulars,
+        "particulars": head.particulars.join(" · "),
     })
 }
 

@@ -214,7 +214,7 @@ fn resolved_links_equal_the_typesetters_own() {
 #[test]
 fn links_that_lead_nowhere_are_faults() {
     let mut doc = sample::sample();
-    doc.verdict.lines[1][1] = Inline::StepRef {
+    doc.verdict.as_mut().unwrap().lines[1][1] = Inline::StepRef {
         id: "gone".into(),
         text: "step 99".into(),
     };
@@ -342,17 +342,16 @@ fn nasty(text: &str) -> Doc {
     doc.head = Head {
         note: s(),
         title: s(),
-        revision: s(),
-        drawing: Some(s()),
-        item: Some(s()),
+        issue: Some((s(), "2026-05-04".into())),
+        particulars: vec![s(), s(), s()],
         ..doc.head
     };
-    doc.verdict = Verdict {
+    doc.verdict = Some(Verdict {
         label: s(),
         figure: s(),
         lines: vec![all()],
-    };
-    doc.identity = s();
+    });
+    doc.identity = Some(s());
     doc.state = s();
     for section in &mut doc.sections {
         section.title = s();
@@ -461,7 +460,7 @@ fn long_text_stays_in_its_column() {
     for text in ["m".repeat(90), path, "many words ".repeat(12)] {
         let mut doc = nasty(&text);
         doc.verdict = sample::sample().verdict;
-        doc.identity = "7f3a 91c2 08de".into();
+        doc.identity = Some("7f3a 91c2 08de".into());
         doc.state = "DRAFT".into();
         for section in &mut doc.sections {
             for block in &mut section.blocks {

@@ -6,7 +6,9 @@ use clap::Parser;
 use seamnote::cli::{Arguments, explain, fault_words, run};
 use seamnote::criteria::{built_in, keys::SHEET};
 use seamnote::joint::keys::{JOINT, PATTERN};
+use seamnote::note::{doc::Block, sheet_page};
 use seamnote::quantity::UnitSet;
+use seamnote::render::{Drawings, Press, overflow, render_typst};
 use seamnote::source::Form;
 
 fn say(arguments: &[&str]) -> seamnote::cli::Said {
@@ -169,6 +171,71 @@ fn each_sheet_is_explained_whole() {
     }
     shown("explain_sheet_of_points", "EN 1993-1-8 4.5.3.2");
     shown("explain_sheet_of_runs", "AISC 360 J2.2b");
+}
+
+/// A clause sheet as a page: every step typeset from the tree that notes compute with.
+#[test]
+fn each_sheet_is_set_as_a_page_with_its_steps() {
+    let press = Press::new();
+    for sheet in built_in().sheets() {
+        let doc = sheet_page(sheet);
+        let source = render_typst(&doc, &Drawings::new()).unwrap();
+        let strays = overflow(&press.pages(&source.text).unwrap());
+        assert!(strays.is_empty(), "{}: {strays:#?}", sheet.name.value);
+        let steps: Vec<_> = doc
+            .sections
+            .iter()
+            .flat_map(|s| &s.blocks)
+            .filter_map(|block| block.as_step())
+            .collect();
+        let wanted = sheet.steps.len() + sheet.checks.len() + sheet.limits.len();
+        assert_eq!(steps.len(), wanted, "{}", sheet.name.value);
+        for (step, rule) in steps.iter().zip(&sheet.steps) {
+            let start = format!("{} &=", rule.symbol.typst());
+            assert!(
+                step.lines[0].typst.starts_with(&start),
+                "{:?}",
+                step.lines[0]
+            );
+        }
+    }
+    let sheet = built_in().find("AISC 360 J2.4 LRFD end-loaded").unwrap();
+    let latex = match &sheet_page(sheet).sections[2].blocks[0] {
+        Block::Step(step) => step.latex.clone(),
+        other => panic!("{other:?}"),
+    };
+    let wanted = r"\beta &= \begin{cases} 1 & \text{if } l \le 100 \, w \\ 1.2 - 0.002 \, l / w & \text{if } l \le 300 \, w \\ 180 \, w / l & \text{otherwise} \end{cases}";
+    assert!(
+        latex.contains(wanted),
+        "every branch with its condition: {latex}"
+    );
+}
+
+#[test]
+fn a_sheet_is_written_as_a_page_and_nothing_else_is() {
+    let folder = tempfile::tempdir().unwrap();
+    let path = folder.path().join("clause.pdf");
+    let name = path.to_str().unwrap();
+    let said = say(&["explain", "AISC", "360", "J2.2b", "--pdf", name]);
+    assert_eq!((said.code, said.err.as_str()), (0, ""), "{said:?}");
+    let bytes = std::fs::read(&path).unwrap();
+    assert!(bytes.starts_with(b"%PDF-"), "a PDF");
+    let said = say(&["explain", "which-size", "--pdf", name]);
+    assert_eq!(said.code, 1, "{said:?}");
+    assert!(
+        said.err.contains("`which-size` is no clause sheet"),
+        "{}",
+        said.err
+    );
+    assert_eq!(std::fs::read(&path).unwrap(), bytes, "the file stays");
+    let lost = folder.path().join("none/clause.pdf");
+    let said = say(&["explain", "AISC 360 J2.2b", "--pdf", lost.to_str().unwrap()]);
+    assert_eq!(said.code, 1, "{said:?}");
+    assert!(
+        said.err.contains("clause.pdf: cannot be written"),
+        "{}",
+        said.err
+    );
 }
 
 #[test]

@@ -1,16 +1,13 @@
 //! Explains a clause sheet: what it takes, what it needs, its steps in plain algebra, its limits.
 
-use crate::criteria::{
-    Capacity, CodeTable, From, Need, PointField, Property, RunField, Scope, Sheet, Side, Stated,
-    Which,
-};
+use crate::criteria::{Capacity, CodeTable, Need, Sheet, Side};
 
 /// The whole sheet as text.
 pub(super) fn says(sheet: &Sheet) -> String {
     let mut out = format!("sheet {}\n  {}\n", sheet.name.value, sheet.title.value);
     let status = sheet.source.status.word();
     out += &format!("  source  {} ({status})\n", sheet.source.cited());
-    out += &format!("  takes   {}\n", takes(sheet));
+    out += &format!("  takes   {}\n", sheet.takes_what());
     let covers: Vec<&str> = sheet.covers.iter().map(|path| path.word()).collect();
     out += &format!("  covers  {}\n", covers.join(", "));
     section(&mut out, "needs", sheet.needs.iter().map(need));
@@ -71,59 +68,17 @@ fn section(out: &mut String, head: &str, lines: impl Iterator<Item = String>) {
     }
 }
 
-/// Levels, places, welds and ends that the sheet takes.
-fn takes(sheet: &Sheet) -> String {
-    let mut parts = Vec::new();
-    let levels: Vec<&str> = sheet.levels.iter().map(|level| level.word()).collect();
-    parts.push(match sheet.scope {
-        Scope::Point => format!("every point of every {} case", levels.join(" or ")),
-        Scope::Run => "every run, without loads".to_owned(),
-    });
-    if sheet.each_part {
-        parts.push("attached and base part in turn".to_owned());
-    }
-    let welds: Vec<&str> = sheet.welds.iter().map(|weld| weld.says()).collect();
-    parts.push(format!("run is {}", welds.join(" or ")));
-    let ends: Vec<&str> = sheet.ends.iter().map(|end| end.word()).collect();
-    parts.push(if ends.is_empty() {
-        "free ends of any kind".to_owned()
-    } else {
-        format!("free ends {}", ends.join(" or "))
-    });
-    parts.join("; ")
-}
-
 fn need(need: &Need) -> String {
-    let from: Vec<String> = need.from.iter().map(place).collect();
     let mut out = format!(
         "{}: {}, from {}    {}",
         need.name.value,
         need.kind.says(),
-        from.join(", else "),
+        need.places(),
         need.says
     );
-    if let Some(stated) = &need.stated {
-        out += &format!(" [{}]", value(stated));
-    }
-    for (bound, words) in [(&need.least, "at least"), (&need.most, "at most")] {
-        if let Some(bound) = bound {
-            out += &format!(", {words} {}", bound.value);
-        }
-    }
-    out
-}
-
-/// A default or the clause's own value, with its source.
-fn value(stated: &Stated) -> String {
-    let (inch, metric) = (&stated.text.inch, &stated.text.metric);
-    let mut out = match (inch, metric) {
-        (Some(inch), Some(metric)) if inch.value == metric.value => inch.value.clone(),
-        (Some(inch), Some(metric)) => format!("{}; metric {}", inch.value, metric.value),
-        (Some(one), None) | (None, Some(one)) => one.value.clone(),
-        (None, None) => String::new(),
-    };
-    if let Some(source) = &stated.source {
-        out += &format!(", {source} ({})", stated.status.word());
+    let limits = need.limits();
+    if !limits.is_empty() {
+        out += &format!(" [{limits}]");
     }
     out
 }
@@ -146,40 +101,4 @@ fn table(table: &CodeTable) -> String {
         out += &format!("\n      {head}{}", rows.join("; "));
     }
     out
-}
-
-/// Where a need comes from, as the sheet writes it.
-fn place(from: &From) -> String {
-    match from {
-        From::Point(field) => {
-            let row = PointField::WORDS.iter().find(|row| row.1 == *field);
-            format!("point.{}", row.map_or("", |row| row.0))
-        }
-        From::Run(field) => {
-            let row = RunField::WORDS.iter().find(|row| row.1 == *field);
-            format!("run.{}", row.map_or("", |row| row.0))
-        }
-        From::Part(which, property) => {
-            let group = match which {
-                Which::InTurn => "part",
-                Which::Attached => "attached",
-                Which::Base => "base",
-                Which::Thinner => "thinner",
-                Which::Thicker => "thicker",
-                Which::Weaker => "weaker",
-            };
-            format!("{group}.{}", named(property))
-        }
-        From::Filler(property) => format!("filler.{}", named(property)),
-        From::Check(name) => format!("check.{name}"),
-        From::Clause => "the clause".to_owned(),
-    }
-}
-
-fn named(property: &Property) -> &str {
-    match property {
-        Property::Material => "material",
-        Property::Thickness => "thickness",
-        Property::Named(name) => name,
-    }
 }

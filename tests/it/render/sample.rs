@@ -445,13 +445,15 @@ pub(crate) fn sample() -> Doc {
         head: Head {
             note: "SN-104".into(),
             title: "Mast foot bracket to deck plate".into(),
-            revision: "B".into(),
-            date: "2026-05-04".into(),
-            drawing: Some("LM-2207 sheet 3".into()),
-            item: Some("launch mast".into()),
+            issue: Some(("B".into(), "2026-05-04".into())),
+            particulars: vec![
+                "Stress note SN-104, issue B, 2026-05-04".into(),
+                "drawing LM-2207 sheet 3".into(),
+                "launch mast".into(),
+            ],
             paper: "a4",
         },
-        verdict: verdict(),
+        verdict: Some(verdict()),
         sections: vec![
             inputs(),
             geometry(),
@@ -460,7 +462,7 @@ pub(crate) fn sample() -> Doc {
             cases(),
             ending(),
         ],
-        identity: "7f3a 91c2 08de".into(),
+        identity: Some("7f3a 91c2 08de".into()),
         state: "DRAFT — not signed".into(),
     }
 }

@@ -37,7 +37,7 @@ Examples:
   seamnote write --only pdf,trace --out issue-B only the PDF notes and traces, elsewhere
   seamnote write --must-hold                    exit with 3 if a check does not hold
 
-Each joint gets a folder of its own under the output folder: note.pdf, note.md with figure.svg,
+Each joint gets a folder of its own under the output folder: note.pdf, note.md with its drawings,
 cases.csv and trace.json. A joint that is refused leaves its earlier note untouched.")]
     Write {
         /// What to work on.
@@ -197,7 +197,7 @@ pub struct ScopeArgs {
 pub enum OutputKind {
     /// The PDF note, note.pdf.
     Pdf,
-    /// The Markdown note, note.md, with its drawing, figure.svg.
+    /// The Markdown note, note.md, with its drawings.
     Markdown,
     /// The table of all cases, cases.csv.
     Cases,

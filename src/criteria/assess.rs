@@ -8,11 +8,13 @@ use super::resolve::{Asking, Turn};
 use super::search::Search;
 use super::sheet::{EndRule, Scope, Sheet, WeldKind};
 use super::state::Site;
+use crate::formula::Table;
 use crate::joint::Joint;
 use crate::solve::local::throat_planes;
 use crate::solve::search::beats;
 use crate::source::{Diagnostic, Faults};
 use crate::weld::{End, Run, V3};
+use std::collections::BTreeMap;
 use std::sync::Arc;
 
 /// What an assessment stands on: the joint, its runs, and the stress of every case.
@@ -133,19 +135,7 @@ fn one_check(
     if !faults.is_empty() {
         return Err(faults);
     }
-    let mut benches = Vec::new();
-    for site in taken_runs
-        .iter()
-        .flat_map(|run| sites(&ground.runs[*run], *run, sheet))
-    {
-        match Bench::new(asking, &tables, ground.runs, site) {
-            Ok(bench) => benches.push(bench),
-            Err(fault) => faults.push(fault),
-        }
-    }
-    if !faults.is_empty() {
-        return Err(faults);
-    }
+    let benches = benches(ground, asking, &tables, &taken_runs)?;
     let (strength, limits) = match sheet.scope {
         Scope::Point => (
             strength(ground, asking, benches, &taken).map_err(|fault| vec![fault])?,
@@ -167,6 +157,30 @@ fn one_check(
         strength,
         limits,
     })
+}
+
+/// The sheet made ready for every site of the runs that it takes, run by run.
+pub(super) fn benches<'a>(
+    ground: &Ground<'_>,
+    asking: Asking<'a>,
+    tables: &'a BTreeMap<String, Table>,
+    taken: &[usize],
+) -> Result<Vec<Bench<'a>>, Vec<Diagnostic>> {
+    let (mut benches, mut faults) = (Vec::new(), Vec::new());
+    for site in taken
+        .iter()
+        .flat_map(|run| sites(&ground.runs[*run], *run, asking.sheet))
+    {
+        match Bench::new(asking, tables, ground.runs, site) {
+            Ok(bench) => benches.push(bench),
+            Err(fault) => faults.push(fault),
+        }
+    }
+    if faults.is_empty() {
+        Ok(benches)
+    } else {
+        Err(faults)
+    }
 }
 
 /// The cases that a sheet takes, and the others.

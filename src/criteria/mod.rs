@@ -14,6 +14,7 @@ mod library;
 mod limit;
 mod margin;
 mod outcome;
+mod profile;
 mod read;
 mod resolve;
 mod says;
@@ -27,6 +28,7 @@ pub use factor::{Factor, factors};
 pub use from::{From, PointField, Property, RunField, Unknown, Which};
 pub use library::{Library, built_in};
 pub use outcome::{Asked, Assessment, Governing, LimitOutcome, Margin, StrengthOutcome};
+pub use profile::{Profile, profiles};
 pub use read::{read_sheet, read_sheet_node};
 pub use resolve::Turn;
 pub use sheet::{

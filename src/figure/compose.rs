@@ -2,22 +2,25 @@
 
 use super::canvas::{Canvas, Keep, Layer};
 use super::dimension::{Placed, draw_dimension};
-use super::drawing::{Drawing, Fill, Item, P2, Path, Span, Stroke, Style};
+use super::drawing::{Drawing, Fill, Ink, Item, P2, Path, Span, Stroke, Style};
 use super::load::{AT_CENTROID, Spot, draw_load, draw_outline, spot};
 use super::place::{Candidate, around, beside, dearer, place_labels, rank};
 use super::rect::Bounds;
 use super::scale::{Scale, standard};
 use super::scene::{Dimension, RunLine, Scene};
-use super::shape::{circle, disc};
+use super::shape::{circle, disc, open_head};
 use super::text::TextWidth;
 use super::triad::{draw_centroid, draw_triad};
 use super::view::{View, project, samples, unit};
+use crate::quantity::real::ten_to;
 use crate::weld::{Segment, V3};
 
 /// Greatest thickness of a run on the sheet (mm): beyond, the throat hides the joint.
 const THICKEST_RUN: f64 = 6.0;
 /// Least thickness of a run (pt).
 const LEAST_RUN: f64 = 0.9;
+/// The same of a run that is an outline under something else.
+const LEAST_FAINT: f64 = 2.4;
 /// Radius of a check point's circle, and the least where points crowd (mm).
 const POINT: f64 = 0.75;
 const LEAST_POINT: f64 = 0.35;
@@ -27,6 +30,9 @@ const SAME: f64 = 0.25;
 const RING: f64 = 1.75;
 /// A dimension in space longer than this many times the group's size is broken.
 const LONGEST_LINE: f64 = 1.5;
+/// Length of the longest vector, and of the shortest that is drawn (mm).
+const LONGEST_VECTOR: f64 = 24.0;
+const LEAST_VECTOR: f64 = 0.6;
 /// An origin further outside the group than this part of its size is not drawn.
 const ORIGIN_REACH: f64 = 0.6;
 
@@ -121,6 +127,7 @@ impl<'a> Sheet<'a> {
         for (load, spot) in self.scene.loads.iter().zip(&self.spots) {
             draw_load(&mut self.canvas, &self.view, load, *spot, self.centre);
         }
+        self.vectors();
         self.origin();
         for dimension in &self.scene.dimensions {
             self.dimension(dimension);
@@ -192,13 +199,22 @@ impl<'a> Sheet<'a> {
     /// Closes the notch where a run's end meets an earlier one.
     fn corner(&mut self, ends: &[(P2, f64)], end: P2, half: f64) {
         if let Some((p, other)) = ends.iter().find(|(p, _)| (p - end).norm() < SAME) {
-            self.canvas.draw(Layer::Weld, disc(*p, half.min(*other)));
+            if !self.scene.faint {
+                self.canvas.draw(Layer::Weld, disc(*p, half.min(*other)));
+            }
         }
     }
 
     /// As thick as the throat to scale, but always visible.
     fn run_stroke(&self, run: &RunLine) -> Stroke {
-        let least = Stroke::black(LEAST_RUN);
+        let least = if self.scene.faint {
+            Stroke {
+                ink: Ink::Faint,
+                ..Stroke::black(LEAST_FAINT)
+            }
+        } else {
+            Stroke::black(LEAST_RUN)
+        };
         Stroke {
             width: (run.throat * self.view.scale)
                 .max(least.width)
@@ -282,6 +298,44 @@ impl<'a> Sheet<'a> {
             self.canvas.mark([disc(at, 0.5)]);
             self.governing(at, vec![Span::new(says, Style::Italic)]);
         }
+    }
+
+    /// Arrows at their points, the longest within bounds, to a scale of 1, 2 or 5 and their tenfolds.
+    fn vectors(&mut self) {
+        let Some(vectors) = &self.scene.vectors else {
+            return;
+        };
+        let longest = vectors
+            .arrows
+            .iter()
+            .map(|(_, f)| f.norm())
+            .fold(0.0, f64::max);
+        let Some(per_mm) = vector_scale(longest) else {
+            return;
+        };
+        let stroke = Stroke::black(0.8);
+        for (index, (at, f)) in vectors.arrows.iter().enumerate() {
+            let from = self.view.image(at);
+            let along = self.view.image(f) / (self.view.scale * per_mm);
+            let to = from + along;
+            if along.norm() < LEAST_VECTOR {
+                continue;
+            }
+            self.canvas.line(from, to, stroke);
+            self.canvas.mark([open_head(to, unit(along), stroke)]);
+            if index == 0 && !vectors.first.is_empty() {
+                let words = self
+                    .canvas
+                    .words(vec![Span::new(vectors.first.clone(), Style::Plain)]);
+                let mut places = around(to, 1.2, words.size(), unit(along));
+                places.extend(dearer(around(to, 3.5, words.size(), unit(along)), 5.0));
+                self.canvas.want(rank::LOAD, words, to, places);
+            }
+        }
+        let text = super::unfolded::plain_number(per_mm);
+        self.canvas
+            .remarks
+            .push(format!("arrows: {text} {} to the millimetre", vectors.unit));
     }
 
     fn governing_at(&self, at: P2) -> Option<String> {
@@ -429,6 +483,16 @@ impl<'a> Sheet<'a> {
         }
         ([ends[0], second], broken)
     }
+}
+
+/// Stress for each mm of arrow: the least of 1, 2, 5 and their tenfolds at which the longest fits.
+fn vector_scale(longest: f64) -> Option<f64> {
+    if !(longest > 0.0 && longest.is_finite()) {
+        return None;
+    }
+    (-12..=12)
+        .flat_map(|power| [1.0, 2.0, 5.0].map(|digit| digit * ten_to(power)))
+        .find(|per_mm| longest / per_mm <= LONGEST_VECTOR)
 }
 
 /// Bounds of the runs on the sheet; a point at the origin for a group without runs.

@@ -78,8 +78,21 @@ pub struct Stroke {
     pub width: f64,
     /// Ink.
     pub ink: Ink,
-    /// Whether it is dashed.
-    pub dashed: bool,
+    /// Its dashes.
+    pub dash: Dash,
+}
+
+/// Dashes of a stroke.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Dash {
+    /// None: a full line.
+    Full,
+    /// Dashes.
+    Dashed,
+    /// Dots.
+    Dotted,
+    /// Long dashes with dots between.
+    DashDotted,
 }
 
 /// Ink of a stroke.
@@ -89,6 +102,8 @@ pub enum Ink {
     Black,
     /// Grey, for what helps the eye but is no part of the joint.
     Grey,
+    /// Light grey: what stands under something else.
+    Faint,
     /// White, under an arrow that crosses a run.
     White,
 }
@@ -100,6 +115,8 @@ pub enum Fill {
     None,
     /// White, hides what is under it.
     White,
+    /// Light grey: weld metal in section.
+    Grey,
     /// Black.
     Black,
 }
@@ -161,7 +178,7 @@ impl Stroke {
         Self {
             width: points * super::PT,
             ink: Ink::Black,
-            dashed: false,
+            dash: Dash::Full,
         }
     }
 
@@ -171,17 +188,20 @@ impl Stroke {
         Self {
             width: points * super::PT,
             ink: Ink::Grey,
-            dashed: false,
+            dash: Dash::Full,
         }
     }
 
     /// The same, dashed.
     #[must_use]
     pub const fn dashed(self) -> Self {
-        Self {
-            dashed: true,
-            ..self
-        }
+        self.with(Dash::Dashed)
+    }
+
+    /// The same with other dashes.
+    #[must_use]
+    pub const fn with(self, dash: Dash) -> Self {
+        Self { dash, ..self }
     }
 }
 

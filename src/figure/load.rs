@@ -1,7 +1,7 @@
 //! Loads: their points, arrows and turning arrows, and the lead from the centroid.
 
 use super::canvas::{Canvas, Keep, Layer};
-use super::drawing::{Fill, Ink, Item, P2, Path, Span, Stroke, Style};
+use super::drawing::{Dash, Fill, Ink, Item, P2, Path, Span, Stroke, Style};
 use super::place::{Candidate, around, beside, dearer, rank};
 use super::rect::{Bounds, Rect};
 use super::scene::{Axis, Component, Load};
@@ -296,7 +296,7 @@ fn halo(item: &Item) -> Item {
     let stroke = path.stroke.map(|s| Stroke {
         width: s.width + 0.9,
         ink: Ink::White,
-        dashed: false,
+        dash: Dash::Full,
     });
     Item::Path(Path {
         stroke,

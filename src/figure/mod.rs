@@ -14,20 +14,24 @@ mod place;
 mod rect;
 mod scale;
 mod scene;
+mod section;
 mod shape;
 mod source;
 mod text;
 mod triad;
+mod unfolded;
 mod view;
 
 pub use canvas::firm_strokes;
 pub use compose::{Room, draw, draw_in};
-pub use drawing::{Drawing, Fill, Ink, Item, Label, P2, Path, Piece, Span, Stroke, Style};
-pub use from_note::scene;
+pub use drawing::{Dash, Drawing, Fill, Ink, Item, Label, P2, Path, Piece, Span, Stroke, Style};
+pub use from_note::{draw_note, draw_picture, scene, stress_scene};
 pub use rect::{Bounds, Rect};
-pub use scene::{Axis, CheckPoint, Component, Dimension, Governing, Load, RunLine, Scene};
+pub use scene::{Axis, CheckPoint, Component, Dimension, Governing, Load, RunLine, Scene, Vectors};
+pub use section::draw_sections;
 pub use source::{standalone_source, typst_source};
 pub use text::{Face, Measure, SerifFaces, TextWidth};
+pub use unfolded::draw_unfolded;
 
 /// A typographic point in mm: 1/72 in, 1 in = 25.4 mm.
 pub const PT: f64 = 25.4 / 72.0;

@@ -30,6 +30,21 @@ pub struct Scene {
     pub units: String,
     /// Whether the group is planar: drawn in the xy plane, seen from +z.
     pub planar: bool,
+    /// Whether the runs are an outline in grey, under what is drawn on them.
+    pub faint: bool,
+    /// Vectors at points, such as stresses, drawn to one scale.
+    pub vectors: Option<Vectors>,
+}
+
+/// Vectors of one kind, drawn as arrows with open heads.
+#[derive(Clone, Debug)]
+pub struct Vectors {
+    /// Where each stands, and the vector.
+    pub arrows: Vec<(V3, V3)>,
+    /// Unit for the scale in the caption, such as `MPa`.
+    pub unit: String,
+    /// Text beside the first; empty for none.
+    pub first: String,
 }
 
 /// A run of weld.

@@ -5,7 +5,7 @@
 
 use std::fmt::Write as _;
 
-use super::drawing::{Drawing, Fill, Ink, Item, Label, Path, Piece, Span, Stroke, Style};
+use super::drawing::{Dash, Drawing, Fill, Ink, Item, Label, Path, Piece, Span, Stroke, Style};
 use super::text::{FAMILY, SIZE_PT, SUB_DROP, SUB_SIZE};
 
 /// Margin of a page of its own (mm).
@@ -105,12 +105,14 @@ fn stroke_source(stroke: Option<Stroke>) -> String {
     let ink = match stroke.ink {
         Ink::Black => "black",
         Ink::Grey => "luma(45%)",
+        Ink::Faint => "luma(72%)",
         Ink::White => "white",
     };
-    let dash = if stroke.dashed {
-        ", dash: (1.4mm, 0.9mm)"
-    } else {
-        ""
+    let dash = match stroke.dash {
+        Dash::Full => "",
+        Dash::Dashed => ", dash: (1.4mm, 0.9mm)",
+        Dash::Dotted => ", dash: (0.35mm, 0.75mm)",
+        Dash::DashDotted => ", dash: (2.2mm, 0.6mm, 0.35mm, 0.6mm)",
     };
     format!("(paint: {ink}, thickness: {}{dash})", mm(stroke.width))
 }
@@ -119,6 +121,7 @@ const fn fill_source(fill: Fill) -> &'static str {
     match fill {
         Fill::None => "none",
         Fill::White => "white",
+        Fill::Grey => "luma(85%)",
         Fill::Black => "black",
     }
 }

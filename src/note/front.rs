@@ -2,15 +2,13 @@
 
 use super::builder::{Builder, Cell, Line, Sheet, number_column, word_column};
 use super::doc::{Align, Block, Column, FigureRef, Item, Text};
+use super::pictures::{JOINT, SECTIONS};
 use super::points::ends;
 use super::text::{emph, piece, plain, symbol};
 use crate::formula::{Origin, Printed, Symbol};
 use crate::joint::{Part, SizeSpec, ToeSpec};
 use crate::quantity::Dim;
 use crate::weld::{End, Segment, ThroatRule};
-
-/// Name of the drawing's file in the folder of the note.
-pub const FIGURE: &str = "figure";
 
 impl Builder<'_> {
     /// What the note is for.
@@ -135,11 +133,7 @@ impl Builder<'_> {
             ));
         }
         self.para(text);
-        self.block(Block::Figure(FigureRef {
-            name: FIGURE.to_owned(),
-            caption: Vec::new(),
-            alt: String::new(),
-        }));
+        self.figure(JOINT);
         if !self.points.is_empty() {
             self.point_table();
         }
@@ -147,6 +141,16 @@ impl Builder<'_> {
         if !self.planar {
             self.normals_table();
         }
+        self.figure(SECTIONS);
+    }
+
+    /// The place of a drawing; its caption is written once it is drawn.
+    pub(super) fn figure(&mut self, name: &str) {
+        self.block(Block::Figure(FigureRef {
+            name: name.to_owned(),
+            caption: Vec::new(),
+            alt: String::new(),
+        }));
     }
 
     /// The faying normals of the runs.

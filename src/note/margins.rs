@@ -4,6 +4,7 @@ use super::builder::{Builder, Cell, Line, Sheet, number_column, word_column};
 use super::calculation::{Calculation, Outcome};
 use super::doc::{Align, Column, Text};
 use super::loads::{CASES_IN_NOTE, CaseValues};
+use super::pictures::{DEMAND, STRESSES};
 use super::stress::{CaseTerms, Spot};
 use super::text::{capital, piece, plain, slug, strong, symbol};
 use super::write::NoteError;
@@ -11,6 +12,7 @@ use crate::criteria::{
     Asked, From, Governing, Ground, LimitOutcome, Margin, Side, Turn, Worked, partner, work,
     work_limit,
 };
+use crate::formula::Bound;
 use crate::formula::{Draft, Env, Origin, Printed, Symbol, Value};
 use crate::quantity::Dim;
 use crate::solve::{Batch, Points};
@@ -41,6 +43,16 @@ pub(super) struct Site {
     env: Env,
     /// f_x, f_y, f_z.
     pub(super) stress: [Value; 3],
+}
+
+impl Site {
+    /// The resultant stress, if a check asked for it.
+    pub(super) fn resultant(&self) -> Option<Value> {
+        match self.env.names.get("point_f") {
+            Some(Bound::Value(value)) => Some(*value),
+            Some(Bound::Word(_)) | None => None,
+        }
+    }
 }
 
 /// All strength checks of a calculation, the least margin first, else in file order.
@@ -137,6 +149,7 @@ impl Builder<'_> {
                 "Stress at the governing points"
             },
         );
+        self.figure(STRESSES);
         let regime = calculation.resistance.class.regime;
         let mut sites = Vec::new();
         for (index, Wanted { spot, names }) in wanted.into_iter().enumerate() {
@@ -412,6 +425,11 @@ impl Builder<'_> {
 
     /// The worst check of each case.
     pub(super) fn case_margins(&mut self, calculation: &Calculation<'_>) -> Vec<usize> {
+        if calculation.outcomes.iter().any(
+            |outcome| matches!(outcome, Outcome::Assessed(asked) if !asked.strength.is_empty()),
+        ) {
+            self.figure(DEMAND);
+        }
         let mut of_case: BTreeMap<usize, (usize, usize, &Governing)> = BTreeMap::new();
         for (outcome, given) in calculation.outcomes.iter().enumerate() {
             let Outcome::Assessed(asked) = given else {

@@ -18,6 +18,7 @@ mod lines;
 mod loads;
 mod margins;
 mod method;
+mod pictures;
 mod points;
 mod proofs;
 mod sketch;
@@ -31,8 +32,10 @@ mod write;
 
 pub use calculation::{Calculation, Outcome, Refusal};
 pub use clause::sheet_page;
-pub use front::FIGURE;
 pub use identity::Identity;
+pub use pictures::{
+    Curve, DemandSketch, Picture, SectionShape, StressSketch, Unfolded, WeldSection,
+};
 pub use sketch::{Sketch, SketchLoad, SketchRun};
 pub use standing::Standing;
 pub use trace::{

@@ -2,9 +2,10 @@
 
 use super::builder::{Builder, Piece};
 use super::calculation::{Calculation, Outcome};
-use super::doc::{Block, Doc, FigureRef, Head, Item, Text, Verdict};
+use super::doc::{Block, Doc, Head, Item, Text, Verdict};
 use super::identity::Identity;
 use super::margins::{Check, Site, asked, check_name, drawn, ranked};
+use super::pictures::Picture;
 use super::sketch::Sketch;
 use super::standing::Standing;
 use super::stress::CaseTerms;
@@ -25,8 +26,8 @@ use thiserror::Error;
 pub struct Note {
     /// The document.
     pub doc: Doc,
-    /// The data of its drawing.
-    pub sketch: Sketch,
+    /// The data of its drawings, in the order of their places.
+    pub pictures: Vec<Picture>,
     /// Its digests.
     pub identity: Identity,
     /// How it stands.
@@ -180,6 +181,7 @@ fn compose(calculation: &Calculation<'_>) -> Result<Note, NoteError> {
     });
     let first_case = checks.first().map(|check| check.governing.case);
     let sketch = b.sketch(first_case.and_then(|case| drawn(&cases, case)), governing);
+    let pictures = pictures(&b, calculation, &ground, sketch, &checks, &sites)?;
     let trace = whole_trace(&b, calculation, &checks, &identity, closure.as_ref());
     let open_items = open_section(&b, &open);
     let mut sections = b.sections();
@@ -200,11 +202,35 @@ fn compose(calculation: &Calculation<'_>) -> Result<Note, NoteError> {
     };
     Ok(Note {
         doc,
-        sketch,
+        pictures,
         identity,
         standing,
         trace,
     })
+}
+
+/// The drawings of the note, in the order of their places.
+fn pictures(
+    b: &Builder<'_>,
+    calculation: &Calculation<'_>,
+    ground: &Ground<'_>,
+    sketch: Sketch,
+    checks: &[Check],
+    sites: &[Site],
+) -> Result<Vec<Picture>, NoteError> {
+    let mut pictures = vec![
+        Picture::Joint(sketch.clone()),
+        Picture::Sections(b.weld_sections(calculation)),
+    ];
+    if let (Some(check), Some(site)) = (checks.first(), sites.first()) {
+        let stresses = b.stress_sketch(sketch, ground, &check.governing, site.resultant());
+        pictures.push(Picture::Stresses(stresses));
+        let demand = b.demand_sketch(calculation, ground, checks);
+        pictures.push(Picture::Demand(
+            demand.map_err(|fault| NoteError::Work(fault.into()))?,
+        ));
+    }
+    Ok(pictures)
 }
 
 /// Whether every second opinion agrees: a bound is printed only if it holds.
@@ -760,46 +786,21 @@ fn whole_trace(
 }
 
 impl Note {
-    /// Completes the caption of the drawing once it is drawn.
-    pub fn set_caption(&mut self, view: &str, scale: &str, remarks: &[String]) {
-        let case = self
-            .sketch
-            .case
-            .as_ref()
-            .map(|case| format!(", with case {case}"))
-            .unwrap_or_default();
-        let units = match self.sketch.units {
-            "in" => "inches",
-            other => other,
-        };
-        let remarks = remarks
-            .iter()
-            .map(|remark| format!(" {}.", capital(remark.trim_end_matches('.'))))
-            .collect::<String>();
-        let words =
-            format!("The weld group, {view}{case}. Scale {scale}; lengths in {units}.{remarks}");
-        let runs: Vec<&str> = self
-            .sketch
-            .runs
-            .iter()
-            .map(|run| run.text.as_str())
-            .collect();
-        let alt = format!(
-            "Drawing of the weld group with its runs: {}. {words}",
-            runs.join("; ")
-        );
-        for block in self
+    /// Completes the captions of a picture once it is drawn.
+    pub fn set_caption(&mut self, picture: usize, view: &str, scale: &str, remarks: &[String]) {
+        let picture = &self.pictures[picture];
+        let words = picture.caption(view, scale, remarks);
+        let blocks = self
             .doc
             .sections
             .iter_mut()
-            .flat_map(|section| &mut section.blocks)
-        {
-            if let Block::Figure(FigureRef {
-                caption, alt: text, ..
-            }) = block
+            .flat_map(|section| &mut section.blocks);
+        for block in blocks {
+            if let Block::Figure(figure) = block
+                && figure.name == picture.name()
             {
-                caption.clone_from(&plain(&words));
-                text.clone_from(&alt);
+                figure.alt = picture.alt(&words);
+                figure.caption = plain(&words);
             }
         }
     }

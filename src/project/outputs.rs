@@ -19,9 +19,19 @@ const LEFT_OVER: Duration = Duration::from_secs(3600);
 #[derive(Clone, PartialEq, Eq, Debug)]
 pub struct Output {
     /// Name within the note's folder.
-    pub name: &'static str,
+    pub name: String,
     /// Content.
     pub bytes: Vec<u8>,
+}
+
+impl Output {
+    /// An output of a name within the note's folder.
+    pub fn new(name: &str, bytes: impl Into<Vec<u8>>) -> Self {
+        Self {
+            name: name.to_owned(),
+            bytes: bytes.into(),
+        }
+    }
 }
 
 /// Writes the outputs of one note into `folder`, in the order given.
@@ -41,7 +51,7 @@ pub fn stage(folder: &Path, outputs: &[Output]) -> Result<(), ProjectError> {
         .map_err(|fault| error(folder, fault))?;
     clear_left_over(folder, staging.path());
     for output in outputs {
-        let path = staging.path().join(output.name);
+        let path = staging.path().join(&output.name);
         fs::write(&path, &output.bytes).map_err(|fault| error(&path, fault))?;
     }
     // A trace stands for a whole note: it goes first, and comes back last.
@@ -53,8 +63,9 @@ pub fn stage(folder: &Path, outputs: &[Output]) -> Result<(), ProjectError> {
         Ok(()) | Err(_) => {}
     }
     for output in outputs {
-        let path = folder.join(output.name);
-        fs::rename(staging.path().join(output.name), &path).map_err(|fault| error(&path, fault))?;
+        let path = folder.join(&output.name);
+        fs::rename(staging.path().join(&output.name), &path)
+            .map_err(|fault| error(&path, fault))?;
     }
     staging.close().map_err(|fault| error(folder, fault))
 }

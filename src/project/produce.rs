@@ -4,8 +4,8 @@ use super::ProjectError;
 use super::outputs::{Output, stage};
 use super::read::{JointFile, Surroundings, complete_joint, read_told};
 use crate::criteria::Sheet;
-use crate::figure::{SerifFaces, draw, scene, standalone_source, typst_source};
-use crate::note::{Calculation, FIGURE, Note, Outcome, sheet_page, write_note};
+use crate::figure::{SerifFaces, draw_note, standalone_source, typst_source};
+use crate::note::{Calculation, Note, Outcome, sheet_page, write_note};
 use crate::render::{Attachment, Drawings, Pdf, Press, Relation, RenderError, render_typst};
 use std::collections::BTreeMap;
 use std::path::Path;
@@ -104,31 +104,27 @@ impl Workshop {
         let mut note = write_note(&calculation)?;
         let own = &surroundings.templates;
         let render = |fault: RenderError| own.explain(&file.name, fault);
-        let drawing =
-            (kinds.markdown || kinds.pdf).then(|| draw(&scene(&note.sketch), &self.faces));
-        if let Some(drawing) = &drawing {
-            note.set_caption(&drawing.view, &drawing.scale, &drawing.remarks);
-        }
+        let drawings = if kinds.markdown || kinds.pdf {
+            draw_note(&mut note, &self.faces)
+        } else {
+            Vec::new()
+        };
         let trace = note.trace_json();
         let mut outputs = Vec::new();
-        if let (true, Some(drawing)) = (kinds.markdown, &drawing) {
+        if kinds.markdown {
             let markdown = own.templates.markdown(&note.doc).map_err(render)?;
-            outputs.push(Output {
-                name: "note.md",
-                bytes: markdown.into_bytes(),
-            });
-            let svg = self
-                .press
-                .svg(&standalone_source(drawing))
-                .map_err(render)?;
-            outputs.push(Output {
-                name: "figure.svg",
-                bytes: svg.into_bytes(),
-            });
+            outputs.push(Output::new("note.md", markdown));
+            for (name, drawing) in &drawings {
+                let svg = self.press.svg(&standalone_source(drawing));
+                outputs.push(Output::new(&format!("{name}.svg"), svg.map_err(render)?));
+            }
         }
-        if let (true, Some(drawing)) = (kinds.pdf, &drawing) {
-            let drawings = Drawings::from([(FIGURE.to_owned(), typst_source(drawing))]);
-            let source = own.templates.typst(&note.doc, &drawings).map_err(render)?;
+        if kinds.pdf {
+            let sources: Drawings = drawings
+                .iter()
+                .map(|(name, drawing)| ((*name).to_owned(), typst_source(drawing)))
+                .collect();
+            let source = own.templates.typst(&note.doc, &sources).map_err(render)?;
             let name = joint
                 .path
                 .file_name()
@@ -176,22 +172,13 @@ impl Workshop {
                 self.bounded(source.text.clone(), attachments)
             };
             let pdf = pdf.map_err(|fault| render(source.explain(fault)))?;
-            outputs.push(Output {
-                name: "note.pdf",
-                bytes: pdf.bytes,
-            });
+            outputs.push(Output::new("note.pdf", pdf.bytes));
         }
         if kinds.cases {
-            outputs.push(Output {
-                name: "cases.csv",
-                bytes: note.cases_csv().into_bytes(),
-            });
+            outputs.push(Output::new("cases.csv", note.cases_csv()));
         }
         if kinds.trace {
-            outputs.push(Output {
-                name: "trace.json",
-                bytes: trace.into_bytes(),
-            });
+            outputs.push(Output::new("trace.json", trace));
         }
         Ok(Produced { note, outputs })
     }

@@ -4,9 +4,9 @@ use super::{least, seconds};
 use clap::Parser;
 use seamnote::cli::{Arguments, run};
 use seamnote::criteria::built_in;
-use seamnote::figure::{SerifFaces, draw, scene, standalone_source, typst_source};
+use seamnote::figure::{Drawing, SerifFaces, draw_note, standalone_source, typst_source};
 use seamnote::joint::read_joint;
-use seamnote::note::{Calculation, FIGURE, write_note};
+use seamnote::note::{Calculation, write_note};
 use seamnote::render::{Attachment, Drawings, Press, Relation, render_markdown, render_typst};
 use seamnote::source::SourceFile;
 use std::path::Path;
@@ -26,7 +26,7 @@ const DEMO: &str = include_str!("../../joints/mast-foot.yaml");
 /// What the typesetter gets for one joint.
 struct Sources {
     note: String,
-    drawing: String,
+    drawings: Vec<String>,
     attachments: [Attachment; 2],
 }
 
@@ -65,15 +65,15 @@ pub(super) fn stages() {
         let told = read_joint(&file).unwrap();
         let mut note = write_note(&Calculation::of(&told, built_in()).unwrap()).unwrap();
         clock.next();
-        let drawing = draw(&scene(&note.sketch), &faces);
-        note.set_caption(&drawing.view, &drawing.scale, &drawing.remarks);
+        let drawings = draw_note(&mut note, &faces);
         clock.next();
         drop(render_markdown(&note.doc).unwrap());
         clock.next();
-        let drawings = Drawings::from([(FIGURE.to_owned(), typst_source(&drawing))]);
-        let source = render_typst(&note.doc, &drawings).unwrap();
+        let source = render_typst(&note.doc, &placed(&drawings)).unwrap();
         clock.next();
-        drop(press.svg(&standalone_source(&drawing)).unwrap());
+        for (_, drawing) in &drawings {
+            drop(press.svg(&standalone_source(drawing)).unwrap());
+        }
         clock.next();
         drop(press.pdf(&source.text, &[]).unwrap());
         clock.next();
@@ -158,7 +158,11 @@ pub(super) fn many() {
                 .unwrap(),
         )
     };
-    let svg = |n: usize| drop(press.svg(&sources[n].drawing).unwrap());
+    let svg = |n: usize| {
+        for drawing in &sources[n].drawings {
+            drop(press.svg(drawing).unwrap());
+        }
+    };
     pdf(0);
 
     let mut times: [Vec<f64>; 5] = Default::default();
@@ -245,14 +249,18 @@ fn file(n: usize) -> Arc<SourceFile> {
     })
 }
 
+/// Drawings as the note takes them.
+fn placed(drawings: &[(&str, Drawing)]) -> Drawings {
+    let source = |(name, drawing): &(&str, Drawing)| ((*name).to_owned(), typst_source(drawing));
+    drawings.iter().map(source).collect()
+}
+
 /// What the program hands to the typesetter for the n-th joint.
 fn sources(n: usize, faces: &SerifFaces) -> Sources {
     let file = file(n);
     let told = read_joint(&file).unwrap();
     let mut note = write_note(&Calculation::of(&told, built_in()).unwrap()).unwrap();
-    let drawing = draw(&scene(&note.sketch), faces);
-    note.set_caption(&drawing.view, &drawing.scale, &drawing.remarks);
-    let drawings = Drawings::from([(FIGURE.to_owned(), typst_source(&drawing))]);
+    let drawings = draw_note(&mut note, faces);
     let attachment = |name: &str, mime: &str, relation, bytes: &[u8]| Attachment {
         name: name.to_owned(),
         mime: mime.to_owned(),
@@ -261,8 +269,11 @@ fn sources(n: usize, faces: &SerifFaces) -> Sources {
         bytes: bytes.to_vec(),
     };
     Sources {
-        note: render_typst(&note.doc, &drawings).unwrap().text,
-        drawing: standalone_source(&drawing),
+        note: render_typst(&note.doc, &placed(&drawings)).unwrap().text,
+        drawings: drawings
+            .iter()
+            .map(|(_, drawing)| standalone_source(drawing))
+            .collect(),
         attachments: [
             attachment(
                 &file.name,

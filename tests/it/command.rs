@@ -110,11 +110,14 @@ fn weak_joint() -> String {
     joint_with("-17.6 kN", "-176 kN")
 }
 
-const ALL: [&str; 5] = [
+const ALL: [&str; 8] = [
     "mast-foot/cases.csv",
-    "mast-foot/figure.svg",
+    "mast-foot/demand.svg",
+    "mast-foot/joint.svg",
     "mast-foot/note.md",
     "mast-foot/note.pdf",
+    "mast-foot/sections.svg",
+    "mast-foot/stresses.svg",
     "mast-foot/trace.json",
 ];
 
@@ -180,7 +183,7 @@ fn only_makes_the_outputs_asked_for() {
     #[rustfmt::skip]
     let rows: [(&str, &[&str]); 5] = [
         ("pdf",          &["mast-foot/note.pdf"]),
-        ("markdown",     &["mast-foot/figure.svg", "mast-foot/note.md"]),
+        ("markdown",     &["mast-foot/demand.svg", "mast-foot/joint.svg", "mast-foot/note.md", "mast-foot/sections.svg", "mast-foot/stresses.svg"]),
         ("cases",        &["mast-foot/cases.csv"]),
         ("trace",        &["mast-foot/trace.json"]),
         ("pdf,trace",    &["mast-foot/note.pdf", "mast-foot/trace.json"]),
@@ -449,7 +452,7 @@ fn nothing_is_left_of_the_staging_folder() {
         .unwrap()
         .map(|entry| entry.unwrap().file_name().into_string().unwrap())
         .collect();
-    assert_eq!(entries.len(), 5, "{entries:?}");
+    assert_eq!(entries.len(), ALL.len(), "{entries:?}");
     assert!(
         !entries.iter().any(|name| name.starts_with('.')),
         "{entries:?}"

@@ -172,6 +172,8 @@ fn channel() -> Scene {
         outlines: vec![],
         units: "mm".into(),
         planar: true,
+        faint: false,
+        vectors: None,
     }
 }
 
@@ -225,6 +227,8 @@ fn tube() -> Scene {
         ],
         units: "mm".into(),
         planar: true,
+        faint: false,
+        vectors: None,
         ..Scene::default()
     }
 }
@@ -269,6 +273,8 @@ fn lug() -> Scene {
         ],
         units: "in".into(),
         planar: true,
+        faint: false,
+        vectors: None,
         ..Scene::default()
     }
 }
@@ -318,6 +324,8 @@ fn space() -> Scene {
         ],
         units: "mm".into(),
         planar: false,
+        faint: false,
+        vectors: None,
         ..Scene::default()
     }
 }
@@ -344,6 +352,8 @@ fn stitched() -> Scene {
         origin: Some(V3::zeros()),
         units: "mm".into(),
         planar: true,
+        faint: false,
+        vectors: None,
         ..Scene::default()
     };
     for row in 0..2 {
@@ -415,6 +425,8 @@ fn curved() -> Scene {
         outlines: vec![vec![at[0], v(0.0, 0.0, 0.0), at[2]]],
         units: "mm".into(),
         planar: true,
+        faint: false,
+        vectors: None,
     }
 }
 

@@ -3,8 +3,7 @@
 use clap::Parser;
 use pulldown_cmark::{Event, Options, Tag};
 use seamnote::cli::{Arguments, run};
-use seamnote::figure::{SerifFaces, draw, scene, standalone_source, typst_source};
-use seamnote::note::FIGURE;
+use seamnote::figure::{SerifFaces, draw_picture, standalone_source, typst_source};
 use seamnote::project::{
     JointFile, Kinds, Produced, Workshop, find_joints, read_joint_file, read_surroundings,
 };
@@ -62,7 +61,13 @@ fn committed_texts_are_current() {
     let mut folders = BTreeSet::new();
     for (joint, produced) in demo() {
         folders.insert(joint.stem.clone());
-        for name in ["note.md", "figure.svg"] {
+        for name in [
+            "note.md",
+            "joint.svg",
+            "sections.svg",
+            "stresses.svg",
+            "demand.svg",
+        ] {
             let path = project_folder("out").join(&joint.stem).join(name);
             let committed = std::fs::read_to_string(&path).unwrap_or_default();
             assert!(
@@ -81,10 +86,17 @@ fn committed_texts_are_current() {
 #[test]
 fn outputs_are_whole_and_the_trace_is_last() {
     for (joint, produced) in demo() {
-        let names: Vec<&str> = produced.outputs.iter().map(|output| output.name).collect();
+        let names: Vec<&str> = produced
+            .outputs
+            .iter()
+            .map(|output| output.name.as_str())
+            .collect();
         let wanted = [
             "note.md",
-            "figure.svg",
+            "joint.svg",
+            "sections.svg",
+            "stresses.svg",
+            "demand.svg",
             "note.pdf",
             "cases.csv",
             "trace.json",
@@ -131,8 +143,15 @@ fn every_pdf_conforms_and_carries_its_joint_file_and_its_trace() {
 /// The pages of a note, set again from its document.
 fn pages(press: &Press, produced: &Produced) -> PagedDocument {
     let faces = SerifFaces::embedded().unwrap();
-    let drawing = draw(&scene(&produced.note.sketch), &faces);
-    let drawings = Drawings::from([(FIGURE.to_owned(), typst_source(&drawing))]);
+    let pictures = produced.note.pictures.iter();
+    let drawings: Drawings = pictures
+        .map(|picture| {
+            (
+                picture.name().to_owned(),
+                typst_source(&draw_picture(picture, &faces)),
+            )
+        })
+        .collect();
     let source = render_typst(&produced.note.doc, &drawings).unwrap();
     press
         .pages(&source.text)
@@ -373,7 +392,8 @@ fn every_link_of_the_markdown_leads_somewhere() {
                 _ => {}
             }
         }
-        assert_eq!(images, ["figure.svg"], "{}: images", joint.stem);
+        let wanted = ["joint.svg", "sections.svg", "stresses.svg", "demand.svg"];
+        assert_eq!(images, wanted, "{}: images", joint.stem);
         assert!(
             rows > 10 && display > 20,
             "{}: {rows} rows, {display} steps",
@@ -390,21 +410,24 @@ fn every_link_of_the_markdown_leads_somewhere() {
 }
 
 #[test]
-fn the_drawing_is_one_svg_with_text_as_outlines() {
+fn each_drawing_is_an_svg_with_text_as_outlines() {
     let press = Press::new();
     let faces = SerifFaces::embedded().unwrap();
     for (joint, produced) in demo() {
-        let svg = text(produced, "figure.svg");
-        let drawing = draw(&scene(&produced.note.sketch), &faces);
-        let again = press.svg(&standalone_source(&drawing)).unwrap();
-        assert!(
-            svg == again,
-            "{}: the drawing differs when drawn again",
-            joint.stem
-        );
-        assert!(svg.starts_with("<svg"), "{}: no SVG", joint.stem);
-        for refused in ["<text", "href=\"http", "<image", "<script"] {
-            assert!(!svg.contains(refused), "{}: {refused}", joint.stem);
+        for picture in &produced.note.pictures {
+            let name = format!("{}.svg", picture.name());
+            let svg = text(produced, &name);
+            let drawing = draw_picture(picture, &faces);
+            let again = press.svg(&standalone_source(&drawing)).unwrap();
+            assert!(
+                svg == again,
+                "{}: {name} differs when drawn again",
+                joint.stem
+            );
+            assert!(svg.starts_with("<svg"), "{}: no SVG", joint.stem);
+            for refused in ["<text", "href=\"http", "<image", "<script"] {
+                assert!(!svg.contains(refused), "{}: {refused}", joint.stem);
+            }
         }
     }
 }
@@ -434,7 +457,7 @@ fn written(threads: &str) -> Vec<(PathBuf, Vec<u8>)> {
 #[test]
 fn runs_and_threads_give_the_same_bytes() {
     let (one, two) = (written("1"), written("2"));
-    assert_eq!(one.len(), 5 * demo().len(), "five outputs of each joint");
+    assert_eq!(one.len(), 8 * demo().len(), "the outputs of each joint");
     assert_eq!(one.len(), two.len(), "files of two threads");
     for ((name, bytes), (other, again)) in one.iter().zip(&two) {
         assert_eq!(name, other, "names of files");

@@ -225,6 +225,59 @@ impl<'a> Search<'a> {
         }
     }
 
+    /// Utilisation of a check along one site in one case: D/R where the demand is proportional to the
+    /// loads, else one over the least load factor that reaches the limit.
+    pub(in crate::criteria) fn along(
+        &self,
+        bench: &Bench<'_>,
+        check: usize,
+        case: usize,
+        positions: &[f64],
+    ) -> Result<Vec<f64>, Diagnostic> {
+        if self.asking.sheet.checks[check].proportional {
+            return self.ratios_along(bench, check, case, positions);
+        }
+        let place = self
+            .benches
+            .iter()
+            .position(|known| std::ptr::eq(known, bench));
+        let factor = |p: &f64| {
+            let sample = Sample {
+                bench: place.expect("the site is one of the search"),
+                p: *p,
+                ratio: 0.0,
+                near: None,
+            };
+            1.0 / self.factor(case, check, sample)
+        };
+        Ok(positions.iter().map(factor).collect())
+    }
+
+    /// max(0, D)/R of a check along one site in one case, by the batch program.
+    fn ratios_along(
+        &self,
+        bench: &Bench<'_>,
+        check: usize,
+        case: usize,
+        positions: &[f64],
+    ) -> Result<Vec<f64>, Diagnostic> {
+        let columns = self.columns(bench, &[case], positions, 1.0);
+        let batch = bench.at_points(&columns, positions.len());
+        if let Some((condition, point)) = batch.broken {
+            let place = self.place(bench, case, positions[point]);
+            return Err(bench.broken(condition, &place));
+        }
+        let [demand, capacity] = &bench.of_batch(&batch)[check];
+        let ratio = |(at, p): (usize, &f64)| {
+            let pair = Pair {
+                demand: demand.at(at),
+                capacity: capacity.at(at),
+            };
+            self.ratio_of(bench, check, pair, (case, *p, 1.0))
+        };
+        positions.iter().enumerate().map(ratio).collect()
+    }
+
     fn ratio(
         &self,
         bench: &Bench<'_>,

@@ -1,0 +1,445 @@
+//! The kinds of weld in section, square to the run: faces, legs, throat, angle, gap, planes checked.
+//!
+//! Not to scale: each section has one size on the sheet, its sizes stand beside it.
+
+use super::canvas::{Canvas, Keep, Layer};
+use super::drawing::{Drawing, Fill, Item, P2, Path, Span, Stroke, Style};
+use super::place::{Candidate, around, beside, dearer, place_labels, rank};
+use super::shape::tick;
+use super::text::{TextWidth, Words};
+use super::unfolded::finished;
+use super::view::unit;
+use crate::criteria::FailurePath;
+use crate::note::{SectionShape, WeldSection};
+use crate::quantity::real::{cos, sin, tan};
+
+/// Width and height of a section with its words (mm).
+const CELL: [f64; 2] = [44.0, 50.0];
+/// Sections in a row, and rows.
+const ACROSS: usize = 3;
+const DOWN: usize = 3;
+/// The longer leg, and the thickness of the parts (mm).
+const LEG: f64 = 11.0;
+const ATTACHED: f64 = 6.0;
+const BASE: f64 = 7.0;
+/// How far the parts reach from the root (mm).
+const REACH: f64 = 17.0;
+/// Root gap as drawn (mm).
+const GAP: f64 = 1.6;
+/// From line to line of the words below (mm).
+const LINE: f64 = 3.6;
+
+/// Draws the sections, row by row.
+#[must_use]
+pub fn draw_sections(sections: &[WeldSection], fonts: &dyn TextWidth) -> Drawing {
+    let mut canvas = Canvas::new(fonts, P2::new(128.0, 170.0));
+    for (index, section) in sections.iter().take(ACROSS * DOWN).enumerate() {
+        let (column, row) = (index % ACROSS, index / ACROSS);
+        let step = |count: usize, size: f64| count as f64 * size;
+        let origin = P2::new(step(column, CELL[0]), step(row, CELL[1]));
+        Cell {
+            canvas: &mut canvas,
+            section,
+            origin,
+        }
+        .draw();
+    }
+    if sections.len() > ACROSS * DOWN {
+        canvas.remarks.push(format!(
+            "{} further kinds of weld are not drawn",
+            sections.len() - ACROSS * DOWN
+        ));
+    }
+    let (labels, dropped) = place_labels(&mut canvas);
+    finished(canvas, labels, dropped)
+}
+
+/// A section under way; its own axes have the root as origin, x along the base, y off it.
+struct Cell<'a, 'f> {
+    canvas: &'a mut Canvas<'f>,
+    section: &'a WeldSection,
+    origin: P2,
+}
+
+/// One bead in section: root, toes on the base and on the attached part, and the plane of the throat.
+struct Bead {
+    root: P2,
+    on_base: P2,
+    on_attached: P2,
+    throat: P2,
+}
+
+impl Cell<'_, '_> {
+    fn draw(&mut self) {
+        let planes = self.section.planes.clone();
+        match self.section.shape {
+            SectionShape::Complete { tee: false } => self.butt(),
+            SectionShape::Complete { tee: true } => self.full_tee(),
+            SectionShape::Fillet(_) | SectionShape::Throat(_) | SectionShape::Partial(_) => {
+                self.tee(&planes);
+            }
+        }
+        self.words();
+    }
+
+    /// From the section's own axes to the sheet.
+    fn on_sheet(&self, p: P2) -> P2 {
+        self.origin + P2::new(p.x, -p.y)
+    }
+
+    fn path(&mut self, points: &[P2], stroke: Stroke) {
+        let points: Vec<P2> = points.iter().map(|p| self.on_sheet(*p)).collect();
+        let item = Item::Path(Path::through(&points, stroke));
+        self.canvas.draw_kept(Layer::Mark, item, Keep::Off);
+    }
+
+    fn shape(&mut self, points: &[P2], fill: Fill) {
+        let points: Vec<P2> = points.iter().map(|p| self.on_sheet(*p)).collect();
+        let path = Path {
+            stroke: Some(Stroke::black(0.9)),
+            ..Path::filled(&points, fill)
+        };
+        self.canvas
+            .draw_kept(Layer::Weld, Item::Path(path), Keep::OffIfPossible);
+    }
+
+    /// Direction of the attached part's face from the root, and the one square to it into the part.
+    fn face(&self) -> (P2, P2) {
+        let angle = self.section.angle;
+        (
+            P2::new(cos(angle), sin(angle)),
+            P2::new(-sin(angle), cos(angle)),
+        )
+    }
+
+    /// Half of the attached part's drawn thickness along the base.
+    fn width_on_base(&self) -> f64 {
+        ATTACHED / sin(self.section.angle).max(0.3)
+    }
+
+    fn lift(&self) -> f64 {
+        if self.section.gap.is_some() { GAP } else { 0.0 }
+    }
+
+    /// The two parts: the base as a strip, the attached part standing on it at its angle.
+    fn parts(&mut self) {
+        let line = Stroke::black(0.6);
+        let left = -self.width_on_base() - REACH + 3.0;
+        for y in [0.0, -BASE] {
+            self.path(&[P2::new(left, y), P2::new(REACH + 2.0, y)], line);
+        }
+        let (face, _) = self.face();
+        let lift = self.lift();
+        let slide = P2::new(lift / tan(self.section.angle).clamp(-1e6, 1e6), lift);
+        let far = P2::new(-self.width_on_base(), 0.0);
+        let top = |from: P2| from + face * (REACH / face.y.max(0.35) - lift);
+        self.path(&[top(slide), slide, far + slide, top(far + slide)], line);
+        let [attached, base] = self.section.parts.clone();
+        let middle = (top(slide) + top(far + slide)) / 2.0;
+        self.name(&attached, middle, P2::y());
+        self.name(&base, P2::new(REACH - 1.0, -BASE / 2.0), P2::x());
+    }
+
+    /// The name of a part near a place.
+    fn name(&mut self, text: &str, at: P2, toward: P2) {
+        let words = self.fit(text, Style::Italic, 18.0);
+        let at = self.on_sheet(at);
+        let toward = P2::new(toward.x, -toward.y);
+        let inside = Candidate {
+            centre: at - P2::x() * (words.size()[0] / 2.0 * toward.x),
+            angle: 0.0,
+            cost: if toward.x > 0.0 { 0.0 } else { 20.0 },
+        };
+        let mut places = vec![inside];
+        places.extend(around(at, 1.2, words.size(), toward));
+        places.extend(dearer(around(at, 3.0, words.size(), toward), 6.0));
+        self.canvas.want(rank::POINT, words, at, places);
+    }
+
+    /// A text cut to a width (mm).
+    fn fit(&self, text: &str, style: Style, width: f64) -> Words {
+        let mut words = self.canvas.words(vec![Span::new(text, style)]);
+        let mut kept = text.to_owned();
+        while words.size()[0] > width && kept.pop().is_some() {
+            words = self
+                .canvas
+                .words(vec![Span::new(format!("{}…", kept.trim_end()), style)]);
+        }
+        words
+    }
+
+    /// The beads of a tee on one side or on both.
+    fn beads(&self) -> Vec<Bead> {
+        let (face, _) = self.face();
+        let [base, attached] = match &self.section.shape {
+            SectionShape::Fillet([base, attached]) => {
+                let longest = base.0.max(attached.0);
+                [base.0 / longest, attached.0 / longest].map(|part| part * LEG)
+            }
+            SectionShape::Throat(_) | SectionShape::Partial(_) | SectionShape::Complete { .. } => {
+                [0.85 * LEG; 2]
+            }
+        };
+        let groove = matches!(self.section.shape, SectionShape::Partial(_));
+        let bead = |root: P2, x: P2| {
+            let on_attached = root + face * attached;
+            if groove {
+                // The bevel goes into the attached part; its root lies inside.
+                let inner = root - x * (0.45 * self.width_on_base());
+                let middle = (root + on_attached) / 2.0;
+                return Bead {
+                    root: inner,
+                    on_base: root,
+                    on_attached,
+                    throat: middle,
+                };
+            }
+            let on_base = root + x * base;
+            let along = on_attached - on_base;
+            let part = (root - on_base).dot(&along) / along.norm_squared();
+            Bead {
+                root,
+                on_base,
+                on_attached,
+                throat: on_base + along * part,
+            }
+        };
+        let mut beads = vec![bead(P2::zeros(), P2::x())];
+        if self.section.both {
+            beads.push(bead(P2::new(-self.width_on_base(), 0.0), -P2::x()));
+        }
+        beads
+    }
+
+    fn tee(&mut self, planes: &[FailurePath]) {
+        self.parts();
+        let beads = self.beads();
+        for bead in &beads {
+            self.shape(&[bead.root, bead.on_base, bead.on_attached], Fill::Grey);
+        }
+        let bead = &beads[0];
+        let checks = |path| planes.contains(&path);
+        let broken = Stroke::black(1.2).dashed();
+        let throat = if checks(FailurePath::Throat) {
+            broken
+        } else {
+            Stroke::black(0.5)
+        };
+        self.path(&[bead.root, bead.throat], throat);
+        self.beside_planes(bead, &checks, broken);
+        self.sizes(bead);
+        if !self.section.angle_text.is_empty() {
+            self.angle();
+        }
+        if let Some(gap) = self.section.gap.clone() {
+            let far = P2::new(-self.width_on_base(), 0.0);
+            self.label(
+                format!("gap {gap}"),
+                far + P2::new(-0.5, GAP / 2.0),
+                -P2::x(),
+            );
+        }
+    }
+
+    /// The fusion faces and the planes of the parts that are checked, each a little off the face.
+    fn beside_planes(&mut self, bead: &Bead, checks: &dyn Fn(FailurePath) -> bool, broken: Stroke) {
+        let (_, into) = self.face();
+        let rows = [
+            (
+                FailurePath::FusionFaceBase,
+                [bead.root, bead.on_base],
+                -P2::y() * 0.7,
+            ),
+            (
+                FailurePath::FusionFaceAttached,
+                [bead.root, bead.on_attached],
+                into * 0.7,
+            ),
+            (
+                FailurePath::BaseMetalBase,
+                [bead.on_base, bead.on_base - P2::y() * BASE],
+                P2::zeros(),
+            ),
+            (
+                FailurePath::BaseMetalAttached,
+                [bead.root, bead.on_attached],
+                into * 2.2,
+            ),
+        ];
+        for (path, [from, to], off) in rows {
+            if checks(path) {
+                self.path(&[from + off, to + off], broken);
+            }
+        }
+    }
+
+    /// Legs and throat with their sizes.
+    fn sizes(&mut self, bead: &Bead) {
+        let throat = self.section.throat.clone();
+        let out = unit(bead.throat - bead.root);
+        self.label(format!("throat {throat}"), bead.throat + out * 0.6, out);
+        if let SectionShape::Fillet([base, attached]) = self.section.shape.clone() {
+            self.leg(bead.root, bead.on_base, -P2::y(), &base.1);
+            let (_, into) = self.face();
+            self.leg(bead.root, bead.on_attached, into, &attached.1);
+        }
+    }
+
+    /// A leg's dimension, set off to one side.
+    fn leg(&mut self, from: P2, to: P2, out: P2, text: &str) {
+        let off = out * 3.6;
+        let thin = Stroke::black(0.35);
+        for p in [from, to] {
+            self.path(&[p + out * 1.0, p + off + out * 0.8], thin);
+        }
+        self.path(&[from + off, to + off], thin);
+        for p in [from, to] {
+            let (p, d) = (
+                self.on_sheet(p + off),
+                P2::new(to.x - from.x, from.y - to.y),
+            );
+            self.canvas.mark([tick(p, unit(d))]);
+        }
+        let words = self.canvas.words(vec![Span::new(text, Style::Plain)]);
+        let (a, b) = (self.on_sheet(from + off), self.on_sheet(to + off));
+        let toward = P2::new(out.x, -out.y);
+        let places = beside(a, b, 0.5, words.size(), toward, false);
+        self.canvas
+            .want(rank::DIMENSION, words, (a + b) / 2.0, places);
+    }
+
+    /// The angle between the faces, over the bead.
+    fn angle(&mut self) {
+        let half = self.section.angle / 2.0;
+        let radius = LEG + 2.6;
+        let points: Vec<P2> = (0..=12)
+            .map(|step| {
+                let turn = self.section.angle * f64::from(step) / 12.0;
+                P2::new(cos(turn), sin(turn)) * radius
+            })
+            .collect();
+        self.path(&points, Stroke::black(0.35));
+        let out = P2::new(cos(half), sin(half));
+        let at = P2::new(cos(half * 0.5), sin(half * 0.5)) * (radius + 0.5);
+        self.label(self.section.angle_text.clone(), at, out);
+    }
+
+    fn label(&mut self, text: String, at: P2, toward: P2) {
+        let words = self.canvas.words(vec![Span::new(text, Style::Plain)]);
+        let at = self.on_sheet(at);
+        let toward = P2::new(toward.x, -toward.y);
+        let mut places = around(at, 0.8, words.size(), toward);
+        places.extend(dearer(around(at, 2.4, words.size(), toward), 5.0));
+        self.canvas.want(rank::GOVERNING, words, at, places);
+    }
+
+    /// A tee welded through: the foot of the attached part is weld.
+    fn full_tee(&mut self) {
+        self.parts();
+        let width = self.width_on_base();
+        let (left, right) = (P2::new(-width, 0.0), P2::zeros());
+        let (face, _) = self.face();
+        let root = (left + right) / 2.0 + P2::y() * 0.6;
+        self.shape(
+            &[left, right, right + face * 6.0, root, left + face * 6.0],
+            Fill::Grey,
+        );
+        self.through(left + P2::y() * 0.6, right + P2::y() * 0.6, P2::y() * 9.0);
+    }
+
+    /// The thickness of a weld that goes through, dimensioned; a broken line if it is checked.
+    fn through(&mut self, from: P2, to: P2, off: P2) {
+        if self.section.planes.contains(&FailurePath::Throat) {
+            self.path(&[from, to], Stroke::black(1.2).dashed());
+        }
+        let thin = Stroke::black(0.35);
+        for p in [from, to] {
+            self.path(&[p + off * 0.75, p + off * 1.1], thin);
+        }
+        self.path(&[from + off, to + off], thin);
+        let d = P2::new(to.x - from.x, from.y - to.y);
+        for p in [from, to] {
+            let p = self.on_sheet(p + off);
+            self.canvas.mark([tick(p, unit(d))]);
+        }
+        let throat = format!("throat {}", self.section.throat);
+        self.label(throat, to + off, unit(to - from));
+    }
+
+    /// Two plates in line, welded through.
+    fn butt(&mut self) {
+        let line = Stroke::black(0.6);
+        let half = BASE / 2.0 + 1.5;
+        let (top, foot) = (half - 2.0, -half - 2.0);
+        for (inner, outer, side) in [(-1.0, -REACH - 2.0, -1.0), (1.0, REACH + 2.0, 1.0)] {
+            self.path(&[P2::new(outer, top), P2::new(5.0 * side, top)], line);
+            self.path(&[P2::new(outer, foot), P2::new(inner, foot)], line);
+        }
+        self.shape(
+            &[
+                P2::new(-5.0, top),
+                P2::new(5.0, top),
+                P2::new(1.0, foot),
+                P2::new(-1.0, foot),
+            ],
+            Fill::Grey,
+        );
+        let [attached, base] = self.section.parts.clone();
+        let middle = f64::midpoint(top, foot);
+        self.name(&attached, P2::new(-REACH + 6.0, middle), P2::x());
+        self.name(&base, P2::new(REACH, middle), P2::x());
+        self.through(P2::new(0.0, foot), P2::new(0.0, top), P2::x() * 8.0);
+    }
+
+    /// The runs, the kind of weld, the planes checked, in lines below.
+    fn words(&mut self) {
+        let checked: Vec<&str> = self
+            .section
+            .planes
+            .iter()
+            .map(|path| path.word())
+            .filter(|word| *word != "size and length")
+            .collect();
+        let checked = if checked.is_empty() {
+            "no strength checked".to_owned()
+        } else {
+            format!("checked: {}", checked.join(", "))
+        };
+        let lines = [
+            (self.section.runs.join(", "), Style::Bold),
+            (self.kind(), Style::Plain),
+            (checked, Style::Plain),
+        ];
+        let width = CELL[0] - 3.0;
+        let left = self.origin.x - self.width_on_base() - REACH + 3.0;
+        let mut y = self.origin.y + BASE + 5.0;
+        for (text, style) in lines {
+            let words = self.fit(&text, style, width);
+            let centre = P2::new(left + words.size()[0] / 2.0, y);
+            let label = words.label(centre, 0.0);
+            self.canvas
+                .draw_kept(Layer::Mark, Item::Label(label), Keep::Off);
+            y += LINE;
+        }
+    }
+
+    fn kind(&self) -> String {
+        let both = if self.section.both {
+            ", both sides"
+        } else {
+            ""
+        };
+        let kind = match &self.section.shape {
+            SectionShape::Fillet([base, attached]) if base.1 == attached.1 => {
+                format!("fillet, leg {}", base.1)
+            }
+            SectionShape::Fillet([base, attached]) => {
+                format!("fillet, legs {} and {}", base.1, attached.1)
+            }
+            SectionShape::Throat(_) => "fillet, stated throat".to_owned(),
+            SectionShape::Partial(_) => "partial penetration".to_owned(),
+            SectionShape::Complete { .. } => "complete penetration".to_owned(),
+        };
+        format!("{kind}{both}")
+    }
+}

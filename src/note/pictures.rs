@@ -1,0 +1,511 @@
+//! What the drawings of the note show, as data with printed texts; drawn in a room above.
+//!
+//! The joint with its load, its welds in section, the stress at its points, the demand along it.
+
+use super::builder::Builder;
+use super::calculation::{Calculation, Outcome};
+use super::margins::{Check, asked, check_name};
+use super::sketch::Sketch;
+use super::text::capital;
+use crate::criteria::{FailurePath, Governing, Ground, profiles};
+use crate::formula::Value;
+use crate::joint::{RunSpec, SizeSpec};
+use crate::quantity::Dim;
+use crate::source::Diagnostic;
+use crate::weld::{Run, ThroatRule, V3};
+
+/// Steps in which a path is followed for the drawing of demand along it.
+const STEPS: u32 = 64;
+/// Checks drawn at most, those of the largest utilisation.
+const MOST_CURVES: usize = 5;
+
+/// A drawing of the note.
+#[derive(Clone, Debug)]
+pub enum Picture {
+    /// The weld group with its governing case.
+    Joint(Sketch),
+    /// The kinds of weld in section.
+    Sections(Vec<WeldSection>),
+    /// The stress at the points of the group.
+    Stresses(StressSketch),
+    /// Demand over capacity along the unfolded weld.
+    Demand(DemandSketch),
+}
+
+/// A kind of weld in section, square to the run.
+#[derive(Clone, Debug)]
+pub struct WeldSection {
+    /// The runs of this kind, by their names.
+    pub runs: Vec<String>,
+    /// Attached part and base part, by their names.
+    pub parts: [String; 2],
+    /// What the weld is.
+    pub shape: SectionShape,
+    /// Dihedral angle between the faces (rad).
+    pub angle: f64,
+    /// The angle as text, where it is not a right one.
+    pub angle_text: String,
+    /// Root gap as told, if any.
+    pub gap: Option<String>,
+    /// Whether the other side of the attached part is welded alike.
+    pub both: bool,
+    /// The effective throat as printed, with its symbol's index, such as `a`.
+    pub throat: String,
+    /// Thickness of the attached and of the base part, if told: value and text.
+    pub thickness: [Option<(f64, String)>; 2],
+    /// The planes that the note checks.
+    pub planes: Vec<FailurePath>,
+}
+
+/// The shape of a weld in section.
+#[derive(Clone, Debug)]
+pub enum SectionShape {
+    /// Fillet: legs on the base and on the attached part, values and texts.
+    Fillet([(f64, String); 2]),
+    /// Fillet of a stated throat.
+    Throat(f64),
+    /// Partial penetration groove of a stated throat.
+    Partial(f64),
+    /// Complete penetration, a tee or a butt.
+    Complete {
+        /// Whether the joint is a tee.
+        tee: bool,
+    },
+}
+
+/// The stress at the points of the group, in one case.
+#[derive(Clone, Debug)]
+pub struct StressSketch {
+    /// The group without its load.
+    pub group: Sketch,
+    /// Points with the stress vector there, in the joint frame.
+    pub vectors: Vec<(V3, V3)>,
+    /// Resultant at the governing point as printed, with its unit.
+    pub resultant: String,
+    /// Unit of stress.
+    pub unit: String,
+    /// Name of the case.
+    pub case: String,
+}
+
+/// Demand over capacity along the unfolded weld.
+#[derive(Clone, Debug)]
+pub struct DemandSketch {
+    /// The runs in file order.
+    pub runs: Vec<Unfolded>,
+    /// One for each check, that of the largest utilisation first.
+    pub curves: Vec<Curve>,
+    /// How many checks are not drawn.
+    pub left_out: usize,
+}
+
+/// A run laid out straight.
+#[derive(Clone, Debug)]
+pub struct Unfolded {
+    /// Its name.
+    pub name: String,
+    /// Its length.
+    pub length: f64,
+    /// Numbers of the points at its ends, if they have one.
+    pub ends: [Option<String>; 2],
+    /// Whether it goes on where the run before it ends.
+    pub joined: bool,
+}
+
+/// A check along the weld.
+#[derive(Clone, Debug)]
+pub struct Curve {
+    /// Its letter, such as `a`.
+    pub letter: String,
+    /// The check and its case, for the caption.
+    pub says: String,
+    /// By run: the ratio at equal steps of its length.
+    pub runs: Vec<(usize, Vec<f64>)>,
+    /// Where it governs: run, part of its length, the utilisation and its printed text.
+    pub governing: (usize, f64, f64, String),
+}
+
+impl Picture {
+    /// Name of its file, without extension.
+    #[must_use]
+    pub const fn name(&self) -> &'static str {
+        match self {
+            Self::Joint(_) => JOINT,
+            Self::Sections(_) => SECTIONS,
+            Self::Stresses(_) => STRESSES,
+            Self::Demand(_) => DEMAND,
+        }
+    }
+
+    /// The words of its caption, once it is drawn: from where it is seen, at which scale, and what
+    /// the drawing leaves out.
+    #[must_use]
+    pub fn caption(&self, view: &str, scale: &str, remarks: &[String]) -> String {
+        let lengths = |units: &str| match units {
+            "in" => "inches".to_owned(),
+            other => other.to_owned(),
+        };
+        let remarks: String = remarks
+            .iter()
+            .map(|remark| format!(" {}.", capital(remark.trim_end_matches('.'))))
+            .collect();
+        let words = match self {
+            Self::Joint(sketch) => {
+                let case = sketch.case.as_ref();
+                let case = case.map_or(String::new(), |case| format!(", with case {case}"));
+                format!(
+                    "The weld group, {view}{case}. Scale {scale}; lengths in {}.",
+                    lengths(sketch.units)
+                )
+            }
+            Self::Sections(sections) => {
+                let kinds = if sections.len() == 1 {
+                    "The weld in section"
+                } else {
+                    "The kinds of weld in section"
+                };
+                format!(
+                    "{kinds}, square to the run; not to scale. Planes that this note checks are broken lines."
+                )
+            }
+            Self::Stresses(sketch) => format!(
+                "Stress on the throat at the points of the group in case {}, {view}; arrows {scale}.",
+                sketch.case
+            ),
+            Self::Demand(demand) => {
+                let curves: Vec<String> = demand
+                    .curves
+                    .iter()
+                    .enumerate()
+                    .map(|(at, curve)| format!("{} ({}) {}", curve.letter, DASHES[at], curve.says))
+                    .collect();
+                let rest = match demand.left_out {
+                    0 => String::new(),
+                    1 => " One check of less utilisation is not drawn.".to_owned(),
+                    some => format!(" {some} checks of less utilisation are not drawn."),
+                };
+                format!(
+                    "Utilisation along the weld, laid out run by run, each check in its governing case: {}.{rest}",
+                    curves.join("; ")
+                )
+            }
+        };
+        format!("{words}{remarks}")
+    }
+
+    /// What the drawing shows, for those who do not see it.
+    #[must_use]
+    pub fn alt(&self, caption: &str) -> String {
+        let says = match self {
+            Self::Joint(sketch) => {
+                let runs: Vec<&str> = sketch.runs.iter().map(|run| run.text.as_str()).collect();
+                let governs = sketch.governing.as_ref();
+                let governs = governs.map_or(String::new(), |(at, words)| {
+                    let number = sketch
+                        .points
+                        .iter()
+                        .find(|(point, _)| (point - at).norm() < 1e-9);
+                    let number = number.map_or(String::new(), |(_, n)| format!(" point {n}"));
+                    format!(" A ring marks{number}: {words}.")
+                });
+                let load = sketch.load.as_ref().map_or(String::new(), |load| {
+                    let acting = |parts: &[(f64, String); 3], letter: &str| {
+                        let parts = parts.iter().zip(["x", "y", "z"]);
+                        parts
+                            .filter(|((value, _), _)| *value != 0.0)
+                            .map(|((_, text), axis)| format!("{letter}{axis} = {text}"))
+                            .collect::<Vec<_>>()
+                    };
+                    let mut all = acting(&load.force, "F");
+                    all.extend(acting(&load.moment, "M"));
+                    format!(" At the load point P act {}.", all.join(", "))
+                });
+                format!(
+                    "Drawing of the weld group with its runs: {}.{governs}{load}",
+                    runs.join("; ")
+                )
+            }
+            Self::Sections(sections) => {
+                let each: Vec<String> = sections
+                    .iter()
+                    .map(|section| {
+                        format!(
+                            "{}: {}, throat {}",
+                            section.runs.join(", "),
+                            section.shape.words(),
+                            section.throat
+                        )
+                    })
+                    .collect();
+                format!("Sections through the welds. {}.", each.join("; "))
+            }
+            Self::Stresses(sketch) => {
+                let governs = match sketch.resultant.as_str() {
+                    "" => String::new(),
+                    resultant => format!("; {resultant} at the governing point"),
+                };
+                format!(
+                    "Drawing of the weld group with an arrow at each point for the stress there{governs}."
+                )
+            }
+            Self::Demand(demand) => {
+                let each: Vec<String> = demand
+                    .curves
+                    .iter()
+                    .map(|curve| {
+                        format!(
+                            "curve {} is largest on {}, {}",
+                            curve.letter, demand.runs[curve.governing.0].name, curve.governing.3
+                        )
+                    })
+                    .collect();
+                let runs: Vec<&str> = demand.runs.iter().map(|run| run.name.as_str()).collect();
+                format!(
+                    "Diagram over the runs {}; the capacity is the line at 1: {}.",
+                    runs.join(", "),
+                    each.join("; ")
+                )
+            }
+        };
+        format!("{says} {caption}")
+    }
+}
+
+/// Names of the drawings' files.
+pub(super) const JOINT: &str = "joint";
+pub(super) const SECTIONS: &str = "sections";
+pub(super) const STRESSES: &str = "stresses";
+pub(super) const DEMAND: &str = "demand";
+
+/// How the curves of demand are drawn, in their order.
+const DASHES: [&str; MOST_CURVES] = ["full", "dashed", "dotted", "dash-dotted", "thin"];
+
+impl SectionShape {
+    fn words(&self) -> String {
+        match self {
+            Self::Fillet([base, attached]) if base.1 == attached.1 => {
+                format!("fillet, leg {}", base.1)
+            }
+            Self::Fillet([base, attached]) => {
+                format!(
+                    "fillet, leg {} on the base, {} on the attached part",
+                    base.1, attached.1
+                )
+            }
+            Self::Throat(_) => "fillet of stated throat".to_owned(),
+            Self::Partial(_) => "partial penetration".to_owned(),
+            Self::Complete { tee: true } => "complete penetration, tee".to_owned(),
+            Self::Complete { tee: false } => "complete penetration, butt".to_owned(),
+        }
+    }
+}
+
+impl Builder<'_> {
+    /// The kinds of weld, each once, in file order.
+    pub(super) fn weld_sections(&self, calculation: &Calculation<'_>) -> Vec<WeldSection> {
+        let mut found: Vec<(usize, WeldSection)> = Vec::new();
+        for (index, run) in self.runs.iter().enumerate() {
+            let alike = found
+                .iter_mut()
+                .find(|(first, _)| self.alike(&self.runs[*first], run));
+            match alike {
+                Some((_, section)) => {
+                    if !section.runs.contains(&run.name) {
+                        section.runs.push(run.name.clone());
+                    }
+                }
+                None => found.push((index, self.weld_section(calculation, index))),
+            }
+        }
+        found.into_iter().map(|(_, section)| section).collect()
+    }
+
+    /// Whether two runs look the same in section.
+    fn alike(&self, one: &Run, other: &Run) -> bool {
+        let spec = |run: &Run| &self.joint.weld.runs[run.spec];
+        let told = |spec: &RunSpec| {
+            (
+                spec.gap.as_ref().map(|gap| gap.value.text()),
+                spec.both_sides.is_some(),
+            )
+        };
+        one.rule == other.rule
+            && one.joins == other.joins
+            && (one.angle - other.angle).abs() < 1e-9
+            && told(spec(one)) == told(spec(other))
+    }
+
+    fn weld_section(&self, calculation: &Calculation<'_>, index: usize) -> WeldSection {
+        let run = &self.runs[index];
+        let spec = &self.joint.weld.runs[run.spec];
+        let unit = format!(" {}", self.joint.units.value.length());
+        let bare = |text: String| text.replace(&unit, "");
+        let leg = |given: &crate::joint::GivenAt| (given.value.value, bare(given.value.text()));
+        let shape = match &spec.size {
+            SizeSpec::Fillet { leg: told, .. } => SectionShape::Fillet([leg(told), leg(told)]),
+            SizeSpec::Unequal {
+                on_base,
+                on_attached,
+            } => SectionShape::Fillet([leg(on_base), leg(on_attached)]),
+            SizeSpec::Throat { .. } => SectionShape::Throat(run.throat),
+            SizeSpec::Partial { .. } => SectionShape::Partial(run.throat),
+            SizeSpec::Complete { tee, .. } => SectionShape::Complete { tee: *tee },
+        };
+        let right = (run.angle - std::f64::consts::FRAC_PI_2).abs() < 1e-9;
+        let part = |at: usize| &self.joint.parts[run.joins[at]];
+        let thickness = [0, 1].map(|at: usize| {
+            let told = part(at).thickness.as_ref()?;
+            Some((told.value.value, bare(told.value.text())))
+        });
+        let throat = self.run_values[index].get("t");
+        let throat = throat.map_or(String::new(), |value| self.ledger.printed(*value).text());
+        let mut planes: Vec<FailurePath> = Vec::new();
+        for outcome in &calculation.outcomes {
+            if let Outcome::Assessed(asked) = outcome
+                && !asked.strength.is_empty()
+                && !asked.left_out.contains(&index)
+            {
+                planes.extend(&asked.sheet.covers);
+            }
+        }
+        planes.sort_unstable();
+        planes.dedup();
+        WeldSection {
+            runs: vec![run.name.clone()],
+            parts: [0, 1].map(|at| part(at).name.value.clone()),
+            shape,
+            angle: run.angle,
+            angle_text: if right || matches!(run.rule, ThroatRule::Complete { .. }) {
+                String::new()
+            } else {
+                format!(
+                    "{}°",
+                    crate::formula::Printed::of(run.angle.to_degrees(), 5, 7, 1e-6).text()
+                )
+            },
+            gap: spec.gap.as_ref().map(|gap| bare(gap.value.text())),
+            both: spec.both_sides.is_some(),
+            throat,
+            thickness,
+            planes,
+        }
+    }
+
+    /// The stress at the points of the group in the case of a check, and the resultant where it governs.
+    pub(super) fn stress_sketch(
+        &self,
+        group: Sketch,
+        ground: &Ground<'_>,
+        governing: &Governing,
+        resultant: Option<Value>,
+    ) -> StressSketch {
+        let mut vectors: Vec<(V3, V3)> = Vec::new();
+        let mut add = |run: usize, p: f64| {
+            let at = self.runs[run].path.point(p);
+            if vectors
+                .iter()
+                .all(|(known, _)| (known - at).norm() > 1e-9 * self.properties.size)
+            {
+                vectors.push((at, (ground.stress)(governing.case, run, p)));
+            }
+        };
+        add(governing.run, governing.s);
+        for (index, run) in self.runs.iter().enumerate() {
+            let steps: u32 = match run.path {
+                crate::weld::Segment::Straight { .. } => 2,
+                crate::weld::Segment::Arc { sweep, .. } if sweep.abs() > 3.0 => 8,
+                crate::weld::Segment::Arc { .. } => 4,
+            };
+            for step in 0..=steps {
+                add(index, f64::from(step) / f64::from(steps));
+            }
+        }
+        let units = self.joint.units.value;
+        StressSketch {
+            group: Sketch {
+                load: None,
+                dimensions: Vec::new(),
+                ..group
+            },
+            vectors,
+            resultant: resultant.map_or(String::new(), |value| {
+                let printed = self.ledger.printed(value).text();
+                format!("{printed} {}", units.text(Dim::STRESS))
+            }),
+            unit: units.text(Dim::STRESS),
+            case: self.joint.loads.cases[governing.case].name.value.clone(),
+        }
+    }
+
+    /// Demand over capacity along the weld, the checks of the largest utilisation first.
+    ///
+    /// # Errors
+    ///
+    /// The fault of a place at which a check has no number.
+    pub(super) fn demand_sketch(
+        &self,
+        calculation: &Calculation<'_>,
+        ground: &Ground<'_>,
+        checks: &[Check],
+    ) -> Result<DemandSketch, Diagnostic> {
+        let mut order: Vec<&Check> = Vec::new();
+        for check in checks {
+            let same =
+                |known: &&mut &Check| known.outcome == check.outcome && known.check == check.check;
+            match order.iter_mut().find(same) {
+                Some(known) if check.governing.severity() > known.governing.severity() => {
+                    *known = check;
+                }
+                Some(_) => {}
+                None => order.push(check),
+            }
+        }
+        order.sort_by(|a, b| b.governing.severity().total_cmp(&a.governing.severity()));
+        let left_out = order.len().saturating_sub(MOST_CURVES);
+        let mut curves = Vec::new();
+        for (check, letter) in order.iter().take(MOST_CURVES).zip('a'..) {
+            let asked = asked(calculation, check.outcome);
+            let governing = &check.governing;
+            let followed = profiles(ground, asked, check.check, governing.case, STEPS)?;
+            let worked = check.worked.as_ref().and_then(|worked| worked.utilisation);
+            let text = worked.map_or(String::new(), |value| {
+                format!("U = {}", self.ledger.printed(value).text())
+            });
+            curves.push(Curve {
+                letter: letter.to_string(),
+                says: format!(
+                    "{}, case {}",
+                    check_name(asked, check.check),
+                    self.joint.loads.cases[governing.case].name.value
+                ),
+                runs: followed
+                    .into_iter()
+                    .map(|along| (along.run, along.ratios))
+                    .collect(),
+                governing: (governing.run, governing.s, governing.utilisation, text),
+            });
+        }
+        Ok(DemandSketch {
+            runs: self.unfolded(),
+            curves,
+            left_out,
+        })
+    }
+
+    fn unfolded(&self) -> Vec<Unfolded> {
+        let near = 1e-6 * self.properties.size;
+        let mut last: Option<V3> = None;
+        let unfold = |run: &Run| {
+            let [from, to] = super::points::ends(&run.told);
+            let joined = last.is_some_and(|last| (last - from).norm() <= near);
+            last = Some(to);
+            Unfolded {
+                name: run.name.clone(),
+                length: run.path.length(),
+                ends: [from, to].map(|at| self.point_at(at).map(|point| point.number.to_string())),
+                joined,
+            }
+        };
+        self.runs.iter().map(unfold).collect()
+    }
+}

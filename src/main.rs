@@ -2,7 +2,7 @@
 
 use clap::Parser;
 use seamnote::cli::{Arguments, run};
-use std::io::{IsTerminal, Write};
+use std::io::{ErrorKind, IsTerminal, Write};
 use std::process::ExitCode;
 
 /// A faster allocator: typesetting makes many small allocations.
@@ -21,10 +21,19 @@ fn main() -> ExitCode {
         }
     };
     let said = run(&arguments, terminal, &progress);
-    // A closed pipe is no fault of the work done.
-    let _ = std::io::stdout().write_all(said.out.as_bytes());
+    let mut out = std::io::stdout();
+    let told = out
+        .write_all(said.out.as_bytes())
+        .and_then(|()| out.flush());
     let _ = std::io::stderr().write_all(said.err.as_bytes());
-    ExitCode::from(said.code)
+    match told {
+        // A reader that has seen enough closes the pipe: no fault of the work done.
+        Err(fault) if fault.kind() != ErrorKind::BrokenPipe => {
+            let _ = writeln!(std::io::stderr(), "error: standard output: {fault}");
+            ExitCode::FAILURE
+        }
+        Ok(()) | Err(_) => ExitCode::from(said.code),
+    }
 }
 
 /// Writes how far the work is over what stood in the line; after the last joint clears it.

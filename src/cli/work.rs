@@ -26,6 +26,9 @@ pub struct Said {
     pub code: u8,
 }
 
+/// Stack of a worker (bytes): a template of the size allowed may nest all its expressions.
+const STACK: usize = 256 * 1024 * 1024;
+
 /// How one joint stands.
 struct Outcome {
     line: String,
@@ -153,7 +156,8 @@ fn work(
         Mutex::new(BTreeMap::new());
     std::thread::scope(|threads_of| {
         for _ in 0..threads {
-            threads_of.spawn(|| {
+            let worker = std::thread::Builder::new().stack_size(STACK);
+            let started = worker.spawn_scoped(threads_of, || {
                 loop {
                     let index = next.fetch_add(1, Ordering::Relaxed);
                     let Some(joint) = joints.get(index) else {
@@ -167,6 +171,7 @@ fn work(
                     progress(results.len(), joints.len());
                 }
             });
+            started.expect("the machine starts a thread");
         }
     });
     let results = results

@@ -426,6 +426,23 @@ pub struct CheckSpec {
     pub place: Place,
 }
 
+impl CheckSpec {
+    /// Whether another entry gives the same values to the same sheet.
+    #[must_use]
+    pub fn says_same(&self, other: &Self) -> bool {
+        let values = |check: &Self| {
+            let mut values: Vec<(String, String)> = check
+                .values
+                .iter()
+                .map(|(name, value)| (name.value.clone(), value.value.clone()))
+                .collect();
+            values.sort();
+            values
+        };
+        self.clause.value == other.clause.value && values(self) == values(other)
+    }
+}
+
 /// An assumption of the note.
 #[derive(Clone, Debug)]
 pub struct Assumption {

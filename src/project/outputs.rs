@@ -45,6 +45,13 @@ pub fn stage(folder: &Path, outputs: &[Output]) -> Result<(), ProjectError> {
         what: format!("cannot be written: {fault}"),
     };
     fs::create_dir_all(folder).map_err(|fault| error(folder, fault))?;
+    // What stands in the way is found before anything is changed.
+    for output in outputs {
+        let path = folder.join(&output.name);
+        if path.is_dir() {
+            return Err(error(&path, std::io::ErrorKind::IsADirectory.into()));
+        }
+    }
     let staging = tempfile::Builder::new()
         .prefix(STAGING)
         .tempdir_in(folder)

@@ -6,7 +6,7 @@ use super::{ProjectError, shown};
 use crate::criteria::{Library, built_in, read_sheet};
 use crate::joint::{Joint, ProjectFile, read_joint_node, read_project};
 use crate::source::{Diagnostic, Faults, Node, Place, SourceFile, Value, parse_yaml};
-use std::collections::BTreeMap;
+use std::collections::{BTreeMap, BTreeSet};
 use std::fs;
 use std::path::{Path, PathBuf};
 use std::sync::Arc;
@@ -26,6 +26,8 @@ pub struct JointFile {
     pub folder: PathBuf,
     /// Name of its folder of outputs: the file's name without extension.
     pub stem: String,
+    /// Whether its folder was named, not the file itself: then it may be no link out of the folder.
+    pub listed: bool,
     /// What is wrong with it beside the other joints.
     pub faults: Vec<Diagnostic>,
 }
@@ -54,8 +56,10 @@ pub fn find_joints(paths: &[PathBuf]) -> Result<Vec<JointFile>, ProjectError> {
                     .and_then(|name| name.to_str())
                     .unwrap_or_default();
                 if is_yaml(&entry) && !entry.is_dir() && name != PROJECT_FILE {
-                    within(path, &entry)?;
-                    found.push(joint_file(&entry));
+                    found.push(JointFile {
+                        listed: true,
+                        ..joint_file(&entry)
+                    });
                 }
             }
             if found.len() == before {
@@ -76,6 +80,8 @@ pub fn find_joints(paths: &[PathBuf]) -> Result<Vec<JointFile>, ProjectError> {
             return Err(file_error(path, "there is no such file or folder"));
         }
     }
+    let mut seen: BTreeSet<PathBuf> = BTreeSet::new();
+    found.retain(|joint| seen.insert(joint.path.clone()));
     let mut stems: BTreeMap<&str, &Path> = BTreeMap::new();
     for joint in &found {
         if joint
@@ -149,11 +155,10 @@ fn note_number(root: &Node) -> Option<(String, Place)> {
     }
 }
 
-/// Whether a file of a folder is a user's YAML; editors and archives leave `.#x.yaml`, `._x.yaml`.
+/// Whether a file of a folder is a user's YAML; hidden ones, which editors and archives leave, are not.
 fn is_yaml(path: &Path) -> bool {
     let name = path.file_name().unwrap_or_default().to_string_lossy();
-    let left_over = name.starts_with(".#") || name.starts_with("._");
-    !left_over && (name.ends_with(".yaml") || name.ends_with(".yml"))
+    !name.starts_with('.') && (name.ends_with(".yaml") || name.ends_with(".yml"))
 }
 
 fn joint_file(path: &Path) -> JointFile {
@@ -169,6 +174,7 @@ fn joint_file(path: &Path) -> JointFile {
         path: path.to_owned(),
         folder: folder.to_owned(),
         stem: stem.into_owned(),
+        listed: false,
         faults: Vec::new(),
     }
 }
@@ -329,6 +335,9 @@ pub fn complete_joint(
     joint: &JointFile,
     surroundings: &Surroundings,
 ) -> Result<Completed, ProjectError> {
+    if joint.listed {
+        within(&joint.folder, &joint.path)?;
+    }
     let file = read_joint_file(&joint.path)?;
     let own = parse_yaml(&file)?;
     let mut faults = joint.faults.clone();

@@ -11,6 +11,9 @@ use std::sync::Arc;
 /// Folder beside the joints that holds a project's own templates.
 const FOLDER: &str = "templates";
 
+/// Bytes of a template at most: its expressions nest on the stack.
+const LARGEST: usize = 200_000;
+
 /// The templates of a project.
 #[derive(Clone, Debug, Default)]
 pub struct OwnTemplates {
@@ -48,6 +51,13 @@ pub(super) fn read_templates(folder: &Path) -> Result<OwnTemplates, ProjectError
         };
         within(folder, &path)?;
         let file = read_joint_file(&path)?;
+        if file.text.len() > LARGEST {
+            let what = format!(
+                "has {} bytes, more than the {LARGEST} of a template",
+                file.text.len()
+            );
+            return Err(file_error(&path, what));
+        }
         replaced.clone_from(&file.text);
         own.files.insert(name.into_owned(), file);
     }
@@ -90,9 +100,12 @@ impl OwnTemplates {
                     .into_iter()
                     .collect()
             }
-            RenderError::Unresolved(_) | RenderError::Glyphs(_) | RenderError::Internal(_) => {
-                Vec::new()
-            }
+            RenderError::Unresolved(_) | RenderError::Glyphs(_) => self.somewhere(&fault),
+            RenderError::Internal(_) => Vec::new(),
+        };
+        let faults = match &fault {
+            RenderError::Typeset(_) if faults.is_empty() => self.somewhere(&fault),
+            _ => faults,
         };
         if faults.is_empty() {
             return ProjectError::Render {
@@ -102,6 +115,19 @@ impl OwnTemplates {
         }
         let setting = |told: Diagnostic| told.help(format!("met while setting {joint}"));
         Faults(faults.into_iter().map(setting).collect()).into()
+    }
+
+    /// A fault that no line is known of: at the top of the first own template that the note is set with.
+    fn somewhere(&self, fault: &RenderError) -> Vec<Diagnostic> {
+        let mut names = self.files.keys();
+        let place = names.find_map(|name| self.place(name, 1));
+        let told = |place| {
+            let words = fault.to_string();
+            let words = words.lines().next().unwrap_or_default();
+            Diagnostic::error("typesetting", words, &place)
+                .help("somewhere in the templates of the project")
+        };
+        place.map(told).into_iter().collect()
     }
 
     /// A line of an own template, without its indent.

@@ -9,7 +9,7 @@ pub mod real;
 mod unit;
 
 pub use given::{Given, GivenError};
-pub use unit::{Conversion, Factor, Unit, UnitError};
+pub use unit::{Conversion, Factor, Unit, UnitError, near_unit};
 
 use std::fmt;
 

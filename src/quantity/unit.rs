@@ -84,6 +84,37 @@ pub(super) const INCH: f64 = 25.4;
 /// One kgf in N, exact (standard gravity, 3rd CGPM 1901).
 const KGF: f64 = 9.806_65;
 
+/// Names that a unit is usually written with.
+const USUAL: [&str; 20] = [
+    "N", "kN", "MN", "kgf", "lbf", "kip", "mm", "cm", "m", "in", "ft", "Pa", "kPa", "MPa", "GPa",
+    "psi", "ksi", "deg", "rad", "daN",
+];
+
+/// The unit that a name was most likely meant for: the same but for case or a plural `s`, or its word.
+#[must_use]
+pub fn near_unit(name: &str) -> Option<&'static str> {
+    let low = name.to_lowercase();
+    let words = [
+        ("inches", "in"),
+        ("feet", "ft"),
+        ("degrees", "deg"),
+        ("newton", "N"),
+        ("°", "deg"),
+        ("pounds", "lbf"),
+        ("lbs", "lbf"),
+        ("lb", "lbf"),
+    ];
+    let word = words
+        .into_iter()
+        .find(|(word, _)| *word == low)
+        .map(|(_, unit)| unit);
+    let bare = low.strip_suffix('s').unwrap_or(&low);
+    word.or_else(|| {
+        let like = |unit: &&&str| unit.to_lowercase() == low || unit.to_lowercase() == bare;
+        USUAL.iter().find(like).copied()
+    })
+}
+
 /// Names of atoms: text, and the bases it stands for with their powers.
 fn atom(name: &str) -> Option<Vec<Part>> {
     let force = |newton: f64| {

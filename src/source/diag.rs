@@ -31,6 +31,21 @@ pub struct Diagnostic {
     pub help: Vec<String>,
 }
 
+/// Characters of a message that are told at most: a value may be as long as its file.
+const LONGEST: usize = 400;
+
+/// A message with its middle left out if it is too long.
+fn bounded(message: String) -> String {
+    let count = message.chars().count();
+    if count <= LONGEST {
+        return message;
+    }
+    let half = LONGEST / 2;
+    let head: String = message.chars().take(half).collect();
+    let tail: String = message.chars().skip(count - half).collect();
+    format!("{head} … {tail}")
+}
+
 impl Diagnostic {
     /// A fault that refuses the file.
     #[must_use]
@@ -38,7 +53,7 @@ impl Diagnostic {
         Self {
             code,
             severity: Severity::Error,
-            message: message.into(),
+            message: bounded(message.into()),
             place: place.clone(),
             help: Vec::new(),
         }
@@ -56,7 +71,7 @@ impl Diagnostic {
     /// Adds a line of help.
     #[must_use]
     pub fn help(mut self, line: impl Into<String>) -> Self {
-        self.help.push(line.into());
+        self.help.push(bounded(line.into()));
         self
     }
 

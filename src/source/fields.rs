@@ -6,6 +6,9 @@
 use super::item::{listed, nearest_of};
 use super::{Diagnostic, FaultBag, Item, KeyTable, Node, Place, Told};
 
+/// Items of a list of words at most: what no reader reads is no part of a note.
+const MOST: usize = 1000;
+
 /// A map being read key by key; [`Fields::finish`] refuses what was not asked for.
 ///
 /// # Examples
@@ -142,9 +145,9 @@ impl<'a> Fields<'a> {
     #[must_use]
     pub fn misspells(&self, keys: &[&str]) -> bool {
         let mut strangers = self.entries.iter().zip(&self.taken);
-        strangers.any(|((typed, _), taken)| {
+        strangers.any(|((typed, node), taken)| {
             let strange = !taken && self.table.find(&typed.value).is_none();
-            let meant = || self.meant(&typed.value);
+            let meant = || self.meant(&typed.value, node);
             strange && meant().is_some_and(|meant| keys.contains(&meant))
         })
     }
@@ -195,16 +198,25 @@ impl<'a> Fields<'a> {
         key: &'static str,
         read: impl FnMut(Item<'a>) -> Option<T>,
     ) -> Vec<T> {
-        self.take(key)
-            .and_then(|item| item.list(read))
-            .unwrap_or_default()
+        let Some(item) = self.take(key) else {
+            return Vec::new();
+        };
+        let count = item.count();
+        if count > MOST {
+            let message = format!("`{key}` has {count} items, but a note takes {MOST} at most");
+            let fault = Diagnostic::error("too-many", message, item.place());
+            self.faults
+                .push(fault.help("refer to a document that holds them"));
+            return Vec::new();
+        }
+        item.list(read).unwrap_or_default()
     }
 
     /// Takes all keys not asked for by name; one that looks like a slip for a known key is a fault.
     pub fn free(&mut self) -> Vec<(&'a Told<String>, Item<'a>)> {
         let mut free = Vec::new();
         for (at, (key, node)) in self.entries.iter().enumerate() {
-            if self.taken[at] || self.meant(&key.value).is_some() {
+            if self.taken[at] || self.meant(&key.value, node).is_some() {
                 continue;
             }
             self.taken[at] = true;
@@ -230,13 +242,30 @@ impl<'a> Fields<'a> {
     fn unknown(&self, key: &Told<String>, node: &Node) -> Diagnostic {
         let message = format!("`{}` is no key of {}", key.value, self.table.what);
         let mut fault = Diagnostic::error("unknown-key", message, &key.place);
-        if let Some(meant) = self.meant(&key.value) {
+        if let Some(meant) = self.unparted(&key.value, node) {
+            let value = key.value[meant.len()..].trim_start_matches([':', '=', ' ']);
+            fault = fault.help(format!(
+                "a colon and a blank part a key from its value: `{meant}: {value}`"
+            ));
+        } else if let Some(meant) = self.meant(&key.value, node) {
             fault = fault.help(format!("did you mean `{meant}`?"));
         }
-        if node.value == super::Value::Null {
+        if node.value == super::Value::Null && self.unparted(&key.value, node).is_none() {
             fault = fault.help("if it is part of a text: a comma inside `{ }` ends a text, so quote the whole text");
         }
         fault.help(format!("allowed here: {}", listed(&self.names())))
+    }
+
+    /// The key that a text begins with which YAML took for a key as a whole: `fillet:6`, `fillet = 6`.
+    fn unparted(&self, typed: &str, node: &Node) -> Option<&'static str> {
+        if node.value != super::Value::Null {
+            return None;
+        }
+        let mut names = self.names().into_iter();
+        names.find(|name| {
+            let rest = typed.strip_prefix(name);
+            rest.is_some_and(|rest| rest.starts_with([':', '=', ' ']))
+        })
     }
 
     fn names(&self) -> Vec<&'static str> {
@@ -247,7 +276,10 @@ impl<'a> Fields<'a> {
     ///
     /// Where any key may stand: the same but for case, `_` and spaces, or one or two slips away
     /// from a long word. Short symbols may differ by a letter (`f_y`, `f_t`).
-    fn meant(&self, typed: &str) -> Option<&'static str> {
+    fn meant(&self, typed: &str, node: &Node) -> Option<&'static str> {
+        if let Some(key) = self.unparted(typed, node) {
+            return Some(key);
+        }
         if self.table.free.is_none() {
             return nearest_of(typed, &self.names());
         }

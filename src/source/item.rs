@@ -171,6 +171,15 @@ impl<'a> Item<'a> {
         items.into_iter().collect()
     }
 
+    /// How many items a list has; 0 for what is none.
+    #[must_use]
+    pub fn count(self) -> usize {
+        match &self.node.value {
+            Value::List(nodes) => nodes.len(),
+            Value::Scalar { .. } | Value::Map(_) | Value::Null => 0,
+        }
+    }
+
     /// The items of a list, unread.
     pub fn items(self) -> Option<Vec<Self>> {
         match &self.node.value {

@@ -29,10 +29,16 @@ impl Stop<'_> {
         if self.info.contains("unknown anchor") {
             return alias_fault(&self.point(end));
         }
-        if let Some(fault) = self.line_before_fault() {
+        if let Some(fault) = self
+            .line_before_fault()
+            .or_else(|| self.no_colon_fault(start, end))
+        {
             return fault;
         }
-        if let Some(tab) = leading_tab(text, start, end) {
+        if let Some(fault) = self.quote_of_lines_fault() {
+            return fault;
+        }
+        if let Some(tab) = leading_tab(text, start) {
             let place = self.place(tab, tab + 1);
             return Diagnostic::error("tab-indent", "a tab indents this line", &place)
                 .help("indent with spaces");
@@ -90,6 +96,48 @@ impl Stop<'_> {
             '{'
         };
         Some(self.not_closed(bracket, start + open, &self.place(self.at, self.at)))
+    }
+
+    /// The fault of a line that is to be a key and its value, but has no colon with a blank: the line
+    /// of the stop, or the one before it if it starts in the same column.
+    fn no_colon_fault(&self, start: usize, end: usize) -> Option<Diagnostic> {
+        if self.bracket.is_some() {
+            return None;
+        }
+        let text = self.file.text.as_str();
+        let indent = |line: &str| line.len() - line.trim_start().len();
+        let own = &text[start..end];
+        let before = line_with_more(text, start.checked_sub(1)?);
+        let lacks = |line: &str| {
+            let words = line.trim();
+            let key = words.starts_with(|c: char| c.is_ascii_alphabetic());
+            key && !words.contains(": ") && !words.ends_with(':')
+        };
+        let (at, line) = [before, Some((start, own))]
+            .into_iter()
+            .flatten()
+            .find(|(_, line)| indent(line) == indent(own) && lacks(line))?;
+        let from = at + indent(line);
+        let place = self.place(from, from + line.trim().len());
+        let message = "this line has no colon with a blank behind its key";
+        Some(Diagnostic::error("yaml-syntax", message, &place).help("write `key: value`"))
+    }
+
+    /// The fault of a quote that was closed only by the next one, in a line below.
+    fn quote_of_lines_fault(&self) -> Option<Diagnostic> {
+        if !self.info.contains("trailing content after") {
+            return None;
+        }
+        let before = self.file.text[..self.at].trim_end();
+        let quote = before
+            .chars()
+            .next_back()
+            .filter(|c| matches!(c, '"' | '\''))?;
+        let opened = before[..before.len() - 1].rfind(quote)?;
+        before[opened..].contains('\n').then(|| {
+            let end = opened + before[opened..].find('\n').unwrap_or(1);
+            self.quote_fault(&self.place(opened, end))
+        })
     }
 
     /// The fault of a bracket that is not closed before `point`.
@@ -215,15 +263,24 @@ fn line_with_more(text: &str, mut end: usize) -> Option<(usize, &str)> {
     }
 }
 
-/// The byte of a tab that indents the line at fault or the next one.
-fn leading_tab(text: &str, line_start: usize, line_end: usize) -> Option<usize> {
+/// Lines in which the tab at fault is looked for, from that of the stop.
+const LINES_AHEAD: usize = 4;
+
+/// The byte of a tab that indents the line at fault or one soon below it.
+fn leading_tab(text: &str, line_start: usize) -> Option<usize> {
     let tab_of = |from: usize, line: &str| {
         let indent = line.len() - line.trim_start_matches([' ', '\t']).len();
         line[..indent].find('\t').map(|at| from + at)
     };
-    let next_start = (line_end + 1).min(text.len());
-    let next = text[next_start..].split('\n').next().unwrap_or_default();
-    tab_of(line_start, &text[line_start..line_end]).or_else(|| tab_of(next_start, next))
+    // The parser may stop at the key above: the next lines that hold something count, too.
+    let mut at = line_start;
+    for line in text[line_start..].split('\n').take(LINES_AHEAD) {
+        if let Some(tab) = tab_of(at, line) {
+            return Some(tab);
+        }
+        at += line.len() + 1;
+    }
+    None
 }
 
 /// The range of the unquoted text in which the parser met a colon, where that is what stopped it.

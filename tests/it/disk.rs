@@ -78,3 +78,56 @@ fn old_staging_folders_are_cleared_away() {
     assert!(stands("out/mast-foot/.staging-live"), "the young one stays");
     assert!(stands("out/mast-foot/.other"), "what is not ours stays");
 }
+
+/// What cannot be said is no success; a reader that closes its end has seen enough.
+#[cfg(target_os = "linux")]
+#[test]
+fn a_full_standard_output_is_told() {
+    use std::process::{Command, Stdio};
+    let program = env!("CARGO_BIN_EXE_seamnote");
+    let full = File::options().write(true).open("/dev/full").unwrap();
+    let ran = Command::new(program)
+        .args(["schema", "joint"])
+        .stdout(full)
+        .output()
+        .unwrap();
+    let err = String::from_utf8_lossy(&ran.stderr).into_owned();
+    assert_eq!(ran.status.code(), Some(1), "{err}");
+    assert!(err.starts_with("error: standard output: "), "{err}");
+    let mut closed = Command::new(program)
+        .args(["schema", "joint"])
+        .stdout(Stdio::piped())
+        .spawn()
+        .unwrap();
+    drop(closed.stdout.take());
+    assert_eq!(closed.wait().unwrap().code(), Some(0), "a closed pipe");
+}
+
+/// What stands in the way of an output is found before the earlier note is touched.
+#[test]
+fn an_output_in_the_way_leaves_the_earlier_note() {
+    let project = Project::with_joint();
+    assert_eq!(project.run(&["write"]).code, 0, "first run");
+    let folder = project.path("out/mast-foot");
+    std::fs::remove_file(folder.join("note.pdf")).unwrap();
+    std::fs::create_dir(folder.join("note.pdf")).unwrap();
+    let before = std::fs::read(folder.join("note.md")).unwrap();
+    let text = std::fs::read_to_string(project.path("joints/mast-foot.yaml")).unwrap();
+    project.put(
+        "joints/mast-foot.yaml",
+        text.replace("-17.6 kN", "-18.6 kN"),
+    );
+    let ran = project.run(&["write"]);
+    assert_eq!(ran.code, 1, "{ran:?}");
+    assert!(
+        ran.err.contains("note.pdf: cannot be written"),
+        "{}",
+        ran.err
+    );
+    assert_eq!(
+        std::fs::read(folder.join("note.md")).unwrap(),
+        before,
+        "the text stands"
+    );
+    assert!(folder.join("trace.json").is_file(), "so does the trace");
+}

@@ -499,6 +499,29 @@ fn quarter_turns_are_exact() {
     }
 }
 
+/// What no reader reads is refused, at once: lists of words beyond a thousand items.
+#[test]
+fn lists_of_words_are_bounded() {
+    for (count, refused) in [(1000, false), (1001, true)] {
+        let text = format!(
+            "{}\nassumptions:\n{}",
+            include_str!("valid/usual-fillet.yaml"),
+            "  - The deck is stiff.\n".repeat(count)
+        );
+        let file = Arc::new(SourceFile {
+            name: "joints/x.yaml".into(),
+            text,
+        });
+        let told = read_joint(&file).map_err(|faults| faults.render(false));
+        assert_eq!(told.is_err(), refused, "{count} items: {told:?}");
+        if let Err(told) = told {
+            let wanted =
+                "error[too-many]: `assumptions` has 1001 items, but a note takes 1000 at most\n";
+            assert!(told.starts_with(wanted), "{told}");
+        }
+    }
+}
+
 #[test]
 fn what_is_left_out_has_its_usual_value() {
     let joint = with_pattern(MM, "shape: single line, depth: 90, fillet: 6");

@@ -438,7 +438,23 @@ fn examples_look_as_their_keys_say() {
 }
 
 /// Fixtures whose faults a schema cannot see, and why.
-const UNSEEN: [(&str, &str); 34] = [
+const UNSEEN: [(&str, &str); 44] = [
+    (
+        "decimal-comma-component.yaml",
+        "two components are two components",
+    ),
+    (
+        "decimal-comma-point.yaml",
+        "two components are two components",
+    ),
+    ("not-a-number-grouped.yaml", "units"),
+    ("wrong-count-trailing.yaml", "the text itself"),
+    ("wrong-count-mixed.yaml", "points against each other"),
+    ("unknown-unit-case.yaml", "units"),
+    ("out-of-range-further.yaml", "a free value is text"),
+    ("missing-level-once.yaml", "the case or `loads` may tell it"),
+    ("name-taken-check.yaml", "two entries against each other"),
+    ("name-taken-excluded.yaml", "two entries against each other"),
     (
         "mass-for-force-length.yaml",
         "units of quantities are the reader's",
@@ -517,7 +533,7 @@ const UNSEEN_IN_PROJECTS: [(&str, &str); 14] = [
 
 /// The same for fixtures of sheets.
 #[rustfmt::skip]
-const UNSEEN_IN_SHEET_FIXTURES: [(&str, &str); 30] = [
+const UNSEEN_IN_SHEET_FIXTURES: [(&str, &str); 31] = [
     ("bad-name.yaml", "which names formulas take"),
     ("bad-quantity.yaml", "units"),
     ("bad-symbol.yaml", "how a symbol is built"),
@@ -536,6 +552,7 @@ const UNSEEN_IN_SHEET_FIXTURES: [(&str, &str); 30] = [
     ("sheet-default.yaml", "depends on where the need comes from"),
     ("sheet-parts.yaml", "depends on what the sheet is evaluated at"),
     ("sheet-scope-point.yaml", "depends on what the sheet is evaluated at"),
+    ("sheet-scope-levels.yaml", "depends on what the sheet is evaluated at"),
     ("sheet-scope.yaml", "depends on what the sheet is evaluated at"),
     ("table-key-above.yaml", "order of rows"),
     ("table-key-order.yaml", "order of rows"),

@@ -1,7 +1,7 @@
 //! Templates of a project: they replace the built-in ones, their faults are told in them, and
 //! nothing outside the folder of the joints is read.
 
-use crate::command::{Project, Ran, joint};
+use crate::command::{Project, Ran, joint_with};
 use crate::tidy::file;
 use seamnote::project::{Kinds, ProjectError, Workshop, find_joints, read_surroundings};
 use std::time::Duration;
@@ -148,7 +148,6 @@ fn links_out_of_the_folder_are_refused() {
             "paper: A4\n",
         ),
         ("joints/templates/note.md", "elsewhere/note.md", "x"),
-        ("joints/other.yaml", "elsewhere/other.yaml", &joint()),
     ];
     for (link, target, text) in cases {
         let project = Project::with_joint();
@@ -163,6 +162,32 @@ fn links_out_of_the_folder_are_refused() {
         let ran = project.run(&["vet"]);
         refused(&project, &ran, &[link, "No such file"]);
     }
+    // A joint that is such a link is refused by itself.
+    let project = Project::with_joint();
+    project.put("elsewhere/other.yaml", joint_with("SN-104", "SN-105"));
+    symlink(
+        project.path("elsewhere/other.yaml"),
+        project.path("joints/other.yaml"),
+    )
+    .unwrap();
+    symlink(
+        project.path("elsewhere/none.yaml"),
+        project.path("joints/third.yaml"),
+    )
+    .unwrap();
+    let ran = project.run(&["vet"]);
+    assert_eq!(ran.code, 1, "{ran:?}");
+    for text in [
+        "other.yaml: is a symbolic link out of joints",
+        "third.yaml: No such file",
+    ] {
+        assert!(ran.err.contains(text), "{text}:\n{}", ran.err);
+    }
+    assert!(
+        ran.out.starts_with("joints/mast-foot.yaml  least margin"),
+        "{}",
+        ran.out
+    );
     let project = Project::with_joint();
     project.put("joints/sheets/real/rule.txt", sheet);
     // An editor's lock is a link to nowhere.

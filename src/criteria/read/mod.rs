@@ -172,7 +172,7 @@ fn check_scope(sheet: &Sheet, fields: &Fields<'_>) {
     };
     match sheet.scope {
         Scope::Point => {
-            if sheet.levels.is_empty() && !fields.has("levels") {
+            if sheet.levels.is_empty() {
                 refuse(
                     "a sheet `at: point` needs `levels`".into(),
                     "say which levels of load case it takes",

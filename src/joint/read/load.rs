@@ -5,6 +5,7 @@ use super::{check_distinct, unknown_name};
 use crate::joint::{Case, Level, LoadFrame, Loads, Triple, keys};
 use crate::quantity::{Dim, UnitSet, real};
 use crate::source::{Diagnostic, Fields, Item, Told};
+use std::cell::Cell;
 
 /// How far axes may be from unit length and from square: what six printed decimals give.
 const ORTHONORMAL: f64 = 1e-6;
@@ -17,15 +18,34 @@ struct Usual {
     frames: Vec<LoadFrame>,
     /// Names of all frames, faulty ones too.
     names: Vec<Told<String>>,
+    /// Whether `frames` itself is misspelt, so that no name of a frame is known.
+    misspelt_frames: bool,
+    /// Whether a case has been told to lack its level, its point: once for all cases is enough.
+    missed: Cell<[bool; 2]>,
+}
+
+impl Usual {
+    /// Whether this lack, of the level or of the point, is the first of its kind.
+    fn first(&self, which: usize) -> bool {
+        let mut missed = self.missed.get();
+        let first = !std::mem::replace(&mut missed[which], true);
+        self.missed.set(missed);
+        first
+    }
 }
 
 /// Reads `loads`.
 pub(super) fn read_loads(item: Item<'_>, set: UnitSet) -> Option<Loads> {
     let mut fields = item.keyed(&keys::LOADS)?;
-    let at = fields
-        .take("at")
-        .map(|item| read_triple(item, Dim::LENGTH, set));
-    let level = fields.take("level").map(read_level);
+    let at = match fields.take("at") {
+        Some(item) => Some(read_triple(item, Dim::LENGTH, set)),
+        None => fields.misspells(&["at"]).then_some(None),
+    };
+    let level = match fields.take("level") {
+        Some(item) => Some(read_level(item)),
+        None => fields.misspells(&["level"]).then_some(None),
+    };
+    let misspelt_frames = fields.misspells(&["frames"]);
     let mut names = Vec::new();
     let mut frames = Vec::new();
     if let Some(item) = fields.take("frames") {
@@ -41,6 +61,8 @@ pub(super) fn read_loads(item: Item<'_>, set: UnitSet) -> Option<Loads> {
         level,
         frames,
         names,
+        misspelt_frames,
+        missed: Cell::default(),
     };
     let cases = fields.required("cases", |item| {
         item.list(|case| read_case(case, &usual, set))
@@ -126,6 +148,7 @@ fn pick_level(fields: &mut Fields<'_>, usual: &Usual) -> Option<Told<Level>> {
         .or_else(|| usual.level.clone())
     {
         Some(level) => level,
+        None if !usual.first(0) => None,
         None => fields.lacks(
             "missing-level",
             &["level"],
@@ -156,6 +179,9 @@ fn pick_point(
             place: fields.place().clone(),
         });
     }
+    if !usual.first(1) {
+        return None;
+    }
     if has_frame {
         return fields.lacks(
             "missing-point",
@@ -184,7 +210,7 @@ fn pick_frame(item: Item<'_>, usual: &Usual) -> Option<LoadFrame> {
         return Some(frame.clone());
     }
     let known: Vec<&str> = usual.names.iter().map(|name| name.value.as_str()).collect();
-    if known.contains(&name.value.as_str()) {
+    if usual.misspelt_frames || known.contains(&name.value.as_str()) {
         return None;
     }
     item.faults

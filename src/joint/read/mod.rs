@@ -18,7 +18,7 @@ pub use value::{read_quantity, read_triple};
 
 use look::look_of;
 
-use super::{FrameWords, Joint, Paper, keys};
+use super::{CheckSpec, Exclusion, FrameWords, Joint, Paper, keys};
 use crate::quantity::UnitSet;
 use crate::source::{
     Diagnostic, FaultBag, Faults, Fields, Item, Node, SourceFile, Told, Value, parse_yaml,
@@ -54,6 +54,8 @@ struct Context<'a> {
     set: UnitSet,
     /// Names of the parts, faulty ones too.
     parts: &'a [&'a str],
+    /// Whether `parts` itself is misspelt, so that no name of a part is known.
+    misspelt_parts: bool,
 }
 
 fn read_root(mut fields: Fields<'_>) -> Option<Joint> {
@@ -73,7 +75,11 @@ fn read_root(mut fields: Fields<'_>) -> Option<Joint> {
     });
     let frame = fields.required("frame", read_frame);
     let names = part_names(&fields);
-    let context = Context { set, parts: &names };
+    let context = Context {
+        set,
+        parts: &names,
+        misspelt_parts: fields.misspells(&["parts"]),
+    };
     let parts = fields.required("parts", |item| part::read_parts(item, set));
     let filler = fields.optional("filler", |item| part::read_filler(item, set));
     let weld = fields.required("weld", |item| weld::read_weld(item, context));
@@ -82,6 +88,7 @@ fn read_root(mut fields: Fields<'_>) -> Option<Joint> {
     let assumptions = fields.optional_list("assumptions", part::read_assumption);
     let cautions = fields.optional_list("cautions", Item::text);
     let excluded = fields.optional_list("excluded", part::read_exclusion);
+    refuse_twice(&excluded, &checks, fields.faults());
     let changes = fields.optional_list("changes", part::read_change);
     let signatures = match fields.take("signatures") {
         Some(item) => item.list(Item::line),
@@ -110,6 +117,28 @@ fn read_root(mut fields: Fields<'_>) -> Option<Joint> {
         changes,
         signatures: signatures?,
     })
+}
+
+/// Refuses a failure path excluded twice, and a check asked for twice with the same values.
+fn refuse_twice(excluded: &[Exclusion], checks: &Option<Vec<CheckSpec>>, faults: &FaultBag) {
+    check_distinct(
+        excluded.iter().map(|entry| &entry.path),
+        "exclusions",
+        faults,
+    );
+    let mut seen: Vec<&CheckSpec> = Vec::new();
+    for check in checks.iter().flatten() {
+        if let Some(first) = seen.iter().find(|known| known.says_same(check)) {
+            let (line, _) = first.clause.place.line_column();
+            let message = format!(
+                "`{}` is asked for twice with the same values",
+                check.clause.value
+            );
+            let help = format!("the first is in line {line}");
+            faults.push(Diagnostic::error("name-taken", message, &check.clause.place).help(help));
+        }
+        seen.push(check);
+    }
 }
 
 /// The names under `parts`, whatever their entries hold.
@@ -164,6 +193,9 @@ fn read_frame(item: Item<'_>) -> Option<FrameWords> {
     })
 }
 
+/// Repeated names that are told at most: more have one cause.
+const MOST_TOLD: usize = 100;
+
 /// Refuses names that stand twice; `what` says what they name, such as `runs`.
 fn check_distinct<'a>(
     names: impl Iterator<Item = &'a Told<String>>,
@@ -172,7 +204,11 @@ fn check_distinct<'a>(
 ) {
     let mut seen = std::collections::BTreeMap::new();
     let mut looks = std::collections::BTreeMap::new();
+    let mut told = 0;
     for name in names {
+        if told == MOST_TOLD {
+            return;
+        }
         let twin = looks.insert(look_of(&name.value), name);
         if let Some(twin) = twin.filter(|twin| twin.value != name.value) {
             let message = format!("`{}` looks like another of the {what}", name.value);
@@ -183,6 +219,7 @@ fn check_distinct<'a>(
             faults.push(Diagnostic::error("names-look-alike", message, &name.place).help(help));
         }
         if let Some(first) = seen.insert(name.value.as_str(), name) {
+            told += 1;
             let message = format!("`{}` names two {what}", name.value);
             let (line, _) = first.place.line_column();
             faults.push(

@@ -1,7 +1,7 @@
 //! Parts, filler, checks, and the lists of words: assumptions, exclusions, changes.
 
 use super::check_distinct;
-use super::value::{read_date, read_free, read_positive};
+use super::value::{read_date, read_free_positive, read_positive};
 use crate::joint::{Assumption, Change, CheckSpec, Exclusion, Filler, Part, RawQuantity, keys};
 use crate::quantity::{Dim, UnitSet};
 use crate::source::{Fields, Item, Told, Value};
@@ -32,7 +32,7 @@ fn read_part(name: &Told<String>, item: Item<'_>, set: UnitSet) -> Option<Part> 
     let f_y = fields.optional("f_y", |item| read_positive(item, Dim::STRESS, set));
     let f_u = fields.optional("f_u", |item| read_positive(item, Dim::STRESS, set));
     let (source, to_be_verified) = read_standing(&mut fields);
-    let more = read_more(&mut fields, |item| read_free(item, set));
+    let more = read_more(&mut fields, |item| read_free_positive(item, set));
     fields.finish();
     Some(Part {
         name: name.clone(),
@@ -53,7 +53,7 @@ pub(super) fn read_filler(item: Item<'_>, set: UnitSet) -> Option<Filler> {
     let name = fields.required("name", Item::line);
     let f_u = fields.optional("f_u", |item| read_positive(item, Dim::STRESS, set));
     let (source, to_be_verified) = read_standing(&mut fields);
-    let more = read_more(&mut fields, |item| read_free(item, set));
+    let more = read_more(&mut fields, |item| read_free_positive(item, set));
     fields.finish();
     Some(Filler {
         name: name?,

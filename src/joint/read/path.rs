@@ -3,7 +3,7 @@
 use super::value::{read_positive, read_quantity, read_triple, refuse_range};
 use crate::joint::{GivenAt, PathSpec, Triple, keys};
 use crate::quantity::{Dim, UnitSet};
-use crate::source::{Fields, Item};
+use crate::source::{Fields, Item, Value};
 
 /// The keys that tell a path.
 const KEYS: [&str; 4] = ["straight", "arc", "circle", "polyline"];
@@ -51,6 +51,28 @@ pub(super) fn refuse_choice<T>(
     fields.refuse(code, message, help)
 }
 
+/// Refuses points of which some have two coordinates and some three.
+fn refuse_mixed(item: Item<'_>) -> Option<()> {
+    let mut counts: Vec<usize> = Vec::new();
+    for point in item.items()? {
+        if let Value::List(parts) = &point.node.value {
+            counts.push(parts.len());
+        }
+    }
+    if counts.windows(2).all(|pair| pair[0] == pair[1]) {
+        return Some(());
+    }
+    let message = format!(
+        "some points of `{}` have two coordinates, some three",
+        item.name
+    );
+    item.refuse_with(
+        "wrong-count",
+        message,
+        "write all as `[x, y]`, or all as `[x, y, z]`",
+    )
+}
+
 fn read_straight(item: Item<'_>, set: UnitSet) -> Option<PathSpec> {
     let points = item.list(|point| read_triple(point, Dim::LENGTH, set))?;
     let count = points.len();
@@ -61,6 +83,7 @@ fn read_straight(item: Item<'_>, set: UnitSet) -> Option<PathSpec> {
             "write `[[x, y], [x, y]]`; more corners make a `polyline`",
         );
     };
+    refuse_mixed(item)?;
     if is_short(&ends[0], &ends[1]) {
         return item.refuse("zero-length", "the two points of `straight` are one");
     }
@@ -83,6 +106,7 @@ fn read_polyline(item: Item<'_>, closed: bool, set: UnitSet) -> Option<PathSpec>
             "two points make a `straight`",
         );
     };
+    refuse_mixed(item)?;
     if let Some(at) = points
         .windows(2)
         .position(|pair| is_short(&pair[0], &pair[1]))

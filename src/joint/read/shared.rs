@@ -1,7 +1,7 @@
 //! Checks a project file by the readers of the joint file, so that both take the same words.
 
 use super::part;
-use super::value::{read_free, read_positive};
+use super::value::{read_free_positive, read_positive};
 use super::{check_distinct, read_units};
 use crate::joint::{Paper, keys};
 use crate::quantity::{Dim, UnitSet};
@@ -63,7 +63,7 @@ fn check_strengths(
         let help = "its name is the key of its entry; a thickness belongs to a part";
         fields.astray("not-taken", key, help);
     }
-    part::read_more(&mut fields, |item| read_free(item, set));
+    part::read_more(&mut fields, |item| read_free_positive(item, set));
     fields.finish();
     Some(())
 }

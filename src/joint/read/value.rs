@@ -1,8 +1,8 @@
 //! Values with units, dates and points, each with the fault texts a user needs.
 
 use crate::joint::{GivenAt, RawQuantity, Triple};
-use crate::quantity::{Dim, Given, GivenError, UnitError, UnitSet};
-use crate::source::{Item, Told};
+use crate::quantity::{Dim, Given, GivenError, UnitError, UnitSet, near_unit};
+use crate::source::{Diagnostic, Item, Place, Told};
 use chrono::NaiveDate;
 
 /// Reads a quantity of the dimension; a bare number takes the printing set's own unit.
@@ -15,6 +15,20 @@ pub fn read_quantity(item: Item<'_>, dim: Dim, set: UnitSet) -> Option<GivenAt> 
         }),
         Err(error) => refuse_quantity(item, &text.value, &error, dim, set),
     }
+}
+
+/// Reads a further strength: as [`read_free`], above zero.
+pub(super) fn read_free_positive(item: Item<'_>, set: UnitSet) -> Option<RawQuantity> {
+    let text = read_free(item, set)?;
+    let number = text.value.trim_start_matches(['+', ' ']);
+    let digits = |c: char| matches!(c, '0' | '.' | ' ');
+    let zero = number.trim_start_matches(digits);
+    let is_zero = number.starts_with('0') && !zero.starts_with(|c: char| c.is_ascii_digit());
+    if number.starts_with(['-', '−']) || is_zero {
+        let message = format!("`{}` is {}, but must be above 0", item.name, text.value);
+        return item.refuse_with("out-of-range", message, "a strength is a positive number");
+    }
+    Some(text)
 }
 
 /// Reads a number or a quantity of any kind, kept as typed for a sheet that says its kind.
@@ -54,17 +68,32 @@ fn refuse_with_help<T>(
     usual: String,
 ) -> Option<T> {
     let (code, message, help) = match error {
-        GivenError::NotANumber(_) if text.contains(['"', '″', '\'']) => (
+        GivenError::NotANumber(_) if ungrouped(text).is_some() => (
             "not-a-number",
             format!("`{text}` is not a number"),
-            "inches are written `in`, feet `ft`".to_owned(),
+            format!(
+                "write `{}`: thousands have no separator",
+                ungrouped(text).unwrap_or_default()
+            ),
         ),
+        GivenError::NotANumber(_)
+            if text.contains(['"', '″', '\'']) && ungrouped(text).is_none() =>
+        {
+            (
+                "not-a-number",
+                format!("`{text}` is not a number"),
+                "inches are written `in`, feet `ft`".to_owned(),
+            )
+        }
         GivenError::NotANumber(_) => ("not-a-number", format!("`{text}` is not a number"), usual),
         GivenError::NotFinite(_) => ("not-a-number", error.to_string(), usual),
         GivenError::Comma(_) => (
             "decimal-comma",
-            format!("`{text}` has a decimal comma"),
-            format!("write `{}`", text.replace(',', ".")),
+            match ungrouped(text) {
+                Some(_) => format!("`{text}` has a comma in its number"),
+                None => format!("`{text}` has a decimal comma"),
+            },
+            comma_advice(text),
         ),
         GivenError::Unit(UnitError::Mass(_)) if dim == Dim::FORCE => (
             "mass-for-force",
@@ -84,7 +113,62 @@ fn refuse_with_help<T>(
             ("unit-missing", error.to_string(), usual)
         }
     };
-    item.refuse_with(code, message, help)
+    let mut fault = Diagnostic::error(code, message, item.place());
+    if let GivenError::Unit(UnitError::Unknown(name)) = error
+        && let Some(near) = near_unit(name)
+    {
+        fault = fault.help(format!("did you mean `{near}`?"));
+    }
+    item.faults.refuse(fault.help(help))
+}
+
+/// What to write for a number with a comma: a decimal comma, or one that parts thousands.
+fn comma_advice(text: &str) -> String {
+    let Some(plain) = ungrouped(text) else {
+        return format!("write `{}`", text.replace(',', "."));
+    };
+    if text.matches(',').count() == 1 && !text.contains('.') {
+        let point = text.replace(',', ".");
+        return format!("write `{plain}` if the comma parts thousands, `{point}` if it is decimal");
+    }
+    format!("write `{plain}`: decimals take a point, thousands have no separator")
+}
+
+/// A number whose digits are grouped by threes, with the groups joined; `None` if they are not.
+///
+/// Groups are parted by commas, points, blanks or apostrophes; another mark parts the decimals.
+fn ungrouped(text: &str) -> Option<String> {
+    let end = text.find(char::is_alphabetic).unwrap_or(text.len());
+    let (number, unit) = text.split_at(end);
+    let number = number.trim_end();
+    let digits = number.trim_start_matches(['+', '-', '−']);
+    let mark = digits.chars().find(|c| !c.is_ascii_digit())?;
+    if !matches!(mark, ',' | '.' | ' ' | '\'' | '’') {
+        return None;
+    }
+    let decimal = if mark == '.' { ',' } else { '.' };
+    let (whole, decimals) = match digits.split_once(decimal) {
+        Some((whole, decimals)) => (whole, Some(decimals)),
+        None => (digits, None),
+    };
+    let mut groups = whole.split(mark);
+    let first = groups.next()?;
+    let all_digits = |group: &str| group.chars().all(|c| c.is_ascii_digit());
+    let grouped = matches!(first.len(), 1..=3)
+        && all_digits(first)
+        && groups.all(|group| group.len() == 3 && all_digits(group))
+        && decimals.is_none_or(|decimals| !decimals.is_empty() && all_digits(decimals));
+    if !grouped || (mark == '.' && decimals.is_none()) {
+        return None;
+    }
+    let sign = &number[..number.len() - digits.len()];
+    let tail = decimals.map_or(String::new(), |decimals| format!(".{decimals}"));
+    let unit = if unit.is_empty() {
+        String::new()
+    } else {
+        format!(" {unit}")
+    };
+    Some(format!("{sign}{}{tail}{unit}", whole.replace(mark, "")))
 }
 
 /// How a quantity of the dimension is written.
@@ -178,6 +262,7 @@ pub(super) fn read_full_triple(item: Item<'_>, dim: Dim, set: UnitSet) -> Option
 }
 
 fn triple(item: Item<'_>, items: &[Item<'_>], dim: Dim, set: UnitSet) -> Option<Triple> {
+    refuse_odd_commas(item, items)?;
     let read: Vec<Option<GivenAt>> = items
         .iter()
         .map(|part| read_quantity(*part, dim, set))
@@ -190,6 +275,45 @@ fn triple(item: Item<'_>, items: &[Item<'_>], dim: Dim, set: UnitSet) -> Option<
         parts,
         place: item.place().clone(),
     })
+}
+
+/// Refuses a list whose commas show that a decimal comma or a lost component made it what it is:
+/// some stand between digits without a blank and some do not, or one stands at the end.
+fn refuse_odd_commas(item: Item<'_>, items: &[Item<'_>]) -> Option<()> {
+    let text = &item.place().file.text;
+    let between = |pair: &[Item<'_>]| text.get(pair[0].place().end..pair[1].place().start);
+    let tight = |pair: &&[Item<'_>]| between(pair) == Some(",");
+    let pairs = || items.windows(2);
+    if let Some(pair) = pairs()
+        .find(tight)
+        .filter(|_| !pairs().all(|pair| tight(&pair)))
+    {
+        let place = Place {
+            end: pair[1].place().end,
+            ..pair[0].place().clone()
+        };
+        let typed = text.get(place.start..place.end).unwrap_or_default();
+        let message = format!("`{typed}` is two components of `{}`", item.name);
+        let help = format!(
+            "write `{}` if the comma is decimal, else put a blank behind it as behind the others",
+            typed.replacen(',', ".", 1)
+        );
+        return item
+            .faults
+            .refuse(Diagnostic::error("decimal-comma", message, &place).help(help));
+    }
+    let last = items
+        .last()
+        .map_or(item.place().end, |last| last.place().end);
+    let rest = text.get(last..item.place().end).unwrap_or_default();
+    if items.len() < 3 && rest.trim_start().starts_with(',') {
+        let message = format!(
+            "`{}` ends in a comma, as if a component were lost",
+            item.name
+        );
+        return item.refuse_with("wrong-count", message, "write `[x, y, z]`");
+    }
+    Some(())
 }
 
 fn refuse_count<T>(item: Item<'_>, count: usize, wanted: &str) -> Option<T> {

@@ -6,6 +6,7 @@ use super::{Context, check_distinct, pattern, size, unknown_name};
 use crate::joint::{EndSpec, GivenAt, RunSpec, SizeSpec, Stitch, ToeSpec, Triple, WeldSpec, keys};
 use crate::quantity::{Dim, Given, UnitSet};
 use crate::source::{Fields, Item, Place, Told, Value};
+use std::cell::Cell;
 
 /// What the keys beside `runs` say for every run that does not say otherwise.
 ///
@@ -18,6 +19,8 @@ pub(super) struct Usual {
     pub(super) normal: Option<Triple>,
     pub(super) gap: Option<GivenAt>,
     pub(super) between: Option<GivenAt>,
+    /// Whether a run has been told to lack `joins`: once for all runs is enough.
+    missed_joins: Cell<bool>,
 }
 
 /// Reads `weld`.
@@ -37,6 +40,7 @@ pub(super) fn read_weld(item: Item<'_>, context: Context<'_>) -> Option<WeldSpec
             read_not_negative(item, Dim::LENGTH, context.set)
         }),
         between: fields.optional("between", |item| read_between(item, context.set)),
+        missed_joins: Cell::default(),
     };
     let runs_item = fields.take("runs");
     let pattern_item = fields.take("pattern");
@@ -121,6 +125,7 @@ pub(super) fn pick_joins(
         .or_else(|| usual.joins.clone())
     {
         Some(joins) => joins,
+        None if usual.missed_joins.replace(true) => None,
         None => fields.lacks(
             "missing-key",
             &["joins"],
@@ -146,7 +151,7 @@ fn read_ends(fields: &mut Fields<'_>) -> [Option<Told<EndSpec>>; 2] {
 fn read_joins(item: Item<'_>, context: Context<'_>) -> Option<[Told<String>; 2]> {
     let names = item.list(|name| {
         let name = name.line()?;
-        if context.parts.contains(&name.value.as_str()) {
+        if context.misspelt_parts || context.parts.contains(&name.value.as_str()) {
             return Some(name);
         }
         item.faults

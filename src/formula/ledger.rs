@@ -173,6 +173,8 @@ pub struct Entry {
     pub mark: Option<Mark>,
     /// Whether the sign of the result is always printed (margins).
     pub signed: bool,
+    /// Which way it is rounded where it is printed.
+    pub rounding: Rounding,
     /// What the checker's margin calls it, such as `step 12` or `table 2`; empty until the note is laid out.
     pub no: String,
     /// The id that links lead to: its own, or that of the table row it stands in.
@@ -200,6 +202,36 @@ pub struct Draft<'a> {
     pub origin: Origin,
     /// The declared dimension; the formula's own if `None`.
     pub dim: Option<Dim>,
+}
+
+/// Which way a printed value is rounded: margins down, utilisations up, so that neither flatters.
+#[derive(Clone, Copy, PartialEq, Eq, Debug)]
+pub enum Rounding {
+    /// To the nearest.
+    Nearest,
+    /// Toward −∞.
+    Down,
+    /// Toward +∞.
+    Up,
+}
+
+impl Rounding {
+    /// The value rounded this way to the digits that the nearest printing has.
+    fn of(self, value: f64, nearest: Printed) -> Printed {
+        let up = match self {
+            Self::Nearest => return nearest,
+            Self::Down => false,
+            Self::Up => true,
+        };
+        if nearest.exponent.is_some() || nearest.mantissa == "0" {
+            return nearest;
+        }
+        let decimals = nearest
+            .mantissa
+            .split_once('.')
+            .map_or(0, |(_, decimals)| decimals.len());
+        Printed::rounded(value, i32::try_from(decimals).unwrap_or(i32::MAX), up)
+    }
 }
 
 /// The worked calculation of one note.
@@ -288,6 +320,7 @@ impl Ledger {
             origin: draft.origin,
             mark: None,
             signed: false,
+            rounding: Rounding::Nearest,
             no: String::new(),
             digits: START_DIGITS,
             floor: self.floor(dim),
@@ -433,7 +466,8 @@ impl Ledger {
             }
             Kind::Converted { .. } => Printed::of(shown, entry.digits, CONVERTED_DIGITS, 0.0),
             Kind::Step { .. } | Kind::Found { .. } => {
-                Printed::of(shown, entry.digits, entry.digits, entry.floor)
+                let nearest = Printed::of(shown, entry.digits, entry.digits, entry.floor);
+                entry.rounding.of(shown, nearest)
             }
             Kind::Bound { limit } => Printed::of(*limit, 1, 1, 0.0),
         }

@@ -180,9 +180,14 @@ fn unit_text(units: UnitSet, dim: crate::quantity::Dim) -> String {
     let factors = units.unit_of(dim);
     if let [(above, one), (below, minus)] = factors.as_slice()
         && is_one(*one)
-        && is_one(-minus)
+        && *minus < 0.0
     {
-        return format!("{above}/{below}");
+        let power = if is_one(-minus) {
+            String::new()
+        } else {
+            format!("^{}", -minus)
+        };
+        return format!("{above}/{below}{power}");
     }
     let words = factors.iter().map(|(name, power)| match *name {
         "deg" => "°".to_owned(),
@@ -205,9 +210,14 @@ fn unit_latex(units: UnitSet, dim: crate::quantity::Dim) -> String {
     }
     if let [(above, one), (below, minus)] = factors.as_slice()
         && (one - 1.0).abs() < 1e-9
-        && (minus + 1.0).abs() < 1e-9
+        && *minus < 0.0
     {
-        return format!("\\,\\mathrm{{{above}/{below}}}");
+        let power = if (minus + 1.0).abs() < 1e-9 {
+            String::new()
+        } else {
+            format!("^{{{}}}", -minus)
+        };
+        return format!("\\,\\mathrm{{{above}/{below}}}{power}");
     }
     let parts: Vec<String> = factors
         .iter()
@@ -228,7 +238,11 @@ fn split_long(math: &Math) -> Vec<Piece> {
         typst: format!("{sign} {}", math.typst()),
         latex: format!(
             "{} {}",
-            if sign == "quad +" { "\\quad +" } else { "=" },
+            if sign == "quad + thin" {
+                "\\quad +"
+            } else {
+                "="
+            },
             math.latex()
         ),
         words: format!(
@@ -255,7 +269,7 @@ fn split_long(math: &Math) -> Vec<Piece> {
         let minus = matches!(&math, Math::Terms(terms) if terms[0].0);
         let (sign, latex, words) = match (first, minus) {
             (true, _) => ("=", "=", "equals"),
-            (false, false) => ("quad +", "\\quad +", "plus"),
+            (false, false) => ("quad + thin", "\\quad +", "plus"),
             (false, true) => ("quad", "\\quad", ""),
         };
         pieces.push(Piece {
@@ -277,12 +291,38 @@ fn split_long(math: &Math) -> Vec<Piece> {
     pieces
 }
 
+/// Where the lines of an equation begin: as full as they go, but no result stands alone on a line
+/// that could hold the numbers before it, too.
+fn breaks(start: f64, pieces: &[Piece]) -> Vec<usize> {
+    let mut begins = vec![0];
+    let mut used = start;
+    for (at, piece) in pieces.iter().enumerate() {
+        if at > 0 && used + piece.width > LINE {
+            begins.push(at);
+            used = start;
+        }
+        used += piece.width;
+    }
+    let (last, begin) = (pieces.len() - 1, begins[begins.len() - 1]);
+    let alone = begins.len() > 1 && begin == last;
+    let before = if begins.len() > 1 {
+        begins[begins.len() - 2]
+    } else {
+        0
+    };
+    if alone && last - before > 1 && start + pieces[last - 1].width + pieces[last].width <= LINE {
+        begins.pop();
+        begins.push(last - 1);
+    }
+    begins
+}
+
 /// Sets the pieces in lines after the symbol.
 fn lay_out(symbol: &super::Symbol, pieces: &[Piece]) -> Equation {
     let start = symbol.width() + 0.5;
+    let begins = breaks(start, pieces);
     let mut lines: Vec<EquationLine> = Vec::new();
     let mut latex = symbol.latex();
-    let mut used = start;
     for (at, piece) in pieces.iter().enumerate() {
         if at == 0 {
             lines.push(EquationLine {
@@ -291,13 +331,11 @@ fn lay_out(symbol: &super::Symbol, pieces: &[Piece]) -> Equation {
                 continued: false,
             });
             latex.push_str(&format!(" &{}", piece.latex));
-            used += piece.width;
-        } else if used + piece.width <= LINE {
+        } else if !begins.contains(&at) {
             let line = lines.last_mut().expect("the first piece made a line");
             line.typst.push_str(&format!(" {}", piece.typst));
             line.words.push_str(&format!(" {}", piece.words));
             latex.push_str(&format!(" {}", piece.latex));
-            used += piece.width;
         } else {
             lines.push(EquationLine {
                 typst: format!("&{}", piece.typst),
@@ -305,7 +343,6 @@ fn lay_out(symbol: &super::Symbol, pieces: &[Piece]) -> Equation {
                 continued: true,
             });
             latex.push_str(&format!(" \\\\\n&{}", piece.latex));
-            used = start + piece.width;
         }
     }
     Equation {

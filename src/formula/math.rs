@@ -198,7 +198,7 @@ impl Math {
             Self::Call(name, arguments) => {
                 format!("{name}({})", join(arguments, Self::typst, ", "))
             }
-            Self::Sum(index, term) => format!("sum_{index} {}", term.typst()),
+            Self::Sum(index, term) => format!("scripts(sum)_{index} {}", term.typst()),
             Self::Relation(sign, left, right) => {
                 format!("{} {sign} {}", left.typst(), right.typst())
             }

@@ -25,7 +25,7 @@ pub use batch::{Block, Program};
 pub use digits::Printed;
 pub use dims::dimension;
 pub use eval::{Look, evaluate};
-pub use ledger::{Bound, Draft, Entry, Env, Kind, Ledger, Mark, Origin, SumSet, Value};
+pub use ledger::{Bound, Draft, Entry, Env, Kind, Ledger, Mark, Origin, Rounding, SumSet, Value};
 pub use lines::{Equation, EquationLine};
 pub use math::Math;
 pub use node::{Branch, Condition, Function, Kind as NodeKind, Literal, Node, Op, Relation};

@@ -7,7 +7,7 @@
 //! Repeated to a bound.
 
 use super::flat::Flat;
-use super::ledger::{EntryLook, Freedom, Kind, Ledger, Value};
+use super::ledger::{EntryLook, Freedom, Kind, Ledger, Rounding, Value};
 use super::node::{Kind as NodeKind, Op};
 use super::{FormulaError, Problem, evaluate};
 use crate::quantity::{Dim, real};
@@ -23,6 +23,9 @@ const MANY_DIGITS: usize = 7;
 /// No value is printed with more digits than this; beyond, the note refuses.
 const MOST_DIGITS: usize = 13;
 
+/// An operand with so many digits is not raised for the sake of a result rounded to one side.
+const ENOUGH_DIGITS: usize = 5;
+
 impl Ledger {
     /// Raises printed digits until every step replays.
     ///
@@ -36,7 +39,7 @@ impl Ledger {
         let mut waiting = vec![true; queue.len()];
         while let Some(value) = queue.pop_front() {
             waiting[value.0] = false;
-            while let Some(raised) = self.raise_for(value, &lines)? {
+            while let Some(raised) = self.raise_or_round(value, &lines)? {
                 self.keep_printed(Some(raised));
                 for other in lines.users[raised.0].iter().copied().chain([raised]) {
                     if other != value && !waiting[other.0] {
@@ -47,6 +50,25 @@ impl Ledger {
             }
         }
         Ok(())
+    }
+
+    /// Raises an operand of a line; a result that is rounded to one side is rounded to the nearest
+    /// instead, which replays sooner, where its operands have digits enough.
+    fn raise_or_round(
+        &mut self,
+        value: Value,
+        lines: &Lines,
+    ) -> Result<Option<Value>, FormulaError> {
+        let one_sided = self.get(value).rounding != Rounding::Nearest;
+        let many = |used: &Value| self.get(*used).digits >= ENOUGH_DIGITS;
+        if one_sided
+            && self.replay_miss(value)?.is_some_and(|miss| miss > 1.0)
+            && self.uses(value).iter().any(many)
+        {
+            self.get_mut(value).rounding = Rounding::Nearest;
+            return Ok(Some(value));
+        }
+        self.raise_for(value, lines)
     }
 
     /// The miss of a replay in units of the last printed digit; `None` for a line that has no formula.

@@ -68,14 +68,14 @@ impl Builder<'_> {
     }
 
     /// Assumptions of the user, the clauses and the method; open items are marked.
-    pub(super) fn assumptions(&mut self, of_sheets: &[(String, String)]) -> Vec<String> {
+    pub(super) fn assumptions(&mut self, of_sheets: &[(String, String)]) -> Vec<(String, String)> {
         self.part("assumptions", "Assumptions");
         let mut items = Vec::new();
         let mut open = Vec::new();
         for assumption in &self.joint.assumptions {
             let label = format!("A{}", items.len() + 1);
             if assumption.to_be_verified {
-                open.push(label.clone());
+                open.push((label.clone(), assumption.says.value.clone()));
             }
             items.push(Item {
                 label,

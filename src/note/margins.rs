@@ -180,6 +180,32 @@ impl Builder<'_> {
         Ok(sites)
     }
 
+    /// Demand, capacity and utilisation of a worked check, in words: `: 399.3 against 1023 N/mm, U = 0.391`.
+    pub(super) fn held_against(&self, check: &Check) -> String {
+        let Some(worked) = &check.worked else {
+            return String::new();
+        };
+        let text = |value: Value| self.ledger.printed(value).text();
+        let unit = self
+            .joint
+            .units
+            .value
+            .text(self.ledger.get(worked.demand).dim);
+        let unit = if unit.is_empty() {
+            unit
+        } else {
+            format!(" {unit}")
+        };
+        let utilisation = worked
+            .utilisation
+            .map_or(String::new(), |value| format!(", U = {}", text(value)));
+        format!(
+            ": {} against {}{unit}{utilisation}",
+            text(worked.demand),
+            text(worked.capacity)
+        )
+    }
+
     /// Works every check at its governing point.
     pub(super) fn work_checks(
         &mut self,
@@ -236,9 +262,6 @@ impl Builder<'_> {
             )?;
             for value in &worked.steps {
                 self.show(*value);
-            }
-            if let Some(margin) = worked.margin {
-                self.ledger.get_mut(margin).signed = true;
             }
             check.worked = Some(worked);
         }

@@ -11,7 +11,6 @@ use crate::criteria::{FailurePath, Governing, Ground, profiles};
 use crate::formula::Value;
 use crate::joint::{RunSpec, SizeSpec};
 use crate::quantity::Dim;
-use crate::source::Diagnostic;
 use crate::weld::{Run, ThroatRule, V3};
 
 /// Steps in which a path is followed for the drawing of demand along it.
@@ -181,8 +180,8 @@ impl Picture {
                     .collect();
                 let rest = match demand.left_out {
                     0 => String::new(),
-                    1 => " One check of less utilisation is not drawn.".to_owned(),
-                    some => format!(" {some} checks of less utilisation are not drawn."),
+                    1 => " One further check is not drawn.".to_owned(),
+                    some => format!(" {some} further checks are not drawn."),
                 };
                 format!(
                     "Utilisation along the weld, laid out run by run, each check in its governing case: {}.{rest}",
@@ -437,17 +436,14 @@ impl Builder<'_> {
         }
     }
 
-    /// Demand over capacity along the weld, the checks of the largest utilisation first.
-    ///
-    /// # Errors
-    ///
-    /// The fault of a place at which a check has no number.
+    /// Utilisation along the weld, the checks of the largest utilisation first; a check that has no
+    /// number between its points is left out.
     pub(super) fn demand_sketch(
         &self,
         calculation: &Calculation<'_>,
         ground: &Ground<'_>,
         checks: &[Check],
-    ) -> Result<DemandSketch, Diagnostic> {
+    ) -> DemandSketch {
         let mut order: Vec<&Check> = Vec::new();
         for check in checks {
             let same =
@@ -461,12 +457,15 @@ impl Builder<'_> {
             }
         }
         order.sort_by(|a, b| b.governing.severity().total_cmp(&a.governing.severity()));
-        let left_out = order.len().saturating_sub(MOST_CURVES);
+        let mut left_out = order.len().saturating_sub(MOST_CURVES);
         let mut curves = Vec::new();
         for (check, letter) in order.iter().take(MOST_CURVES).zip('a'..) {
             let asked = asked(calculation, check.outcome);
             let governing = &check.governing;
-            let followed = profiles(ground, asked, check.check, governing.case, STEPS)?;
+            let Ok(followed) = profiles(ground, asked, check.check, governing.case, STEPS) else {
+                left_out += 1;
+                continue;
+            };
             let worked = check.worked.as_ref().and_then(|worked| worked.utilisation);
             let text = worked.map_or(String::new(), |value| {
                 format!("U = {}", self.ledger.printed(value).text())
@@ -485,11 +484,11 @@ impl Builder<'_> {
                 governing: (governing.run, governing.s, governing.utilisation, text),
             });
         }
-        Ok(DemandSketch {
+        DemandSketch {
             runs: self.unfolded(),
             curves,
             left_out,
-        })
+        }
     }
 
     fn unfolded(&self) -> Vec<Unfolded> {

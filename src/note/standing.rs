@@ -93,6 +93,7 @@ impl Standing {
     #[must_use]
     pub fn tally(&self) -> String {
         let (held, all) = self.held;
+        let all = all + self.refused.len();
         let verb = if held == 1 { "holds" } else { "hold" };
         let mut text = format!("{held} of {} {verb}.", count(all, "check", "checks"));
         for (names, one, many) in [
@@ -135,8 +136,8 @@ impl Calculation<'_> {
     }
 }
 
-/// How many failure paths are neither checked by a sheet nor excluded by the user.
-pub(super) fn uncovered(calculation: &Calculation<'_>) -> usize {
+/// The failure paths that are neither checked by a sheet nor excluded by the user, by their words.
+pub(super) fn uncovered(calculation: &Calculation<'_>) -> Vec<&'static str> {
     let covered = |word: &str| {
         let checked = calculation.outcomes.iter().any(|outcome| match outcome {
             Outcome::Assessed(asked) => asked.sheet.covers.iter().any(|path| path.word() == word),
@@ -152,7 +153,8 @@ pub(super) fn uncovered(calculation: &Calculation<'_>) -> usize {
     crate::criteria::FailurePath::WORDS
         .iter()
         .filter(|(word, _)| !covered(word))
-        .count()
+        .map(|(word, _)| *word)
+        .collect()
 }
 
 /// The cases that no strength check takes, if any other case is taken.

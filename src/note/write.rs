@@ -15,6 +15,7 @@ use super::words::words;
 use crate::criteria::{Asked, From, Ground, WorkError};
 use crate::formula::{Env, FormulaError, Kind, Ledger};
 use crate::joint::Paper;
+use crate::quantity::Dim;
 use crate::solve::closure::{Closure, close};
 use crate::source::{Diagnostic, Faults};
 use crate::weld::{Run, V3};
@@ -181,7 +182,7 @@ fn compose(calculation: &Calculation<'_>) -> Result<Note, NoteError> {
     });
     let first_case = checks.first().map(|check| check.governing.case);
     let sketch = b.sketch(first_case.and_then(|case| drawn(&cases, case)), governing);
-    let pictures = pictures(&b, calculation, &ground, sketch, &checks, &sites)?;
+    let pictures = pictures(&b, calculation, &ground, sketch, &checks, &sites);
     let trace = whole_trace(&b, calculation, &checks, &identity, closure.as_ref());
     let open_items = open_section(&b, &open);
     let mut sections = b.sections();
@@ -217,7 +218,7 @@ fn pictures(
     sketch: Sketch,
     checks: &[Check],
     sites: &[Site],
-) -> Result<Vec<Picture>, NoteError> {
+) -> Vec<Picture> {
     let mut pictures = vec![
         Picture::Joint(sketch.clone()),
         Picture::Sections(b.weld_sections(calculation)),
@@ -225,12 +226,13 @@ fn pictures(
     if let (Some(check), Some(site)) = (checks.first(), sites.first()) {
         let stresses = b.stress_sketch(sketch, ground, &check.governing, site.resultant());
         pictures.push(Picture::Stresses(stresses));
-        let demand = b.demand_sketch(calculation, ground, checks);
-        pictures.push(Picture::Demand(
-            demand.map_err(|fault| NoteError::Work(fault.into()))?,
-        ));
+        pictures.push(Picture::Demand(b.demand_sketch(
+            calculation,
+            ground,
+            checks,
+        )));
     }
-    Ok(pictures)
+    pictures
 }
 
 /// Whether every second opinion agrees: a bound is printed only if it holds.
@@ -314,9 +316,16 @@ fn order_parts(b: &mut Builder<'_>) {
             .map(|part| std::mem::take(&mut part.pieces))
             .unwrap_or_default()
     };
-    let pieces = take(b, "case-list");
-    if let Some(part) = b.parts.iter_mut().find(|part| part.id == "loads") {
-        part.pieces.extend(pieces);
+    let mut pieces = take(b, "case-list");
+    // Loads told in another unit are converted where they are listed.
+    let (loads, others): (Vec<Piece>, Vec<Piece>) = take(b, "inputs").into_iter().partition(
+        |piece| matches!(piece, Piece::Step(value) if [Dim::FORCE, Dim::MOMENT].contains(&b.ledger.get(*value).dim)),
+    );
+    pieces.extend(loads);
+    for (id, pieces) in [("loads", pieces), ("inputs", others)] {
+        if let Some(part) = b.parts.iter_mut().find(|part| part.id == id) {
+            part.pieces.extend(pieces);
+        }
     }
 }
 
@@ -516,26 +525,17 @@ fn closing(b: &mut Builder<'_>) {
 }
 
 /// Everything that is still to be verified, in one list.
-fn open_section(b: &Builder<'_>, assumptions: &[String]) -> Option<super::doc::Section> {
+fn open_section(b: &Builder<'_>, assumptions: &[(String, String)]) -> Option<super::doc::Section> {
     let mut items: Vec<Item> = Vec::new();
-    for label in assumptions {
+    for (label, says) in assumptions {
         let label_of = format!("O{}", items.len() + 1);
         items.push(super::layout::item(
             &label_of,
-            plain(&format!("Assumption {label}.")),
+            plain(&format!("Assumption {label}: {says}")),
         ));
     }
     for (reason, numbers) in b.open_items() {
-        let words: Vec<String> = numbers
-            .iter()
-            .map(|no| {
-                if no.starts_with("table") {
-                    no.clone()
-                } else {
-                    format!("step {no}")
-                }
-            })
-            .collect();
+        let words = [steps_and_tables(&numbers)];
         let label = format!("O{}", items.len() + 1);
         let text = format!("{}: {}.", capital(&reason), words.join(", "));
         items.push(super::layout::item(&label, plain(&text)));
@@ -551,6 +551,24 @@ fn open_section(b: &Builder<'_>, assumptions: &[String]) -> Option<super::doc::S
         id: "open-items".to_owned(),
         blocks,
     })
+}
+
+/// Steps by their numbers, then tables: `steps 61, 62, table 3`.
+fn steps_and_tables(numbers: &[String]) -> String {
+    let (tables, steps): (Vec<&String>, Vec<&String>) =
+        numbers.iter().partition(|no| no.starts_with("table"));
+    let joined = |all: &[&String]| {
+        all.iter()
+            .map(|no| no.as_str())
+            .collect::<Vec<_>>()
+            .join(", ")
+    };
+    let lead = if steps.len() == 1 { "step" } else { "steps" };
+    match (steps.is_empty(), tables.is_empty()) {
+        (true, _) => joined(&tables),
+        (false, true) => format!("{lead} {}", joined(&steps)),
+        (false, false) => format!("{lead} {}, {}", joined(&steps), joined(&tables)),
+    }
 }
 
 /// The identity in words, before the signatures, which name it.
@@ -578,7 +596,7 @@ fn verdict(
     b: &Builder<'_>,
     calculation: &Calculation<'_>,
     checks: &[Check],
-    open: &[String],
+    open: &[(String, String)],
 ) -> Verdict {
     let standing = Standing::of(calculation);
     let Some(check) = checks.first() else {
@@ -607,14 +625,15 @@ fn verdict(
         .part
         .map(|turn| format!(", {}", turn.word()))
         .unwrap_or_default();
-    let first: Text = vec![
-        piece(&format!("{}{part}, at ", check_name(asked, check.check))),
+    let mut first: Text = vec![piece(&format!("{}{part}", check_name(asked, check.check)))];
+    first.push(piece(&b.held_against(check)));
+    first.extend([
+        piece(", at "),
         super::text::emph(&b.place_words(spot)),
         piece(", case "),
         strong(&case.name.value),
         piece(&format!(" ({}). ", case.level.value.word())),
-    ];
-    let mut first = first;
+    ]);
     if let Some(margin) = check.worked.as_ref().and_then(|worked| worked.margin) {
         let entry = b.ledger.get(margin);
         first.push(super::doc::Inline::StepRef {
@@ -624,7 +643,7 @@ fn verdict(
     }
     let mut marks: BTreeSet<String> = open
         .iter()
-        .map(|label| format!("assumption {label}"))
+        .map(|(label, says)| format!("assumption {label} ({says})"))
         .collect();
     if let Some(worked) = &check.worked {
         for value in [Some(worked.demand), Some(worked.capacity), worked.margin]
@@ -635,14 +654,17 @@ fn verdict(
         }
     }
     let uncovered = super::standing::uncovered(calculation);
-    let coverage = match uncovered {
-        0 => "Every failure path is checked or excluded.".to_owned(),
-        many => format!(
-            "{} not covered by this note.",
-            count(many, "failure path is", "failure paths are")
-        ),
+    let coverage = if uncovered.is_empty() {
+        "Every failure path is checked or excluded.".to_owned()
+    } else {
+        format!("Not covered by this note: {}.", uncovered.join(", "))
     };
-    let mut lines = vec![first, plain(&format!("{} {coverage}", standing.tally()))];
+    let tally = if standing.holds() {
+        plain(&format!("{} {coverage}", standing.tally()))
+    } else {
+        vec![strong(&standing.tally()), piece(&format!(" {coverage}"))]
+    };
+    let mut lines = vec![first, tally];
     let all = open.len() + b.open_items().len();
     if marks.is_empty() {
         let text = match all {
@@ -662,7 +684,11 @@ fn verdict(
         )));
     }
     Verdict {
-        label: "least margin of safety".to_owned(),
+        label: if standing.refused.is_empty() {
+            "least margin of safety".to_owned()
+        } else {
+            "least of the margins found".to_owned()
+        },
         figure: standing.figure(),
         lines,
     }

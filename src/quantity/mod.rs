@@ -148,7 +148,7 @@ impl fmt::Display for Dim {
 pub enum UnitSet {
     /// N, mm, MPa.
     NewtonMillimetre,
-    /// kN, mm, GPa.
+    /// kN, mm, kN/mm².
     KilonewtonMillimetre,
     /// N, m, Pa.
     NewtonMetre,
@@ -202,7 +202,7 @@ impl UnitSet {
     pub const fn stress(self) -> &'static str {
         match self {
             Self::NewtonMillimetre => "MPa",
-            Self::KilonewtonMillimetre => "GPa",
+            Self::KilonewtonMillimetre => "kN/mm²",
             Self::NewtonMetre => "Pa",
             Self::PoundInch => "psi",
             Self::KipInch => "ksi",
@@ -222,7 +222,9 @@ impl UnitSet {
     pub fn unit_of(self, dim: Dim) -> Vec<(&'static str, f64)> {
         let power = |twelfths: i16| f64::from(twelfths) / 12.0;
         let mut factors = Vec::new();
-        if dim.force != 0 && dim.length == -2 * dim.force {
+        // Nobody reads the stress of a weld in GPa.
+        let named = self != Self::KilonewtonMillimetre;
+        if named && dim.force != 0 && dim.length == -2 * dim.force {
             factors.push((self.stress(), power(dim.force)));
         } else {
             if dim.force != 0 {

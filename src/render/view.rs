@@ -153,8 +153,27 @@ fn section(
         "title": section.title,
         "target": own_target(&section.id, targets).0,
         "anchor": own_target(&section.id, targets).1,
+        "whole": section.blocks.iter().any(is_short_sign_off),
         "blocks": blocks?,
     }))
+}
+
+/// Whether these are signatures that fit a page with their section: who signs sees what is signed.
+fn is_short_sign_off(block: &Block) -> bool {
+    /// Roles, and characters of each, that fit for sure.
+    const ROLES: usize = 8;
+    const LENGTH: usize = 60;
+    match block {
+        Block::Signatures { roles } => {
+            roles.len() <= ROLES && roles.iter().all(|role| role.chars().count() <= LENGTH)
+        }
+        Block::Para { .. }
+        | Block::Heading { .. }
+        | Block::Items { .. }
+        | Block::Step(_)
+        | Block::Table(_)
+        | Block::Figure(_) => false,
+    }
 }
 
 fn block(

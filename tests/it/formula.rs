@@ -164,7 +164,7 @@ fn a_sum_runs_over_its_set_and_is_written_out_in_the_trace() {
         "((t_1*L_1)+(t_2*L_2)+(t_3*L_3))"
     );
     assert!(
-        typst(&ledger, value).starts_with("r_(A) &= sum_i t_(i) L_(i) = "),
+        typst(&ledger, value).starts_with("r_(A) &= scripts(sum)_i t_(i) L_(i) = "),
         "{}",
         typst(&ledger, value)
     );

@@ -3,7 +3,7 @@
 use super::WorkError;
 use super::desk::Desk;
 use crate::criteria::sheet::Capacity;
-use crate::formula::{Bound, Draft, Env, Origin, Symbol, Value};
+use crate::formula::{Bound, Draft, Env, Origin, Rounding, Symbol, Value};
 use crate::quantity::Dim;
 use std::collections::BTreeMap;
 
@@ -34,6 +34,9 @@ impl Desk<'_, '_> {
             dim: Some(Dim::NONE),
         };
         let value = self.step_in(draft, &env)?;
+        if !is_one {
+            self.ledger.get_mut(value).rounding = Rounding::Up;
+        }
         self.mark(value);
         Ok(value)
     }
@@ -58,7 +61,9 @@ impl Desk<'_, '_> {
             dim: Some(Dim::NONE),
         };
         let value = self.step_in(draft, env)?;
-        self.ledger.get_mut(value).signed = true;
+        let entry = self.ledger.get_mut(value);
+        entry.signed = true;
+        entry.rounding = Rounding::Down;
         self.mark(value);
         Ok(value)
     }
@@ -93,6 +98,7 @@ impl Desk<'_, '_> {
             dim: Some(Dim::NONE),
         };
         let utilisation = self.step_in(draft, &env)?;
+        self.ledger.get_mut(utilisation).rounding = Rounding::Up;
         self.mark(utilisation);
         Ok((utilisation, self.margin_step(check, "lambda - 1", &env)?))
     }

@@ -47,35 +47,50 @@ pub struct Ground<'a> {
 pub fn assess(ground: &Ground<'_>, library: &Library) -> Result<Assessment, Faults> {
     let mut faults = Vec::new();
     let mut asked = Vec::new();
-    for (index, spec) in ground.joint.checks.iter().enumerate() {
-        let Some(sheet) = library.find(&spec.clause.value) else {
-            faults.push(unknown_sheet(&spec.clause, library));
-            continue;
-        };
-        let asking = Asking {
-            joint: ground.joint,
-            index,
-            spec,
-            sheet,
-        };
-        match one_check(ground, asking, sheet) {
+    for index in 0..ground.joint.checks.len() {
+        match assess_one(ground, index, library) {
             Ok(outcome) => asked.push(outcome),
-            Err(found) => faults.extend(found),
+            Err(found) => faults.extend(found.0),
         }
     }
     if faults.is_empty() {
         faults.extend(unchecked_runs(ground, &asked));
     }
     if faults.is_empty() {
-        return Ok(Assessment { asked });
+        Ok(Assessment { asked })
+    } else {
+        Err(distinct(faults))
     }
+}
+
+/// Evaluates one check that a joint asks for, by its index; runs that it leaves out are its own
+/// business, see [`unchecked_runs`].
+///
+/// # Errors
+///
+/// As [`assess`], of this check.
+pub fn assess_one(ground: &Ground<'_>, index: usize, library: &Library) -> Result<Asked, Faults> {
+    let spec = &ground.joint.checks[index];
+    let Some(sheet) = library.find(&spec.clause.value) else {
+        return Err(Faults(vec![unknown_sheet(&spec.clause, library)]));
+    };
+    let asking = Asking {
+        joint: ground.joint,
+        index,
+        spec,
+        sheet,
+    };
+    one_check(ground, asking, sheet).map_err(distinct)
+}
+
+fn distinct(faults: Vec<Diagnostic>) -> Faults {
     let mut distinct: Vec<Diagnostic> = Vec::new();
     for fault in faults {
         if !distinct.contains(&fault) {
             distinct.push(fault);
         }
     }
-    Err(Faults(distinct))
+    Faults(distinct)
 }
 
 fn unknown_sheet(clause: &crate::source::Told<String>, library: &Library) -> Diagnostic {
@@ -350,10 +365,13 @@ impl StrengthOutcome {
     }
 }
 
-/// Runs whose strength no check asked for looks at.
-fn unchecked_runs(ground: &Ground<'_>, asked: &[Asked]) -> Vec<Diagnostic> {
+/// Runs whose strength none of these checks looks at, if they look at any.
+pub fn unchecked_runs<'a>(
+    ground: &Ground<'_>,
+    asked: impl IntoIterator<Item = &'a Asked>,
+) -> Vec<Diagnostic> {
     let strength: Vec<&Asked> = asked
-        .iter()
+        .into_iter()
         .filter(|asked| asked.sheet.scope == Scope::Point)
         .collect();
     if strength.is_empty() {

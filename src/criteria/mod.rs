@@ -23,7 +23,7 @@ mod sheet;
 mod state;
 mod work;
 
-pub use assess::{Ground, assess};
+pub use assess::{Ground, assess, assess_one, unchecked_runs};
 pub use factor::{Factor, factors};
 pub use from::{From, PointField, Property, RunField, Unknown, Which};
 pub use library::{Library, built_in};

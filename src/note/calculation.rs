@@ -1,6 +1,6 @@
 //! The way from a joint as told to the outcome of every check: runs, properties, stresses, margins.
 
-use crate::criteria::{Asked, FailurePath, Ground, Library, assess};
+use crate::criteria::{Asked, FailurePath, Ground, Library, assess_one, unchecked_runs};
 use crate::formula::Printed;
 use crate::joint::Joint;
 use crate::load::{Action, FrameError, actions};
@@ -105,58 +105,36 @@ impl<'a> Calculation<'a> {
     }
 
     fn assess_all(&self, library: &Library) -> Result<Vec<Outcome>, Faults> {
+        let stress = |case: usize, run: usize, p: f64| match &self.fields[case] {
+            Ok(field) => field.at(self.runs[run].path.point(p)),
+            Err(_) => V3::zeros(),
+        };
+        let ground = Ground {
+            joint: self.joint,
+            runs: &self.runs,
+            stress: &stress,
+        };
         let mut outcomes = Vec::new();
         let mut faults = Vec::new();
         for (index, check) in self.joint.checks.iter().enumerate() {
-            let mut alone = self.joint.clone();
-            alone.checks = vec![check.clone()];
-            let strength = library
-                .find(&check.clause.value)
-                .is_some_and(|sheet| !sheet.checks.is_empty());
-            let stress = |case: usize, run: usize, p: f64| match &self.fields[case] {
-                Ok(field) => field.at(self.runs[run].path.point(p)),
-                Err(_) => V3::zeros(),
-            };
-            let ground = Ground {
-                joint: &alone,
-                runs: &self.runs,
-                stress: &stress,
-            };
-            match assess(&ground, library) {
-                Ok(_) if strength && self.unresisted().is_some() => {
+            let clause = &check.clause.value;
+            match assess_one(&ground, index, library) {
+                Ok(asked) if !asked.strength.is_empty() && self.unresisted().is_some() => {
                     let (case, why) = self.unresisted().expect("it was just found");
-                    outcomes.push(Outcome::Refused(self.no_path(
-                        check.clause.value.clone(),
-                        case,
-                        &why,
-                    )));
+                    let refusal = self.no_path(clause.clone(), case, &why);
+                    outcomes.push(Outcome::Refused(refusal));
                 }
-                Ok(assessment) => outcomes.extend(assessment.asked.into_iter().map(|mut asked| {
-                    asked.index = index;
-                    Outcome::Assessed(asked)
-                })),
+                Ok(asked) => outcomes.push(Outcome::Assessed(asked)),
                 Err(found) if found.0.iter().all(|fault| REFUSALS.contains(&fault.code)) => {
-                    let reasons = once(found.0.iter().map(|fault| fault.message.as_str()));
-                    let help = once(
-                        found
-                            .0
-                            .iter()
-                            .flat_map(|fault| fault.help.iter().map(String::as_str)),
-                    );
-                    outcomes.push(Outcome::Refused(Refusal {
-                        clause: check.clause.value.clone(),
-                        reason: reasons,
-                        help,
-                    }));
+                    outcomes.push(Outcome::Refused(refusal(clause, &found.0)));
                 }
                 Err(found) => faults.extend(found.0),
             }
         }
-        if faults.is_empty() {
-            Ok(outcomes)
-        } else {
-            Err(Faults(faults))
+        if !faults.is_empty() {
+            return Err(Faults(faults));
         }
+        Ok(refuse_unchecked(&ground, outcomes))
     }
 
     /// Why a case finds no resistance, in units of the note.
@@ -208,6 +186,36 @@ impl<'a> Calculation<'a> {
             help: help.to_owned(),
         }
     }
+}
+
+/// A check without a number, for the faults that kept it from one.
+fn refusal(clause: &str, faults: &[Diagnostic]) -> Refusal {
+    let help = faults.iter().flat_map(|fault| &fault.help);
+    Refusal {
+        clause: clause.to_owned(),
+        reason: once(faults.iter().map(|fault| fault.message.as_str())),
+        help: once(help.map(String::as_str)),
+    }
+}
+
+/// Takes the numbers of strength checks back where a run of the group is looked at by none of them:
+/// the least margin would be that of a part of the weld.
+fn refuse_unchecked(ground: &Ground<'_>, outcomes: Vec<Outcome>) -> Vec<Outcome> {
+    let assessed = outcomes.iter().filter_map(|outcome| match outcome {
+        Outcome::Assessed(asked) => Some(asked),
+        Outcome::Refused(_) => None,
+    });
+    let faults = unchecked_runs(ground, assessed);
+    if faults.is_empty() {
+        return outcomes;
+    }
+    let refuse = |outcome: Outcome| match outcome {
+        Outcome::Assessed(asked) if !asked.strength.is_empty() => {
+            Outcome::Refused(refusal(&asked.sheet.name.value, &faults))
+        }
+        other => other,
+    };
+    outcomes.into_iter().map(refuse).collect()
 }
 
 /// A fault of the weld at its place.

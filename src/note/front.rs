@@ -26,7 +26,7 @@ impl Builder<'_> {
         let [attached, base] = self.runs[0].joins;
         let name = |index: usize| self.joint.parts[index].name.value.clone();
         let text = format!(
-            "This note substantiates the weld group{item} that joins {} to {}, by the elastic line method: the weld as \
+            "This note checks the weld group{item} that joins {} to {}, by the elastic line method: the weld as \
              a line of its effective throat, the parts rigid against it.",
             name(attached),
             name(base)
@@ -58,7 +58,7 @@ impl Builder<'_> {
             text.push(piece(&format!("; geometry by drawing {}", drawing.value)));
         }
         text.push(piece(&format!(
-            ". Every number below is in {}, {} and {}; an input given in another unit is converted on a line of its own. \
+            "; the margin tells its lines. Every number below is in {}, {} and {}; an input given in another unit is converted on a line of its own. \
              Re-keying the printed numbers of a line gives its printed result, to one unit in the last digit.",
             units.force(),
             units.length(),
@@ -83,7 +83,7 @@ impl Builder<'_> {
                 mark: assumption
                     .to_be_verified
                     .then(|| "to be verified".to_owned()),
-                source: Some(assumption.says.place.short()),
+                source: Some(super::layout::line_of(&assumption.says.place)),
             });
         }
         for (says, source) in of_sheets {

@@ -5,6 +5,7 @@ use super::doc::{Block, Item, Row, Section, Step, Table, Text};
 use super::text::{number, piece, plain};
 use crate::formula::{FormulaError, Kind, Ledger, Origin, Printed, Value};
 use crate::quantity::Dim;
+use crate::source::Place;
 
 impl Builder<'_> {
     /// Gives every value that a shown line uses a place: what stands nowhere yet is listed in `part`.
@@ -142,7 +143,7 @@ impl Builder<'_> {
             says.push(piece(&format!(" ({method})")));
         }
         let uses = self.ledger.uses(value);
-        let mut source = vec![plain(&origin(&entry.origin))];
+        let mut source = vec![plain(&in_margin(&entry.origin))];
         source.extend(self.used_lines(&uses));
         let mut anchors: Vec<(String, String)> = Vec::new();
         for used in &uses {
@@ -268,7 +269,24 @@ impl Builder<'_> {
     }
 }
 
-/// The words of an origin for the checker's margin.
+/// The words of an origin for the checker's narrow margin: of an input of the joint file its line.
+pub(super) fn in_margin(from: &Origin) -> String {
+    match from {
+        Origin::Input(place) => line_of(place),
+        Origin::Clause(_) | Origin::Method(_) => origin(from),
+    }
+}
+
+/// The line of a place; with its file where that is the project's.
+pub(super) fn line_of(place: &Place) -> String {
+    let text = place.short();
+    match text.rsplit_once(':') {
+        Some((name, line)) if name != "project.yaml" => format!("line {line}"),
+        _ => text,
+    }
+}
+
+/// The words of an origin for the trace.
 pub(super) fn origin(origin: &Origin) -> String {
     match origin {
         Origin::Clause(clause) => clause.clone(),

@@ -376,12 +376,20 @@ impl Builder<'_> {
                     let symbol = Symbol::of("c", &[if name.ends_with('a') { "s" } else { "e" }])
                         .with(&(index + 1).to_string());
                     let id = self.slug_id(index, name);
-                    self.zero(
+                    let zero = self.zero(
                         id,
                         symbol,
                         "No shortening at this end",
                         crate::quantity::Dim::LENGTH,
-                    )
+                    );
+                    let why = match self.runs[index].ends[end] {
+                        crate::weld::End::Continuous => "the bead goes on",
+                        crate::weld::End::Full | crate::weld::End::Stop { .. } => {
+                            "full size to its end"
+                        }
+                    };
+                    self.ledger.get_mut(zero).origin = Origin::Method(why.to_owned());
+                    zero
                 });
                 self.run_values[index].insert(name.to_owned(), value);
             }

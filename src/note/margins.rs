@@ -186,6 +186,13 @@ impl Builder<'_> {
             return String::new();
         };
         let text = |value: Value| self.ledger.printed(value).text();
+        let is_factor = |value: &&Value| self.ledger.get(**value).id.ends_with(".load-factor");
+        if let Some(factor) = worked.steps.iter().find(is_factor) {
+            return format!(
+                ": its limit is reached at {} times the loads",
+                text(*factor)
+            );
+        }
         let unit = self
             .joint
             .units
@@ -546,9 +553,7 @@ impl Builder<'_> {
                 "Least margin of each case, the {CASES_IN_NOTE} that rank first of {total}; all stand in cases.csv"
             )
         } else {
-            format!(
-                "Least margin of each case, all {total}, by the batch kernel at every check point"
-            )
+            format!("Least margin of each case, all {total}, computed at every check point")
         };
         self.table(Sheet {
             id: "case-margins".to_owned(),
@@ -566,7 +571,7 @@ impl Builder<'_> {
             symbol,
             says: says.to_owned(),
             formula: "batch evaluation over all points of the case",
-            origin: Origin::Method("batch kernel".to_owned()),
+            origin: Origin::Method("every case computed".to_owned()),
             dim: None,
         };
         let made = self.ledger.found(draft, value, Dim::NONE);

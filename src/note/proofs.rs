@@ -29,10 +29,10 @@ impl Builder<'_> {
     pub(super) fn closure(&mut self, case: usize, closure: &Closure) {
         let name = self.joint.loads.cases[case].name.value.clone();
         self.para(plain(&format!(
-            "Closure, case {name}: the stresses of the steps above are integrated along the runs by quadrature that knows no closed \
-             form. Its force must be the force applied, its moment about the load's own point the moment given."
+            "Closure, case {name}: the stresses of the steps above, summed numerically along the runs, must give back the force \
+             applied, and about the load's own point the moment given."
         )));
-        let says = "Force missed by the integral, as a part of the force applied";
+        let says = "Force that the sum misses, as a part of the force applied";
         self.bound(
             "closure.force",
             Symbol::of("delta", &["F"]),
@@ -40,7 +40,7 @@ impl Builder<'_> {
             closure.force_residual(),
         );
         let says =
-            "Moment missed by the integral about the load's point, as a part of the moment applied";
+            "Moment about the load's point that the sum misses, as a part of the moment applied";
         self.bound(
             "closure.moment",
             Symbol::of("delta", &["M"]),
@@ -55,8 +55,8 @@ impl Builder<'_> {
         let scale = kernel.norm().max(f64::MIN_POSITIVE);
         let miss = (V3::from(steps) - kernel).norm() / scale;
         self.para(plain(
-            "Two routines that share no code, the scalar steps above and a tensor kernel, must give one stress at the \
-             governing point.",
+            "The stress at the governing point is computed a second time, in tensor form by a routine that shares no code with \
+             the steps above; both must agree.",
         ));
         let says = "Difference of the two stresses, as a part of the resultant";
         self.bound("agreement.kernel", Symbol::of("delta", &["f"]), says, miss);

@@ -17,7 +17,7 @@ pub struct Standing {
     pub held: (usize, usize),
     /// Names of the checks and limits that do not hold.
     pub failed: Vec<String>,
-    /// Names of the checks that gave no number.
+    /// Names of the checks that gave no number, each with its reason in brief.
     pub refused: Vec<String>,
     /// Names of the cases that no strength check takes, though other cases are taken.
     pub unchecked: Vec<String>,
@@ -30,7 +30,9 @@ impl Standing {
         let (mut held, mut failed, mut refused) = (0, Vec::new(), Vec::new());
         for outcome in &calculation.outcomes {
             match outcome {
-                Outcome::Refused(refusal) => refused.push(refusal.clause.clone()),
+                Outcome::Refused(refusal) => {
+                    refused.push(format!("{} ({})", refusal.clause, brief(&refusal.reason)));
+                }
                 Outcome::Assessed(asked) => {
                     for strength in &asked.strength {
                         if strength.governing.margin.holds() {
@@ -134,6 +136,17 @@ impl Calculation<'_> {
     pub fn standing(&self) -> Standing {
         Standing::of(self)
     }
+}
+
+/// The first part of a reason, cut where it is long; the note tells it whole.
+fn brief(reason: &str) -> String {
+    const LONGEST: usize = 140;
+    let first = reason.split("; ").next().unwrap_or_default();
+    if first.chars().count() <= LONGEST {
+        return first.to_owned();
+    }
+    let cut: String = first.chars().take(LONGEST).collect();
+    format!("{} …", cut.trim_end())
 }
 
 /// The failure paths that are neither checked by a sheet nor excluded by the user, by their words.

@@ -120,7 +120,7 @@ impl Builder<'_> {
                     };
                     sheet.env.bind("D", determinant);
                     let n = |axis| Symbol::of("N", &[axis]);
-                    let says = "Bending term of the moments, for y";
+                    let says = "Numerator of the bending stress, the factor of y";
                     self.at(
                         &mut sheet,
                         "N_x",
@@ -129,7 +129,7 @@ impl Builder<'_> {
                         "M_x*I_yy + M_y*I_xy",
                         "line method",
                     )?;
-                    let says = "Bending term of the moments, for x";
+                    let says = "Numerator of the bending stress, the factor of x";
                     self.at(
                         &mut sheet,
                         "N_y",
@@ -283,7 +283,7 @@ impl Builder<'_> {
                         sheet,
                         a,
                         Symbol::of(a, &[]),
-                        "Position of the point on the run",
+                        &format!("Position of the point on the run, {a}"),
                         &formula,
                         "geometry",
                     )?;
@@ -323,7 +323,7 @@ impl Builder<'_> {
                         sheet,
                         a,
                         Symbol::of(a, &[]),
-                        "Position of the point on the arc",
+                        &format!("Position of the point on the arc, {a}"),
                         &formula,
                         "geometry",
                     )?;

@@ -13,12 +13,12 @@ use super::text::{capital, count, piece, plain, slug, strong};
 use super::trace::{self, Trace};
 use super::words::words;
 use crate::criteria::{Asked, From, Ground, WorkError};
-use crate::formula::{Env, FormulaError, Kind, Ledger};
-use crate::joint::Paper;
+use crate::formula::{Env, FormulaError, Kind, Ledger, Printed};
+use crate::joint::{Joint, Paper};
 use crate::quantity::Dim;
 use crate::solve::closure::{Closure, close};
 use crate::source::{Diagnostic, Faults};
-use crate::weld::{Run, V3};
+use crate::weld::{End, Run, V3};
 use std::collections::{BTreeMap, BTreeSet};
 use thiserror::Error;
 
@@ -453,6 +453,42 @@ fn ordered_paths() -> Vec<(String, String)> {
         .collect()
 }
 
+/// Free ends that nearly meet: most likely a slip in a coordinate, and not seen in a margin.
+fn near_ends(calculation: &Calculation<'_>) -> Vec<String> {
+    /// Ends nearer than so many throats are looked at.
+    const NEAR: f64 = 3.0;
+    let units = calculation.joint.units.value;
+    let size = calculation.properties.size;
+    let mut ends: Vec<(&Run, &str, V3)> = Vec::new();
+    for run in &calculation.runs {
+        for (end, at) in run.ends.iter().zip([0.0, 1.0]) {
+            let word = if at > 0.5 { "end" } else { "start" };
+            if !matches!(end, End::Continuous) {
+                ends.push((run, word, run.told.point(at)));
+            }
+        }
+    }
+    let mut found = Vec::new();
+    for (index, (run, word, at)) in ends.iter().enumerate() {
+        for (other, other_word, other_at) in &ends[index + 1..] {
+            let apart = (at - other_at).norm();
+            let near = NEAR * run.throat.max(other.throat);
+            // Beads of one spec lie side by side or in a row.
+            if run.spec != other.spec && apart > 1e-6 * size && apart <= near {
+                let distance = Printed::of(apart, 3, 3, 0.0).text();
+                found.push(format!(
+                    "The {word} of {} and the {other_word} of {} are {distance} {} apart and count as free ends; if they are \
+                     to meet, a coordinate is wrong.",
+                    run.name,
+                    other.name,
+                    units.length()
+                ));
+            }
+        }
+    }
+    found
+}
+
 /// The usual cautions, those of the sheets used, those of the user.
 fn cautions(b: &mut Builder<'_>, calculation: &Calculation<'_>) {
     b.part("cautions", "Cautions");
@@ -467,7 +503,10 @@ fn cautions(b: &mut Builder<'_>, calculation: &Calculation<'_>) {
         });
     };
     for caution in &calculation.joint.cautions {
-        add(&caution.value, Some(caution.place.short()));
+        add(&caution.value, Some(super::layout::line_of(&caution.place)));
+    }
+    for text in near_ends(calculation) {
+        add(&text, None);
     }
     for (text, source) in sheet_texts(calculation, |asked| &asked.sheet.cautions) {
         add(&text, Some(source));
@@ -534,6 +573,10 @@ fn open_section(b: &Builder<'_>, assumptions: &[(String, String)]) -> Option<sup
             plain(&format!("Assumption {label}: {says}")),
         ));
     }
+    if let Some(text) = unrecorded_issue(b.joint) {
+        let label = format!("O{}", items.len() + 1);
+        items.push(super::layout::item(&label, plain(&text)));
+    }
     for (reason, numbers) in b.open_items() {
         let words = [steps_and_tables(&numbers)];
         let label = format!("O{}", items.len() + 1);
@@ -551,6 +594,18 @@ fn open_section(b: &Builder<'_>, assumptions: &[(String, String)]) -> Option<sup
         id: "open-items".to_owned(),
         blocks,
     })
+}
+
+/// What is open where the record of changes does not tell of this issue; a first issue needs no entry.
+fn unrecorded_issue(joint: &Joint) -> Option<String> {
+    const FIRST: [&str; 6] = ["A", "0", "1", "00", "01", "-"];
+    let revision = joint.revision.value.as_str();
+    let told = joint
+        .changes
+        .iter()
+        .any(|change| change.revision.value == revision);
+    let first = joint.changes.is_empty() && FIRST.contains(&revision);
+    (!told && !first).then(|| format!("The record of changes has no entry for issue {revision}."))
 }
 
 /// Steps by their numbers, then tables: `steps 61, 62, table 3`.
@@ -664,8 +719,13 @@ fn verdict(
     } else {
         vec![strong(&standing.tally()), piece(&format!(" {coverage}"))]
     };
-    let mut lines = vec![first, tally];
-    let all = open.len() + b.open_items().len();
+    // What does not hold is said before where the margin is least.
+    let mut lines = if standing.holds() {
+        vec![first, tally]
+    } else {
+        vec![tally, first]
+    };
+    let all = open.len() + b.open_items().len() + usize::from(unrecorded_issue(b.joint).is_some());
     if marks.is_empty() {
         let text = match all {
             0 => "No open item in this note.".to_owned(),

@@ -107,7 +107,8 @@ fn format_typst(out: &mut Output<'_>, _: &mut State<'_, '_>, value: &Value) -> R
     let written = match value.kind() {
         ValueKind::String if value.is_safe() => value.to_string(),
         ValueKind::String => typst_string(value.as_str().unwrap_or_default()),
-        ValueKind::Number | ValueKind::Bool => value.to_string(),
+        ValueKind::Number => value.to_string(),
+        ValueKind::Bool => value.is_true().to_string(),
         ValueKind::None => "none".to_owned(),
         kind => {
             let message = format!("a {kind} cannot be printed; print its parts");

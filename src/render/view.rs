@@ -27,6 +27,15 @@ pub type Drawings = BTreeMap<String, String>;
 /// Where links can lead, by id.
 pub(super) type Targets = BTreeMap<String, Target>;
 
+/// The steps that use a step, by its id: their ids and numbers, in print order.
+type Uses<'a> = BTreeMap<&'a str, Vec<(&'a str, &'a str)>>;
+
+/// Uses of a step that its margin names; the first ones lead on to the others.
+const USES_NAMED: usize = 6;
+
+/// Steps from which on a note has a list of its sections.
+const LONG_NOTE: usize = 90;
+
 /// A place that links can lead to.
 #[derive(Clone, Debug)]
 pub(super) struct Target {
@@ -39,10 +48,18 @@ pub(super) struct Target {
 /// Builds the view; without drawings, figures have no source.
 pub(super) fn view(doc: &Doc, drawings: Option<&Drawings>) -> Result<Value, RenderError> {
     let targets = targets(doc);
+    let blocks = || doc.sections.iter().flat_map(|s| &s.blocks);
+    let steps = blocks().filter_map(Block::as_step);
+    let mut uses = Uses::new();
+    for step in steps.clone() {
+        for (id, _) in &step.uses {
+            uses.entry(id).or_default().push((&step.id, &step.no));
+        }
+    }
     let sections: Result<Vec<_>, _> = doc
         .sections
         .iter()
-        .map(|s| section(s, &targets, drawings))
+        .map(|s| section(s, &targets, &uses, drawings))
         .collect();
     Ok(json!({
         "head": head(&doc.head),
@@ -52,6 +69,7 @@ pub(super) fn view(doc: &Doc, drawings: Option<&Drawings>) -> Result<Value, Rend
             "lines": texts(&verdict.lines, &targets),
         })),
         "sections": sections?,
+        "contents": steps.count() >= LONG_NOTE,
         "identity": doc.identity,
         "state": doc.state,
         "targets": targets.iter().map(|(id, t)| (id, &t.label)).collect::<BTreeMap<_, _>>(),
@@ -142,12 +160,13 @@ fn day(date: &str) -> Value {
 fn section(
     section: &Section,
     targets: &Targets,
+    uses: &Uses<'_>,
     drawings: Option<&Drawings>,
 ) -> Result<Value, RenderError> {
     let blocks: Result<Vec<_>, _> = section
         .blocks
         .iter()
-        .map(|b| block(b, targets, drawings))
+        .map(|b| block(b, targets, uses, drawings))
         .collect();
     Ok(json!({
         "title": section.title,
@@ -179,6 +198,7 @@ fn is_short_sign_off(block: &Block) -> bool {
 fn block(
     block: &Block,
     targets: &Targets,
+    uses: &Uses<'_>,
     drawings: Option<&Drawings>,
 ) -> Result<Value, RenderError> {
     Ok(match block {
@@ -188,7 +208,7 @@ fn block(
             let items: Vec<_> = items.iter().map(|i| item(i, targets)).collect();
             json!({"kind": "items", "items": items})
         }
-        Block::Step(s) => step(s, targets),
+        Block::Step(s) => step(s, targets, uses),
         Block::Table(table) => table_view(table, targets),
         Block::Figure(figure) => {
             let lost = || RenderError::Internal(format!("no drawing named {}", figure.name));
@@ -222,7 +242,16 @@ fn item(item: &Item, targets: &Targets) -> Value {
     })
 }
 
-fn step(step: &Step, targets: &Targets) -> Value {
+fn step(step: &Step, targets: &Targets, uses: &Uses<'_>) -> Value {
+    let used = uses.get(step.id.as_str()).map_or(&[][..], Vec::as_slice);
+    let named = used.iter().take(USES_NAMED);
+    let numbers: Vec<&str> = named.clone().map(|(_, no)| *no).collect();
+    let back = format!("→ {}", numbers.join(", "));
+    let back_lines = if used.is_empty() {
+        0
+    } else {
+        wrapped_lines(&back, MARGIN_ROOM)
+    };
     json!({
         "kind": "step",
         "target": own_target(&step.id, targets).0,
@@ -231,11 +260,17 @@ fn step(step: &Step, targets: &Targets) -> Value {
         "says": text(&step.says, targets),
         "mark": step.mark,
         "source": texts(&step.source, targets),
-        "source_lines": margin_lines(&step.source),
+        "source_lines": margin_lines(&step.source) + back_lines,
+        "used": named.map(|(id, no)| {
+            let (label, anchor) = own_target(id, targets);
+            json!({"no": no, "id": label, "anchor": anchor})
+        }).collect::<Vec<_>>(),
+        "used_more": used.len() > USES_NAMED,
         "equations": equations(&step.lines),
         "latex": step.latex,
         "uses": step.uses.iter().map(|(id, no)| json!({
             "no": no,
+            "table": no.starts_with("table"),
             "link": id,
             "anchor": targets.get(id).map(|t| &t.anchor),
         })).collect::<Vec<_>>(),

@@ -141,7 +141,7 @@ fn every_pdf_conforms_and_carries_its_joint_file_and_its_trace() {
 }
 
 /// The pages of a note, set again from its document.
-fn pages(press: &Press, produced: &Produced) -> PagedDocument {
+pub(crate) fn pages(press: &Press, produced: &Produced) -> PagedDocument {
     let faces = SerifFaces::embedded().unwrap();
     let pictures = produced.note.pictures.iter();
     let drawings: Drawings = pictures

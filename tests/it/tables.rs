@@ -1,12 +1,14 @@
 //! Tables of the notes: what stands in them, and that it stands clear.
 
-use crate::notes::pages;
+use crate::notes::{demo, pages};
 use seamnote::criteria::built_in;
 use seamnote::joint::read_joint;
-use seamnote::note::{Calculation, write_note};
+use seamnote::note::doc::{Block, Doc, Inline, Table};
+use seamnote::note::{Calculation, Note, write_note};
 use seamnote::project::Produced;
 use seamnote::render::{Press, overflow};
 use seamnote::source::SourceFile;
+use std::collections::BTreeSet;
 use std::sync::Arc;
 
 /// A joint of long names: as many runs and cases as asked for.
@@ -80,4 +82,128 @@ fn no_cell_leaves_its_column() {
         let found = overflow(&pages(&press, &produced(&text)));
         assert!(found.is_empty(), "{found:#?}");
     }
+}
+
+/// The tables of a document.
+fn tables(doc: &Doc) -> impl Iterator<Item = &Table> {
+    let blocks = doc.sections.iter().flat_map(|section| &section.blocks);
+    blocks.filter_map(Block::as_table)
+}
+
+fn table<'a>(note: &'a Note, id: &str) -> &'a Table {
+    let found = tables(&note.doc).find(|table| table.id == id);
+    found.unwrap_or_else(|| panic!("the note has no table {id}"))
+}
+
+/// The text of a cell, mathematics left out.
+fn words(cell: &[Inline]) -> String {
+    let word = |piece: &Inline| match piece {
+        Inline::Plain { text }
+        | Inline::Emph { text }
+        | Inline::Strong { text }
+        | Inline::Aside { text }
+        | Inline::StepRef { text, .. } => text.clone(),
+        Inline::Number {
+            whole, decimals, ..
+        } => format!("{whole}{decimals}"),
+        Inline::Math { .. } => String::new(),
+    };
+    cell.iter().map(word).collect()
+}
+
+/// The power of ten in a column's head.
+fn head_power(unit: &[Inline]) -> Option<i32> {
+    let unit = words(unit);
+    let raised = unit.strip_prefix("10")?.split(' ').next()?;
+    let figures = ["⁰", "¹", "²", "³", "⁴", "⁵", "⁶", "⁷", "⁸", "⁹"];
+    let mut plain = raised.replace('⁻', "-");
+    for (digit, raised) in figures.iter().enumerate() {
+        plain = plain.replace(raised, &digit.to_string());
+    }
+    plain.parse().ok()
+}
+
+/// The number of a cell as it is keyed in, with the power of its own or of its head.
+fn keyed_cell(cell: &[Inline], power: Option<i32>) -> Option<String> {
+    let Some(Inline::Number {
+        whole,
+        decimals,
+        exponent,
+        ..
+    }) = cell.last()
+    else {
+        return None;
+    };
+    let number = format!("{}{decimals}", whole.replace('−', "-").replace('+', ""));
+    Some(match exponent.or(power) {
+        Some(power) => format!("{number}*10^({power})"),
+        None => number,
+    })
+}
+
+/// A printed number by what counts in it: sign, digits and the power of its last digit.
+fn essence(printed: &str) -> (bool, String, i64) {
+    let (mantissa, exponent) = printed.split_once("*10^").unwrap_or((printed, "0"));
+    let exponent: i64 = exponent.trim_matches(['(', ')']).parse().unwrap();
+    let decimals = mantissa.split_once('.').map_or(0, |(_, after)| after.len());
+    let digits: String = mantissa.chars().filter(char::is_ascii_digit).collect();
+    let digits = digits.trim_start_matches('0').to_owned();
+    if digits.is_empty() {
+        return (false, digits, 0);
+    }
+    let last = exponent - i64::try_from(decimals).unwrap();
+    (mantissa.starts_with('-'), digits, last)
+}
+
+/// All numbers that a note prints, by their digits.
+fn printed(note: &Note) -> BTreeSet<(bool, String, i64)> {
+    let trace: serde_json::Value = serde_json::from_str(&note.trace_json()).unwrap();
+    let steps = trace["steps"].as_array().unwrap().iter();
+    steps
+        .map(|step| essence(step["printed"].as_str().unwrap()))
+        .collect()
+}
+
+/// One power of ten stands in the head of a column, and moves no digit of its cells.
+#[test]
+fn a_column_has_one_power_and_every_digit_of_its_values() {
+    let long = produced(&long_names(12, 3));
+    let demos = demo().iter().map(|(_, produced)| &produced.note);
+    let mut moved = 0;
+    for note in demos.chain([&long.note]) {
+        let known = printed(note);
+        for table in tables(&note.doc) {
+            for (at, column) in table.columns.iter().enumerate() {
+                let Some(power) = head_power(&column.unit) else {
+                    continue;
+                };
+                for row in table.rows.iter().chain(&table.foot) {
+                    let Some(number) = keyed_cell(&row.cells[at], Some(power)) else {
+                        continue;
+                    };
+                    let told = format!("{}: {number}", table.id);
+                    assert!(known.contains(&essence(&number)), "{told} is not printed");
+                    let Some(Inline::Number { exponent, .. }) = row.cells[at].last() else {
+                        continue;
+                    };
+                    assert_eq!(*exponent, None, "{told} has a power of its own too");
+                    moved += 1;
+                }
+            }
+        }
+    }
+    assert!(moved > 60, "only {moved} cells stand under a power of ten");
+}
+
+/// Demand and capacity stand side by side, so each keeps its own power of ten.
+#[test]
+fn columns_that_are_compared_keep_their_numbers_as_they_are() {
+    let note = produced(&long_names(2, 2).replace("-2000", "-2e9")).note;
+    let margins = table(&note, "margin-table");
+    let demand = &margins.rows[0].cells[3];
+    let Some(Inline::Number { exponent, .. }) = demand.last() else {
+        panic!("{demand:?} is no number");
+    };
+    assert!(exponent.is_some(), "{demand:?} has no power of ten");
+    assert_eq!(head_power(&margins.columns[3].unit), None, "its head");
 }

@@ -458,9 +458,12 @@ impl Builder<'_> {
         if worst.len() < 2 {
             return order;
         }
-        let columns = vec![
-            word_column("case", 0),
-            word_column("level", 0),
+        let level = self.shared_level();
+        let mut columns = vec![word_column("case", 0)];
+        if level.is_none() {
+            columns.push(word_column("level", 0));
+        }
+        columns.extend([
             word_column("check", 4),
             word_column("place", 3),
             number_column(symbol(&Symbol::of("U", &[])), ""),
@@ -470,7 +473,7 @@ impl Builder<'_> {
                 align: Align::Point,
                 share: 0,
             },
-        ];
+        ]);
         let total = worst.len();
         let mut rows = Vec::new();
         for (case, outcome, check, at) in worst.into_iter().take(CASES_IN_NOTE) {
@@ -500,9 +503,11 @@ impl Builder<'_> {
                 Margin::High => Cell::Text(plain("high")),
                 Margin::FixedTermsExceed => Cell::Text(plain("fails")),
             };
-            let cells = vec![
-                Cell::Text(plain(&told.name.value)),
-                Cell::Text(plain(told.level.value.word())),
+            let mut cells = vec![Cell::Text(plain(&told.name.value))];
+            if level.is_none() {
+                cells.push(Cell::Text(plain(told.level.value.word())));
+            }
+            cells.extend([
                 Cell::Text(plain(&check_name(asked(calculation, outcome), check))),
                 Cell::Text(plain(&self.place_words(spot_of(at)))),
                 Cell::Rounded {
@@ -511,14 +516,14 @@ impl Builder<'_> {
                     up: true,
                 },
                 margin,
-            ];
+            ]);
             rows.push(Line {
                 id,
                 cells,
                 strong: rows.is_empty(),
             });
         }
-        let caption = if total > CASES_IN_NOTE {
+        let mut caption = if total > CASES_IN_NOTE {
             format!(
                 "Least margin of each case, the {CASES_IN_NOTE} that rank first of {total}; all stand in cases.csv"
             )
@@ -527,6 +532,10 @@ impl Builder<'_> {
                 "Least margin of each case, all {total}, by the batch kernel at every check point"
             )
         };
+        if let Some(level) = level {
+            caption.push_str(&format!("; level {level}"));
+        }
+        caption.push_str("; the case that governs in bold");
         self.table(Sheet {
             id: "case-margins".to_owned(),
             caption: plain(&caption),

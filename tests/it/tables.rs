@@ -207,3 +207,41 @@ fn columns_that_are_compared_keep_their_numbers_as_they_are() {
     assert!(exponent.is_some(), "{demand:?} has no power of ten");
     assert_eq!(head_power(&margins.columns[3].unit), None, "its head");
 }
+
+/// Sixty cases stand in the note, the governing one in bold, their one level in the captions.
+#[test]
+fn all_cases_stand_in_the_note_up_to_sixty() {
+    for (cases, listed) in [(3, 3), (60, 60), (61, 60)] {
+        let note = produced(&long_names(2, cases)).note;
+        let mut bold = Vec::new();
+        for id in ["cases", "case-margins"] {
+            let table = table(&note, id);
+            assert_eq!(table.rows.len(), listed, "{id} of {cases} cases");
+            let caption = words(&table.caption);
+            assert!(caption.contains("; level ultimate"), "{caption}");
+            let heads: Vec<String> = table.columns.iter().map(|c| words(&c.head)).collect();
+            assert!(!heads.contains(&"level".to_owned()), "{id}: {heads:?}");
+            let strong = table.rows.iter().filter(|row| row.strong);
+            bold.push(strong.map(|row| words(&row.cells[0])).collect::<Vec<_>>());
+        }
+        assert_eq!(
+            bold[0],
+            [format!("GUST-UPWIND-{cases:02}")],
+            "{cases} cases"
+        );
+        assert_eq!(bold[0], bold[1], "the two tables agree");
+    }
+}
+
+/// Cases of two levels keep their column.
+#[test]
+fn levels_that_differ_stand_in_a_column() {
+    let text = long_names(2, 2).replace(
+        "{case: GUST-UPWIND-02,",
+        "{case: GUST-UPWIND-02, level: limit,",
+    );
+    let note = produced(&text).note;
+    let cases = table(&note, "cases");
+    assert_eq!(words(&cases.columns[1].head), "level");
+    assert!(!words(&cases.caption).contains("level"), "the caption");
+}

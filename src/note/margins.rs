@@ -610,7 +610,10 @@ impl Builder<'_> {
                 let known = done
                     .iter()
                     .find(|(known, ..)| same_limit(known, limit))
-                    .map(|(_, value, bound)| (*value, *bound));
+                    .map(|(known, value, bound)| {
+                        let own = |of: &Value| self.own_size(*of, known.run, limit.run);
+                        (own(value), own(bound))
+                    });
                 let (value, bound) = match known {
                     Some(known) => known,
                     None => {
@@ -688,6 +691,20 @@ impl Builder<'_> {
             id: format!("limit-row-{}", at + 1),
             cells,
             strong: false,
+        }
+    }
+
+    /// The size of run `to` that stands for a size of run `from`: its own row, not that of another
+    /// run of the same size. A value worked from sizes stays.
+    fn own_size(&self, value: Value, from: usize, to: usize) -> Value {
+        let (from, to) = (self.size_env(from), self.size_env(to));
+        let named = from
+            .names
+            .iter()
+            .find(|(_, bound)| **bound == Bound::Value(value));
+        match named.and_then(|(name, _)| to.names.get(name)) {
+            Some(Bound::Value(own)) => *own,
+            Some(Bound::Word(_)) | None => value,
         }
     }
 

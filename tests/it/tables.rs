@@ -3,7 +3,7 @@
 use crate::notes::{demo, pages};
 use seamnote::criteria::built_in;
 use seamnote::joint::read_joint;
-use seamnote::note::doc::{Block, Doc, Inline, Table};
+use seamnote::note::doc::{Block, Doc, Inline, Row, Table};
 use seamnote::note::{Calculation, Note, write_note};
 use seamnote::project::Produced;
 use seamnote::render::{Press, overflow};
@@ -244,4 +244,31 @@ fn levels_that_differ_stand_in_a_column() {
     let cases = table(&note, "cases");
     assert_eq!(words(&cases.columns[1].head), "level");
     assert!(!words(&cases.caption).contains("level"), "the caption");
+}
+
+/// A limit's value leads to the row of its own run, also where another run has the same size.
+#[test]
+fn links_of_limits_lead_to_their_own_run() {
+    let mut seen = 0;
+    for (joint, produced) in demo() {
+        let Some(table) = tables(&produced.note.doc).find(|table| table.id == "limit-table") else {
+            continue;
+        };
+        let throats = self::table(&produced.note, "throats");
+        for row in &table.rows {
+            let Some(Inline::Number {
+                step: Some(link), ..
+            }) = row.cells[2].last()
+            else {
+                continue;
+            };
+            let leads = |row: &&Row| row.id.as_ref() == Some(link);
+            if let Some(target) = throats.rows.iter().find(leads) {
+                let (run, named) = (words(&target.cells[1]), words(&row.cells[1]));
+                assert_eq!(run, named, "{}: {link}", joint.stem);
+                seen += 1;
+            }
+        }
+    }
+    assert!(seen > 5, "only {seen} limits lead to a run's row");
 }

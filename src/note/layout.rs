@@ -232,6 +232,7 @@ impl Builder<'_> {
         Table {
             id: sheet.id,
             caption: sheet.caption,
+            formulas: sheet.formulas,
             columns,
             rows: sheet.rows.into_iter().map(row).collect(),
             foot: sheet.foot.map(row),

@@ -6,7 +6,7 @@
 use super::builder::{Builder, Cell, Line, Sheet, number_column, word_column};
 use super::doc::Text;
 use super::points::{AXES, axes};
-use super::text::{math, piece, plain, symbol};
+use super::text::{math, plain, symbol};
 use crate::formula::{Draft, Env, FormulaError, Math, Origin, SumSet, Symbol, Value};
 use crate::weld::Segment;
 
@@ -166,8 +166,7 @@ impl Builder<'_> {
                 }
             }
         }
-        let mut words = plain(caption);
-        words.extend(self.column_formulas(properties)?);
+        let formulas = self.column_formulas(properties)?;
         let units = self.ledger.units();
         let mut columns = vec![word_column("", 0), word_column("run", 0)];
         for property in properties {
@@ -201,7 +200,8 @@ impl Builder<'_> {
         }
         self.table(Sheet {
             id: id.to_owned(),
-            caption: words,
+            caption: plain(caption),
+            formulas,
             columns,
             rows,
             foot: None,
@@ -214,8 +214,8 @@ impl Builder<'_> {
         matches!(self.runs[index].path, Segment::Straight { .. })
     }
 
-    /// The formulas of the columns, as straight runs fill them, for the table's caption.
-    fn column_formulas(&self, properties: &[Property]) -> Result<Text, FormulaError> {
+    /// The formulas of the columns, as straight runs fill them, one each.
+    fn column_formulas(&self, properties: &[Property]) -> Result<Vec<Text>, FormulaError> {
         let Some(straight) = self
             .runs
             .iter()
@@ -240,18 +240,16 @@ impl Builder<'_> {
         let mut set = self.run_set(&columns);
         set.members = vec![self.run_values[straight].clone()];
         env.sets.insert("runs".to_owned(), set);
-        let mut text = Vec::new();
-        for property in properties
+        let worked = properties
             .iter()
-            .filter(|property| !property.formula.is_empty())
-        {
-            text.push(piece(if text.is_empty() { ": " } else { "; " }));
-            let formula =
-                self.ledger
-                    .column_formula(&env, &property.symbol, &property.formula, "runs")?;
-            text.push(math(&inline(formula)));
-        }
-        Ok(text)
+            .filter(|property| !property.formula.is_empty());
+        worked
+            .map(|property| {
+                let (symbol, formula) = (&property.symbol, &property.formula);
+                let formula = self.ledger.column_formula(&env, symbol, formula, "runs")?;
+                Ok(vec![math(&inline(formula))])
+            })
+            .collect()
     }
 
     /// Directions, lengths, areas and centroids.

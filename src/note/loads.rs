@@ -94,6 +94,7 @@ impl Builder<'_> {
         self.table(Sheet {
             id: "cases".to_owned(),
             caption: plain(&caption),
+            formulas: Vec::new(),
             columns,
             rows,
             foot: None,
@@ -212,6 +213,7 @@ impl Builder<'_> {
         self.table(Sheet {
             id: "load-points".to_owned(),
             caption,
+            formulas: Vec::new(),
             columns,
             rows,
             foot: None,
@@ -429,6 +431,7 @@ impl Builder<'_> {
             self.table(Sheet {
                 id: format!("frame-{tag}"),
                 caption: plain(&words),
+                formulas: Vec::new(),
                 columns,
                 rows,
                 foot: None,

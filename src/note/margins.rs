@@ -393,6 +393,7 @@ impl Builder<'_> {
         self.table(Sheet {
             id: "margin-table".to_owned(),
             caption: plain(caption),
+            formulas: Vec::new(),
             columns,
             rows,
             foot: None,
@@ -539,6 +540,7 @@ impl Builder<'_> {
         self.table(Sheet {
             id: "case-margins".to_owned(),
             caption: plain(&caption),
+            formulas: Vec::new(),
             columns,
             rows,
             foot: None,
@@ -650,6 +652,7 @@ impl Builder<'_> {
         self.table(Sheet {
             id: "limit-table".to_owned(),
             caption,
+            formulas: Vec::new(),
             columns,
             rows,
             foot: None,

@@ -8,7 +8,7 @@ use serde_json::{Value, json};
 use crate::note::doc::{Align, Column, Inline, Row, Table, Text};
 
 use super::faces::{Cut, text_width};
-use super::view::{TEXT_WIDTH, Targets, own_target, plain, tail, text};
+use super::view::{TEXT_WIDTH, Targets, own_target, plain, tail, text, texts};
 use super::widths::{Need, Width, squeezed, widths};
 
 /// Size of table text (pt).
@@ -82,6 +82,7 @@ pub(super) fn table_view(table: &Table, targets: &Targets) -> Value {
         "target": own_target(&table.id, targets).0,
         "anchor": own_target(&table.id, targets).1,
         "caption": text(&table.caption, targets),
+        "formulas": texts(&table.formulas, targets),
         "size": (size < SIZE).then_some(size),
         "columns": table.columns.iter().zip(rooms()).map(|(c, room)| json!({
             "head": text(&c.head, targets),

@@ -1,9 +1,10 @@
 //! Tables of the notes: what stands in them, and that it stands clear.
 
 use crate::notes::{demo, pages};
+use crate::replay::{keyed, replay};
 use seamnote::criteria::built_in;
 use seamnote::joint::read_joint;
-use seamnote::note::doc::{Block, Doc, Inline, Row, Table};
+use seamnote::note::doc::{Align, Block, Doc, Inline, Row, Table};
 use seamnote::note::{Calculation, Note, write_note};
 use seamnote::project::Produced;
 use seamnote::render::{Press, overflow};
@@ -206,6 +207,62 @@ fn columns_that_are_compared_keep_their_numbers_as_they_are() {
     };
     assert!(exponent.is_some(), "{demand:?} has no power of ten");
     assert_eq!(head_power(&margins.columns[3].unit), None, "its head");
+}
+
+/// The last row of each table of properties is the sum of the printed cells above it, and the steps
+/// of the group lead there.
+#[test]
+fn tables_of_many_runs_end_in_their_sums() {
+    let note = produced(&long_names(12, 3)).note;
+    for id in ["throats", "own", "transfer"] {
+        let table = table(&note, id);
+        let foot = table.foot.as_ref().expect("a row of sums");
+        let mut sums = 0;
+        for (at, column) in table.columns.iter().enumerate() {
+            let power = head_power(&column.unit);
+            let number = |row: &Row| keyed_cell(&row.cells[at], power).map(|text| keyed(&text));
+            let (Align::Point, Some((sum, unit, _))) = (column.align, number(foot)) else {
+                continue;
+            };
+            let added: f64 = table
+                .rows
+                .iter()
+                .filter_map(number)
+                .map(|cell| cell.0)
+                .sum();
+            assert!(
+                (added - sum).abs() <= unit,
+                "{id}: {added} is told as {sum}"
+            );
+            sums += 1;
+        }
+        assert_eq!(sums, 3, "{id}: columns with a sum");
+    }
+    let steps = || note.doc.sections.iter().flat_map(|section| &section.blocks);
+    for (id, row) in [
+        ("group.x-c", "sum.throats"),
+        ("group.y-c", "sum.throats"),
+        ("group.i-xx", "sum.own"),
+        ("group.i-xy", "sum.transfer"),
+    ] {
+        let step = steps()
+            .filter_map(Block::as_step)
+            .find(|step| step.id == id);
+        let step = step.unwrap_or_else(|| panic!("no step {id}"));
+        let lines: String = step.lines.iter().map(|line| line.typst.as_str()).collect();
+        assert!(lines.contains(&format!("#n(\"{row}\"")), "{id}: {lines}");
+    }
+}
+
+/// With more runs than a step writes out, printed numbers still give the printed results.
+#[test]
+fn notes_of_many_runs_replay() {
+    for text in [long_names(5, 1), long_names(12, 2), long_names(30, 1)] {
+        let trace = serde_json::from_str(&produced(&text).note.trace_json()).unwrap();
+        let found = replay(&trace);
+        assert!(found.faults.is_empty(), "{}", found.faults.join("\n"));
+        assert!(found.zeros.is_empty(), "{}", found.zeros.join("\n"));
+    }
 }
 
 /// Sixty cases stand in the note, the governing one in bold, their one level in the captions.

@@ -148,6 +148,51 @@ impl Printed {
         self.mantissa.chars().all(|c| c == '0' || c == '.')
     }
 
+    /// The same number as m × 10ⁿ with the n asked for: the point moves in the printed digits, no
+    /// digit is lost or rounded. `None` where it would have to move past the last digit, since a
+    /// zero there would read as one more digit; a number that reads 0 stays 0.
+    #[must_use]
+    pub fn at_power(&self, power: i32) -> Option<Self> {
+        if self.is_zero() {
+            return Some(self.clone());
+        }
+        let (whole, decimals) = match self.mantissa.split_once('.') {
+            Some((whole, decimals)) => (whole, decimals),
+            None => (self.mantissa.as_str(), ""),
+        };
+        let digits = format!("{}{decimals}", whole.trim_start_matches('0'));
+        let before = i32::try_from(digits.len() - decimals.len()).unwrap_or(i32::MAX);
+        let point = before + self.exponent.unwrap_or(0) - power;
+        let mantissa = match usize::try_from(point) {
+            Ok(point) if point > digits.len() => return None,
+            Ok(0) | Err(_) => {
+                let zeros = usize::try_from(-point).unwrap_or(0);
+                format!("0.{}{digits}", "0".repeat(zeros))
+            }
+            Ok(point) => match digits.split_at(point) {
+                (whole, "") => lead(whole).to_owned(),
+                (whole, decimals) => format!("{}.{decimals}", lead(whole)),
+            },
+        };
+        Some(Self {
+            negative: self.negative,
+            mantissa,
+            exponent: Some(power),
+        })
+    }
+
+    /// How many digits are printed, zeros before and after the point included.
+    #[must_use]
+    pub fn count_digits(&self) -> usize {
+        self.mantissa.chars().filter(char::is_ascii_digit).count()
+    }
+
+    /// A power of ten in running text: `10⁵`.
+    #[must_use]
+    pub fn power_text(power: i32) -> String {
+        format!("10{}", superscript(power))
+    }
+
     /// Plain text with an ASCII sign, as in the trace: `-4.243`, `3.254*10^6`.
     #[must_use]
     pub fn algebra(&self) -> String {
@@ -210,6 +255,14 @@ fn fixed(figures: &str, power: i32) -> String {
         return format!("{figures}{}", "0".repeat(whole - figures.len()));
     }
     format!("{}.{}", &figures[..whole], &figures[whole..])
+}
+
+/// The whole part of a number without zeros at its start.
+fn lead(whole: &str) -> &str {
+    match whole.trim_start_matches('0') {
+        "" => "0",
+        digits => digits,
+    }
 }
 
 /// A whole number in superscript characters.
@@ -301,6 +354,40 @@ mod tests {
                 printed,
                 "{value}"
             );
+        }
+    }
+
+    #[test]
+    fn another_power_of_ten_moves_the_point_alone() {
+        #[rustfmt::skip]
+        let rows = [
+            // mantissa  exponent  power  printed
+            ("8.146",    Some(5),  5,     Some("8.146*10^5")),
+            ("1.157",    Some(6),  5,     Some("11.57*10^5")),
+            ("1.157",    Some(6),  3,     Some("1157*10^3")),
+            ("1.157",    Some(6),  2,     None),
+            ("1.157",    Some(6),  7,     Some("0.1157*10^7")),
+            ("1358",     None,     5,     Some("0.01358*10^5")),
+            ("1500",     None,     5,     Some("0.01500*10^5")),
+            ("0.0310",   None,     -2,    Some("3.10*10^(-2)")),
+            ("0.0310",   None,     -1,    Some("0.310*10^(-1)")),
+            ("0.25",     None,     3,     Some("0.00025*10^3")),
+            ("12.5",     None,     1,     Some("1.25*10^1")),
+            ("2",        Some(6),  5,     None),
+            ("0",        None,     5,     Some("0")),
+        ];
+        for (mantissa, exponent, power, wanted) in rows {
+            let printed = Printed {
+                negative: false,
+                mantissa: mantissa.to_owned(),
+                exponent,
+            };
+            let moved = printed.at_power(power);
+            let text = moved.as_ref().map(Printed::algebra);
+            assert_eq!(text.as_deref(), wanted, "{mantissa} at {power}");
+            let same =
+                moved.is_none_or(|moved| moved.value().to_bits() == printed.value().to_bits());
+            assert!(same, "{mantissa} at {power} has another value");
         }
     }
 

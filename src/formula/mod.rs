@@ -30,6 +30,7 @@ pub use lines::{Equation, EquationLine};
 pub use math::Math;
 pub use node::{Branch, Condition, Function, Kind as NodeKind, Literal, Node, Op, Relation};
 pub use parse::parse;
+pub use present::TERMS_ON_PAGE;
 pub use symbol::Symbol;
 pub use table::{Key, Row, RowKey, Table};
 

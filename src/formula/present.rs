@@ -8,7 +8,7 @@ use super::node::{Branch, Condition, Function, Kind, Node, Op};
 use crate::quantity::{Dim, Unit};
 
 /// Sums of at most this many terms are written out on the page.
-const TERMS_ON_PAGE: usize = 4;
+pub const TERMS_ON_PAGE: usize = 4;
 
 /// What a reading of a formula yields: the mathematics and remarks on what was chosen in it.
 #[derive(Clone, PartialEq, Debug)]

@@ -36,8 +36,10 @@ pub(super) enum Piece {
 pub(super) struct Sheet {
     /// Stable id.
     pub(super) id: String,
-    /// Caption.
+    /// Caption, in words.
     pub(super) caption: Text,
+    /// The formulas of its columns.
+    pub(super) formulas: Vec<Text>,
     /// Columns.
     pub(super) columns: Vec<Column>,
     /// Rows.

@@ -132,6 +132,7 @@ impl<'a> Symbols<'a> {
         vec![Block::Table(Table {
             id: "needs".to_owned(),
             caption: plain("What the sheet needs, and the first place that gives it"),
+            formulas: Vec::new(),
             columns: [
                 ("", 0),
                 ("what it is", 4),
@@ -341,6 +342,7 @@ fn tables(table: &CodeTable, document: &str) -> Vec<Block> {
         Some(Block::Table(Table {
             id: format!("table-{}-{system}", slug(&table.name.value)),
             caption: plain(&capital(&head)),
+            formulas: Vec::new(),
             columns: vec![column("for", 0), column("value", 0)],
             rows: rows
                 .iter()

@@ -163,8 +163,10 @@ pub struct Line {
 pub struct Table {
     /// Stable id.
     pub id: String,
-    /// Caption, printed above.
+    /// Caption, printed above, in words.
     pub caption: Text,
+    /// The formulas of its columns, printed under the caption, one each.
+    pub formulas: Vec<Text>,
     /// Columns.
     pub columns: Vec<Column>,
     /// Rows.

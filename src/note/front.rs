@@ -181,6 +181,7 @@ impl Builder<'_> {
         self.table(Sheet {
             id: "normals".to_owned(),
             caption,
+            formulas: Vec::new(),
             columns,
             rows,
             foot: None,
@@ -225,6 +226,7 @@ impl Builder<'_> {
         self.table(Sheet {
             id: "runs".to_owned(),
             caption: plain("Runs as given"),
+            formulas: Vec::new(),
             columns,
             rows,
             foot: None,
@@ -372,6 +374,7 @@ impl Builder<'_> {
         self.table(Sheet {
             id: "parts".to_owned(),
             caption: plain("Parts joined"),
+            formulas: Vec::new(),
             columns,
             rows,
             foot: None,

@@ -121,6 +121,7 @@ impl Builder<'_> {
         self.table(Sheet {
             id: "handbook".to_owned(),
             caption,
+            formulas: Vec::new(),
             columns,
             rows,
             foot: None,

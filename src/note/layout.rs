@@ -2,6 +2,7 @@
 
 use super::builder::{Builder, Cell, Line, Piece, Sheet};
 use super::doc::{Block, Item, Row, Section, Step, Table, Text};
+use super::powers::powers;
 use super::text::{number, piece, plain};
 use crate::formula::{FormulaError, Kind, Ledger, Origin, Printed, Value};
 use crate::quantity::Dim;
@@ -220,52 +221,64 @@ impl Builder<'_> {
     }
 
     fn table_block(&self, sheet: Sheet) -> Table {
+        let powers = powers(&self.ledger, &sheet);
+        let row = |line| self.row(line, &powers);
+        let mut columns = sheet.columns;
+        for (column, power) in columns.iter_mut().zip(&powers) {
+            if let Some(power) = power {
+                let text = Printed::power_text(*power);
+                column.unit.insert(0, piece(&format!("{text} ")));
+            }
+        }
         Table {
             id: sheet.id,
             caption: sheet.caption,
-            columns: sheet.columns,
-            rows: sheet.rows.into_iter().map(|row| self.row(row)).collect(),
-            foot: sheet.foot.map(|row| self.row(row)),
+            formulas: sheet.formulas,
+            columns,
+            rows: sheet.rows.into_iter().map(row).collect(),
+            foot: sheet.foot.map(row),
         }
     }
 
-    fn row(&self, line: Line) -> Row {
-        let cells = line
-            .cells
-            .into_iter()
-            .map(|cell| match cell {
-                Cell::Text(text) => text,
-                Cell::Own(value) => vec![self.number(value, false)],
-                Cell::Linked(value) => vec![self.number(value, true)],
-                Cell::Rounded {
-                    value,
-                    decimals,
-                    up,
-                } => {
-                    let entry = self.ledger.get(value);
-                    let link = (!entry.no.is_empty()).then(|| entry.anchor.clone());
-                    vec![number(
-                        &Printed::rounded(entry.value, decimals, up),
-                        entry.signed,
-                        link,
-                    )]
-                }
-            })
-            .collect();
+    fn row(&self, line: Line, powers: &[Option<i32>]) -> Row {
+        let cells = line.cells.into_iter().zip(powers);
         Row {
-            cells,
+            cells: cells
+                .map(|(cell, power)| self.cell_text(cell, *power))
+                .collect(),
             strong: line.strong,
             id: Some(line.id),
         }
     }
 
-    fn number(&self, value: Value, linked: bool) -> super::doc::Inline {
+    /// A cell's text; the power of ten of its column stands in the head.
+    fn cell_text(&self, cell: Cell, power: Option<i32>) -> Text {
+        match cell {
+            Cell::Text(text) => text,
+            Cell::Own(value) => vec![self.number(value, false, power)],
+            Cell::Linked(value) => vec![self.number(value, true, power)],
+            Cell::Rounded {
+                value,
+                decimals,
+                up,
+            } => {
+                let entry = self.ledger.get(value);
+                let link = (!entry.no.is_empty()).then(|| entry.anchor.clone());
+                let rounded = Printed::rounded(entry.value, decimals, up);
+                vec![number(&rounded, entry.signed, link)]
+            }
+        }
+    }
+
+    fn number(&self, value: Value, linked: bool, power: Option<i32>) -> super::doc::Inline {
         let entry = self.ledger.get(value);
-        number(
-            &self.ledger.printed(value),
-            entry.signed,
-            linked.then(|| entry.anchor.clone()),
-        )
+        let printed = self.ledger.printed(value);
+        let moved = power.and_then(|power| printed.at_power(power));
+        let printed = moved.map_or(printed, |moved| Printed {
+            exponent: None,
+            ..moved
+        });
+        number(&printed, entry.signed, linked.then(|| entry.anchor.clone()))
     }
 }
 

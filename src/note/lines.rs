@@ -6,8 +6,10 @@
 use super::builder::{Builder, Cell, Line, Sheet, number_column, word_column};
 use super::doc::Text;
 use super::points::{AXES, axes};
-use super::text::{math, piece, plain, symbol};
-use crate::formula::{Draft, Env, FormulaError, Math, Origin, SumSet, Symbol, Value};
+use super::text::{math, plain, symbol};
+use crate::formula::{
+    Draft, Env, FormulaError, Math, Origin, SumSet, Symbol, TERMS_ON_PAGE, Value,
+};
 use crate::weld::Segment;
 
 /// A column of a property table.
@@ -20,7 +22,14 @@ struct Property {
     formula: String,
     /// What it is, for the trace.
     says: &'static str,
+    /// Whether the formula is that of every run, arcs included.
+    every_run: bool,
+    /// Name of the sum over the runs and what it is, for the last row of a table.
+    sum: Option<(&'static str, &'static str)>,
 }
+
+/// What the sum of the areas is.
+const AREA: &str = "Area of all throats";
 
 /// The pairs of axes of second moments, with the names of the line integrals.
 const PLANAR_PAIRS: [(&str, usize, usize); 3] = [("I_xx", 1, 1), ("I_yy", 0, 0), ("I_xy", 0, 1)];
@@ -40,6 +49,28 @@ pub(super) const OWN: [&str; 6] = ["own_0", "own_1", "own_2", "own_3", "own_4", 
 const MOVED: [&str; 6] = [
     "moved_0", "moved_1", "moved_2", "moved_3", "moved_4", "moved_5",
 ];
+/// Names of the sums of the own second moments, in the order of the pairs.
+const OWN_SUMS: [&str; 6] = [
+    "own_sum_0",
+    "own_sum_1",
+    "own_sum_2",
+    "own_sum_3",
+    "own_sum_4",
+    "own_sum_5",
+];
+/// Names of the sums of the transfer terms, in the order of the pairs.
+const MOVED_SUMS: [&str; 6] = [
+    "moved_sum_0",
+    "moved_sum_1",
+    "moved_sum_2",
+    "moved_sum_3",
+    "moved_sum_4",
+    "moved_sum_5",
+];
+/// Names of the runs' first moments, by axis.
+const FIRST: [&str; 3] = ["first_x", "first_y", "first_z"];
+/// Names of their sums, by axis.
+const FIRST_SUMS: [&str; 3] = ["first_sum_x", "first_sum_y", "first_sum_z"];
 
 impl Builder<'_> {
     /// The pairs that this group needs.
@@ -166,8 +197,7 @@ impl Builder<'_> {
                 }
             }
         }
-        let mut words = plain(caption);
-        words.extend(self.column_formulas(properties)?);
+        let formulas = self.column_formulas(properties)?;
         let units = self.ledger.units();
         let mut columns = vec![word_column("", 0), word_column("run", 0)];
         for property in properties {
@@ -199,14 +229,52 @@ impl Builder<'_> {
                 strong: false,
             });
         }
+        let foot = self.sums_row(id, properties)?;
         self.table(Sheet {
             id: id.to_owned(),
-            caption: words,
+            caption: plain(caption),
+            formulas,
             columns,
             rows,
-            foot: None,
+            foot,
         });
         Ok(())
+    }
+
+    /// Whether there are too many runs for a step to write out the terms of a sum, so that tables
+    /// end in the sums of their columns.
+    fn sums_in_tables(&self) -> bool {
+        self.runs.len() > TERMS_ON_PAGE
+    }
+
+    /// The last row of a table: the sums of its columns.
+    fn sums_row(
+        &mut self,
+        table: &str,
+        properties: &[Property],
+    ) -> Result<Option<Line>, FormulaError> {
+        let has_sums = properties.iter().any(|property| property.sum.is_some());
+        if !has_sums || !self.sums_in_tables() {
+            return Ok(None);
+        }
+        let mut cells = vec![Cell::Text(Text::new()), Cell::Text(plain("sum"))];
+        for property in properties {
+            cells.push(match property.sum {
+                None => Cell::Text(Text::new()),
+                Some((name, says)) => {
+                    let column = [(property.name, property.symbol.clone())];
+                    let formula = format!("sum(runs, {})", property.name);
+                    let symbol = property.symbol.clone();
+                    let value = self.sum(name, symbol, says, &column, &formula)?;
+                    self.cell(value)
+                }
+            });
+        }
+        Ok(Some(Line {
+            id: format!("sum.{table}"),
+            cells,
+            strong: false,
+        }))
     }
 
     /// Whether a run is straight.
@@ -214,17 +282,13 @@ impl Builder<'_> {
         matches!(self.runs[index].path, Segment::Straight { .. })
     }
 
-    /// The formulas of the columns, as straight runs fill them, for the table's caption.
-    fn column_formulas(&self, properties: &[Property]) -> Result<Text, FormulaError> {
-        let Some(straight) = self
-            .runs
-            .iter()
-            .position(|run| matches!(run.path, Segment::Straight { .. }))
-        else {
-            return Ok(Vec::new());
-        };
+    /// The formulas of the columns, as straight runs fill them, one each.
+    fn column_formulas(&self, properties: &[Property]) -> Result<Vec<Text>, FormulaError> {
+        // Arcs fill some columns by steps of their own.
+        let straight = (0..self.runs.len()).find(|index| self.is_straight(*index));
+        let shown = straight.unwrap_or_default();
         let mut env = self.env.clone();
-        let names: Vec<(String, Symbol)> = self.run_values[straight]
+        let names: Vec<(String, Symbol)> = self.run_values[shown]
             .iter()
             .map(|(name, value)| {
                 (
@@ -238,20 +302,19 @@ impl Builder<'_> {
             .map(|(name, symbol)| (name.as_str(), symbol.clone()))
             .collect();
         let mut set = self.run_set(&columns);
-        set.members = vec![self.run_values[straight].clone()];
+        set.members = vec![self.run_values[shown].clone()];
         env.sets.insert("runs".to_owned(), set);
-        let mut text = Vec::new();
-        for property in properties
+        let worked = properties
             .iter()
             .filter(|property| !property.formula.is_empty())
-        {
-            text.push(piece(if text.is_empty() { ": " } else { "; " }));
-            let formula =
-                self.ledger
-                    .column_formula(&env, &property.symbol, &property.formula, "runs")?;
-            text.push(math(&inline(formula)));
-        }
-        Ok(text)
+            .filter(|property| property.every_run || straight.is_some());
+        worked
+            .map(|property| {
+                let (symbol, formula) = (&property.symbol, &property.formula);
+                let formula = self.ledger.column_formula(&env, symbol, formula, "runs")?;
+                Ok(vec![math(&inline(formula))])
+            })
+            .collect()
     }
 
     /// Directions, lengths, areas and centroids.
@@ -265,6 +328,8 @@ impl Builder<'_> {
                 symbol: Symbol::of("d", &[AXES[*axis]]),
                 formula: format!("{0}_b - {0}_a", AXES[*axis]),
                 says: "Extent from start to end",
+                every_run: false,
+                sum: None,
             });
         }
         let squares: Vec<String> = axes
@@ -278,6 +343,8 @@ impl Builder<'_> {
                 symbol: Symbol::of("L", &["0"]),
                 formula: root,
                 says: "Length as given",
+                every_run: false,
+                sum: None,
             });
         } else {
             properties.push(Property {
@@ -285,6 +352,8 @@ impl Builder<'_> {
                 symbol: Symbol::of("L", &[]),
                 formula: root,
                 says: "Length",
+                every_run: false,
+                sum: None,
             });
         }
         let mut second: Vec<Property> = Vec::new();
@@ -293,6 +362,8 @@ impl Builder<'_> {
             symbol: Symbol::of("t", &[]),
             formula: String::new(),
             says: "Effective throat",
+            every_run: false,
+            sum: None,
         });
         if trimmed {
             second.push(Property {
@@ -300,6 +371,8 @@ impl Builder<'_> {
                 symbol: Symbol::of("L", &[]),
                 formula: "L_0 - e_a - e_b".to_owned(),
                 says: "Effective length: less its stops",
+                every_run: false,
+                sum: None,
             });
         } else {
             second.extend(properties.pop());
@@ -309,6 +382,8 @@ impl Builder<'_> {
             symbol: Symbol::of("A", &[]),
             formula: "t*L".to_owned(),
             says: "Throat area",
+            every_run: false,
+            sum: Some(("A", AREA)),
         });
         for axis in axes {
             let a = AXES[*axis];
@@ -322,7 +397,12 @@ impl Builder<'_> {
                 symbol: Symbol::of(a, &["m"]),
                 formula,
                 says: "Centroid of the run",
+                every_run: false,
+                sum: None,
             });
+        }
+        if self.sums_in_tables() {
+            second.extend(axes.iter().map(|axis| first_moment(*axis)));
         }
         if trimmed {
             properties.push(Property {
@@ -330,23 +410,27 @@ impl Builder<'_> {
                 symbol: Symbol::of("c", &["s"]),
                 formula: String::new(),
                 says: "Shortening at the start",
+                every_run: false,
+                sum: None,
             });
             properties.push(Property {
                 name: "e_b",
                 symbol: Symbol::of("c", &["e"]),
                 formula: String::new(),
                 says: "Shortening at the end",
+                every_run: false,
+                sum: None,
             });
         }
         if (0..self.runs.len()).any(|index| self.is_straight(index)) {
             self.run_table("extents", "Extents of the straight runs", &properties, true)?;
         }
-        self.run_table(
-            "throats",
-            "Throats, lengths, areas and centroids",
-            &second,
-            false,
-        )
+        let caption = if self.sums_in_tables() {
+            "Throats, lengths, areas, centroids and first moments"
+        } else {
+            "Throats, lengths, areas and centroids"
+        };
+        self.run_table("throats", caption, &second, false)
     }
 
     /// What each stop takes off: one leg, one throat, or nothing.
@@ -399,13 +483,12 @@ impl Builder<'_> {
     /// First moments and the centroid of the group.
     fn first_moments(&mut self) -> Result<(), FormulaError> {
         let axes = axes(self.planar);
-        self.sum_step(
-            "A",
-            Symbol::of("A", &[]),
-            "Area of all throats",
-            &[("A", Symbol::of("A", &[]))],
-            "sum(runs, A)",
-        )?;
+        let in_table = self.sums_in_tables();
+        if !in_table {
+            let area = Symbol::of("A", &[]);
+            let column = [("A", area.clone())];
+            self.sum_step("A", area, AREA, &column, "sum(runs, A)")?;
+        }
         for axis in axes {
             let a = AXES[*axis];
             let middle = format!("{a}_m");
@@ -414,7 +497,11 @@ impl Builder<'_> {
                 (middle.as_str(), Symbol::of(a, &["m"])),
             ];
             let says = format!("Centroid of the group, {a}");
-            let formula = format!("sum(runs, A*{middle})/A_w");
+            let formula = if in_table {
+                format!("{}/A_w", FIRST_SUMS[*axis])
+            } else {
+                format!("sum(runs, A*{middle})/A_w")
+            };
             let name = format!("{a}_c");
             self.sum_step(&name, Symbol::of(a, &["c"]), &says, &columns, &formula)?;
         }
@@ -460,6 +547,20 @@ impl Builder<'_> {
         columns: &[(&str, Symbol)],
         formula: &str,
     ) -> Result<Value, FormulaError> {
+        let value = self.sum(name, symbol, says, columns, formula)?;
+        self.show(value);
+        Ok(value)
+    }
+
+    /// A sum over the runs, bound to `name` and not yet shown.
+    fn sum(
+        &mut self,
+        name: &str,
+        symbol: Symbol,
+        says: &str,
+        columns: &[(&str, Symbol)],
+        formula: &str,
+    ) -> Result<Value, FormulaError> {
         let mut env = self.env.clone();
         env.sets.insert("runs".to_owned(), self.run_set(columns));
         let id = format!("group.{}", name.to_lowercase().replace('_', "-"));
@@ -473,9 +574,7 @@ impl Builder<'_> {
             origin,
             dim: None,
         };
-        let value = self.make(bound, draft, &env)?;
-        self.show(value);
-        Ok(value)
+        self.make(bound, draft, &env)
     }
 
     /// Own second moments, transfer terms, and their sums.
@@ -483,12 +582,14 @@ impl Builder<'_> {
         let pairs = self.pairs();
         let own: Vec<Property> = pairs
             .iter()
-            .zip(OWN)
-            .map(|((name, p, q), own)| Property {
+            .zip(OWN.into_iter().zip(OWN_SUMS))
+            .map(|((name, p, q), (own, sum))| Property {
                 name: own,
                 symbol: Self::pair_symbol(name).with("0"),
                 formula: self.own_formula(*p, *q),
                 says: "Second moment about the run's own centroid",
+                every_run: false,
+                sum: Some((sum, "Sum of the runs' own second moments")),
             })
             .collect();
         self.run_table(
@@ -499,8 +600,8 @@ impl Builder<'_> {
         )?;
         let transfer: Vec<Property> = pairs
             .iter()
-            .zip(MOVED)
-            .map(|((name, p, q), moved)| {
+            .zip(MOVED.into_iter().zip(MOVED_SUMS))
+            .map(|((name, p, q), (moved, sum))| {
                 let (a, b) = (AXES[*p], AXES[*q]);
                 let formula = if p == q {
                     format!("A*({a}_m - {a}_c)^2")
@@ -512,6 +613,8 @@ impl Builder<'_> {
                     symbol: Symbol::of("T", &[&name[2..3], &name[3..4]]),
                     formula,
                     says: "Transfer to the centroid of the group",
+                    every_run: true,
+                    sum: Some((sum, "Sum of the transfer terms")),
                 }
             })
             .collect();
@@ -538,13 +641,12 @@ impl Builder<'_> {
                     &other[3..4]
                 ),
             };
-            self.sum_step(
-                name,
-                base,
-                &says,
-                &columns,
-                &format!("sum(runs, {o}) + sum(runs, {q})"),
-            )?;
+            let formula = if self.sums_in_tables() {
+                format!("{} + {}", OWN_SUMS[at], MOVED_SUMS[at])
+            } else {
+                format!("sum(runs, {o}) + sum(runs, {q})")
+            };
+            self.sum_step(name, base, &says, &columns, &formula)?;
         }
         Ok(())
     }
@@ -590,6 +692,19 @@ impl Builder<'_> {
             self.step(symbol, &says, formula, "statics")?;
         }
         Ok(())
+    }
+}
+
+/// The first moment of a run's area, along an axis.
+fn first_moment(axis: usize) -> Property {
+    let a = AXES[axis];
+    Property {
+        name: FIRST[axis],
+        symbol: Symbol::of("G", &[a]),
+        formula: format!("A*{a}_m"),
+        says: "First moment of the run's area",
+        every_run: true,
+        sum: Some((FIRST_SUMS[axis], "First moment of all areas")),
     }
 }
 

@@ -9,7 +9,7 @@ use crate::load::Frame;
 use crate::quantity::{Dim, Given};
 
 /// Cases up to this number are listed in the note; the rest stand in the table of cases beside it.
-pub(super) const CASES_IN_NOTE: usize = 24;
+pub(super) const CASES_IN_NOTE: usize = 60;
 
 /// The values of a case in the joint frame.
 #[derive(Clone, Copy)]
@@ -23,7 +23,14 @@ pub(super) struct CaseValues {
 }
 
 impl Builder<'_> {
-    /// The list of cases.
+    /// The level of the cases, where all have the same.
+    pub(super) fn shared_level(&self) -> Option<&'static str> {
+        let mut levels = self.joint.loads.cases.iter().map(|case| case.level.value);
+        let first = levels.next()?;
+        levels.all(|level| level == first).then(|| first.word())
+    }
+
+    /// The list of cases, in file order; `first` are the cases by rank, the one that governs in bold.
     pub(super) fn case_table(&mut self, first: &[usize]) {
         let units = self.joint.units.value;
         let (force, moment) = (units.text(Dim::FORCE), units.text(Dim::MOMENT));
@@ -41,7 +48,11 @@ impl Builder<'_> {
             .cases
             .iter()
             .any(|case| case.says.is_some());
-        let mut columns = vec![word_column("case", 0), word_column("level", 0)];
+        let level = self.shared_level();
+        let mut columns = vec![word_column("case", 0)];
+        if level.is_none() {
+            columns.push(word_column("level", 0));
+        }
         if told {
             columns.push(word_column("what", 1));
         }
@@ -51,14 +62,16 @@ impl Builder<'_> {
         for axis in AXES {
             columns.push(number_column(symbol(&Symbol::of("M", &[axis])), &moment));
         }
+        // A lone case governs without being told so.
+        let rows_bold = cases.len() > 1 && !first.is_empty();
         let mut rows = Vec::new();
         for index in shown {
             let case = self.joint.loads.cases[index].clone();
             let id = format!("case.{}-{}", index + 1, slug(&case.name.value));
-            let mut cells = vec![
-                Cell::Text(plain(&case.name.value)),
-                Cell::Text(plain(case.level.value.word())),
-            ];
+            let mut cells = vec![Cell::Text(plain(&case.name.value))];
+            if level.is_none() {
+                cells.push(Cell::Text(plain(case.level.value.word())));
+            }
             if told {
                 let says = case.says.as_ref().map_or("", |says| says.value.as_str());
                 cells.push(Cell::Text(plain(says)));
@@ -74,26 +87,39 @@ impl Builder<'_> {
             rows.push(Line {
                 id,
                 cells,
-                strong: false,
+                strong: rows_bold && first.first() == Some(&index),
             });
         }
-        let total = self.joint.loads.cases.len();
-        let caption = if rows.len() == total {
-            format!("Load cases as given, {} in all", total)
-        } else {
-            format!(
-                "Load cases as given: the {} that rank first of {total}; all stand in the table of cases",
-                rows.len()
-            )
-        };
+        let caption = self.case_caption(rows.len(), level, rows_bold);
         self.table(Sheet {
             id: "cases".to_owned(),
             caption: plain(&caption),
+            formulas: Vec::new(),
             columns,
             rows,
             foot: None,
         });
         self.describe_cases(first);
+    }
+
+    /// The caption of the list of cases: how many stand there, their level, what is bold.
+    fn case_caption(&self, shown: usize, level: Option<&str>, rows_bold: bool) -> String {
+        let total = self.joint.loads.cases.len();
+        let mut caption = if shown == total {
+            format!("Load cases as given, {total} in all")
+        } else {
+            format!("Load cases as given: the {shown} that rank first of {total}")
+        };
+        if let Some(level) = level {
+            caption.push_str(&format!("; level {level}"));
+        }
+        if rows_bold {
+            caption.push_str("; the case that governs in bold");
+        }
+        if shown < total {
+            caption.push_str("; all stand in the table of cases");
+        }
+        caption
     }
 
     /// Words on the cases, where they act, and how many there are.
@@ -187,6 +213,7 @@ impl Builder<'_> {
         self.table(Sheet {
             id: "load-points".to_owned(),
             caption,
+            formulas: Vec::new(),
             columns,
             rows,
             foot: None,
@@ -404,6 +431,7 @@ impl Builder<'_> {
             self.table(Sheet {
                 id: format!("frame-{tag}"),
                 caption: plain(&words),
+                formulas: Vec::new(),
                 columns,
                 rows,
                 foot: None,

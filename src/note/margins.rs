@@ -423,6 +423,7 @@ impl Builder<'_> {
         self.table(Sheet {
             id: "margin-table".to_owned(),
             caption: plain(caption),
+            formulas: Vec::new(),
             columns,
             rows,
             foot: None,
@@ -488,9 +489,12 @@ impl Builder<'_> {
         if worst.len() < 2 {
             return order;
         }
-        let columns = vec![
-            word_column("case", 0),
-            word_column("level", 0),
+        let level = self.shared_level();
+        let mut columns = vec![word_column("case", 0)];
+        if level.is_none() {
+            columns.push(word_column("level", 0));
+        }
+        columns.extend([
             word_column("check", 4),
             word_column("place", 3),
             number_column(symbol(&Symbol::of("U", &[])), ""),
@@ -500,7 +504,7 @@ impl Builder<'_> {
                 align: Align::Point,
                 share: 0,
             },
-        ];
+        ]);
         let total = worst.len();
         let mut rows = Vec::new();
         for (case, outcome, check, at) in worst.into_iter().take(CASES_IN_NOTE) {
@@ -530,9 +534,11 @@ impl Builder<'_> {
                 Margin::High => Cell::Text(plain("high")),
                 Margin::FixedTermsExceed => Cell::Text(plain("fails")),
             };
-            let cells = vec![
-                Cell::Text(plain(&told.name.value)),
-                Cell::Text(plain(told.level.value.word())),
+            let mut cells = vec![Cell::Text(plain(&told.name.value))];
+            if level.is_none() {
+                cells.push(Cell::Text(plain(told.level.value.word())));
+            }
+            cells.extend([
                 Cell::Text(plain(&check_name(asked(calculation, outcome), check))),
                 Cell::Text(plain(&self.place_words(spot_of(at)))),
                 Cell::Rounded {
@@ -541,23 +547,28 @@ impl Builder<'_> {
                     up: true,
                 },
                 margin,
-            ];
+            ]);
             rows.push(Line {
                 id,
                 cells,
                 strong: rows.is_empty(),
             });
         }
-        let caption = if total > CASES_IN_NOTE {
+        let mut caption = if total > CASES_IN_NOTE {
             format!(
                 "Least margin of each case, the {CASES_IN_NOTE} that rank first of {total}; all stand in cases.csv"
             )
         } else {
             format!("Least margin of each case, all {total}, computed at every check point")
         };
+        if let Some(level) = level {
+            caption.push_str(&format!("; level {level}"));
+        }
+        caption.push_str("; the case that governs in bold");
         self.table(Sheet {
             id: "case-margins".to_owned(),
             caption: plain(&caption),
+            formulas: Vec::new(),
             columns,
             rows,
             foot: None,
@@ -629,7 +640,10 @@ impl Builder<'_> {
                 let known = done
                     .iter()
                     .find(|(known, ..)| same_limit(known, limit))
-                    .map(|(_, value, bound)| (*value, *bound));
+                    .map(|(known, value, bound)| {
+                        let own = |of: &Value| self.own_size(*of, known.run, limit.run);
+                        (own(value), own(bound))
+                    });
                 let (value, bound) = match known {
                     Some(known) => known,
                     None => {
@@ -666,6 +680,7 @@ impl Builder<'_> {
         self.table(Sheet {
             id: "limit-table".to_owned(),
             caption,
+            formulas: Vec::new(),
             columns,
             rows,
             foot: None,
@@ -707,6 +722,20 @@ impl Builder<'_> {
             id: format!("limit-row-{}", at + 1),
             cells,
             strong: false,
+        }
+    }
+
+    /// The size of run `to` that stands for a size of run `from`: its own row, not that of another
+    /// run of the same size. A value worked from sizes stays.
+    fn own_size(&self, value: Value, from: usize, to: usize) -> Value {
+        let (from, to) = (self.size_env(from), self.size_env(to));
+        let named = from
+            .names
+            .iter()
+            .find(|(_, bound)| **bound == Bound::Value(value));
+        match named.and_then(|(name, _)| to.names.get(name)) {
+            Some(Bound::Value(own)) => *own,
+            Some(Bound::Word(_)) | None => value,
         }
     }
 

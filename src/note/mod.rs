@@ -20,6 +20,7 @@ mod margins;
 mod method;
 mod pictures;
 mod points;
+mod powers;
 mod proofs;
 mod sketch;
 mod standing;

@@ -146,6 +146,7 @@ impl Builder<'_> {
         self.table(Sheet {
             id: "points".to_owned(),
             caption: plain("Points of the weld group"),
+            formulas: Vec::new(),
             columns,
             rows,
             foot: None,

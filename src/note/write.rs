@@ -430,6 +430,7 @@ fn coverage(b: &mut Builder<'_>, calculation: &Calculation<'_>) {
     b.table(super::builder::Sheet {
         id: "paths".to_owned(),
         caption,
+        formulas: Vec::new(),
         columns,
         rows,
         foot: None,
@@ -548,6 +549,7 @@ fn closing(b: &mut Builder<'_>) {
         b.table(super::builder::Sheet {
             id: "issues".to_owned(),
             caption,
+            formulas: Vec::new(),
             columns,
             rows,
             foot: None,

@@ -1,23 +1,36 @@
 //! Widths of a table's columns and the alignment of numbers on the decimal point.
 //!
 //! Fixed widths spare the typesetter the measuring of every cell; a column with maths in it is
-//! left to measure itself, a wide table of words shares what is left of the line.
+//! left to measure itself. How a wide table shares the line stands in [`super::widths`].
 
 use serde_json::{Value, json};
 
 use crate::note::doc::{Align, Column, Inline, Row, Table, Text};
 
 use super::faces::{Cut, text_width};
-use super::view::{TEXT_WIDTH, Targets, own_target, plain, tail, text};
+use super::view::{TEXT_WIDTH, Targets, own_target, plain, tail, text, texts};
+use super::widths::{Need, Width, squeezed, widths};
 
 /// Size of table text (pt).
 const SIZE: f64 = 8.5;
+/// Size of text in a table that is too wide for the usual one (pt).
+const MIDDLE_SIZE: f64 = 8.0;
+/// No table text is smaller (pt).
+const LEAST_SIZE: f64 = 7.5;
 /// Space between columns (pt), half of it on each side of a cell.
 const GAP: f64 = 10.0;
 /// Room for kerning and rounding (pt).
 const SLACK: f64 = 0.6;
-/// Width from which a word of a head breaks (pt): the template softens words over 12 ems.
-const WORD: f64 = 12.0 * SIZE;
+/// Width from which a word breaks (ems): the template softens wider ones.
+const WORD_EMS: f64 = 12.0;
+/// The same at the usual size (pt).
+const WORD: f64 = WORD_EMS * SIZE;
+/// A guess for a sign of mathematics (ems): no letter of the maths face is wider.
+const SIGN: f64 = 1.0;
+/// The same for a sign of an index.
+const INDEX_SIGN: f64 = 0.6;
+/// The same for an operator with the space at its sides.
+const OPERATOR: f64 = 1.4;
 /// Asides are smaller than the text that they stand in.
 const ASIDE: f64 = 0.86;
 
@@ -33,15 +46,12 @@ struct Measure {
     head: Option<f64>,
     /// Width of the widest word of the head (pt).
     word: f64,
+    /// Width of the widest word of a cell of words (pt).
+    longest: f64,
+    /// A guess of the width of head and cells where maths stands in them (pt).
+    guess: f64,
     /// Whether maths stands in a cell.
     maths: bool,
-}
-
-/// A width as the typesetter takes it.
-enum Width {
-    Auto,
-    Points(f64),
-    Share(u32),
 }
 
 /// The table with widths of columns, row height and the padding after each number.
@@ -58,17 +68,27 @@ pub(super) fn table_view(table: &Table, targets: &Targets) -> Value {
             )
         })
         .collect();
-    let widths = choose(&table.columns, &measures);
-    let row = |r: &Row| row_view(r, &table.columns, &measures, targets);
+    let (size, widths) = fitted(&table.columns, &measures);
+    let rooms = || {
+        let sides = |i| inset(i, table.columns.len());
+        widths
+            .iter()
+            .enumerate()
+            .map(move |(i, w)| room(w, sides(i), size))
+    };
+    let row = |r: &Row| row_view(r, &table.columns, &measures, size / SIZE, targets);
     json!({
         "kind": "table",
         "target": own_target(&table.id, targets).0,
         "anchor": own_target(&table.id, targets).1,
         "caption": text(&table.caption, targets),
-        "columns": table.columns.iter().map(|c| json!({
+        "formulas": texts(&table.formulas, targets),
+        "size": (size < SIZE).then_some(size),
+        "columns": table.columns.iter().zip(rooms()).map(|(c, room)| json!({
             "head": text(&c.head, targets),
             "unit": text(&c.unit, targets),
             "align": c.align,
+            "room": room,
         })).collect::<Vec<_>>(),
         "widths": widths.iter().map(written).collect::<Vec<_>>().join(", ") + ",",
         "sides": table.columns.iter().map(side).collect::<Vec<_>>().join(", ") + ",",
@@ -77,14 +97,20 @@ pub(super) fn table_view(table: &Table, targets: &Targets) -> Value {
     })
 }
 
-fn row_view(row: &Row, columns: &[Column], measures: &[Measure], targets: &Targets) -> Value {
+fn row_view(
+    row: &Row,
+    columns: &[Column],
+    measures: &[Measure],
+    scale: f64,
+    targets: &Targets,
+) -> Value {
     let cell = |((cell, column), measure): ((&Text, &Column), &Measure)| {
         let pad = match column.align {
             Align::Left => 0.0,
             Align::Point if is_number(cell) => measure.tail - split(cell, row.strong).1,
             Align::Point => 0.0,
         };
-        json!({"text": text(cell, targets), "pad": (pad * 100.0).round() / 100.0})
+        json!({"text": text(cell, targets), "pad": (pad * scale * 100.0).round() / 100.0})
     };
     let cells: Vec<Value> = row
         .cells
@@ -109,6 +135,8 @@ fn measure<'a>(column: &Column, cells: impl Iterator<Item = (&'a Text, bool)>) -
         words: 0.0,
         head: head_width(column),
         word: 0.0,
+        longest: 0.0,
+        guess: guess(&column.head).max(ASIDE * text_points(&column.unit, false)),
         maths: false,
     };
     for (cell, strong) in cells {
@@ -118,16 +146,41 @@ fn measure<'a>(column: &Column, cells: impl Iterator<Item = (&'a Text, bool)>) -
             found.tail = found.tail.max(tail);
         } else {
             found.words = found.words.max(text_points(cell, strong));
+            found.longest = found.longest.max(longest_word(cell, strong));
         }
-        found.maths |= has_maths(cell);
+        if has_maths(cell) {
+            found.maths = true;
+            found.guess = found.guess.max(guess(cell));
+        }
     }
-    let words = plain(&column.head);
-    let widest = words
-        .split_whitespace()
-        .map(|w| width(w, false))
-        .fold(0.0, f64::max);
-    found.word = widest.min(WORD);
+    found.word = longest_word(&column.head, false);
     found
+}
+
+/// Width of the widest word of a text (pt), as far as it does not break.
+fn longest_word(pieces: &[Inline], strong: bool) -> f64 {
+    let strong = strong || pieces.iter().any(|p| matches!(p, Inline::Strong { .. }));
+    let words = plain(pieces);
+    let widths = words.split_whitespace().map(|w| width(w, strong));
+    widths.fold(0.0, f64::max).min(WORD)
+}
+
+/// A guess of a text's width (pt), never too small for a symbol with its indices.
+fn guess(pieces: &[Inline]) -> f64 {
+    let signs = |latex: &str| {
+        let ems = |c: char| match c {
+            '+' | '-' | '=' | '<' | '>' | '/' => OPERATOR,
+            c if c.is_alphanumeric() => INDEX_SIGN,
+            _ => 0.0,
+        };
+        let latex = latex.replace("\\mathrm", "");
+        SIZE * (SIGN - INDEX_SIGN + latex.chars().map(ems).sum::<f64>())
+    };
+    let points = |p: &Inline| match p {
+        Inline::Math { latex, .. } => signs(latex),
+        other => text_points(std::slice::from_ref(other), false),
+    };
+    pieces.iter().map(points).sum()
 }
 
 /// Whether the cell ends in a number, which stands on the decimal point of its column.
@@ -184,69 +237,61 @@ fn head_width(column: &Column) -> Option<f64> {
     Some(text_points(&column.head, false).max(unit))
 }
 
-/// Chooses the widths: natural ones if they fit, else heads wrap, else columns of words share.
-fn choose(columns: &[Column], measures: &[Measure]) -> Vec<Width> {
-    let pairs = || columns.iter().zip(measures).enumerate();
-    let natural: Vec<_> = pairs()
-        .map(|(i, (c, m))| one(c, m, inset(i, columns.len()), false))
-        .collect();
-    if fits(&natural) {
-        return natural;
-    }
-    let wrapped: Vec<_> = pairs()
-        .map(|(i, (c, m))| one(c, m, inset(i, columns.len()), true))
-        .collect();
-    if fits(&wrapped) {
-        return wrapped;
-    }
-    let mut shared = wrapped;
-    for (i, (column, _)) in pairs() {
-        if column.align == Align::Left && matches!(shared[i], Width::Points(_)) {
-            shared[i] = Width::Share(1);
-        }
-    }
-    shared
-}
-
 /// Room that a cell leaves at its sides (pt); the outer sides of a table leave none.
 fn inset(i: usize, count: usize) -> f64 {
     let outer = usize::from(i == 0) + usize::from(i + 1 == count);
     GAP / 2.0 * f64::from(2 - u8::try_from(outer).expect("at most two sides"))
 }
 
-fn one(column: &Column, measure: &Measure, inset: f64, wrap_head: bool) -> Width {
-    let Some(head) = measure.head else {
-        return Width::Auto;
+/// What a column asks of the line, its sides included, where text is `scale` times its usual size.
+fn need(column: &Column, measure: &Measure, inset: f64, scale: f64) -> Need {
+    let cells = (measure.whole + measure.tail).max(measure.words);
+    let points = |width: f64| scale * width + inset + SLACK;
+    let (Some(head), false) = (measure.head, measure.maths) else {
+        return Need::measured(points(cells.max(measure.guess)));
     };
-    if column.share > 0 {
-        return Width::Share(column.share);
+    let wrapped = cells.max(measure.word);
+    let least = match column.align {
+        Align::Left => measure.longest.max(measure.word),
+        Align::Point => wrapped,
+    };
+    Need {
+        natural: points(cells.max(head)),
+        wrapped: points(wrapped),
+        least: points(least),
+        measured: false,
     }
-    if measure.maths {
-        return Width::Auto;
-    }
-    let head = if wrap_head { measure.word } else { head };
-    Width::Points((measure.whole + measure.tail).max(measure.words).max(head) + inset + SLACK)
 }
 
-/// Whether the fixed widths leave the text block its width, with room for the shares.
-fn fits(widths: &[Width]) -> bool {
-    /// A column that wraps must take the widest word that does not break.
-    const LEAST: f64 = WORD + GAP;
-    /// A guess for a column that measures itself (pt).
-    const MATHS: f64 = 40.0;
-    let points = |w: &Width| match w {
-        Width::Auto => MATHS,
-        Width::Points(p) => *p,
-        Width::Share(_) => LEAST,
+/// The size of the table's text (pt) and its columns' widths: smaller text only where the usual one
+/// leaves a word no room.
+fn fitted(columns: &[Column], measures: &[Measure]) -> (f64, Vec<Width>) {
+    let needs = |size: f64| -> Vec<Need> {
+        let sides = |i| inset(i, columns.len());
+        let pairs = columns.iter().zip(measures).enumerate();
+        pairs
+            .map(|(i, (c, m))| need(c, m, sides(i), size / SIZE))
+            .collect()
     };
-    widths.iter().map(points).sum::<f64>() <= TEXT_WIDTH
+    let sizes = [SIZE, MIDDLE_SIZE, LEAST_SIZE].into_iter();
+    sizes
+        .map(|size| (size, needs(size)))
+        .find_map(|(size, needs)| widths(&needs, TEXT_WIDTH).map(|widths| (size, widths)))
+        .unwrap_or_else(|| (LEAST_SIZE, squeezed(&needs(LEAST_SIZE), TEXT_WIDTH)))
+}
+
+/// Width (ems) from which a word of the column is given places to break.
+fn room(width: &Width, inset: f64, size: f64) -> f64 {
+    match width {
+        Width::Auto => WORD_EMS,
+        Width::Points(points) => WORD_EMS.min((points - inset) / size),
+    }
 }
 
 fn written(width: &Width) -> String {
     match width {
         Width::Auto => "auto".to_owned(),
-        Width::Points(p) => format!("{:.2}pt", p),
-        Width::Share(n) => format!("{n}fr"),
+        Width::Points(p) => format!("{p:.2}pt"),
     }
 }
 

@@ -14,6 +14,7 @@ mod pdf;
 mod templates;
 mod typst;
 mod view;
+mod widths;
 mod world;
 
 pub use self::typst::{TypstSource, render_typst};

@@ -298,7 +298,7 @@ fn equations(lines: &[Line]) -> Vec<Value> {
 }
 
 /// Texts with their numbers joined and their links named.
-fn texts(list: &[Text], targets: &Targets) -> Vec<Value> {
+pub(super) fn texts(list: &[Text], targets: &Targets) -> Vec<Value> {
     list.iter().map(|t| text(t, targets)).collect()
 }
 

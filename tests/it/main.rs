@@ -24,6 +24,7 @@ mod replay;
 mod schema;
 mod settle;
 mod starting;
+mod tables;
 mod tidy;
 mod weld_faults;
 mod weldkit;

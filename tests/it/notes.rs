@@ -137,7 +137,7 @@ fn drawings_of(produced: &Produced) -> Vec<String> {
 }
 
 /// The pages of a note, set again from its document.
-fn pages(press: &Press, produced: &Produced) -> PagedDocument {
+pub(crate) fn pages(press: &Press, produced: &Produced) -> PagedDocument {
     let faces = SerifFaces::embedded().unwrap();
     let pictures = produced.note.pictures.iter();
     let drawings: Drawings = pictures
@@ -394,7 +394,7 @@ fn every_link_of_the_markdown_leads_somewhere() {
             "{}: {rows} rows, {display} steps",
             joint.stem
         );
-        assert!(links.len() > 20, "{}: {} links", joint.stem, links.len());
+        assert!(links.len() > 10, "{}: {} links", joint.stem, links.len());
         for link in links {
             let id = link
                 .strip_prefix('#')

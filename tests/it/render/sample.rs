@@ -158,6 +158,7 @@ fn inputs() -> Section {
             Block::Table(Table {
                 id: "materials-table".into(),
                 caption: t("Strengths as given, with their sources"),
+                formulas: Vec::new(),
                 columns: vec![
                     column(t("part"), "", Align::Left, 0),
                     column(t("material"), "", Align::Left, 0),
@@ -278,6 +279,7 @@ fn properties_table() -> Block {
     Block::Table(Table {
         id: "properties-table".into(),
         caption: t("Properties of the runs about the centroid"),
+        formulas: Vec::new(),
         columns: vec![
             column(t("run"), "", Align::Left, 0),
             column(vec![maths("t", "t", "t")], "mm", Align::Point, 0),
@@ -382,6 +384,7 @@ fn cases() -> Section {
                         "M S is 1 over U less 1",
                     ),
                 ],
+                formulas: Vec::new(),
                 columns: vec![
                     column(t("case"), "", Align::Left, 0),
                     column(t("says"), "", Align::Left, 1),
@@ -417,6 +420,7 @@ fn ending() -> Section {
             Block::Table(Table {
                 id: "changes".into(),
                 caption: t("Issues"),
+                formulas: Vec::new(),
                 columns: vec![
                     column(t("issue"), "", Align::Left, 0),
                     column(t("date"), "", Align::Left, 0),

@@ -363,7 +363,7 @@ fn ink(frame: &Frame, at: Point, texts: &mut Vec<(String, Ink)>, rules: &mut Vec
 #[test]
 fn captions_are_words_and_nothing_touches_a_rule() {
     const LEFT: f64 = 22.0 / 25.4 * 72.0;
-    const CLEAR: f64 = 0.5;
+    const CLEAR: f64 = 1.0;
     let press = Press::new();
     let long = produced(&in_space(&long_names(12, 3)));
     let (mut formulas, mut rules_seen) = (0, 0);

@@ -24,7 +24,7 @@ pub struct Profile {
 ///
 /// # Errors
 ///
-/// The fault of a place at which the check has no number, as [`super::assess`] tells it.
+/// The fault of a place at which the check has no number, as [`assess`](super::assess()) tells it.
 pub fn profiles(
     ground: &Ground<'_>,
     asked: &Asked,

@@ -198,10 +198,9 @@ impl<'a> Sheet<'a> {
 
     /// Closes the notch where a run's end meets an earlier one.
     fn corner(&mut self, ends: &[(P2, f64)], end: P2, half: f64) {
-        if let Some((p, other)) = ends.iter().find(|(p, _)| (p - end).norm() < SAME) {
-            if !self.scene.faint {
-                self.canvas.draw(Layer::Weld, disc(*p, half.min(*other)));
-            }
+        let earlier = ends.iter().find(|(p, _)| (p - end).norm() < SAME);
+        if let Some((p, other)) = earlier.filter(|_| !self.scene.faint) {
+            self.canvas.draw(Layer::Weld, disc(*p, half.min(*other)));
         }
     }
 

@@ -3,7 +3,6 @@
 //! The capacity is the line at 1. Each curve is its check's in its governing case; a ring marks
 //! where it governs. Numbers of points stand at the ends, names of runs below.
 
-use super::PT;
 use super::canvas::{Canvas, Keep, Layer};
 use super::drawing::{Dash, Drawing, Fill, Item, P2, Path, Span, Stroke, Style};
 use super::place::{Candidate, around, dearer, place_labels, rank};
@@ -253,6 +252,3 @@ impl Layout {
         canvas.want(rank::GOVERNING, words, at, places);
     }
 }
-
-/// A curve is at least as thick as print needs.
-const _: () = assert!(0.5 * PT > 0.17);

@@ -69,13 +69,6 @@ pub(super) fn table_view(table: &Table, targets: &Targets) -> Value {
         })
         .collect();
     let (size, widths) = fitted(&table.columns, &measures);
-    let rooms = || {
-        let sides = |i| inset(i, table.columns.len());
-        widths
-            .iter()
-            .enumerate()
-            .map(move |(i, w)| room(w, sides(i), size))
-    };
     let row = |r: &Row| row_view(r, &table.columns, &measures, size / SIZE, targets);
     json!({
         "kind": "table",
@@ -84,13 +77,13 @@ pub(super) fn table_view(table: &Table, targets: &Targets) -> Value {
         "caption": text(&table.caption, targets),
         "formulas": texts(&table.formulas, targets),
         "size": (size < SIZE).then_some(size),
-        "columns": table.columns.iter().zip(rooms()).map(|(c, room)| json!({
+        "columns": table.columns.iter().zip(&widths).map(|(c, (_, room))| json!({
             "head": text(&c.head, targets),
             "unit": text(&c.unit, targets),
             "align": c.align,
             "room": room,
         })).collect::<Vec<_>>(),
-        "widths": widths.iter().map(written).collect::<Vec<_>>().join(", ") + ",",
+        "widths": widths.iter().map(|(width, _)| written(width)).collect::<Vec<_>>().join(", ") + ",",
         "sides": table.columns.iter().map(side).collect::<Vec<_>>().join(", ") + ",",
         "rows": table.rows.iter().map(row).collect::<Vec<_>>(),
         "foot": table.foot.as_ref().map(row),
@@ -263,29 +256,30 @@ fn need(column: &Column, measure: &Measure, inset: f64, scale: f64) -> Need {
     }
 }
 
-/// The size of the table's text (pt) and its columns' widths: smaller text only where the usual one
-/// leaves a word no room.
-fn fitted(columns: &[Column], measures: &[Measure]) -> (f64, Vec<Width>) {
+/// The size of the table's text (pt), its columns' widths, and the width (ems) from which a word of
+/// each is given places to break: smaller text only where the usual one leaves a word no room.
+fn fitted(columns: &[Column], measures: &[Measure]) -> (f64, Vec<(Width, f64)>) {
+    let sides = |i| inset(i, columns.len());
     let needs = |size: f64| -> Vec<Need> {
-        let sides = |i| inset(i, columns.len());
         let pairs = columns.iter().zip(measures).enumerate();
         pairs
             .map(|(i, (c, m))| need(c, m, sides(i), size / SIZE))
             .collect()
     };
-    let sizes = [SIZE, MIDDLE_SIZE, LEAST_SIZE].into_iter();
-    sizes
-        .map(|size| (size, needs(size)))
-        .find_map(|(size, needs)| widths(&needs, TEXT_WIDTH).map(|widths| (size, widths)))
-        .unwrap_or_else(|| (LEAST_SIZE, squeezed(&needs(LEAST_SIZE), TEXT_WIDTH)))
-}
-
-/// Width (ems) from which a word of the column is given places to break.
-fn room(width: &Width, inset: f64, size: f64) -> f64 {
-    match width {
-        Width::Auto => WORD_EMS,
-        Width::Points(points) => WORD_EMS.min((points - inset) / size),
+    for size in [SIZE, MIDDLE_SIZE, LEAST_SIZE] {
+        if let Some(widths) = widths(&needs(size), TEXT_WIDTH) {
+            let whole = widths.into_iter().map(|width| (width, WORD_EMS));
+            return (size, whole.collect());
+        }
     }
+    let needs = needs(LEAST_SIZE);
+    let room = |i: usize, width: &Width| match width {
+        Width::Points(points) if *points < needs[i].least => (points - sides(i)) / LEAST_SIZE,
+        Width::Points(_) | Width::Auto => WORD_EMS,
+    };
+    let widths = squeezed(&needs, TEXT_WIDTH).into_iter().enumerate();
+    let broken = widths.map(|(i, width)| (width, room(i, &width)));
+    (LEAST_SIZE, broken.collect())
 }
 
 fn written(width: &Width) -> String {

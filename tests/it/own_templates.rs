@@ -236,7 +236,7 @@ fn a_template_that_takes_too_long_is_given_up() {
         )
     });
     let folder = project.path("joints");
-    let joints = find_joints(&[folder.clone()]).unwrap();
+    let joints = find_joints(std::slice::from_ref(&folder)).unwrap();
     let surroundings = read_surroundings(&folder).unwrap();
     let workshop = Workshop::new().with_patience(Duration::from_millis(1));
     let fault = workshop

@@ -11,6 +11,7 @@ use seamnote::render::{Press, overflow};
 use seamnote::source::SourceFile;
 use std::collections::BTreeSet;
 use std::sync::Arc;
+use typst::layout::{Frame, FrameItem, Point};
 
 /// A joint of long names: as many runs and cases as asked for.
 fn long_names(runs: usize, cases: usize) -> String {
@@ -328,4 +329,75 @@ fn links_of_limits_lead_to_their_own_run() {
         }
     }
     assert!(seen > 5, "only {seen} limits lead to a run's row");
+}
+
+/// A box on a page: left, top, right, bottom (pt).
+type Ink = [f64; 4];
+
+/// Ink of texts and horizontal rules of a frame.
+fn ink(frame: &Frame, at: Point, texts: &mut Vec<(String, Ink)>, rules: &mut Vec<Ink>) {
+    for (position, item) in frame.items() {
+        let here = at + *position;
+        match item {
+            FrameItem::Group(group) => ink(&group.frame, here, texts, rules),
+            FrameItem::Text(text) => {
+                // The box of a text has its y turned over.
+                let (low, high) = (text.bbox().min + here, text.bbox().max + here);
+                let edges = [low.x, high.y, high.x, low.y].map(|edge| edge.to_pt());
+                texts.push((text.text.to_string(), edges));
+            }
+            FrameItem::Shape(shape, _) => {
+                let size = shape.bbox(false).size();
+                if size.y.to_pt().abs() < 0.01 {
+                    let right = (here.x + size.x).to_pt();
+                    let y = here.y.to_pt();
+                    rules.push([here.x.to_pt(), y, right, y]);
+                }
+            }
+            FrameItem::Image(..) | FrameItem::Link(..) | FrameItem::Tag(_) => {}
+        }
+    }
+}
+
+/// Formulas stand by themselves under the caption, and no index or bracket touches a rule.
+#[test]
+fn captions_are_words_and_nothing_touches_a_rule() {
+    const LEFT: f64 = 22.0 / 25.4 * 72.0;
+    const CLEAR: f64 = 1.0;
+    let press = Press::new();
+    let long = produced(&in_space(&long_names(12, 3)));
+    let (mut formulas, mut rules_seen) = (0, 0);
+    for produced in demo().iter().map(|(_, produced)| produced).chain([&long]) {
+        for table in tables(&produced.note.doc) {
+            let is_maths = |piece: &Inline| matches!(piece, Inline::Math { .. });
+            assert!(!table.caption.iter().any(is_maths), "{}: caption", table.id);
+            let one_each = table
+                .formulas
+                .iter()
+                .all(|f| f.len() == 1 && is_maths(&f[0]));
+            assert!(one_each, "{}: {:?}", table.id, table.formulas);
+            formulas += table.formulas.len();
+        }
+        for page in pages(&press, produced).pages() {
+            let (mut texts, mut rules) = (Vec::new(), Vec::new());
+            ink(&page.frame, Point::zero(), &mut texts, &mut rules);
+            // Rules of tables begin where the text does, but for half their thickness.
+            rules.retain(|rule| (rule[0] - LEFT).abs() < 0.5);
+            rules_seen += rules.len();
+            let broken = texts.iter().find(|(text, _)| text.contains("cas\u{200b}e"));
+            assert!(broken.is_none(), "a word that fits is broken: {broken:?}");
+            for rule in rules {
+                for (text, [left, top, right, bottom]) in &texts {
+                    let beside = *right < rule[0] || *left > rule[2];
+                    let clear = *bottom < rule[1] - CLEAR || *top > rule[1] + CLEAR;
+                    assert!(
+                        beside || clear,
+                        "{text} is {top} to {bottom}, rule {rule:?}"
+                    );
+                }
+            }
+        }
+    }
+    assert!(formulas > 40, "only {formulas} formulas");
+    assert!(rules_seen > 200, "only {rules_seen} rules");
 }

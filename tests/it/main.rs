@@ -13,6 +13,8 @@ mod groups;
 mod joint_read;
 mod keys;
 mod laying;
+mod maths;
+
 mod mechanics;
 mod notes;
 mod own_templates;

@@ -19,10 +19,13 @@ pub fn scene(sketch: &Sketch) -> Scene {
         runs: sketch
             .runs
             .iter()
-            .map(|run| RunLine {
+            .enumerate()
+            .map(|(at, run)| RunLine {
                 path: run.path.clone(),
+                counted: run.counted.clone(),
                 throat: run.throat,
                 label: run.text.clone(),
+                number: (at + 1).to_string(),
             })
             .collect(),
         points: sketch
@@ -44,16 +47,17 @@ pub fn scene(sketch: &Sketch) -> Scene {
         dimensions: sketch
             .dimensions
             .iter()
-            .map(|(from, to, axis, text)| Dimension {
-                from: *from,
-                to: *to,
-                axis: Axis::ALL[*axis],
-                text: text.clone(),
+            .map(|dimension| Dimension {
+                from: dimension.from,
+                to: dimension.to,
+                axis: Axis::ALL[dimension.axis],
+                text: dimension.text.clone(),
+                optional: dimension.optional,
             })
             .collect(),
         outlines: Vec::new(),
         units: sketch.units.to_owned(),
-        planar: sketch.planar,
+        planar: sketch.planar && !sketch.raised,
         faint: false,
         vectors: None,
     }
@@ -78,7 +82,7 @@ pub fn stress_scene(sketch: &StressSketch) -> Scene {
         .all(|(_, f)| f.z.abs() <= 1e-9 * largest);
     Scene {
         runs: runs.collect(),
-        planar: group.planar && in_plane,
+        planar: sketch.group.planar && in_plane,
         faint: true,
         origin: None,
         vectors: Some(Vectors {

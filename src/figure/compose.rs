@@ -246,7 +246,7 @@ impl<'a> Sheet<'a> {
         if !self.view.flat {
             (ends, broken) = self.squared(dimension, ends, broken);
         }
-        let to_load = hits.iter().any(Option::is_some) || centroid_only;
+        let to_load = hits.iter().any(Option::is_some) || (centroid_only && !dimension.optional);
         draw_dimension(
             &mut self.canvas,
             &self.view,

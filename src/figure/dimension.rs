@@ -16,7 +16,7 @@ const BAND: f64 = 3.2;
 /// Gap between the point and its extension line (mm).
 const GAP: f64 = 1.6;
 /// Cost of a way that would crowd the drawing with a dimension that may be left out.
-const CROWDED: f64 = 45.0;
+const CROWDED: f64 = 70.0;
 /// How far an extension line passes the dimension line (mm).
 const PAST: f64 = 1.2;
 

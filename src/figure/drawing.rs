@@ -72,6 +72,12 @@ impl Mark {
         all.fold(f64::INFINITY, f64::min)
     }
 
+    /// Whether a box meets it.
+    #[must_use]
+    pub fn meets(&self, rect: &Rect) -> bool {
+        self.rects.iter().any(|own| own.overlaps(rect))
+    }
+
     /// The same moved by a vector.
     #[must_use]
     pub fn shifted(&self, by: P2) -> Self {

@@ -39,7 +39,11 @@ pub fn scene(sketch: &Sketch) -> Scene {
         origin: Some(V3::zeros()),
         axes: sketch.axes.clone(),
         centroid: Some(sketch.centroid),
-        loads: sketch.load.iter().map(load).collect(),
+        loads: sketch
+            .load
+            .iter()
+            .map(|of| load(of, sketch.raised))
+            .collect(),
         governing: sketch.governing.as_ref().map(|(at, label)| Governing {
             at: *at,
             label: label.clone(),
@@ -116,7 +120,8 @@ pub fn draw_picture(picture: &Picture, fonts: &dyn TextWidth) -> Drawing {
     }
 }
 
-fn load(load: &SketchLoad) -> Load {
+/// A load; where it stands over the group, its height is dimensioned and its distance goes unsaid.
+fn load(load: &SketchLoad, raised: bool) -> Load {
     let parts = |values: &[(f64, String); 3]| {
         Axis::ALL
             .into_iter()
@@ -136,6 +141,10 @@ fn load(load: &SketchLoad) -> Load {
         aside: load.aside.clone(),
         force: parts(&load.force),
         moment: parts(&load.moment),
-        distance: load.distance.clone(),
+        distance: if raised {
+            String::new()
+        } else {
+            load.distance.clone()
+        },
     }
 }

@@ -7,7 +7,7 @@
 //! study of algorithms for point-feature label placement*, ACM Trans. Graphics 14 (1995), section 3.
 
 use super::canvas::{Canvas, Keep, Layer, Obstacle};
-use super::drawing::{Fill, Item, P2, Path, Stroke, Tie};
+use super::drawing::{Fill, Item, Mark, P2, Path, Stroke, Tie};
 use super::rect::{Bounds, Rect};
 use super::text::Words;
 use crate::quantity::real::{cos, sin};
@@ -268,6 +268,17 @@ fn set(words: &Words, place: &Candidate) -> Vec<Item> {
     vec![ring, label]
 }
 
+/// What a leader must not cross.
+#[derive(Clone, Copy, PartialEq, Eq)]
+enum Care {
+    /// Labels, marks and lines.
+    Lines,
+    /// Labels, and marks of the kind that it leads to.
+    Marks,
+    /// Labels.
+    Labels,
+}
+
 /// What is placed so far.
 struct Table {
     /// Boxes of labels.
@@ -297,14 +308,14 @@ impl Table {
                 .collect();
             let place = self
                 .best(&form.words, &near, canvas)
-                .or_else(|| self.led(want, &form.words, canvas, radii, true));
+                .or_else(|| self.led(want, &form.words, canvas, radii, Care::Lines));
             if let Some(place) = place {
                 return Some((&form.words, place));
             }
         }
         // What names a place of its own may have a leader that passes over lines.
         let words = &last.words;
-        self.led(want, words, canvas, FAR.len(), false)
+        self.led(want, words, canvas, FAR.len(), Care::Marks)
             .or_else(|| self.anywhere(want, words, canvas))
             .map(|place| (words, place))
     }
@@ -328,15 +339,14 @@ impl Table {
         found
     }
 
-    /// A place further off, joined by a leader that crosses no label, and nothing else where
-    /// `strict`.
+    /// A place further off, joined by a leader that crosses nothing it must not.
     fn led(
         &self,
         want: &Want,
         words: &Words,
         canvas: &Canvas<'_>,
         radii: usize,
-        strict: bool,
+        care: Care,
     ) -> Option<Candidate> {
         let size = words.size();
         let ring_at = |(i, radius): (usize, &f64)| {
@@ -348,7 +358,7 @@ impl Table {
             .iter()
             .enumerate()
             .flat_map(ring_at)
-            .filter(|place| self.leads(want, words, place, canvas, strict))
+            .filter(|place| self.leads(want, words, place, canvas, care))
             .collect();
         self.best(words, &places, canvas)
     }
@@ -360,12 +370,14 @@ impl Table {
         words: &Words,
         place: &Candidate,
         canvas: &Canvas<'_>,
-        strict: bool,
+        care: Care,
     ) -> bool {
         let [from, to] = leader_ends(want, words, place);
         let line = Rect::line(from, to, 0.1);
         let later = Rect::line(from + super::view::unit(to - from) * 0.5, to, 0.1);
-        !self.taken.iter().any(|t| t.overlaps(&line)) && (!strict || canvas.is_clear(&later))
+        !self.taken.iter().any(|t| t.overlaps(&line))
+            && (care != Care::Lines || canvas.is_clear(&later))
+            && (care == Care::Labels || !others(canvas, want).any(|other| other.meets(&line)))
     }
 
     /// The free place nearest to the anchor, wherever it is: first within the room.
@@ -393,9 +405,12 @@ impl Table {
             !self.taken.iter().any(|t| t.overlaps(&rect.grown(PAD)))
                 && canvas.is_clear(&rect.grown(CLEAR))
         };
-        let led = |place: &&Candidate| self.leads(want, words, place, canvas, false);
         let open: Vec<&Candidate> = places.iter().filter(free).collect();
-        let found = open.iter().copied().find(|place| led(place));
+        let led = |care: Care| {
+            let mut open = open.iter().copied();
+            open.find(|place| self.leads(want, words, place, canvas, care))
+        };
+        let found = led(Care::Marks).or_else(|| led(Care::Labels));
         let unled = open.first().copied().filter(|_| self.last);
         found.or(unled).copied()
     }
@@ -410,10 +425,15 @@ fn tells(canvas: &Canvas<'_>, want: &Want, rect: &Rect) -> bool {
     if near > NEAR {
         return false;
     }
-    let others = canvas.marks.iter().enumerate();
-    others
-        .filter(|(at, other)| *at != own && other.kind == mark.kind && other.rects != mark.rects)
-        .all(|(_, other)| other.distance(rect) > near)
+    others(canvas, want).all(|other| other.distance(rect) > near)
+}
+
+/// The marks of the kind of that which a label names, but for those at its very place.
+fn others<'c>(canvas: &'c Canvas<'_>, want: &Want) -> impl Iterator<Item = &'c Mark> {
+    let own = want.names.map(|own| &canvas.marks[own]);
+    canvas.marks.iter().filter(move |other| {
+        own.is_some_and(|own| own.kind == other.kind && own.rects != other.rects)
+    })
 }
 
 /// What it costs to stand here; infinite on what labels must keep off.

@@ -284,4 +284,4 @@ impl Layout {
 }
 
 /// A curve is at least as thick as print needs.
-const _: () = assert!(0.5 * PT > 0.17);
+const _: () = assert!(0.5 * PT > 0.17, "a curve too thin for print");

@@ -611,7 +611,7 @@ fn random_joint(seed: u64) -> String {
             runs.push_str(&run_text(&mut dice, index));
         }
     }
-    let reach = [200.0, 3000.0][usize::from(seed % 5 == 0)];
+    let reach = [200.0, 3000.0][usize::from(seed.is_multiple_of(5))];
     let height = [0.0, 500.0, 40.0][usize::try_from(seed % 3).unwrap()];
     let at = format!(
         "[{}, {}, {height}]",
@@ -939,6 +939,35 @@ fn the_channel_is_drawn_to_its_scale() {
         "the back edge is as thick as its throat"
     );
     assert!(drawing.dropped.is_empty(), "dropped: {:?}", drawing.dropped);
+}
+
+/// Source: the rule that a group takes at least 45 % of the room's width or height.
+#[test]
+fn a_far_load_leaves_the_group_its_part_of_the_room() {
+    let drawing = draw(&far(), &SerifFaces::embedded().unwrap());
+    let mut bounds = seamnote::figure::Bounds::empty();
+    let runs = drawing.marks.iter().filter(|m| m.kind == MarkKind::Run);
+    for corner in runs.flat_map(|m| &m.rects).flat_map(Rect::corners) {
+        bounds.add(corner, 0.0);
+    }
+    let size = bounds.size();
+    let part = (size.x / 128.0).max(size.y / 85.0);
+    assert!(part >= 0.45, "the group takes {part} of the room");
+}
+
+/// A moment about the line of sight has two heads, as one across it has.
+#[test]
+fn a_turning_arrow_has_two_heads() {
+    let mut scene = channel();
+    scene.loads[0].force.clear();
+    scene.loads[0].moment = vec![part(Axis::Z, 5.0, "5 N m")];
+    let drawing = draw(&scene, &SerifFaces::embedded().unwrap());
+    let wide = 1.1 * seamnote::figure::PT;
+    let head = |item: &&Item| {
+        matches!(item, Item::Path(path) if path.pieces.len() == 2
+            && path.stroke.is_some_and(|s| (s.width - wide).abs() < 1e-9))
+    };
+    assert_eq!(drawing.items.iter().filter(head).count(), 2, "open heads");
 }
 
 #[test]

@@ -1,9 +1,12 @@
 //! The sheet while it is being drawn: items by layer, what labels must keep clear of, labels wanted.
 
-use super::drawing::{Fill, Ink, Item, P2, Path, Piece, Span, Stroke};
-use super::place::{Candidate, Want};
+use super::drawing::{
+    Drawing, Fill, Ink, Item, Mark, MarkKind, P2, Path, Piece, Span, Stroke, Tie,
+};
+use super::place::{Candidate, Form, Want};
 use super::rect::{Bounds, Rect};
 use super::text::{TextWidth, Words};
+use crate::quantity::real::{cos, sin};
 
 /// Layers from the bottom up.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord)]
@@ -12,8 +15,14 @@ pub(super) enum Layer {
     Aid,
     /// Runs.
     Weld,
-    /// Arrows, dimensions, centroid, check points.
+    /// The inside of thick runs.
+    Core,
+    /// Arrows, dimensions, centroid.
     Mark,
+    /// The ring around the governing point.
+    Ring,
+    /// Check points.
+    Dot,
 }
 
 /// How bad it is for a label to stand on something.
@@ -41,6 +50,12 @@ pub(super) struct Canvas<'a> {
     pub(super) obstacles: Vec<Obstacle>,
     pub(super) wants: Vec<Want>,
     pub(super) remarks: Vec<String>,
+    /// What labels name.
+    pub(super) marks: Vec<Mark>,
+    /// Labels that are placed and name something.
+    pub(super) ties: Vec<Tie>,
+    /// Texts of labels that are left out.
+    pub(super) dropped: Vec<String>,
     /// Boxes of the runs alone.
     pub(super) welds: Vec<Rect>,
     /// How many runs there are.
@@ -57,6 +72,9 @@ impl<'a> Canvas<'a> {
             obstacles: vec![],
             wants: vec![],
             remarks: vec![],
+            marks: vec![],
+            ties: vec![],
+            dropped: vec![],
             welds: vec![],
             runs: 0,
             room,
@@ -102,14 +120,48 @@ impl<'a> Canvas<'a> {
         Words::new(spans, self.fonts)
     }
 
+    /// Remembers something that a label will name; returns its number.
+    pub(super) fn name(&mut self, kind: MarkKind, rects: Vec<Rect>) -> usize {
+        self.marks.push(Mark { kind, rects });
+        self.marks.len() - 1
+    }
+
     /// Asks for a label at the best of some places.
-    pub(super) fn want(&mut self, rank: u8, words: Words, anchor: P2, candidates: Vec<Candidate>) {
+    pub(super) fn want(
+        &mut self,
+        rank: u8,
+        words: Words,
+        anchor: P2,
+        candidates: Vec<Candidate>,
+    ) -> &mut Want {
         self.wants.push(Want {
             rank,
-            words,
+            forms: vec![Form { words, candidates }],
             anchor,
-            candidates,
+            clear: 1.0,
+            names: None,
         });
+        let last = self.wants.len() - 1;
+        &mut self.wants[last]
+    }
+
+    /// How much is drawn, to come back to.
+    pub(super) fn state(&self) -> [usize; 3] {
+        [self.items.len(), self.obstacles.len(), self.ties.len()]
+    }
+
+    /// Takes back what was drawn since.
+    pub(super) fn restore(&mut self, [items, obstacles, ties]: [usize; 3]) {
+        self.items.truncate(items);
+        self.obstacles.truncate(obstacles);
+        self.ties.truncate(ties);
+    }
+
+    /// Says something in the caption, once.
+    pub(super) fn remark(&mut self, says: &str) {
+        if self.remarks.iter().all(|known| known != says) {
+            self.remarks.push(says.to_owned());
+        }
     }
 
     /// Bounds of all that is drawn so far.
@@ -119,6 +171,27 @@ impl<'a> Canvas<'a> {
             .iter()
             .for_each(|(_, item)| item.bound(&mut bounds));
         bounds
+    }
+
+    /// The drawing of all that stands here, the lowest layer first, moved to the upper left corner.
+    pub(super) fn finish(mut self, labels: Vec<Item>) -> Drawing {
+        self.items.sort_by_key(|(layer, _)| *layer);
+        let below = self.items.into_iter().map(|(_, item)| item);
+        let all: Vec<Item> = below.chain(labels).collect();
+        let mut bounds = Bounds::empty();
+        all.iter().for_each(|item| item.bound(&mut bounds));
+        let (size, by) = (bounds.size(), -bounds.min);
+        Drawing {
+            width_mm: size.x,
+            height_mm: size.y,
+            items: all.iter().map(|item| item.shifted(by)).collect(),
+            scale: String::new(),
+            view: String::new(),
+            dropped: self.dropped,
+            remarks: self.remarks,
+            marks: self.marks.iter().map(|mark| mark.shifted(by)).collect(),
+            ties: self.ties.iter().map(|tie| tie.shifted(by)).collect(),
+        }
     }
 
     /// Whether a box is clear of all that must not be covered.
@@ -145,13 +218,28 @@ pub(super) fn strokes(item: &Item) -> Vec<Rect> {
             centre,
             radius,
             stroke,
-            ..
+            fill,
         } => {
-            let half = radius + stroke.map_or(0.0, |s| s.width / 2.0);
-            vec![Rect::upright(*centre, half, half)]
+            let thick = stroke.map_or(0.0, |s| s.width / 2.0);
+            if *fill == Fill::None {
+                return ring(*centre, *radius, thick);
+            }
+            vec![Rect::upright(*centre, radius + thick, radius + thick)]
         }
         Item::Label(label) => vec![label.rect()],
     }
+}
+
+/// Boxes along an open ring, by sixteen chords.
+fn ring(centre: P2, radius: f64, thick: f64) -> Vec<Rect> {
+    let part = std::f64::consts::TAU / 16.0;
+    let at = |i: u8| {
+        let turn = part * f64::from(i);
+        centre + P2::new(cos(turn), sin(turn)) * radius
+    };
+    (0..16)
+        .map(|i| Rect::line(at(i), at(i + 1), thick))
+        .collect()
 }
 
 /// The path as a polyline, eight chords a curve.

@@ -1,11 +1,12 @@
 //! Dimension lines with their extension lines, oblique ticks and text.
 
 use super::canvas::Canvas;
-use super::drawing::{P2, Span, Stroke, Style};
-use super::place::{Candidate, around, dearer, rank, reading_angle};
+use super::drawing::{P2, Stroke};
+use super::place::{Candidate, MANY, around, dearer, rank, reading_angle};
 use super::rect::{Bounds, Rect, square};
 use super::scene::{Axis, Dimension};
 use super::shape::{break_mark, tick};
+use super::text::symbol_spans;
 use super::view::{View, unit};
 
 /// From what is drawn to the first dimension line, and from line to line (mm).
@@ -14,6 +15,8 @@ const STEP: f64 = 6.5;
 const BAND: f64 = 3.2;
 /// Gap between the point and its extension line (mm).
 const GAP: f64 = 1.6;
+/// Cost of a way that would crowd the drawing with a dimension that may be left out.
+const CROWDED: f64 = 70.0;
 /// How far an extension line passes the dimension line (mm).
 const PAST: f64 = 1.2;
 
@@ -50,6 +53,10 @@ pub(super) fn draw_dimension(canvas: &mut Canvas<'_>, view: &View, placed: &Plac
         ));
         return;
     };
+    let crowded = way.cost > CROWDED || placed.broken || canvas.runs > MANY;
+    if placed.dimension.optional && crowded {
+        return;
+    }
     let [a, b] = way.feet;
     for (foot, end) in [(a, placed.ends[0]), (b, placed.ends[1])] {
         if (foot - end).dot(&way.out) > GAP {
@@ -141,7 +148,7 @@ fn wish(d: P2, to_load: bool) -> P2 {
 }
 
 fn want_text(canvas: &mut Canvas<'_>, placed: &Placed<'_>, a: P2, b: P2, out: P2) {
-    let words = canvas.words(vec![Span::new(placed.dimension.text.clone(), Style::Plain)]);
+    let words = canvas.words(symbol_spans(&placed.dimension.text));
     let d = unit(b - a);
     let angle = reading_angle(d);
     let (along, up) = super::drawing::Label::directions(angle);

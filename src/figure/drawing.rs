@@ -25,6 +25,78 @@ pub struct Drawing {
     pub dropped: Vec<String>,
     /// What is not drawn or not to scale, in words for the caption.
     pub remarks: Vec<String>,
+    /// What labels name.
+    pub marks: Vec<Mark>,
+    /// The labels that name a mark.
+    pub ties: Vec<Tie>,
+}
+
+/// A label and what it names on the sheet.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Tie {
+    /// The label's text.
+    pub text: String,
+    /// Its box, the ring around a number included.
+    pub rect: Rect,
+    /// Number of what is named in [`Drawing::marks`].
+    pub mark: usize,
+    /// Whether a leader joins them.
+    pub led: bool,
+}
+
+/// Something drawn that a label names.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Mark {
+    /// What it is.
+    pub kind: MarkKind,
+    /// The boxes that cover it.
+    pub rects: Vec<Rect>,
+}
+
+/// Kinds of what labels name; a label is told apart from others of its kind.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum MarkKind {
+    /// A check point.
+    Point,
+    /// An arrow, straight, turning or end on.
+    Arrow,
+    /// A run.
+    Run,
+}
+
+impl Mark {
+    /// How far a label's box stands off it.
+    #[must_use]
+    pub fn distance(&self, rect: &Rect) -> f64 {
+        let all = self.rects.iter().map(|own| own.distance(rect));
+        all.fold(f64::INFINITY, f64::min)
+    }
+
+    /// Whether a box meets it.
+    #[must_use]
+    pub fn meets(&self, rect: &Rect) -> bool {
+        self.rects.iter().any(|own| own.overlaps(rect))
+    }
+
+    /// The same moved by a vector.
+    #[must_use]
+    pub fn shifted(&self, by: P2) -> Self {
+        Self {
+            rects: self.rects.iter().map(|rect| rect.shifted(by)).collect(),
+            ..*self
+        }
+    }
+}
+
+impl Tie {
+    /// The same moved by a vector.
+    #[must_use]
+    pub fn shifted(&self, by: P2) -> Self {
+        Self {
+            rect: self.rect.shifted(by),
+            ..self.clone()
+        }
+    }
 }
 
 /// One thing drawn.
@@ -104,8 +176,8 @@ pub enum Ink {
     Grey,
     /// Light grey: what stands under something else.
     Faint,
-    /// White, under an arrow that crosses a run.
-    White,
+    /// Lighter still: weld metal inside the outline of a thick run.
+    Light,
 }
 
 /// Inside of a closed shape.

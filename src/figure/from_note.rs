@@ -19,10 +19,13 @@ pub fn scene(sketch: &Sketch) -> Scene {
         runs: sketch
             .runs
             .iter()
-            .map(|run| RunLine {
+            .enumerate()
+            .map(|(at, run)| RunLine {
                 path: run.path.clone(),
+                counted: run.counted.clone(),
                 throat: run.throat,
                 label: run.text.clone(),
+                number: (at + 1).to_string(),
             })
             .collect(),
         points: sketch
@@ -36,7 +39,11 @@ pub fn scene(sketch: &Sketch) -> Scene {
         origin: Some(V3::zeros()),
         axes: sketch.axes.clone(),
         centroid: Some(sketch.centroid),
-        loads: sketch.load.iter().map(load).collect(),
+        loads: sketch
+            .load
+            .iter()
+            .map(|of| load(of, sketch.raised))
+            .collect(),
         governing: sketch.governing.as_ref().map(|(at, label)| Governing {
             at: *at,
             label: label.clone(),
@@ -44,16 +51,17 @@ pub fn scene(sketch: &Sketch) -> Scene {
         dimensions: sketch
             .dimensions
             .iter()
-            .map(|(from, to, axis, text)| Dimension {
-                from: *from,
-                to: *to,
-                axis: Axis::ALL[*axis],
-                text: text.clone(),
+            .map(|dimension| Dimension {
+                from: dimension.from,
+                to: dimension.to,
+                axis: Axis::ALL[dimension.axis],
+                text: dimension.text.clone(),
+                optional: dimension.optional,
             })
             .collect(),
         outlines: Vec::new(),
         units: sketch.units.to_owned(),
-        planar: sketch.planar,
+        planar: sketch.planar && !sketch.raised,
         faint: false,
         vectors: None,
     }
@@ -78,7 +86,7 @@ pub fn stress_scene(sketch: &StressSketch) -> Scene {
         .all(|(_, f)| f.z.abs() <= 1e-9 * largest);
     Scene {
         runs: runs.collect(),
-        planar: group.planar && in_plane,
+        planar: sketch.group.planar && in_plane,
         faint: true,
         origin: None,
         vectors: Some(Vectors {
@@ -112,7 +120,8 @@ pub fn draw_picture(picture: &Picture, fonts: &dyn TextWidth) -> Drawing {
     }
 }
 
-fn load(load: &SketchLoad) -> Load {
+/// A load; where it stands over the group, its height is dimensioned and its distance goes unsaid.
+fn load(load: &SketchLoad, raised: bool) -> Load {
     let parts = |values: &[(f64, String); 3]| {
         Axis::ALL
             .into_iter()
@@ -132,6 +141,10 @@ fn load(load: &SketchLoad) -> Load {
         aside: load.aside.clone(),
         force: parts(&load.force),
         moment: parts(&load.moment),
-        distance: load.distance.clone(),
+        distance: if raised {
+            String::new()
+        } else {
+            load.distance.clone()
+        },
     }
 }

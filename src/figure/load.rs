@@ -1,36 +1,45 @@
 //! Loads: their points, arrows and turning arrows, and the lead from the centroid.
 
-use super::canvas::{Canvas, Keep, Layer};
-use super::drawing::{Dash, Fill, Ink, Item, P2, Path, Span, Stroke, Style};
+use super::canvas::{Canvas, Keep, Layer, strokes};
+use super::drawing::{Fill, Item, MarkKind, P2, Path, Span, Stroke, Style};
 use super::place::{Candidate, around, beside, dearer, rank};
-use super::rect::{Bounds, Rect};
+use super::rect::{Bounds, Rect, square};
 use super::scene::{Axis, Component, Load};
-use super::shape::{break_mark, circle, end_on, open_head, turning_arrow};
+use super::shape::{HEADS, break_mark, circle, end_on, open_head, turning_arrow};
+use super::text::symbol_spans;
 use super::view::{View, unit};
 use crate::quantity::real::{atan2, cos, sin};
 
 /// Length of an arrow (mm).
 const ARROW: f64 = 13.0;
 /// Where an arrow starts, from the middle of the point's mark (mm).
-const START: f64 = 2.2;
+const START: f64 = 2.8;
 /// Between a force's head and the moment's arrow that follows on the same line (mm).
 const GAP: f64 = 2.0;
+/// How much further out an arrow is tried, and how far aside, where it would lie on a run (mm).
+const FURTHER: [f64; 4] = [0.0, 4.0, 8.0, 12.0];
+const ASIDE: [f64; 3] = [0.0, 2.2, -2.2];
+/// What it costs an arrow to cross a run, to lie along one, to touch a mark; to stand behind its
+/// point; and for each mm aside.
+const CROSSING: f64 = 12.0;
+const ALONG: f64 = 60.0;
+const TOUCHING: f64 = 6.0;
+const BEHIND: f64 = 5.0;
+const ASIDE_COST: f64 = 5.0;
 /// Radius of a turning arrow (mm).
 const TURN: f64 = 6.5;
-/// Radius of a load point's mark (mm).
+/// Radius of a load point's mark, and of a force end on (mm).
 const POINT: f64 = 1.3;
+const END_ON: f64 = 1.7;
 /// Sweeps of a turning arrow, 200° and, where arrows leave no such opening, 120° (rad).
 const SWEEPS: [f64; 2] = [
     200.0 * std::f64::consts::PI / 180.0,
     120.0 * std::f64::consts::PI / 180.0,
 ];
-/// A load point further outside the group than this many times the group's size is drawn nearer.
-const FAR: f64 = 2.0;
 /// A load point nearer than this to the centroid shares its mark and letters (mm).
 pub(super) const AT_CENTROID: f64 = 1.0;
-/// Where it is drawn instead, in the same measure, and the least distance on the sheet (mm).
-const NEARER: f64 = 0.6;
-const LEAST: f64 = 26.0;
+/// How far outside the group a load point is drawn whose lead is broken (mm).
+const NEARER: f64 = 26.0;
 
 /// Where a load point is drawn.
 #[derive(Clone, Copy, Debug)]
@@ -41,24 +50,19 @@ pub(super) struct Spot {
     pub(super) broken: bool,
 }
 
-/// Finds the spot of a point on the sheet: its place to scale, or, where that is far out, a nearer
-/// one on the same line from `centre`.
-pub(super) fn spot(at: P2, group: &Bounds, centre: P2) -> Spot {
+/// Finds the spot of a point on the sheet: its place to scale, or, where that is further outside the
+/// group than `far` times its size, a nearer one on the same line from `centre`.
+pub(super) fn spot(at: P2, group: &Bounds, centre: P2, far: f64) -> Spot {
     let d = at - centre;
     let distance = d.norm();
-    let size = group.size().norm().max(1e-9);
     let inside = exit(group, centre, unit(d));
-    if distance - inside <= FAR * size {
+    let shown = inside + NEARER;
+    if distance - inside <= far * group.size().norm().max(1e-9) || shown >= distance {
         return Spot { at, broken: false };
     }
-    let shown = inside + (NEARER * size).max(LEAST);
-    if shown >= distance {
-        Spot { at, broken: false }
-    } else {
-        Spot {
-            at: centre + unit(d) * shown,
-            broken: true,
-        }
+    Spot {
+        at: centre + unit(d) * shown,
+        broken: true,
     }
 }
 
@@ -82,6 +86,9 @@ fn exit(bounds: &Bounds, from: P2, d: P2) -> f64 {
 
 /// Draws a load at its spot; `centre` is where its lead starts.
 pub(super) fn draw_load(canvas: &mut Canvas<'_>, view: &View, load: &Load, spot: Spot, centre: P2) {
+    if nonzero(&load.force).chain(nonzero(&load.moment)).count() > 0 {
+        canvas.remark("arrows at the load show directions, not sizes");
+    }
     draw_lead(canvas, load, spot, centre);
     let end_on_force = nonzero(&load.force).find(|c| faces_reader(view, c.axis));
     let quiet = quiet_direction(&arrow_directions(view, load), spot.at - centre);
@@ -178,9 +185,7 @@ fn draw_lead(canvas: &mut Canvas<'_>, load: &Load, spot: Spot, centre: P2) {
     }
     let middle = centre + d * (length * 0.72);
     canvas.mark(break_mark(middle, d));
-    canvas
-        .remarks
-        .push(format!("the distance to {} is broken", load.label));
+    canvas.remark(&format!("the distance to {} is broken", load.label));
     if !load.distance.is_empty() {
         let words = canvas.words(vec![Span::new(load.distance.clone(), Style::Plain)]);
         let mut places = beside(
@@ -208,11 +213,15 @@ fn draw_point(
 ) {
     let at_centroid = (at - centre).norm() < AT_CENTROID;
     if let Some(force) = end {
-        canvas.mark(end_on(at, 1.7, force.value > 0.0, Stroke::black(0.9)));
+        canvas.mark(end_on(at, END_ON, force.value > 0.0, Stroke::black(0.9)));
+        let mark = Rect::upright(at, END_ON, END_ON);
+        let mark = canvas.name(MarkKind::Arrow, vec![mark]);
         let words = canvas.words(symbol(Kind::Force, force));
         let mut places = around(at, 2.4, words.size(), quiet);
-        places.extend(dearer(around(at, 5.0, words.size(), quiet), 3.0));
-        canvas.want(rank::LETTER, words, at, places);
+        places.extend(dearer(around(at, 3.4, words.size(), quiet), 3.0));
+        canvas
+            .want(rank::LOAD, words, at, places)
+            .naming(mark, END_ON);
     } else if !at_centroid {
         canvas.mark([circle(at, POINT, Stroke::grey(0.6), Fill::White)]);
     }
@@ -223,7 +232,8 @@ fn draw_point(
     };
     let mut spans = vec![Span::new(letters, Style::Italic)];
     if !load.aside.is_empty() {
-        spans.push(Span::new(format!(", {}", load.aside), Style::Plain));
+        spans.push(Span::new(",  ", Style::Plain));
+        spans.extend(symbol_spans(&load.aside));
     }
     let words = canvas.words(spans);
     let mut places = around(at, 2.4, words.size(), quiet);
@@ -243,12 +253,13 @@ fn draw_arrow(
     used: &mut Vec<(P2, f64)>,
 ) {
     let d = view.direction(component.axis) * component.value.signum();
-    let start = arrow_start(canvas, at, d, used);
-    let (a, tip) = (at + d * start, at + d * (start + ARROW));
-    used.push(if start > 0.0 {
-        (d, start + ARROW)
+    let stand = arrow_stand(canvas, at, d, used);
+    let a = at + d * stand.start + square(d) * stand.aside;
+    let tip = a + d * ARROW;
+    used.push(if stand.start > 0.0 {
+        (d, stand.start + ARROW)
     } else {
-        (-d, -start)
+        (-d, -stand.start)
     });
     let stroke = Stroke::black(1.1);
     let mut parts = vec![
@@ -256,20 +267,28 @@ fn draw_arrow(
         open_head(tip, d, stroke),
     ];
     if kind == Kind::Moment {
-        parts.push(open_head(tip - d * 2.0, d, stroke));
+        parts.push(open_head(tip - d * HEADS, d, stroke));
     }
-    for part in &parts {
-        canvas.draw(Layer::Mark, halo(part));
-    }
+    let rects = parts.iter().flat_map(strokes).collect();
+    let mark = canvas.name(MarkKind::Arrow, rects);
     canvas.mark(parts);
     let words = canvas.words(symbol(kind, component));
     let places = arrow_places([a, tip], d, words.size());
-    canvas.want(rank::LOAD, words, (a + tip) / 2.0, places);
+    canvas
+        .want(rank::LOAD, words, (a + tip) / 2.0, places)
+        .naming(mark, 0.3);
 }
 
-/// Where an arrow starts, measured from the point along its direction: at the point; or beyond an
-/// arrow on the same line; or behind the point, with its head at it. The first that crosses no run.
-fn arrow_start(canvas: &Canvas<'_>, at: P2, d: P2, used: &[(P2, f64)]) -> f64 {
+/// Where an arrow starts: along its direction from the point, and aside.
+#[derive(Clone, Copy)]
+struct Stand {
+    start: f64,
+    aside: f64,
+}
+
+/// The best stand of an arrow: at the point, or beyond an arrow on the same line; or behind the
+/// point, with its head at it; or further out or aside, where it would lie on a run.
+fn arrow_stand(canvas: &Canvas<'_>, at: P2, d: P2, used: &[(P2, f64)]) -> Stand {
     let end = |d: P2| {
         used.iter()
             .filter(|(e, _)| e.dot(&d) > 0.99)
@@ -277,40 +296,56 @@ fn arrow_start(canvas: &Canvas<'_>, at: P2, d: P2, used: &[(P2, f64)]) -> f64 {
             .fold(START, f64::max)
     };
     let (ahead, behind) = (end(d), -end(-d) - ARROW);
-    let crosses = |start: f64| {
-        let rect = Rect::line(at + d * start, at + d * (start + ARROW), 1.0);
-        canvas.welds.iter().any(|w| w.overlaps(&rect))
-    };
-    if ahead > START && crosses(ahead) && !crosses(behind) {
-        behind
-    } else {
-        ahead
+    let mut found = (
+        Stand {
+            start: ahead,
+            aside: 0.0,
+        },
+        f64::INFINITY,
+    );
+    for further in FURTHER {
+        for aside in ASIDE {
+            for (start, own) in [(ahead + further, 0.0), (behind - further, BEHIND)] {
+                let stand = Stand { start, aside };
+                let from = at + d * start + square(d) * aside;
+                let cost = own + further + ASIDE_COST * aside.abs() + lying_cost(canvas, from, d);
+                if cost < found.1 - 1e-9 {
+                    found = (stand, cost);
+                }
+            }
+        }
     }
+    found.0
 }
 
-/// A white line under a stroke, so that it can be told from a run that it crosses.
-fn halo(item: &Item) -> Item {
-    let Item::Path(path) = item else {
-        return item.clone();
-    };
-    let stroke = path.stroke.map(|s| Stroke {
-        width: s.width + 0.9,
-        ink: Ink::White,
-        dash: Dash::Full,
-    });
-    Item::Path(Path {
-        stroke,
-        ..path.clone()
-    })
+/// What it costs an arrow to lie where it would.
+fn lying_cost(canvas: &Canvas<'_>, from: P2, d: P2) -> f64 {
+    let rect = Rect::line(from, from + d * ARROW, 1.0);
+    let met = canvas.welds.iter().filter(|weld| weld.overlaps(&rect));
+    let worst = met
+        .map(|weld| {
+            if weld.along.dot(&d).abs() > 0.9 {
+                ALONG
+            } else {
+                CROSSING
+            }
+        })
+        .fold(0.0, f64::max);
+    worst
+        + if canvas.is_clear(&rect) {
+            0.0
+        } else {
+            TOUCHING
+        }
 }
 
 /// Places beside an arrow's shaft and around its head.
 fn arrow_places([a, tip]: [P2; 2], d: P2, size: [f64; 2]) -> Vec<Candidate> {
     let toward = if d.y.abs() < 0.2 { -P2::y() } else { P2::x() };
-    let mut places = beside(a, tip, 1.6, size, toward, false);
+    let mut places = beside(a, tip, 1.5, size, toward, false);
     places.extend(dearer(around(tip, 1.2, size, d), 1.0));
-    places.extend(dearer(around(tip, 3.5, size, d), 4.0));
-    places.extend(dearer(beside(a, tip, 4.5, size, toward, false), 5.0));
+    places.extend(dearer(around(tip, 2.2, size, d), 4.0));
+    places.extend(dearer(beside(a, tip, 2.4, size, toward, false), 5.0));
     places
 }
 
@@ -332,14 +367,23 @@ fn draw_turn(canvas: &mut Canvas<'_>, component: &Component, at: P2, busy: &[P2]
         (from, sweep)
     };
     let stroke = Stroke::black(1.1);
-    canvas.mark(turning_arrow(at, TURN, from, sense * sweep, stroke));
+    let parts = turning_arrow(at, TURN, from, sense * sweep, stroke);
+    let rects = parts.iter().flat_map(strokes).collect();
+    let mark = canvas.name(MarkKind::Arrow, rects);
+    canvas.mark(parts);
     let middle = from + sense * sweep / 2.0;
     let out = P2::new(cos(middle), -sin(middle));
     let words = canvas.words(symbol(Kind::Moment, component));
     let mut places = around(at, TURN + 1.6, words.size(), out);
-    places.extend(dearer(around(at, TURN + 4.0, words.size(), out), 4.0));
-    places.extend(dearer(around(at, TURN + 9.0, words.size(), out), 8.0));
-    canvas.want(rank::TURN, words, at + out * TURN, places);
+    places.extend(dearer(around(at, TURN + 2.6, words.size(), out), 4.0));
+    for part in [0.25, 0.75] {
+        let turn = from + sense * sweep * part;
+        let out = P2::new(cos(turn), -sin(turn));
+        places.extend(dearer(around(at, TURN + 2.0, words.size(), out), 2.0));
+    }
+    canvas
+        .want(rank::TURN, words, at + out * TURN, places)
+        .naming(mark, 0.3);
 }
 
 /// The start angle, in steps of 15°, at which the arc crosses the fewest of the busy directions and

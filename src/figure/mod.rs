@@ -11,7 +11,9 @@ mod drawing;
 mod from_note;
 mod load;
 mod place;
+mod points;
 mod rect;
+mod runs;
 mod scale;
 mod scene;
 mod section;
@@ -20,11 +22,15 @@ mod source;
 mod text;
 mod triad;
 mod unfolded;
+mod vectors;
 mod view;
 
 pub use canvas::firm_strokes;
 pub use compose::{Room, draw, draw_in};
-pub use drawing::{Dash, Drawing, Fill, Ink, Item, Label, P2, Path, Piece, Span, Stroke, Style};
+pub use drawing::{
+    Dash, Drawing, Fill, Ink, Item, Label, Mark, MarkKind, P2, Path, Piece, Span, Stroke, Style,
+    Tie,
+};
 pub use from_note::{draw_note, draw_picture, scene, stress_scene};
 pub use rect::{Bounds, Rect};
 pub use scene::{Axis, CheckPoint, Component, Dimension, Governing, Load, RunLine, Scene, Vectors};

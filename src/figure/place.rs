@@ -1,12 +1,13 @@
 //! Places for labels: each label takes the best of its candidate places in turn.
 //!
 //! Greedy by rank: dimensions and the governing point first, names of runs last. A place on another
-//! label, a run, an arrow or a mark is never taken; a label that has no place is dropped and named.
+//! label, a run, an arrow or a mark is never taken; nor is one that stands nearer to another mark of
+//! the kind than to the label's own. A label without such a place goes further off with a leader.
 //! Point-feature labelling by candidates follows J. Christensen, J. Marks, S. Shieber, *An empirical
 //! study of algorithms for point-feature label placement*, ACM Trans. Graphics 14 (1995), section 3.
 
 use super::canvas::{Canvas, Keep, Layer, Obstacle};
-use super::drawing::{Item, P2, Path, Stroke};
+use super::drawing::{Fill, Item, Mark, P2, Path, Stroke, Tie};
 use super::rect::{Bounds, Rect};
 use super::text::Words;
 use crate::quantity::real::{cos, sin};
@@ -20,11 +21,21 @@ const ON_AID: f64 = 12.0;
 /// Cost of each mm by which a label makes the drawing larger than its room.
 const OUTSIDE: f64 = 4.0;
 /// Radii at which a label with a leader is tried (mm).
-const FAR: [f64; 7] = [4.2, 6.5, 9.0, 12.0, 16.0, 21.0, 28.0];
-/// More runs than this are many: their names are not led far.
-const MANY: usize = 8;
+const FAR: [f64; 8] = [2.6, 4.2, 6.5, 9.0, 12.0, 16.0, 21.0, 28.0];
+/// How many of them a wording takes that has another one after it.
+const NOT_FAR: usize = 4;
+/// More runs than this are many: their names are not led at all.
+pub(super) const MANY: usize = 8;
 /// Cost of a leader, above every place without one.
 const LEADER: f64 = 100.0;
+/// How much nearer to its own mark than to any other a label without leader stands (mm).
+const TELL: f64 = 0.3;
+/// How far off its mark it stands at most (mm).
+const NEAR: f64 = 4.0;
+/// Rounds of placement at most.
+const ROUNDS: usize = 48;
+/// Step of the search for any free place (mm).
+const ANYWHERE: f64 = 1.5;
 
 /// A place where a label may stand.
 #[derive(Clone, Copy, Debug)]
@@ -37,17 +48,42 @@ pub(super) struct Candidate {
     pub(super) cost: f64,
 }
 
+/// A wording of a label, with its places near by.
+#[derive(Clone, Debug)]
+pub(super) struct Form {
+    /// The label.
+    pub(super) words: Words,
+    /// Places near by.
+    pub(super) candidates: Vec<Candidate>,
+}
+
 /// A label that asks for a place.
 #[derive(Clone, Debug)]
 pub(super) struct Want {
     /// Order: low ranks choose first.
     pub(super) rank: u8,
-    /// The label.
-    pub(super) words: Words,
+    /// Its wordings, the best first.
+    pub(super) forms: Vec<Form>,
     /// What it names; a leader would start here.
     pub(super) anchor: P2,
-    /// Places near by.
-    pub(super) candidates: Vec<Candidate>,
+    /// Radius about the anchor that its leader leaves free (mm).
+    pub(super) clear: f64,
+    /// Number of the mark that it names, if it has to be told from others.
+    pub(super) names: Option<usize>,
+}
+
+impl Want {
+    /// Ties the label to a mark, `clear` large about its anchor.
+    pub(super) fn naming(&mut self, mark: usize, clear: f64) -> &mut Self {
+        (self.names, self.clear) = (Some(mark), clear);
+        self
+    }
+
+    /// Adds a wording for where those before find no place.
+    pub(super) fn or(&mut self, words: Words, candidates: Vec<Candidate>) -> &mut Self {
+        self.forms.push(Form { words, candidates });
+        self
+    }
 }
 
 /// Ranks in which labels choose.
@@ -64,7 +100,7 @@ pub(super) mod rank {
 
 /// Places for a box around a point, `clear` off it, those along `toward` first.
 pub(super) fn around(anchor: P2, clear: f64, size: [f64; 2], toward: P2) -> Vec<Candidate> {
-    ring(anchor, clear, size, toward, 8)
+    ring(anchor, clear, size, toward, 16)
 }
 
 /// Places for a box in `count` directions around a point.
@@ -152,66 +188,252 @@ pub(super) fn reading_angle(d: P2) -> f64 {
     if angle.abs() < 1e-9 { 0.0 } else { angle }
 }
 
-/// Places every label wanted; returns the labels and the texts of those dropped.
-pub(super) fn place_labels(canvas: &mut Canvas<'_>) -> (Vec<Item>, Vec<String>) {
+/// Places every label wanted; returns the labels.
+///
+/// A label that others shut in chooses before them in another round.
+pub(super) fn place_labels(canvas: &mut Canvas<'_>) -> Vec<Item> {
     let mut wants = std::mem::take(&mut canvas.wants);
     wants.sort_by_key(|w| w.rank);
-    let mut taken: Vec<Rect> = Vec::new();
-    let mut all = canvas.bounds();
-    let (mut labels, mut dropped) = (Vec::new(), Vec::new());
-    for want in wants {
-        let near = best(&want.words, &want.candidates, canvas, &taken, &all);
-        let led = near.or_else(|| far(&want, canvas, &taken, &all, true));
-        // What the reader cannot do without may have a leader that passes over lines.
-        let found = if want.rank < rank::POINT {
-            led.or_else(|| far(&want, canvas, &taken, &all, false))
-        } else {
-            led
-        };
-        let Some(place) = found else {
-            dropped.push(want.words.text());
-            continue;
-        };
-        let rect = want.words.rect(place.centre, place.angle);
-        if place.cost >= LEADER {
-            draw_leader(canvas, want.anchor, &rect);
+    for round in 1..=ROUNDS {
+        let before = canvas.state();
+        match place_round(canvas, &wants, round == ROUNDS) {
+            Ok(labels) => return labels,
+            Err(shut_in) => {
+                canvas.restore(before);
+                let want = wants.remove(shut_in);
+                wants.insert(0, want);
+            }
         }
-        rect.corners().iter().for_each(|p| all.add(*p, 0.0));
-        taken.push(rect.grown(PAD));
-        labels.push(Item::Label(want.words.label(place.centre, place.angle)));
     }
-    canvas
-        .obstacles
-        .extend(taken.into_iter().map(|rect| Obstacle {
-            rect,
-            keep: Keep::Off,
-        }));
-    (labels, dropped)
+    Vec::new()
 }
 
-/// The cheapest free place; the first of equals.
-fn best(
-    words: &Words,
-    places: &[Candidate],
-    canvas: &Canvas<'_>,
-    taken: &[Rect],
-    all: &Bounds,
-) -> Option<Candidate> {
-    let mut found: Option<Candidate> = None;
-    for place in places {
+/// Places the labels in their order; the number of one that finds no place that it could be led to
+/// without crossing a label, unless it is the `last` round.
+fn place_round(canvas: &mut Canvas<'_>, wants: &[Want], last: bool) -> Result<Vec<Item>, usize> {
+    let mut table = Table {
+        taken: Vec::new(),
+        all: canvas.bounds(),
+        last,
+    };
+    let mut labels = Vec::new();
+    for (index, want) in wants.iter().enumerate() {
+        let Some((words, place)) = table.choose(want, canvas) else {
+            return Err(index);
+        };
         let rect = words.rect(place.centre, place.angle);
-        let limit = found.map_or(f64::INFINITY, |f| f.cost);
-        if place.cost >= limit || taken.iter().any(|t| t.overlaps(&rect.grown(PAD))) {
-            continue;
+        let led = place.cost >= LEADER;
+        if led {
+            draw_leader(canvas, want, words, &place);
         }
-        let cost = place.cost
-            + standing_cost(&rect.grown(CLEAR), canvas)
-            + outside_cost(&rect, canvas.room, all);
-        if cost < limit {
-            found = Some(Candidate { cost, ..*place });
+        if let Some(mark) = want.names {
+            let text = words.text();
+            canvas.ties.push(Tie {
+                text,
+                rect,
+                mark,
+                led,
+            });
         }
+        rect.corners().iter().for_each(|p| table.all.add(*p, 0.0));
+        table.taken.push(rect.grown(PAD));
+        labels.extend(set(words, &place));
     }
-    found
+    if labels
+        .iter()
+        .any(|item| matches!(item, Item::Circle { .. }))
+    {
+        canvas.remark("circled numbers: the table of runs");
+    }
+    let taken = table.taken.into_iter().map(|rect| Obstacle {
+        rect,
+        keep: Keep::Off,
+    });
+    canvas.obstacles.extend(taken);
+    Ok(labels)
+}
+
+/// A label at its place, with the ring around it.
+fn set(words: &Words, place: &Candidate) -> Vec<Item> {
+    let label = Item::Label(words.label(place.centre, place.angle));
+    if words.ring <= 0.0 {
+        return vec![label];
+    }
+    let ring = Item::Circle {
+        centre: place.centre,
+        radius: words.ring,
+        stroke: Some(Stroke::black(0.5)),
+        fill: Fill::None,
+    };
+    vec![ring, label]
+}
+
+/// What a leader must not cross.
+#[derive(Clone, Copy, PartialEq, Eq)]
+enum Care {
+    /// Labels, marks and lines.
+    Lines,
+    /// Labels, and marks of the kind that it leads to.
+    Marks,
+    /// Labels.
+    Labels,
+}
+
+/// What is placed so far.
+struct Table {
+    /// Boxes of labels.
+    taken: Vec<Rect>,
+    /// Bounds of all.
+    all: Bounds,
+    /// Whether a label may stand where no leader reaches it.
+    last: bool,
+}
+
+impl Table {
+    /// The first wording that finds a place: near by, or led; the last one stands anywhere.
+    fn choose<'w>(&self, want: &'w Want, canvas: &Canvas<'_>) -> Option<(&'w Words, Candidate)> {
+        let last = want.forms.last()?;
+        for form in &want.forms {
+            let more = !std::ptr::eq(form, last);
+            let radii = match more {
+                true if canvas.runs > MANY => 0,
+                true => NOT_FAR,
+                false => FAR.len(),
+            };
+            let near: Vec<Candidate> = form
+                .candidates
+                .iter()
+                .filter(|place| tells(canvas, want, &form.words.rect(place.centre, place.angle)))
+                .copied()
+                .collect();
+            let place = self
+                .best(&form.words, &near, canvas)
+                .or_else(|| self.led(want, &form.words, canvas, radii, Care::Lines));
+            if let Some(place) = place {
+                return Some((&form.words, place));
+            }
+        }
+        // What names a place of its own may have a leader that passes over lines.
+        let words = &last.words;
+        self.led(want, words, canvas, FAR.len(), Care::Marks)
+            .or_else(|| self.anywhere(want, words, canvas))
+            .map(|place| (words, place))
+    }
+
+    /// The cheapest free place; the first of equals.
+    fn best(&self, words: &Words, places: &[Candidate], canvas: &Canvas<'_>) -> Option<Candidate> {
+        let mut found: Option<Candidate> = None;
+        for place in places {
+            let rect = words.rect(place.centre, place.angle);
+            let limit = found.map_or(f64::INFINITY, |f| f.cost);
+            if place.cost >= limit || self.taken.iter().any(|t| t.overlaps(&rect.grown(PAD))) {
+                continue;
+            }
+            let cost = place.cost
+                + standing_cost(&rect.grown(CLEAR), canvas)
+                + outside_cost(&rect, canvas.room, &self.all);
+            if cost < limit {
+                found = Some(Candidate { cost, ..*place });
+            }
+        }
+        found
+    }
+
+    /// A place further off, joined by a leader that crosses nothing it must not.
+    fn led(
+        &self,
+        want: &Want,
+        words: &Words,
+        canvas: &Canvas<'_>,
+        radii: usize,
+        care: Care,
+    ) -> Option<Candidate> {
+        let size = words.size();
+        let ring_at = |(i, radius): (usize, &f64)| {
+            let cost = LEADER + 20.0 * f64::from(u8::try_from(i).unwrap_or(u8::MAX));
+            let radius = want.clear + radius;
+            dearer(ring(want.anchor, radius, size, P2::zeros(), 24), cost)
+        };
+        let places: Vec<Candidate> = FAR[..radii]
+            .iter()
+            .enumerate()
+            .flat_map(ring_at)
+            .filter(|place| self.leads(want, words, place, canvas, care))
+            .collect();
+        self.best(words, &places, canvas)
+    }
+
+    /// Whether a leader from the anchor to a box crosses nothing that it must not.
+    fn leads(
+        &self,
+        want: &Want,
+        words: &Words,
+        place: &Candidate,
+        canvas: &Canvas<'_>,
+        care: Care,
+    ) -> bool {
+        let [from, to] = leader_ends(want, words, place);
+        let line = Rect::line(from, to, 0.1);
+        let later = Rect::line(from + super::view::unit(to - from) * 0.5, to, 0.1);
+        !self.taken.iter().any(|t| t.overlaps(&line))
+            && (care != Care::Lines || canvas.is_clear(&later))
+            && (care == Care::Labels || !others(canvas, want).any(|other| other.meets(&line)))
+    }
+
+    /// The free place nearest to the anchor, wherever it is: first within the room.
+    fn anywhere(&self, want: &Want, words: &Words, canvas: &Canvas<'_>) -> Option<Candidate> {
+        let size = P2::from(words.size());
+        let low = self.all.min - size - P2::repeat(4.0);
+        let count = (self.all.max - low + size + P2::repeat(4.0)).map(|x| x / ANYWHERE);
+        let steps = |n: f64| (0_u16..).take_while(move |i| f64::from(*i) <= n);
+        let mut places: Vec<Candidate> = steps(count.x)
+            .flat_map(|i| steps(count.y).map(move |j| P2::new(f64::from(i), f64::from(j))))
+            .map(|at| {
+                let centre = low + at * ANYWHERE;
+                let rect = words.rect(centre, 0.0);
+                let outside = outside_cost(&rect, canvas.room, &self.all);
+                Candidate {
+                    centre,
+                    angle: 0.0,
+                    cost: 2.0 * LEADER + (centre - want.anchor).norm() + outside,
+                }
+            })
+            .collect();
+        places.sort_by(|a, b| a.cost.total_cmp(&b.cost));
+        let free = |place: &&Candidate| {
+            let rect = words.rect(place.centre, 0.0);
+            !self.taken.iter().any(|t| t.overlaps(&rect.grown(PAD)))
+                && canvas.is_clear(&rect.grown(CLEAR))
+        };
+        let open: Vec<&Candidate> = places.iter().filter(free).collect();
+        let led = |care: Care| {
+            let mut open = open.iter().copied();
+            open.find(|place| self.leads(want, words, place, canvas, care))
+        };
+        let found = led(Care::Marks).or_else(|| led(Care::Labels));
+        let unled = open.first().copied().filter(|_| self.last);
+        found.or(unled).copied()
+    }
+}
+
+/// Whether a box stands nearer to the mark that its label names than to others of the kind; beads
+/// on one line are one mark.
+fn tells(canvas: &Canvas<'_>, want: &Want, rect: &Rect) -> bool {
+    let Some(own) = want.names else { return true };
+    let mark = &canvas.marks[own];
+    let near = mark.distance(rect) + TELL;
+    if near > NEAR {
+        return false;
+    }
+    others(canvas, want).all(|other| other.distance(rect) > near)
+}
+
+/// The marks of the kind of that which a label names, but for those at its very place.
+fn others<'c>(canvas: &'c Canvas<'_>, want: &Want) -> impl Iterator<Item = &'c Mark> {
+    let own = want.names.map(|own| &canvas.marks[own]);
+    canvas.marks.iter().filter(move |other| {
+        own.is_some_and(|own| own.kind == other.kind && own.rects != other.rects)
+    })
 }
 
 /// What it costs to stand here; infinite on what labels must keep off.
@@ -234,53 +456,24 @@ fn outside_cost(rect: &Rect, room: P2, all: &Bounds) -> f64 {
     OUTSIDE * (over(0) + over(1)).min(10.0)
 }
 
-/// A place further off, joined by a leader that crosses no label, and nothing else where `strict`.
-/// Numbers of points, and names of runs where there are many, are dropped sooner than led far.
-fn far(
-    want: &Want,
-    canvas: &Canvas<'_>,
-    taken: &[Rect],
-    all: &Bounds,
-    strict: bool,
-) -> Option<Candidate> {
-    let near_only = want.rank >= rank::POINT && (want.rank == rank::POINT || canvas.runs > MANY);
-    let radii = if near_only { &FAR[..2] } else { &FAR[..] };
-    let size = want.words.size();
-    let led = |(i, radius): (usize, &f64)| {
-        let cost = LEADER + 20.0 * f64::from(u8::try_from(i).unwrap_or(u8::MAX));
-        dearer(ring(want.anchor, *radius, size, P2::zeros(), 16), cost)
-    };
-    let places: Vec<Candidate> = radii
-        .iter()
-        .enumerate()
-        .flat_map(led)
-        .filter(|place| {
-            let rect = want.words.rect(place.centre, place.angle);
-            let leader = leader_ends(want.anchor, &rect);
-            let line = Rect::line(leader[0], leader[1], 0.1);
-            let later = Rect::line(
-                leader[0] + super::view::unit(leader[1] - leader[0]) * 1.5,
-                leader[1],
-                0.1,
-            );
-            !taken.iter().any(|t| t.overlaps(&line)) && (!strict || canvas.is_clear(&later))
-        })
-        .collect();
-    best(&want.words, &places, canvas, taken, all)
-}
-
-/// From just off the anchor to the nearest point of the box.
-fn leader_ends(anchor: P2, rect: &Rect) -> [P2; 2] {
-    let d = anchor - rect.centre;
+/// From just off the anchor to the nearest point of the box, or to the ring around the words.
+fn leader_ends(want: &Want, words: &Words, place: &Candidate) -> [P2; 2] {
+    let rect = words.rect(place.centre, place.angle);
+    let d = want.anchor - rect.centre;
     let n = super::rect::square(rect.along);
     let (u, v) = (d.dot(&rect.along), d.dot(&n));
     let clamp = |x: f64, half: f64| x.clamp(-half - 0.3, half + 0.3);
-    let end = rect.centre + rect.along * clamp(u, rect.half[0]) + n * clamp(v, rect.half[1]);
-    [anchor + super::view::unit(end - anchor) * 1.2, end]
+    let end = if words.ring > 0.0 {
+        rect.centre + super::view::unit(d) * words.ring
+    } else {
+        rect.centre + rect.along * clamp(u, rect.half[0]) + n * clamp(v, rect.half[1])
+    };
+    let way = super::view::unit(end - want.anchor);
+    [want.anchor + way * (want.clear + 0.2), end]
 }
 
-fn draw_leader(canvas: &mut Canvas<'_>, anchor: P2, rect: &Rect) {
-    let [a, b] = leader_ends(anchor, rect);
-    let item = Item::Path(Path::through(&[a, b], Stroke::black(0.3)));
+fn draw_leader(canvas: &mut Canvas<'_>, want: &Want, words: &Words, place: &Candidate) {
+    let [a, b] = leader_ends(want, words, place);
+    let item = Item::Path(Path::through(&[a, b], Stroke::black(0.4)));
     canvas.draw_kept(Layer::Mark, item, Keep::Off);
 }

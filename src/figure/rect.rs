@@ -91,6 +91,32 @@ impl Rect {
         .all(|axis| d.dot(axis).abs() < self.reach(axis) + other.reach(axis) - 1e-9)
     }
 
+    /// How far two rectangles stand apart; 0 where they meet.
+    #[must_use]
+    pub fn distance(&self, other: &Self) -> f64 {
+        if self.overlaps(other) {
+            return 0.0;
+        }
+        // The shortest way between two convex shapes ends at a corner of one of them.
+        let from = |corners: [P2; 4], to: &Self| {
+            let ways = corners.map(|corner| to.distance_to(corner));
+            ways.into_iter().fold(f64::INFINITY, f64::min)
+        };
+        from(self.corners(), other).min(from(other.corners(), self))
+    }
+
+    /// How far a point stands off the rectangle; 0 inside.
+    #[must_use]
+    pub fn distance_to(&self, p: P2) -> f64 {
+        let d = p - self.centre;
+        let over = |x: f64, half: f64| (x.abs() - half).max(0.0);
+        P2::new(
+            over(d.dot(&self.along), self.half[0]),
+            over(d.dot(&square(self.along)), self.half[1]),
+        )
+        .norm()
+    }
+
     /// Half its extent along a unit vector.
     fn reach(&self, axis: &P2) -> f64 {
         self.half[0] * self.along.dot(axis).abs()
@@ -187,6 +213,23 @@ mod tests {
         let far = Rect::upright(P2::new(2.42, 0.0), 1.0, 1.0);
         assert!(turned.overlaps(&near), "2.40 < 1 + √2");
         assert!(!turned.overlaps(&far), "2.42 > 1 + √2");
+    }
+
+    /// Source: geometry: corner to corner 3 and 4 apart is 5; side to side the gap itself.
+    #[test]
+    fn distances_are_those_of_the_nearest_points() {
+        let one = Rect::upright(P2::zeros(), 1.0, 1.0);
+        for (centre, far) in [
+            (P2::new(5.0, 6.0), 5.0),
+            (P2::new(5.0, 0.5), 3.0),
+            (P2::new(1.5, 0.0), 0.0),
+        ] {
+            let other = Rect::upright(centre, 1.0, 1.0);
+            assert!(
+                (one.distance(&other) - far).abs() < 1e-12,
+                "{centre}: not {far}"
+            );
+        }
     }
 
     /// Source: geometry: upright bounds of both meet, the rectangles do not.

@@ -50,12 +50,16 @@ pub struct Vectors {
 /// A run of weld.
 #[derive(Clone, Debug)]
 pub struct RunLine {
-    /// The root line.
+    /// The root line as told.
     pub path: Segment,
+    /// The part of it that is counted, where ends are cut off.
+    pub counted: Option<Segment>,
     /// Effective throat (length).
     pub throat: f64,
     /// Text beside it, such as `upper edge, leg 6`; empty for none.
     pub label: String,
+    /// Its number in the table of runs, which stands where the text finds no place.
+    pub number: String,
 }
 
 /// A numbered check point.
@@ -158,6 +162,8 @@ pub struct Dimension {
     pub to: V3,
     /// The axis along which the distance is measured.
     pub axis: Axis,
-    /// The distance as printed.
+    /// The distance as printed, perhaps with its symbol, such as `x_c = 16.2`.
     pub text: String,
+    /// Whether it is left out where it would crowd the drawing.
+    pub optional: bool,
 }

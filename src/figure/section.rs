@@ -7,14 +7,13 @@ use super::drawing::{Drawing, Fill, Item, P2, Path, Span, Stroke, Style};
 use super::place::{Candidate, around, beside, dearer, place_labels, rank};
 use super::shape::tick;
 use super::text::{TextWidth, Words};
-use super::unfolded::finished;
 use super::view::unit;
 use crate::criteria::FailurePath;
 use crate::note::{SectionShape, WeldSection};
 use crate::quantity::real::{cos, sin, tan};
 
-/// Width and height of a section with its words (mm).
-const CELL: [f64; 2] = [44.0, 50.0];
+/// Width of a section, and its height without the words below (mm).
+const CELL: [f64; 2] = [42.0, 40.0];
 /// Sections in a row, and rows.
 const ACROSS: usize = 3;
 const DOWN: usize = 3;
@@ -28,21 +27,26 @@ const REACH: f64 = 17.0;
 const GAP: f64 = 1.6;
 /// From line to line of the words below (mm).
 const LINE: f64 = 3.6;
+/// Lines that a list of names or planes takes at most.
+const MOST_LINES: usize = 3;
 
 /// Draws the sections, row by row.
 #[must_use]
 pub fn draw_sections(sections: &[WeldSection], fonts: &dyn TextWidth) -> Drawing {
     let mut canvas = Canvas::new(fonts, P2::new(128.0, 170.0));
-    for (index, section) in sections.iter().take(ACROSS * DOWN).enumerate() {
-        let (column, row) = (index % ACROSS, index / ACROSS);
-        let step = |count: usize, size: f64| count as f64 * size;
-        let origin = P2::new(step(column, CELL[0]), step(row, CELL[1]));
-        Cell {
-            canvas: &mut canvas,
-            section,
-            origin,
+    let drawn = &sections[..sections.len().min(ACROSS * DOWN)];
+    let mut top = 0.0;
+    for row in drawn.chunks(ACROSS) {
+        let mut lines = 0;
+        for (section, column) in row.iter().zip([0.0, 1.0, 2.0]) {
+            let mut cell = Cell {
+                canvas: &mut canvas,
+                section,
+                origin: P2::new(column * CELL[0], top),
+            };
+            lines = lines.max(cell.draw());
         }
-        .draw();
+        top += CELL[1] + lines as f64 * LINE;
     }
     if sections.len() > ACROSS * DOWN {
         canvas.remarks.push(format!(
@@ -50,8 +54,8 @@ pub fn draw_sections(sections: &[WeldSection], fonts: &dyn TextWidth) -> Drawing
             sections.len() - ACROSS * DOWN
         ));
     }
-    let (labels, dropped) = place_labels(&mut canvas);
-    finished(canvas, labels, dropped)
+    let labels = place_labels(&mut canvas);
+    canvas.finish(labels)
 }
 
 /// A section under way; its own axes have the root as origin, x along the base, y off it.
@@ -70,7 +74,8 @@ struct Bead {
 }
 
 impl Cell<'_, '_> {
-    fn draw(&mut self) {
+    /// Draws the section; returns the number of lines of its words.
+    fn draw(&mut self) -> usize {
         let planes = self.section.planes.clone();
         match self.section.shape {
             SectionShape::Complete { tee: false } => self.butt(),
@@ -79,7 +84,7 @@ impl Cell<'_, '_> {
                 self.tee(&planes);
             }
         }
-        self.words();
+        self.words()
     }
 
     /// From the section's own axes to the sheet.
@@ -392,35 +397,58 @@ impl Cell<'_, '_> {
     }
 
     /// The runs, the kind of weld, the planes checked, in lines below.
-    fn words(&mut self) {
-        let checked: Vec<&str> = self
-            .section
-            .planes
-            .iter()
-            .map(|path| path.word())
+    fn words(&mut self) -> usize {
+        let planes = self.section.planes.iter().map(|path| path.word());
+        let checked: Vec<String> = planes
             .filter(|word| *word != "size and length")
+            .map(str::to_owned)
             .collect();
         let checked = if checked.is_empty() {
-            "no strength checked".to_owned()
+            vec!["no strength checked".to_owned()]
         } else {
-            format!("checked: {}", checked.join(", "))
+            self.lines("checked: ", &checked, Style::Plain)
         };
-        let lines = [
-            (self.section.runs.join(", "), Style::Bold),
-            (self.kind(), Style::Plain),
-            (checked, Style::Plain),
-        ];
-        let width = CELL[0] - 3.0;
+        let names = self.lines("", &self.section.runs, Style::Bold);
+        let mut lines: Vec<(String, Style)> = Vec::new();
+        lines.extend(names.into_iter().map(|line| (line, Style::Bold)));
+        lines.push((self.kind(), Style::Plain));
+        lines.extend(checked.into_iter().map(|line| (line, Style::Plain)));
         let left = self.origin.x - self.width_on_base() - REACH + 3.0;
-        let mut y = self.origin.y + BASE + 5.0;
-        for (text, style) in lines {
-            let words = self.fit(&text, style, width);
-            let centre = P2::new(left + words.size()[0] / 2.0, y);
-            let label = words.label(centre, 0.0);
+        let top = self.origin.y + BASE + 5.0;
+        for (index, (text, style)) in lines.iter().enumerate() {
+            let words = self.fit(text, *style, CELL[0] - 2.0);
+            // On one baseline, whatever descends below it.
+            let drop = (words.fall - words.rise) / 2.0;
+            let y = top + index as f64 * LINE + drop;
+            let label = words.label(P2::new(left + words.size()[0] / 2.0, y), 0.0);
             self.canvas
                 .draw_kept(Layer::Mark, Item::Label(label), Keep::Off);
-            y += LINE;
         }
+        lines.len()
+    }
+
+    /// A list in lines that fit the cell; the last one counts what finds no room.
+    fn lines(&self, head: &str, items: &[String], style: Style) -> Vec<String> {
+        let fits = |text: &str| {
+            let words = self.canvas.words(vec![Span::new(text, style)]);
+            words.size()[0] <= CELL[0] - 2.0
+        };
+        let mut lines = vec![head.to_owned()];
+        for (index, item) in items.iter().enumerate() {
+            let comma = if index + 1 < items.len() { "," } else { "" };
+            let line = lines.len() - 1;
+            let space = if index == 0 { "" } else { " " };
+            let longer = format!("{}{space}{item}{comma}", lines[line]);
+            if index == 0 || fits(&longer) {
+                lines[line] = longer;
+            } else if lines.len() == MOST_LINES {
+                lines.push(format!("and {} more", items.len() - index));
+                break;
+            } else {
+                lines.push(format!("{item}{comma}"));
+            }
+        }
+        lines
     }
 
     fn kind(&self) -> String {

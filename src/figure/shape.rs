@@ -1,13 +1,22 @@
 //! The small shapes of the trade: arrow heads, ticks, break marks, turning arrows.
 
-use super::drawing::{Fill, Item, P2, Path, Piece, Stroke};
+use super::drawing::{Fill, Ink, Item, P2, Path, Piece, Stroke};
 use super::rect::square;
 use super::view::arc_curves;
 
 /// Length of an open head (mm).
 const OPEN_HEAD: f64 = 2.6;
+/// From the first head of a moment to the second (mm).
+pub(super) const HEADS: f64 = 2.0;
 /// Length of a filled head (mm).
 const FILLED_HEAD: f64 = 2.2;
+
+/// An open head, smaller on an arrow that is hardly longer than it.
+pub(super) fn small_head(tip: P2, d: P2, length: f64, stroke: Stroke) -> Item {
+    let size = (0.6 * length / OPEN_HEAD).min(1.0);
+    let (side, back) = (square(d) * (0.95 * size), tip - d * (OPEN_HEAD * size));
+    Item::Path(Path::through(&[back + side, tip, back - side], stroke))
+}
 
 /// An open head with its tip at `tip`, pointing along the unit vector `d`.
 pub(super) fn open_head(tip: P2, d: P2, stroke: Stroke) -> Item {
@@ -49,7 +58,7 @@ pub(super) fn break_mark(p: P2, d: P2) -> Vec<Item> {
 }
 
 /// A turning arrow about `centre`, starting at angle `from` over `sweep` (rad, counter-clockwise as
-/// read), with an open head at its end.
+/// read), with two open heads at its end, as a moment has.
 pub(super) fn turning_arrow(
     centre: P2,
     radius: f64,
@@ -59,7 +68,6 @@ pub(super) fn turning_arrow(
 ) -> Vec<Item> {
     let point = |p: [f64; 2]| centre + P2::new(p[0], -p[1]) * radius;
     let curves = arc_curves(from, sweep);
-    let last = curves[curves.len() - 1];
     let path = Path {
         pieces: curves
             .iter()
@@ -67,14 +75,15 @@ pub(super) fn turning_arrow(
             .collect(),
         ..Path::through(&[point(curves[0][0])], stroke)
     };
-    // The head points along the chord of its own length, so that it sits on the curve.
-    let tip = point(last[3]);
-    let lead = sweep.signum() * (sweep.abs().min(OPEN_HEAD / radius));
-    let back = arc_curves(from + sweep - lead, lead)[0][0];
-    vec![
-        Item::Path(path),
-        open_head(tip, (tip - point(back)).normalize(), stroke),
-    ]
+    // Each head points along the chord of its own length, so that it sits on the curve.
+    let head = |end: f64| {
+        let lead = sweep.signum() * (sweep.abs().min(OPEN_HEAD / radius));
+        let chord = arc_curves(end - lead, lead);
+        let (back, tip) = (point(chord[0][0]), point(chord[chord.len() - 1][3]));
+        open_head(tip, (tip - back).normalize(), stroke)
+    };
+    let (last, first) = (from + sweep, from + sweep - sweep.signum() * HEADS / radius);
+    vec![Item::Path(path), head(last), head(first)]
 }
 
 /// A circle with outline and inside.
@@ -85,6 +94,16 @@ pub(super) fn circle(centre: P2, radius: f64, stroke: Stroke, fill: Fill) -> Ite
         stroke: Some(stroke),
         fill,
     }
+}
+
+/// A disc of some ink, as a point that is stroked.
+pub(super) fn disc_of(centre: P2, radius: f64, ink: Ink) -> Item {
+    let stroke = Stroke {
+        width: radius,
+        ink,
+        ..Stroke::black(0.0)
+    };
+    circle(centre, radius / 2.0, stroke, Fill::None)
 }
 
 /// A filled disc.

@@ -106,7 +106,7 @@ fn stroke_source(stroke: Option<Stroke>) -> String {
         Ink::Black => "black",
         Ink::Grey => "luma(45%)",
         Ink::Faint => "luma(72%)",
-        Ink::White => "white",
+        Ink::Light => "luma(85%)",
     };
     let dash = match stroke.dash {
         Dash::Full => "",

@@ -126,6 +126,21 @@ impl TextWidth for SerifFaces {
     }
 }
 
+/// Pieces of a text that may begin with a symbol and its index, such as `x_c = 16.2`.
+pub(super) fn symbol_spans(text: &str) -> Vec<Span> {
+    let parts = text
+        .split_once(' ')
+        .and_then(|(symbol, rest)| Some((symbol.split_once('_')?, rest)));
+    match parts {
+        Some(((letter, index), rest)) => vec![
+            Span::new(letter, Style::Italic),
+            Span::new(index, Style::Sub),
+            Span::new(format!(" {rest}"), Style::Plain),
+        ],
+        None => vec![Span::new(text, Style::Plain)],
+    }
+}
+
 /// A label not yet placed: its pieces and its size in mm.
 #[derive(Clone, Debug)]
 pub(super) struct Words {
@@ -133,6 +148,8 @@ pub(super) struct Words {
     pub(super) width: f64,
     pub(super) rise: f64,
     pub(super) fall: f64,
+    /// Radius of the ring around it (mm); 0 for none.
+    pub(super) ring: f64,
 }
 
 impl Words {
@@ -162,6 +179,7 @@ impl Words {
             width: 0.0,
             rise: 0.0,
             fall: 0.0,
+            ring: 0.0,
         };
         for span in &words.spans {
             let (face, size, drop) = match span.style {
@@ -178,9 +196,17 @@ impl Words {
         words
     }
 
+    /// The same within a ring.
+    pub(super) fn ringed(self, ring: f64) -> Self {
+        Self { ring, ..self }
+    }
+
     /// Width and height of the box.
     pub(super) fn size(&self) -> [f64; 2] {
-        [self.width, self.rise + self.fall]
+        [
+            self.width.max(2.0 * self.ring),
+            (self.rise + self.fall).max(2.0 * self.ring),
+        ]
     }
 
     /// The box with its centre at a place.
@@ -189,7 +215,7 @@ impl Words {
         Rect {
             centre,
             along,
-            half: [self.width / 2.0, (self.rise + self.fall) / 2.0],
+            half: self.size().map(|side| side / 2.0),
         }
     }
 

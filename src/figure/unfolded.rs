@@ -3,23 +3,34 @@
 //! The capacity is the line at 1. Each curve is its check's in its governing case; a ring marks
 //! where it governs. Numbers of points stand at the ends, names of runs below.
 
+use super::PT;
 use super::canvas::{Canvas, Keep, Layer};
-use super::drawing::{Dash, Drawing, Fill, Item, P2, Path, Span, Stroke, Style};
+use super::drawing::{Dash, Drawing, Fill, Item, MarkKind, P2, Path, Span, Stroke, Style};
 use super::place::{Candidate, around, dearer, place_labels, rank};
-use super::rect::Bounds;
+use super::rect::Rect;
 use super::shape::circle;
-use super::text::TextWidth;
+use super::text::{TextWidth, Words};
+use super::view::unit;
 use crate::note::{Curve, DemandSketch};
 
 /// Width of the laid-out weld, and height of the capacity above it (mm).
-const WIDTH: f64 = 116.0;
+const WIDTH: f64 = 106.0;
 const HEIGHT: f64 = 40.0;
 /// Between runs that do not go on where the one before ends (mm).
 const GAP: f64 = 3.0;
 /// Height of the diagram at most, in capacities.
-const TALLEST: f64 = 2.5;
-/// From the weld down to the baseline of the names of its runs (mm).
-const NAMES: f64 = 7.4;
+const TALLEST: f64 = 1.6;
+/// From the weld down to the top of the names of its runs (mm).
+const NAMES: f64 = 5.4;
+/// Height of a figure (mm).
+const FIGURE: f64 = 1.85;
+/// Between labels of a row, and how far one may stand beside its place (mm).
+const ROW_SPACE: f64 = 0.6;
+const ROW_SHIFT: f64 = 1.2;
+/// Between names of runs (mm).
+const NAME_SPACE: f64 = 2.0;
+/// Radius of the ring around a run's number (mm).
+const RING: f64 = 1.75;
 /// Half the length of a tick (mm).
 const TICK: f64 = 1.0;
 
@@ -40,10 +51,62 @@ struct Layout {
     unit: f64,
 }
 
+/// Labels in a row below the weld, from left to right.
+struct Row {
+    /// From the weld to the top of the figures (mm).
+    top: f64,
+    /// Where the last label ends (mm).
+    end: f64,
+    /// How many find no room.
+    left_out: usize,
+}
+
+impl Row {
+    fn at(top: f64) -> Self {
+        Self {
+            top,
+            end: f64::NEG_INFINITY,
+            left_out: 0,
+        }
+    }
+
+    /// Puts a label under a place, a little to the right where the one before is in the way.
+    fn put(&mut self, canvas: &mut Canvas<'_>, words: &Words, x: f64) {
+        let half = words.size()[0] / 2.0;
+        let left = (x - half).max(self.end + ROW_SPACE);
+        if left > x - half + ROW_SHIFT {
+            self.left_out += 1;
+            canvas.dropped.push(words.text());
+            return;
+        }
+        self.end = left + 2.0 * half;
+        // On one baseline, whatever descends below it.
+        let drop = if words.ring > 0.0 {
+            words.ring
+        } else {
+            FIGURE + (words.fall - words.rise) / 2.0
+        };
+        let centre = P2::new(left + half, self.top + drop);
+        if words.ring > 0.0 {
+            let ring = circle(centre, words.ring, Stroke::black(0.5), Fill::None);
+            canvas.draw(Layer::Mark, ring);
+        }
+        let label = Item::Label(words.label(centre, 0.0));
+        canvas.draw_kept(Layer::Mark, label, Keep::Off);
+    }
+
+    fn tell(&self, canvas: &mut Canvas<'_>, what: &str) {
+        if self.left_out > 0 {
+            let says = format!("the numbers of {} {what} find no room", self.left_out);
+            canvas.remark(&says);
+        }
+    }
+}
+
 /// Draws the diagram.
 #[must_use]
 pub fn draw_unfolded(sketch: &DemandSketch, fonts: &dyn TextWidth) -> Drawing {
-    let mut canvas = Canvas::new(fonts, P2::new(WIDTH + 20.0, 1.5 * HEIGHT));
+    let mut canvas = Canvas::new(fonts, P2::new(WIDTH + 18.0, 85.0));
     let layout = Layout::of(sketch);
     layout.draw_axis(&mut canvas, sketch);
     for (curve, (width, dash)) in sketch.curves.iter().zip(CURVES) {
@@ -52,31 +115,8 @@ pub fn draw_unfolded(sketch: &DemandSketch, fonts: &dyn TextWidth) -> Drawing {
     for curve in &sketch.curves {
         layout.mark_governing(&mut canvas, curve);
     }
-    let (labels, dropped) = place_labels(&mut canvas);
-    finished(canvas, labels, dropped)
-}
-
-/// A drawing of what stands on a canvas, moved to the upper left corner.
-pub(super) fn finished(canvas: Canvas<'_>, labels: Vec<Item>, dropped: Vec<String>) -> Drawing {
-    let mut items = canvas.items;
-    items.sort_by_key(|(layer, _)| *layer);
-    let all: Vec<Item> = items
-        .into_iter()
-        .map(|(_, item)| item)
-        .chain(labels)
-        .collect();
-    let mut bounds = Bounds::empty();
-    all.iter().for_each(|item| item.bound(&mut bounds));
-    let size = bounds.size();
-    Drawing {
-        width_mm: size.x,
-        height_mm: size.y,
-        items: all.iter().map(|item| item.shifted(-bounds.min)).collect(),
-        scale: String::new(),
-        view: String::new(),
-        dropped,
-        remarks: canvas.remarks,
-    }
+    let labels = place_labels(&mut canvas);
+    canvas.finish(labels)
 }
 
 /// A number of the scale of a drawing, such as 0.5 or 20, without noise.
@@ -129,29 +169,15 @@ impl Layout {
 
     /// The weld as the axis, its ends and names; the scale at the left; the capacity.
     fn draw_axis(&self, canvas: &mut Canvas<'_>, sketch: &DemandSketch) {
-        for (index, run) in sketch.runs.iter().enumerate() {
+        for index in 0..sketch.runs.len() {
             let (from, to) = (self.point(index, 0.0, 0.0), self.point(index, 1.0, 0.0));
             canvas.line(from, to, Stroke::black(1.8));
             for end in [from, to] {
                 canvas.line(end, end + P2::y() * TICK, Stroke::black(0.6));
                 canvas.aid(end, end - P2::y() * self.unit, Stroke::grey(0.3));
             }
-            for (end, number) in [from, to].into_iter().zip(&run.ends) {
-                let shared = run.joined && (end - from).norm() < 1e-9;
-                if let Some(number) = number.as_ref().filter(|_| !shared) {
-                    let words = canvas.words(vec![Span::new(number.clone(), Style::Bold)]);
-                    let height = TICK + 0.9 + words.size()[1] / 2.0;
-                    let at = |dx: f64, cost: f64| Candidate {
-                        centre: end + P2::new(dx, height),
-                        angle: 0.0,
-                        cost,
-                    };
-                    let half = words.size()[0] / 2.0 + 0.5;
-                    let places = vec![at(0.0, 0.0), at(half, 1.0), at(-half, 1.0)];
-                    canvas.want(rank::LETTER, words, end, places);
-                }
-            }
         }
+        self.number_points(canvas, sketch);
         self.name_runs(canvas, sketch);
         let (left, right) = (P2::new(-3.0, 0.0), P2::new(self.right(), 0.0));
         canvas.line(left, left - P2::y() * self.unit, Stroke::black(0.4));
@@ -183,45 +209,42 @@ impl Layout {
         canvas.want(rank::GOVERNING, words, right + one, places);
     }
 
+    /// Numbers of points below the ends of runs.
+    fn number_points(&self, canvas: &mut Canvas<'_>, sketch: &DemandSketch) {
+        let mut row = Row::at(TICK + 0.8);
+        for (index, run) in sketch.runs.iter().enumerate() {
+            for (part, number) in [0.0, 1.0].into_iter().zip(&run.ends) {
+                let shared = run.joined && part == 0.0;
+                if let Some(number) = number.as_ref().filter(|_| !shared) {
+                    let words = canvas.words(vec![Span::new(number.clone(), Style::Bold)]);
+                    row.put(canvas, &words, self.point(index, part, 0.0).x);
+                }
+            }
+        }
+        row.tell(canvas, "points");
+    }
+
     /// Names below their runs if all fit, else their numbers.
     fn name_runs(&self, canvas: &mut Canvas<'_>, sketch: &DemandSketch) {
-        let named: Vec<_> = sketch
-            .runs
-            .iter()
-            .map(|run| canvas.words(vec![Span::new(run.name.clone(), Style::Plain)]))
-            .collect();
-        let gap = |index: usize| {
-            let joined = |at: usize| sketch.runs.get(at).is_none_or(|run| run.joined);
-            if index > 0 && joined(index) {
-                -1.0
-            } else {
-                1.0
-            }
-        };
-        let fit = named
-            .iter()
-            .enumerate()
-            .all(|(index, words)| words.size()[0] <= self.widths[index] + gap(index));
+        let words = |text: &str| canvas.words(vec![Span::new(text, Style::Plain)]);
+        let names = sketch.runs.iter().map(|run| words(&run.name));
+        let mut labels: Vec<Words> = names.collect();
+        let middle = |index: usize| self.point(index, 0.5, 0.0).x;
+        let right = |index: usize, label: &Words| middle(index) + label.size()[0] / 2.0;
+        let fit = labels.windows(2).enumerate().all(|(index, two)| {
+            right(index, &two[0]) + NAME_SPACE
+                <= 2.0 * middle(index + 1) - right(index + 1, &two[1])
+        });
         if !fit {
-            canvas
-                .remarks
-                .push("the numbers of runs are those of the table of runs".to_owned());
+            let number = |index: usize| words(&index.to_string()).ringed(RING);
+            labels = (1..=labels.len()).map(number).collect();
+            canvas.remark("circled numbers: the table of runs");
         }
-        for (index, name) in named.into_iter().enumerate() {
-            let words = if fit {
-                name
-            } else {
-                canvas.words(vec![Span::new((index + 1).to_string(), Style::Plain)])
-            };
-            if words.size()[0] > self.widths[index] + 1.5 {
-                continue;
-            }
-            // On one baseline, whatever descends below it.
-            let drop = (words.fall - words.rise) / 2.0;
-            let centre = self.point(index, 0.5, 0.0) + P2::y() * (NAMES + drop);
-            let label = words.label(centre, 0.0);
-            canvas.draw_kept(Layer::Mark, Item::Label(label), Keep::Off);
+        let mut row = Row::at(NAMES);
+        for (index, label) in labels.iter().enumerate() {
+            row.put(canvas, label, middle(index));
         }
+        row.tell(canvas, "runs");
     }
 
     fn draw_curve(&self, canvas: &mut Canvas<'_>, curve: &Curve, stroke: Stroke) {
@@ -234,7 +257,7 @@ impl Layout {
                 .map(|(step, ratio)| self.point(*run, part(step), *ratio))
                 .collect();
             let item = Item::Path(Path::through(&points, stroke));
-            canvas.draw_kept(Layer::Weld, item, Keep::OffIfPossible);
+            canvas.draw_kept(Layer::Weld, item, Keep::Off);
         }
     }
 
@@ -247,8 +270,18 @@ impl Layout {
             spans.push(Span::new(format!("  {text}"), Style::Plain));
         }
         let words = canvas.words(spans);
-        let mut places = around(at, 1.8, words.size(), -P2::y());
-        places.extend(dearer(around(at, 3.2, words.size(), -P2::y()), 3.0));
-        canvas.want(rank::GOVERNING, words, at, places);
+        let mark = Rect::upright(at, 1.0, 1.0);
+        let mark = canvas.name(MarkKind::Point, vec![mark]);
+        // Toward the middle, so that the ends of the diagram keep their width.
+        let inward = P2::new((self.right() / 2.0 - at.x) / WIDTH, -1.0);
+        let toward = unit(inward);
+        let mut places = around(at, 1.8, words.size(), toward);
+        places.extend(dearer(around(at, 2.6, words.size(), toward), 3.0));
+        canvas
+            .want(rank::GOVERNING, words, at, places)
+            .naming(mark, 1.0);
     }
 }
+
+/// A curve is at least as thick as print needs.
+const _: () = assert!(0.5 * PT > 0.17, "a curve too thin for print");

@@ -37,7 +37,7 @@ pub use identity::Identity;
 pub use pictures::{
     Curve, DemandSketch, Picture, SectionShape, StressSketch, Unfolded, WeldSection,
 };
-pub use sketch::{Sketch, SketchLoad, SketchRun};
+pub use sketch::{Sketch, SketchDimension, SketchLoad, SketchRun};
 pub use standing::Standing;
 pub use trace::{
     AtCentroid, Governing, Group, SCHEMA as TRACE_SCHEMA, Trace, TraceCase, TraceCheck,

@@ -18,6 +18,9 @@ const STEPS: u32 = 64;
 /// Checks drawn at most, those of the largest utilisation.
 const MOST_CURVES: usize = 5;
 
+/// A ring nearer to a point than this part of the longest run stands next to it.
+const NEAR: f64 = 0.1;
+
 /// A drawing of the note.
 #[derive(Clone, Debug)]
 pub enum Picture {
@@ -164,7 +167,7 @@ impl Picture {
                     "The kinds of weld in section"
                 };
                 format!(
-                    "{kinds}, square to the run; not to scale. Planes that this note checks are broken lines."
+                    "{kinds}, square to the run; not to scale. Broken lines: planes that are checked."
                 )
             }
             Self::Stresses(sketch) => format!(
@@ -196,34 +199,7 @@ impl Picture {
     #[must_use]
     pub fn alt(&self, caption: &str) -> String {
         let says = match self {
-            Self::Joint(sketch) => {
-                let runs: Vec<&str> = sketch.runs.iter().map(|run| run.text.as_str()).collect();
-                let governs = sketch.governing.as_ref();
-                let governs = governs.map_or(String::new(), |(at, words)| {
-                    let number = sketch
-                        .points
-                        .iter()
-                        .find(|(point, _)| (point - at).norm() < 1e-9);
-                    let number = number.map_or(String::new(), |(_, n)| format!(" point {n}"));
-                    format!(" A ring marks{number}: {words}.")
-                });
-                let load = sketch.load.as_ref().map_or(String::new(), |load| {
-                    let acting = |parts: &[(f64, String); 3], letter: &str| {
-                        let parts = parts.iter().zip(["x", "y", "z"]);
-                        parts
-                            .filter(|((value, _), _)| *value != 0.0)
-                            .map(|((_, text), axis)| format!("{letter}{axis} = {text}"))
-                            .collect::<Vec<_>>()
-                    };
-                    let mut all = acting(&load.force, "F");
-                    all.extend(acting(&load.moment, "M"));
-                    format!(" At the load point P act {}.", all.join(", "))
-                });
-                format!(
-                    "Drawing of the weld group with its runs: {}.{governs}{load}",
-                    runs.join("; ")
-                )
-            }
+            Self::Joint(sketch) => joint_alt(sketch),
             Self::Sections(sections) => {
                 let each: Vec<String> = sections
                     .iter()
@@ -268,6 +244,64 @@ impl Picture {
         };
         format!("{says} {caption}")
     }
+}
+
+/// What the drawing of the joint shows: its runs, sizes, ring and load.
+fn joint_alt(sketch: &Sketch) -> String {
+    let runs: Vec<&str> = sketch.runs.iter().map(|run| run.text.as_str()).collect();
+    let sizes = sketch.dimensions.iter().filter(|size| !size.optional);
+    let sizes: Vec<&str> = sizes.map(|size| size.text.as_str()).collect();
+    let sizes = if sizes.is_empty() {
+        String::new()
+    } else {
+        format!(" Dimensions: {}.", sizes.join(", "))
+    };
+    format!(
+        "Drawing of the weld group with its runs: {}.{sizes}{}{}",
+        runs.join("; "),
+        ring_alt(sketch),
+        load_alt(sketch)
+    )
+}
+
+/// Where the ring stands.
+fn ring_alt(sketch: &Sketch) -> String {
+    let Some((at, words)) = &sketch.governing else {
+        return String::new();
+    };
+    let points = sketch.points.iter();
+    let far = points.map(|(point, number)| ((point - at).norm(), number));
+    let lengths = sketch.runs.iter().map(|run| run.path.length());
+    let near = NEAR * lengths.fold(0.0, f64::max);
+    match far.min_by(|a, b| a.0.total_cmp(&b.0)) {
+        Some((far, number)) if far < 1e-9 => format!(" A ring marks point {number}: {words}."),
+        Some((far, number)) if far < near => {
+            format!(" A ring stands next to point {number}: {words}.")
+        }
+        _ => format!(" A ring marks the point that governs: {words}."),
+    }
+}
+
+/// The load point and what acts there.
+fn load_alt(sketch: &Sketch) -> String {
+    let Some(load) = &sketch.load else {
+        return String::new();
+    };
+    let acting = |parts: &[(f64, String); 3], letter: &str| {
+        let parts = parts.iter().zip(["x", "y", "z"]);
+        parts
+            .filter(|((value, _), _)| *value != 0.0)
+            .map(|((_, text), axis)| format!("{letter}{axis} = {text}"))
+            .collect::<Vec<_>>()
+    };
+    let mut all = acting(&load.force, "F");
+    all.extend(acting(&load.moment, "M"));
+    let place = if load.distance.starts_with("0 ") {
+        "at the centroid C".to_owned()
+    } else {
+        load.distance.clone()
+    };
+    format!(" At the load point P, {place}, act {}.", all.join(", "))
 }
 
 /// Names of the drawings' files.

@@ -23,12 +23,14 @@ pub struct Sketch {
     pub load: Option<SketchLoad>,
     /// The governing point and its text.
     pub governing: Option<(V3, String)>,
-    /// Distances along an axis: from, to, axis, text.
-    pub dimensions: Vec<(V3, V3, usize, String)>,
+    /// Distances along an axis.
+    pub dimensions: Vec<SketchDimension>,
     /// Unit of length.
     pub units: &'static str,
     /// Whether the group is planar.
     pub planar: bool,
+    /// Whether the load stands high over a planar group, so that a view in space shows its arm.
+    pub raised: bool,
     /// Name of the case drawn.
     pub case: Option<String>,
 }
@@ -38,10 +40,27 @@ pub struct Sketch {
 pub struct SketchRun {
     /// Root as told.
     pub path: Segment,
+    /// The part that is counted, where a stop cuts an end off.
+    pub counted: Option<Segment>,
     /// Effective throat.
     pub throat: f64,
     /// Text, such as `upper edge, leg 6`.
     pub text: String,
+}
+
+/// A distance along an axis.
+#[derive(Clone, Debug)]
+pub struct SketchDimension {
+    /// First point.
+    pub from: V3,
+    /// Second point.
+    pub to: V3,
+    /// Number of the axis.
+    pub axis: usize,
+    /// The distance as printed.
+    pub text: String,
+    /// Whether it is left out where it would crowd the drawing.
+    pub optional: bool,
 }
 
 /// The load of the drawing: components with sign and printed text.
@@ -62,6 +81,11 @@ pub struct SketchLoad {
 /// Characters of a run's name that the drawing shows at most; it shortens further to fit.
 const LONGEST_NAME: usize = 60;
 
+/// A load higher over the group than this part of the group's size is high, if it stands aside of the
+/// centroid by less than this part of its height.
+const HIGH: f64 = 0.15;
+const BESIDE: f64 = 0.5;
+
 /// A short decimal of a length for the drawing.
 fn short(length: f64, size: f64) -> String {
     Printed::of(length, 4, 7, 1e-9 * size).text()
@@ -80,6 +104,7 @@ impl Builder<'_> {
         let runs = (0..self.runs.len())
             .map(|index| SketchRun {
                 path: self.runs[index].told.clone(),
+                counted: self.counted(index),
                 throat: self.runs[index].throat,
                 text: self.run_text(index),
             })
@@ -92,12 +117,11 @@ impl Builder<'_> {
             let part = |values: [_; 3], dim: Dim| {
                 values.map(|value| (self.ledger.get(value).value, text(value, dim)))
             };
-            let height = at.z - centroid.z;
-            let raised = self.planar && height.abs() > 1e-9 * size;
+            let hidden = self.planar && !self.raised(at) && at.z.abs() > 1e-9 * size;
             SketchLoad {
                 at,
-                aside: if raised {
-                    format!("(P at z = {})", short(at.z, size))
+                aside: if hidden {
+                    format!("z_P = {} {}", short(at.z, size), units.length())
                 } else {
                     String::new()
                 },
@@ -122,6 +146,7 @@ impl Builder<'_> {
             axes,
             centroid,
             dimensions: self.dimensions(load.as_ref().map(|load| load.at)),
+            raised: load.as_ref().is_some_and(|load| self.raised(load.at)),
             load,
             governing,
             units: units.length(),
@@ -130,83 +155,212 @@ impl Builder<'_> {
         }
     }
 
-    /// The name of a run with its leg or throat.
-    fn run_text(&self, index: usize) -> String {
-        let spec = &self.joint.weld.runs[self.runs[index].spec];
-        let size = match &spec.size {
-            SizeSpec::Fillet { leg, .. } => format!("leg {}", leg.value.text()),
-            SizeSpec::Unequal {
-                on_base,
-                on_attached,
-            } => {
-                format!(
-                    "legs {} and {}",
-                    on_base.value.text(),
-                    on_attached.value.text()
-                )
-            }
-            SizeSpec::Throat { throat, .. } | SizeSpec::Partial { throat } => {
-                format!("throat {}", throat.value.text())
-            }
-            SizeSpec::Complete { .. } => "full penetration".to_owned(),
-        };
-        let size = size.replace(&format!(" {}", self.joint.units.value.length()), "");
-        let name: String = self.runs[index].name.chars().take(LONGEST_NAME).collect();
-        format!("{name}, {size}")
+    /// The part of a run that is counted, if it is not the whole.
+    fn counted(&self, index: usize) -> Option<Segment> {
+        let run = &self.runs[index];
+        let cut = run.told.length() - run.path.length();
+        (cut > 1e-9 * self.properties.size).then(|| run.path.clone())
     }
 
-    /// Overall width and depth of the group, and how far out the load stands.
-    fn dimensions(&self, load: Option<V3>) -> Vec<(V3, V3, usize, String)> {
+    /// The name of a run with its leg or throat, its radius, and its beads; a further bead of a run
+    /// in stitches is named alone.
+    fn run_text(&self, index: usize) -> String {
+        let run = &self.runs[index];
+        let spec = &self.joint.weld.runs[run.spec];
+        let unit = format!(" {}", self.joint.units.value.length());
+        let bare = |text: String| text.replace(&unit, "");
+        let name: String = run.name.chars().take(LONGEST_NAME).collect();
+        let mut parts = vec![name, bare(size_words(&spec.size))];
+        parts.extend(self.radius_words(run));
+        if let Some(stitch) = &spec.stitch {
+            if self.runs[..index]
+                .iter()
+                .any(|other| other.spec == run.spec)
+            {
+                parts.truncate(1);
+            } else {
+                let (bead, pitch) = (stitch.bead.value.text(), stitch.pitch.value.text());
+                parts.push(bare(format!("beads {bead}, pitch {pitch}")));
+            }
+        }
+        parts.join(", ")
+    }
+
+    /// `R 60` of an arc, `Ø 120` of a circle; the lone circle has a dimension.
+    fn radius_words(&self, run: &Run) -> Option<String> {
+        let Segment::Arc { radius, sweep, .. } = &run.told else {
+            return None;
+        };
         let size = self.properties.size;
-        let mut low = V3::repeat(f64::INFINITY);
-        let mut high = V3::repeat(f64::NEG_INFINITY);
-        for run in self.runs {
-            let mut at: Vec<f64> = vec![0.0, 1.0];
-            at.extend(run.told.extremes());
-            for p in at {
-                let point = run.told.point(p);
-                low = low.inf(&point);
-                high = high.sup(&point);
-            }
+        if !full_turn(*sweep) {
+            return Some(format!("R {}", short(*radius, size)));
         }
-        let mut out = Vec::new();
-        let turn = 2.0 * std::f64::consts::PI - 1e-9;
-        if let (
-            [
-                Run {
-                    told: Segment::Arc { radius, sweep, .. },
-                    ..
-                },
-            ],
-            true,
-        ) = (self.runs, self.planar)
-            && sweep.abs() > turn
-        {
-            // A circle is dimensioned once, by its diameter.
-            let mut to = low;
-            to.x = high.x;
-            out.push((low, to, 0, format!("Ø {}", short(2.0 * radius, size))));
-            return out;
+        let lone = self.lone_circle().is_some();
+        (!lone).then(|| format!("Ø {}", short(2.0 * radius, size)))
+    }
+
+    /// Whether a load stands over a planar group, high against its distance from the centroid.
+    fn raised(&self, load: V3) -> bool {
+        let arm = load - self.properties.centroid;
+        let aside = crate::quantity::real::hypot(arm.x, arm.y);
+        self.planar && arm.z.abs() > HIGH * self.properties.size && aside < BESIDE * arm.z.abs()
+    }
+
+    /// Overall sizes of the group, how far out the load stands, and where the centroid lies.
+    fn dimensions(&self, load: Option<V3>) -> Vec<SketchDimension> {
+        let raised = load.is_some_and(|load| self.raised(load));
+        let mut out = match self.lone_circle() {
+            Some(diameter) => vec![diameter],
+            None => self.extents(),
+        };
+        match load {
+            Some(load) if raised => out.push(self.height(load)),
+            Some(load) if self.planar => out.extend(self.overhangs(load)),
+            _ => {}
         }
-        for axis in 0..AXES.len() {
-            let length = high[axis] - low[axis];
-            if length > 1e-9 * size && !(self.planar && axis == 2) {
-                let mut to = low;
-                to[axis] = high[axis];
-                out.push((low, to, axis, short(length, size)));
-            }
-        }
-        if let (Some(load), true) = (load, self.planar) {
-            for axis in [0, 1] {
-                let from = low;
-                let reach = load[axis] - from[axis];
-                let beyond =
-                    load[axis] > high[axis] + 1e-6 * size || load[axis] < low[axis] - 1e-6 * size;
-                if beyond {
-                    out.push((from, load, axis, short(reach.abs(), size)));
-                }
-            }
+        if self.planar && !raised {
+            out.extend(self.centroid_place());
         }
         out
     }
+
+    fn dimension(&self, from: V3, to: V3, axis: usize) -> SketchDimension {
+        let text = short((to[axis] - from[axis]).abs(), self.properties.size);
+        SketchDimension {
+            from,
+            to,
+            axis,
+            text,
+            optional: false,
+        }
+    }
+
+    /// The diameter of a group that is one full circle.
+    fn lone_circle(&self) -> Option<SketchDimension> {
+        let [
+            Run {
+                told:
+                    Segment::Arc {
+                        centre,
+                        radius,
+                        sweep,
+                        ..
+                    },
+                ..
+            },
+        ] = self.runs
+        else {
+            return None;
+        };
+        let reach = V3::x() * *radius;
+        let mut diameter = self.dimension(centre - reach, centre + reach, 0);
+        diameter.text = format!("Ø {}", diameter.text);
+        (self.planar && full_turn(*sweep)).then_some(diameter)
+    }
+
+    /// The group's extent along each axis, between points of runs that lie as straight along it as
+    /// any do.
+    fn extents(&self) -> Vec<SketchDimension> {
+        let size = self.properties.size;
+        let points = self.extreme_points();
+        let axes = if self.planar { 0..2 } else { 0..AXES.len() };
+        let extent = |axis: usize| {
+            let along = points.iter().map(|point| point[axis]);
+            let low = along.clone().fold(f64::INFINITY, f64::min);
+            let high = along.fold(f64::NEG_INFINITY, f64::max);
+            let at = |level: f64| {
+                let level = move |point: &&V3| (point[axis] - level).abs() < 1e-6 * size;
+                points.iter().filter(level)
+            };
+            let pairs = at(low).flat_map(|from| at(high).map(move |to| (from, to)));
+            let (from, to) = pairs.min_by(|a, b| {
+                let off = |pair: &(&V3, &V3)| (pair.1 - pair.0).norm();
+                off(a).total_cmp(&(off(b) - 1e-9 * size))
+            })?;
+            (high - low > 1e-9 * size).then(|| self.dimension(*from, *to, axis))
+        };
+        axes.filter_map(extent).collect()
+    }
+
+    /// Ends of all runs, and where arcs reach furthest.
+    fn extreme_points(&self) -> Vec<V3> {
+        let of_run = |run: &Run| {
+            let mut at: Vec<f64> = vec![0.0, 1.0];
+            at.extend(run.told.extremes());
+            at.into_iter()
+                .map(|p| run.told.point(p))
+                .collect::<Vec<V3>>()
+        };
+        self.runs.iter().flat_map(of_run).collect()
+    }
+
+    /// The height of a load over the plane of the group, from its foot up.
+    fn height(&self, load: V3) -> SketchDimension {
+        let plane = self.properties.centroid.z;
+        let foot = V3::new(load.x, load.y, plane);
+        let mut height = self.dimension(foot, load, 2);
+        // Where the plane is that of the origin, the height is the coordinate.
+        if plane.abs() < 1e-9 * self.properties.size {
+            height.text = format!("z_P = {}", short(load.z, self.properties.size));
+        }
+        height
+    }
+
+    /// How far a load stands beyond the group, from the group's lower left corner.
+    fn overhangs(&self, load: V3) -> Vec<SketchDimension> {
+        let near = 1e-6 * self.properties.size;
+        let points = self.extreme_points();
+        let low = points
+            .iter()
+            .fold(V3::repeat(f64::INFINITY), |low, p| low.inf(p));
+        let high = points
+            .iter()
+            .fold(V3::repeat(f64::NEG_INFINITY), |high, p| high.sup(p));
+        let beyond =
+            |axis: &usize| load[*axis] > high[*axis] + near || load[*axis] < low[*axis] - near;
+        [0, 1]
+            .into_iter()
+            .filter(beyond)
+            .map(|axis| self.dimension(low, load, axis))
+            .collect()
+    }
+
+    /// The coordinates of the centroid, where they are not 0.
+    fn centroid_place(&self) -> Vec<SketchDimension> {
+        let centroid = self.properties.centroid;
+        let place = |axis: usize| SketchDimension {
+            text: format!(
+                "{}_c = {}",
+                AXES[axis],
+                short(centroid[axis], self.properties.size)
+            ),
+            optional: true,
+            ..self.dimension(V3::zeros(), centroid, axis)
+        };
+        let told = |axis: &usize| centroid[*axis].abs() > 1e-6 * self.properties.size;
+        [0, 1].into_iter().filter(told).map(place).collect()
+    }
+}
+
+/// The leg or throat of a run.
+fn size_words(size: &SizeSpec) -> String {
+    match size {
+        SizeSpec::Fillet { leg, .. } => format!("leg {}", leg.value.text()),
+        SizeSpec::Unequal {
+            on_base,
+            on_attached,
+        } => {
+            let (base, attached) = (on_base.value.text(), on_attached.value.text());
+            format!("legs {base} and {attached}")
+        }
+        SizeSpec::Throat { throat, .. } | SizeSpec::Partial { throat } => {
+            format!("throat {}", throat.value.text())
+        }
+        SizeSpec::Complete { .. } => "full penetration".to_owned(),
+    }
+}
+
+/// Whether a sweep is a full turn.
+fn full_turn(sweep: f64) -> bool {
+    sweep.abs() > 2.0 * std::f64::consts::PI - 1e-9
 }

@@ -5,10 +5,17 @@ use std::f64::consts::{PI, TAU};
 use std::path::PathBuf;
 
 use nalgebra::Vector3;
+use std::sync::{Arc, OnceLock};
+
+use seamnote::criteria::built_in;
 use seamnote::figure::{
-    Axis, CheckPoint, Component, Dimension, Drawing, Governing, Item, Load, Rect, RunLine, Scene,
-    SerifFaces, draw, standalone_source, typst_source,
+    Axis, CheckPoint, Component, Dimension, Drawing, Fill, Governing, Ink, Item, Label, Load,
+    MarkKind, Rect, RunLine, Scene, SerifFaces, draw, draw_picture, standalone_source,
+    typst_source,
 };
+use seamnote::joint::read_joint;
+use seamnote::note::{Calculation, Picture, write_note};
+use seamnote::source::{Faults, SourceFile};
 use seamnote::weld::{Segment, V3};
 use typst::diag::{FileError, FileResult};
 use typst::foundations::{Bytes, Datetime, Duration};
@@ -89,8 +96,10 @@ fn v(x: f64, y: f64, z: f64) -> V3 {
 fn straight(label: &str, throat: f64, a: V3, b: V3) -> RunLine {
     RunLine {
         path: Segment::Straight { a, b },
+        counted: None,
         throat,
         label: label.into(),
+        number: String::new(),
     }
 }
 
@@ -129,6 +138,7 @@ fn dimension(from: V3, to: V3, axis: Axis, text: &str) -> Dimension {
         to,
         axis,
         text: text.into(),
+        optional: false,
     }
 }
 
@@ -209,8 +219,10 @@ fn tube() -> Scene {
     Scene {
         runs: vec![RunLine {
             path: circle,
+            counted: None,
             throat: 3.5,
             label: "tube 114.3, leg 5 all round".into(),
+            number: "1".into(),
         }],
         points: points(&at),
         origin: Some(V3::zeros()),
@@ -360,12 +372,12 @@ fn stitched() -> Scene {
         for bead in 0..12 {
             let (x, y) = (f64::from(bead) * 50.0, f64::from(row) * 60.0);
             let (a, b) = (v(x, y, 0.0), v(x + 30.0, y, 0.0));
-            scene.runs.push(straight(
-                &format!("row {} bead {}, leg 4", row + 1, bead + 1),
-                2.828,
-                a,
-                b,
-            ));
+            let name = format!("row {} bead {}, leg 4", row + 1, bead + 1);
+            let number = (scene.runs.len() + 1).to_string();
+            scene.runs.push(RunLine {
+                number,
+                ..straight(&name, 2.828, a, b)
+            });
             for at in [a, b] {
                 let label = (scene.points.len() + 1).to_string();
                 scene.points.push(CheckPoint { at, label });
@@ -403,8 +415,10 @@ fn curved() -> Scene {
         runs: vec![
             RunLine {
                 path: arc,
+                counted: None,
                 throat: 5.0,
                 label: "nose, throat 5".into(),
+                number: "1".into(),
             },
             straight("raked edge, throat 8", 8.0, at[1], at[2]),
         ],
@@ -457,12 +471,11 @@ fn random(seed: u64) -> Scene {
     let mut runs = Vec::new();
     for i in 0..2 + seed % 6 {
         let (a, b) = (place(size), place(size));
-        runs.push(straight(
-            &format!("run {}, leg {}", i + 1, 4 + i),
-            size * 0.03,
-            a,
-            b,
-        ));
+        let label = format!("run {}, leg {}", i + 1, 4 + i);
+        runs.push(RunLine {
+            number: (i + 1).to_string(),
+            ..straight(&label, size * 0.03, a, b)
+        });
         at.extend([a, b]);
     }
     let p = place(size * if seed.is_multiple_of(4) { 12.0 } else { 1.4 });
@@ -495,8 +508,11 @@ fn random(seed: u64) -> Scene {
     }
 }
 
-fn scenes() -> BTreeMap<String, Scene> {
-    let mut all: BTreeMap<String, Scene> = [
+/// Random scenes that are drawn to be measured.
+const RANDOM: u64 = 200;
+
+fn named_scenes() -> BTreeMap<String, Scene> {
+    [
         ("channel", channel()),
         ("tube", tube()),
         ("lug", lug()),
@@ -507,16 +523,174 @@ fn scenes() -> BTreeMap<String, Scene> {
     ]
     .into_iter()
     .map(|(name, scene)| (name.to_owned(), scene))
-    .collect();
-    all.extend((0..12).map(|seed| (format!("random-{seed:02}"), random(seed))));
-    all
+    .collect()
 }
 
-fn drawings() -> Vec<(String, Drawing)> {
-    let fonts = SerifFaces::embedded().unwrap();
-    scenes()
-        .into_iter()
-        .map(|(name, scene)| (name, draw(&scene, &fonts)))
+/// Drawings of the scenes of this file and of the random ones, made once.
+fn drawings() -> &'static [(String, Drawing)] {
+    static DRAWN: OnceLock<Vec<(String, Drawing)>> = OnceLock::new();
+    DRAWN.get_or_init(|| {
+        let fonts = SerifFaces::embedded().unwrap();
+        let random = (0..RANDOM).map(|seed| (format!("random-{seed:03}"), random(seed)));
+        named_scenes()
+            .into_iter()
+            .chain(random)
+            .map(|(name, scene)| (name, draw(&scene, &fonts)))
+            .collect()
+    })
+}
+
+/// A part of a random joint file: a run in the plane.
+fn run_text(dice: &mut Dice, index: usize) -> String {
+    let x = dice.roll(0.0, 200.0).round();
+    let y = (index as f64) * 40.0 + dice.roll(0.0, 30.0).round();
+    let (long, deep) = (
+        dice.roll(40.0, 260.0).round(),
+        dice.roll(12.0, 90.0).round(),
+    );
+    let path = match dice.roll(0.0, 7.0) {
+        kind if kind < 3.0 => format!("straight: [[{x}, {y}], [{}, {y}]]", x + long),
+        kind if kind < 4.0 => format!(
+            "polyline: [[{x}, {y}], [{}, {y}], [{}, {}]]",
+            x + long,
+            x + long,
+            y + deep
+        ),
+        kind if kind < 5.0 => format!(
+            "arc: {{centre: [{x}, {}], radius: {deep}, from: 0 deg, sweep: 150 deg}}",
+            y + 300.0
+        ),
+        kind if kind < 6.0 => format!("circle: {{centre: [{}, {y}], radius: {deep}}}", x - 500.0),
+        _ => format!(
+            "straight: [[{x}, {y}], [{}, {y}]], stitch: {{bead: 20, pitch: {}}}",
+            x + long,
+            20.0 + deep
+        ),
+    };
+    let size = match dice.roll(0.0, 8.0) {
+        kind if kind < 3.0 => format!("fillet: {}", dice.roll(3.0, 12.0).round()),
+        kind if kind < 4.0 => "fillet: [5, 9]".to_owned(),
+        kind if kind < 5.0 => "fillet: 6, gap: 2".to_owned(),
+        kind if kind < 6.0 => "fillet: 7, between: 70 deg".to_owned(),
+        kind if kind < 7.0 => "partial: 5".to_owned(),
+        _ => "complete: tee".to_owned(),
+    };
+    let name = [
+        "edge",
+        "a rather long name of a run",
+        "rib",
+        "lower flange, near side",
+    ];
+    let name = name[index % name.len()];
+    format!("    - {{name: \"{name} {index}\", {path}, {size}}}\n")
+}
+
+/// A random joint file: one to six runs in the plane or in space, two cases, two checks.
+fn random_joint(seed: u64) -> String {
+    let mut dice = Dice(seed * 104_729 + 7);
+    let count = 1 + usize::try_from(seed % 6).unwrap();
+    let in_space = seed % 4 == 3;
+    let mut runs = String::new();
+    for index in 0..count {
+        if in_space {
+            let (y, z) = (
+                dice.roll(0.0, 120.0).round(),
+                dice.roll(-90.0, 90.0).round(),
+            );
+            let (from, to) = (dice.roll(0.0, 50.0).round(), dice.roll(80.0, 200.0).round());
+            let normal = if index % 2 == 0 {
+                "[0, 0, 1]"
+            } else {
+                "[0, 1, 0]"
+            };
+            runs.push_str(&format!(
+                "    - {{name: seam {index}, straight: [[{from}, {y}, {z}], [{to}, {y}, {z}]], \
+                 fillet: 5, normal: {normal}}}\n"
+            ));
+        } else {
+            runs.push_str(&run_text(&mut dice, index));
+        }
+    }
+    let reach = [200.0, 3000.0][usize::from(seed.is_multiple_of(5))];
+    let height = [0.0, 500.0, 40.0][usize::try_from(seed % 3).unwrap()];
+    let at = format!(
+        "[{}, {}, {height}]",
+        dice.roll(-100.0, reach).round(),
+        dice.roll(0.0, 200.0).round()
+    );
+    let ends = ["full", "less leg", "less throat"][usize::try_from(seed % 3).unwrap()];
+    format!(
+        "note: T-1\ntitle: Random\nrevision: A\ndate: 2026-06-01\ndrawing: D-1\nitem: test\n\
+         units: {{force: N, length: mm}}\nframe: {{origin: here, x: forward, y: up, z: outboard}}\n\
+         parts:\n  plate: {{material: S355, thickness: 10, f_y: 355 MPa, f_u: 470 MPa, F_su: 300 MPa, source: record}}\n  \
+         base: {{material: S355, thickness: 12, f_y: 355 MPa, f_u: 470 MPa, F_su: 300 MPa, source: record}}\n\
+         filler: {{name: wire, f_u: 480 MPa, source: record}}\nweld:\n  joins: [plate, base]\n  ends: {ends}\n  runs:\n{runs}\
+         loads:\n  at: {at}\n  level: service\n  cases:\n    \
+         - {{case: L1, force: [{} N, -4200 N, {} N], moment: [0, 0, {} N m]}}\n    \
+         - {{case: L2, force: [0, 800 N, 900 N]}}\n\
+         checks:\n  - {{clause: throat allowable, F_allow: 140 MPa, source: record}}\n",
+        dice.roll(-2000.0, 2000.0).round(),
+        dice.roll(-2000.0, 2000.0).round(),
+        dice.roll(-300.0, 300.0).round()
+    )
+}
+
+/// The pictures of a joint file.
+fn pictures(text: &str) -> Result<Vec<Picture>, Faults> {
+    let file = Arc::new(SourceFile {
+        name: "random.yaml".to_owned(),
+        text: text.to_owned(),
+    });
+    let told = read_joint(&file)?;
+    Ok(write_note(&Calculation::of(&told, built_in())?)?.pictures)
+}
+
+/// All drawings of the demo joints and of 200 random joints, made once.
+fn pictured() -> &'static [(String, Drawing)] {
+    static DRAWN: OnceLock<Vec<(String, Drawing)>> = OnceLock::new();
+    DRAWN.get_or_init(|| {
+        let fonts = SerifFaces::embedded().unwrap();
+        let mut all = Vec::new();
+        let mut add = |name: &str, pictures: &[Picture]| {
+            for picture in pictures {
+                let drawing = draw_picture(picture, &fonts);
+                all.push((format!("{name}-{}", picture.name()), drawing));
+            }
+        };
+        for (joint, produced) in crate::notes::demo() {
+            add(&joint.stem, &produced.note.pictures);
+        }
+        let (mut seed, mut joints) = (0, 0);
+        while joints < RANDOM {
+            // A group that cannot carry its load has no note.
+            match pictures(&random_joint(seed)) {
+                Ok(pictures) => {
+                    add(&format!("joint-{seed:03}"), &pictures);
+                    joints += 1;
+                }
+                Err(faults) => {
+                    let says = faults.render(false);
+                    assert!(seed < 2 * joints + 20, "{joints} of {seed} joints: {says}");
+                }
+            }
+            seed += 1;
+        }
+        all
+    })
+}
+
+/// Both kinds of drawings.
+fn everything() -> impl Iterator<Item = &'static (String, Drawing)> {
+    drawings().iter().chain(pictured())
+}
+
+fn labels_of(drawing: &Drawing) -> Vec<&Label> {
+    let items = drawing.items.iter();
+    items
+        .filter_map(|item| match item {
+            Item::Label(label) => Some(label),
+            Item::Path(_) | Item::Circle { .. } => None,
+        })
         .collect()
 }
 
@@ -529,36 +703,158 @@ fn firm_strokes(drawing: &Drawing) -> Vec<Rect> {
         .collect()
 }
 
+/// Fails with all that was found.
+#[track_caller]
+fn none(found: &[String]) {
+    let some: Vec<&String> = found.iter().take(20).collect();
+    assert!(found.is_empty(), "{} found: {some:#?}", found.len());
+}
+
+/// Writes the drawings to be looked at where `SEAMNOTE_FIGURES` names a folder.
 #[test]
-fn no_label_stands_on_another_or_on_a_line() {
-    for (name, drawing) in drawings() {
-        let labels: Vec<_> = drawing
-            .items
-            .iter()
-            .filter_map(|item| match item {
-                Item::Label(label) => Some(label),
-                Item::Path(_) | Item::Circle { .. } => None,
-            })
-            .collect();
-        assert!(!labels.is_empty(), "{name}: no label at all");
-        for (i, a) in labels.iter().enumerate() {
-            for b in &labels[i + 1..] {
-                assert!(
-                    !a.rect().overlaps(&b.rect()),
-                    "{name}: `{}` on `{}`",
-                    a.text(),
-                    b.text()
-                );
+fn drawings_are_kept_to_be_looked_at() {
+    let Some(folder) = std::env::var_os("SEAMNOTE_FIGURES").map(PathBuf::from) else {
+        return;
+    };
+    for (name, drawing) in everything().filter(|(name, _)| !name.ends_with("6")) {
+        let document = Sheet::new(standalone_source(drawing)).compile();
+        let svg = typst_svg::svg(&document.pages()[0], &typst_svg::SvgOptions::default());
+        std::fs::write(folder.join(format!("{name}.svg")), svg).unwrap();
+        comemo::evict(0);
+    }
+}
+
+/// A number stands nearest to its own point, a value to its own arrow, a name to its own run; or a
+/// leader joins them.
+#[test]
+fn a_label_stands_nearest_to_what_it_names() {
+    let mut found = Vec::new();
+    for (name, drawing) in everything() {
+        for tie in drawing.ties.iter().filter(|tie| !tie.led) {
+            let own = &drawing.marks[tie.mark];
+            let near = own.distance(&tie.rect);
+            for other in &drawing.marks {
+                let alike = other.kind == own.kind && other.rects != own.rects;
+                if alike && other.distance(&tie.rect) <= near {
+                    found.push(format!("{name}: `{}` stands nearer to another", tie.text));
+                }
             }
-            for stroke in firm_strokes(&drawing) {
-                assert!(
-                    !a.rect().overlaps(&stroke),
-                    "{name}: `{}` on a line",
-                    a.text()
-                );
+            if near > 4.0 {
+                found.push(format!("{name}: `{}` stands {near} mm off", tie.text));
             }
         }
     }
+    none(&found);
+}
+
+/// Nothing is left out without a word: each label asked for stands there, or a remark counts it.
+#[test]
+fn no_label_is_dropped_without_a_remark() {
+    let mut found = Vec::new();
+    for (name, drawing) in everything() {
+        let told = drawing.remarks.iter().any(|says| says.contains("no room"));
+        if !drawing.dropped.is_empty() && !told {
+            found.push(format!("{name}: {:?}", drawing.dropped));
+        }
+        if name.ends_with("joint") || name.starts_with("random") {
+            assert!(drawing.dropped.is_empty(), "{name}: {:?}", drawing.dropped);
+        }
+    }
+    none(&found);
+}
+
+/// Each number of a point and each run of a scene is on its drawing, by name or by number.
+#[test]
+fn every_point_and_every_run_is_labelled() {
+    let mut found = Vec::new();
+    let fonts = SerifFaces::embedded().unwrap();
+    let random = (0..RANDOM).map(|seed| (format!("random-{seed:03}"), random(seed)));
+    for (name, scene) in named_scenes().into_iter().chain(random.take(40)) {
+        let drawing = draw(&scene, &fonts);
+        let texts: Vec<String> = labels_of(&drawing).iter().map(|l| l.text()).collect();
+        let numbers = texts.iter().flat_map(|text| text.split(", "));
+        let numbers: Vec<&str> = numbers
+            .map(|text| text.split("  ").next().unwrap())
+            .collect();
+        for point in &scene.points {
+            if !numbers.contains(&point.label.as_str()) {
+                found.push(format!("{name}: point {} has no number", point.label));
+            }
+        }
+        let ringed = drawing
+            .ties
+            .iter()
+            .filter(|tie| drawing.marks[tie.mark].kind == MarkKind::Run);
+        if ringed.count() != scene.runs.len() {
+            found.push(format!("{name}: not every run is labelled"));
+        }
+    }
+    none(&found);
+}
+
+/// What is white and without outline, such as the gap of a broken line, hides no run and no point.
+#[test]
+fn nothing_white_cuts_a_run_or_covers_a_point() {
+    let mut found = Vec::new();
+    for (name, drawing) in drawings() {
+        for item in &drawing.items {
+            let white = matches!(item, Item::Path(path) if path.fill == Fill::White && path.stroke.is_none());
+            if !white {
+                continue;
+            }
+            let mut bounds = seamnote::figure::Bounds::empty();
+            item.bound(&mut bounds);
+            let half = bounds.size() / 2.0;
+            let area = Rect::upright(bounds.centre(), half.x, half.y);
+            for mark in &drawing.marks {
+                let hides = mark.kind != MarkKind::Arrow && mark.distance(&area) <= 0.0;
+                if hides {
+                    found.push(format!("{name}: white over a {:?}", mark.kind));
+                }
+            }
+        }
+    }
+    none(&found);
+}
+
+#[test]
+fn no_label_stands_on_another_or_on_a_line() {
+    let mut found = Vec::new();
+    for (name, drawing) in everything() {
+        let labels = labels_of(drawing);
+        assert!(!labels.is_empty(), "{name}: no label at all");
+        let strokes = firm_strokes(drawing);
+        for (i, a) in labels.iter().enumerate() {
+            for b in &labels[i + 1..] {
+                if a.rect().overlaps(&b.rect()) {
+                    found.push(format!("{name}: `{}` on `{}`", a.text(), b.text()));
+                }
+            }
+            if strokes.iter().any(|stroke| a.rect().overlaps(stroke)) {
+                found.push(format!("{name}: `{}` on a line", a.text()));
+            }
+        }
+    }
+    none(&found);
+}
+
+#[test]
+fn no_label_leaves_its_frame() {
+    let mut found = Vec::new();
+    for (name, drawing) in everything() {
+        for label in labels_of(drawing) {
+            let inside = |p: &seamnote::figure::P2| {
+                p.x >= -1e-6
+                    && p.y >= -1e-6
+                    && p.x <= drawing.width_mm + 1e-6
+                    && p.y <= drawing.height_mm + 1e-6
+            };
+            if !label.rect().corners().iter().all(inside) {
+                found.push(format!("{name}: `{}` leaves the frame", label.text()));
+            }
+        }
+    }
+    none(&found);
 }
 
 /// Width of all text in a frame (mm), as typst sets it.
@@ -576,8 +872,8 @@ fn text_width(frame: &typst::layout::Frame) -> f64 {
 /// The boxes rest on the real faces: widths differ from typst's by kerning only.
 #[test]
 fn labels_are_as_wide_as_typst_sets_them() {
-    for (name, drawing) in drawings() {
-        let document = Sheet::new(standalone_source(&drawing)).compile();
+    for (name, drawing) in &drawings()[..20] {
+        let document = Sheet::new(standalone_source(drawing)).compile();
         let set = text_width(&document.pages()[0].frame);
         let computed: f64 = drawing
             .items
@@ -595,32 +891,26 @@ fn labels_are_as_wide_as_typst_sets_them() {
     }
 }
 
-/// What the reader cannot do without is always there: dimensions, loads, letters, what governs.
-#[test]
-fn only_names_of_runs_and_numbers_of_points_are_dropped() {
-    for (name, drawing) in drawings() {
-        for text in &drawing.dropped {
-            let minor =
-                text.contains("leg") || text.contains("throat") || text.parse::<u32>().is_ok();
-            assert!(minor, "{name}: `{text}` is dropped");
-        }
-    }
-}
-
 #[test]
 fn every_drawing_fits_its_room() {
-    for (name, drawing) in drawings() {
-        assert!(
-            drawing.width_mm <= 128.0,
-            "{name}: {} mm wide",
-            drawing.width_mm
-        );
-        assert!(
-            drawing.height_mm <= 85.0,
-            "{name}: {} mm high",
-            drawing.height_mm
-        );
+    let mut found = Vec::new();
+    for (name, drawing) in everything() {
+        let high = if name.ends_with("sections") {
+            170.0
+        } else {
+            85.0
+        };
+        let wide = if name.ends_with("joint") || name.ends_with("stresses") {
+            128.0
+        } else {
+            132.0
+        };
+        if drawing.width_mm > wide || drawing.height_mm > high {
+            let (width, height) = (drawing.width_mm, drawing.height_mm);
+            found.push(format!("{name}: {width:.1} by {height:.1} mm"));
+        }
     }
+    none(&found);
 }
 
 /// Source: the scene's own numbers: 120 mm at 1:2 is 60 mm between the upper and the lower run.
@@ -634,7 +924,7 @@ fn the_channel_is_drawn_to_its_scale() {
         .filter_map(|item| match item {
             Item::Path(path) => path
                 .stroke
-                .filter(|s| s.width > 1.5)
+                .filter(|s| s.width > 1.5 && s.ink == Ink::Black)
                 .map(|s| (path.start, s.width)),
             Item::Circle { .. } | Item::Label(_) => None,
         })
@@ -649,6 +939,35 @@ fn the_channel_is_drawn_to_its_scale() {
         "the back edge is as thick as its throat"
     );
     assert!(drawing.dropped.is_empty(), "dropped: {:?}", drawing.dropped);
+}
+
+/// Source: the rule that a group takes at least 45 % of the room's width or height.
+#[test]
+fn a_far_load_leaves_the_group_its_part_of_the_room() {
+    let drawing = draw(&far(), &SerifFaces::embedded().unwrap());
+    let mut bounds = seamnote::figure::Bounds::empty();
+    let runs = drawing.marks.iter().filter(|m| m.kind == MarkKind::Run);
+    for corner in runs.flat_map(|m| &m.rects).flat_map(Rect::corners) {
+        bounds.add(corner, 0.0);
+    }
+    let size = bounds.size();
+    let part = (size.x / 128.0).max(size.y / 85.0);
+    assert!(part >= 0.45, "the group takes {part} of the room");
+}
+
+/// A moment about the line of sight has two heads, as one across it has.
+#[test]
+fn a_turning_arrow_has_two_heads() {
+    let mut scene = channel();
+    scene.loads[0].force.clear();
+    scene.loads[0].moment = vec![part(Axis::Z, 5.0, "5 N m")];
+    let drawing = draw(&scene, &SerifFaces::embedded().unwrap());
+    let wide = 1.1 * seamnote::figure::PT;
+    let head = |item: &&Item| {
+        matches!(item, Item::Path(path) if path.pieces.len() == 2
+            && path.stroke.is_some_and(|s| (s.width - wide).abs() < 1e-9))
+    };
+    assert_eq!(drawing.items.iter().filter(head).count(), 2, "open heads");
 }
 
 #[test]
@@ -682,31 +1001,21 @@ fn a_far_load_keeps_the_group_large_and_says_so() {
 }
 
 #[test]
-fn crowded_stitches_lose_names_of_beads_first_and_name_them() {
+fn crowded_stitches_have_numbers_in_rings_for_names() {
     let drawing = draw(&stitched(), &SerifFaces::embedded().unwrap());
-    assert!(
-        !drawing.dropped.is_empty(),
-        "24 long names cannot all stand there"
-    );
-    let names = drawing
-        .dropped
+    let of_runs = drawing
+        .ties
         .iter()
-        .filter(|d| d.starts_with("row"))
-        .count();
-    let numbers = drawing
-        .dropped
-        .iter()
-        .filter(|d| d.parse::<u32>().is_ok())
-        .count();
-    assert_eq!(
-        names + numbers,
-        drawing.dropped.len(),
-        "dropped: {:?}",
-        drawing.dropped
-    );
+        .filter(|tie| drawing.marks[tie.mark].kind == MarkKind::Run);
+    let of_runs: Vec<&str> = of_runs.map(|tie| tie.text.as_str()).collect();
+    assert_eq!(of_runs.len(), 24, "every bead is labelled");
+    assert!(of_runs.contains(&"17"), "{of_runs:?}");
     assert!(
-        names > 2 * numbers,
-        "{names} names and {numbers} numbers dropped"
+        drawing
+            .remarks
+            .contains(&"circled numbers: the table of runs".to_owned()),
+        "{:?}",
+        drawing.remarks
     );
 }
 
@@ -789,13 +1098,12 @@ fn a_very_long_name_is_cut() {
     assert!(typst_source(&drawing).contains('…'), "cut with an ellipsis");
 }
 
-/// Every scene compiles without a warning to one page of the drawing's size; text becomes outlines
-/// in the SVG. Where `SEAMNOTE_FIGURES` names a folder, the pages are kept there to be looked at.
+/// Scenes compile without a warning to one page of the drawing's size; text becomes outlines in the
+/// SVG.
 #[test]
 fn every_drawing_compiles() {
-    let keep = std::env::var_os("SEAMNOTE_FIGURES").map(PathBuf::from);
-    for (name, drawing) in drawings() {
-        let document = Sheet::new(standalone_source(&drawing)).compile();
+    for (name, drawing) in &drawings()[..20] {
+        let document = Sheet::new(standalone_source(drawing)).compile();
         let page = &document.pages()[0];
         let width = page.frame.width().to_mm();
         assert!(
@@ -804,16 +1112,6 @@ fn every_drawing_compiles() {
         );
         let svg = typst_svg::svg(page, &typst_svg::SvgOptions::default());
         assert!(!svg.contains("<text"), "{name}: text is left as text");
-        if let Some(folder) = &keep {
-            let pdf = typst_pdf::pdf(&document, &typst_pdf::PdfOptions::default()).unwrap();
-            std::fs::write(folder.join(format!("{name}.pdf")), pdf).unwrap();
-            std::fs::write(folder.join(format!("{name}.svg")), svg).unwrap();
-            let facts = format!(
-                "{name}: scale {}, {}\ndropped {:?}\n{:?}\n",
-                drawing.scale, drawing.view, drawing.dropped, drawing.remarks
-            );
-            std::fs::write(folder.join(format!("{name}.txt")), facts).unwrap();
-        }
         comemo::evict(0);
     }
 }

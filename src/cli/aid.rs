@@ -3,7 +3,7 @@
 
 use super::arguments::{Arguments, SchemaOf, UNITS};
 use super::work::{Said, complaint};
-use super::{exit, explain};
+use super::{everything, exit, explain};
 use crate::criteria::Library;
 use crate::joint::keys::PATTERN;
 use crate::project::{
@@ -62,6 +62,9 @@ pub(super) fn explained(thing: &[String], joints: &Path, pdf: Option<&Path>, col
             Ok(text) => said(text),
             Err(fault) => refused(&fault, colour),
         };
+    }
+    if thing.trim().is_empty() {
+        return said(everything(&library));
     }
     match explain(&thing, &library) {
         Ok(text) => said(text),

@@ -100,8 +100,8 @@ Examples:
   seamnote explain weld.runs.toe            a key of joint files
   seamnote explain sheet.needs.from         a key of clause sheets")]
     Explain {
-        /// A fault code, the name of a clause sheet, or a key.
-        #[arg(value_name = "THING", required = true)]
+        /// A fault code, the name of a clause sheet, a key, or a value of checks; all names if none is given.
+        #[arg(value_name = "THING")]
         thing: Vec<String>,
         /// Folder of joints, whose sheets can be named, too.
         #[arg(long, value_name = "FOLDER", default_value = "joints")]

@@ -9,7 +9,7 @@ mod show;
 mod work;
 
 pub use arguments::{Arguments, Command, SchemaOf};
-pub use explain::{FaultWords, explain, fault_words};
+pub use explain::{FaultWords, everything, explain, fault_words};
 pub use work::{Progress, Said, run};
 
 /// Exit codes.

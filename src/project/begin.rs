@@ -200,10 +200,10 @@ revision: A
 date: 2026-01-05
 # The note is printed in these units; a value may carry its own.
 units: {{force: {force_unit}, length: {length_unit}}}
-
+{paper}
 # The joint frame in words: right-handed, z out of the base toward the attached part.
 frame:
-  origin: where the pattern's own origin stands
+  origin: {origin}
   x: across the bracket
   y: along the bracket
   z: out of the base, toward the bracket
@@ -241,6 +241,16 @@ checks:
 assumptions:
   - {{says: The loads include their factors., to be verified: true}}
 ",
+        origin = if matches!(pattern.as_str(), "circle" | "cruciform") {
+            "centre of the pattern"
+        } else {
+            "lower left corner of the pattern"
+        },
+        paper = if units.is_inch() {
+            "paper: US Letter\n"
+        } else {
+            ""
+        },
         force_unit = units.force(),
         length_unit = units.length(),
         width = sizes.width,

@@ -114,6 +114,18 @@ impl Press {
         result
     }
 
+    /// Sets the source and exports one of its pages as SVG on white, text as outlines.
+    ///
+    /// # Errors
+    ///
+    /// As [`Press::pdf`]; [`RenderError::Internal`] if there is no such page.
+    pub fn page_svg(&self, source: &str, page: usize) -> Result<String, RenderError> {
+        let document = self.pages(source)?;
+        let lost = || RenderError::Internal(format!("no page {}", page + 1));
+        let page = document.pages().get(page).ok_or_else(lost)?;
+        Ok(typst_svg::svg(page, &typst_svg::SvgOptions::default()))
+    }
+
     /// Widths of lines of typst maths as the note's steps set them (pt).
     ///
     /// # Errors

@@ -62,6 +62,44 @@ fn a_template_of_the_project_sets_the_note() {
     );
 }
 
+/// The override that README.md shows, as it shows it.
+#[test]
+fn the_override_of_the_readme_names_the_works() {
+    let readme = file("README.md").text;
+    let (_, example) = readme.split_once("An override: with ").unwrap();
+    let from = example
+        .split("```typst\n")
+        .nth(1)
+        .unwrap()
+        .split("\n```")
+        .next()
+        .unwrap();
+    let to = example
+        .split("reads `")
+        .nth(1)
+        .unwrap()
+        .split('`')
+        .next()
+        .unwrap();
+    let project = with_template("page.typ", |text| {
+        assert!(text.contains(from), "page.typ holds {from}");
+        text.replace(from, to)
+    });
+    let joints = find_joints(&[project.path("joints")]).unwrap();
+    let surroundings = read_surroundings(&project.path("joints")).unwrap();
+    let produced = Workshop::new()
+        .produce(&joints[0], &surroundings, Kinds::ALL)
+        .unwrap_or_else(|fault| panic!("{fault}"));
+    assert!(to.contains("Example Works"), "{to}");
+    assert!(
+        produced
+            .outputs
+            .iter()
+            .any(|output| output.name == "note.pdf"),
+        "it is set"
+    );
+}
+
 #[test]
 fn a_value_that_is_not_there_is_told_at_its_line() {
     let project = with_template("note.md", |text| format!("{text}\n  << head.colour >>\n"));

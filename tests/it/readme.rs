@@ -4,7 +4,7 @@ use crate::tidy::{file, files};
 use seamnote::criteria::{Library, built_in, read_sheet};
 use seamnote::joint::read_joint;
 use seamnote::note::{Calculation, write_note};
-use seamnote::render::render_markdown;
+use seamnote::render::{Press, render_markdown};
 use seamnote::source::SourceFile;
 use std::collections::BTreeSet;
 use std::sync::Arc;
@@ -253,4 +253,29 @@ fn its_commands_are_those_that_the_checks_run() {
     for option in ["--must-hold", "--threads", "--out", "--only"] {
         assert!(text.contains(option), "README.md does not tell `{option}`");
     }
+}
+
+/// The first page of a demo note, as README.md shows it; rewritten with the snapshots.
+#[test]
+fn its_picture_is_the_first_page_of_the_demo() {
+    const PICTURE: &str = "out/first-page.svg";
+    let (joint, produced) = crate::notes::demo()
+        .iter()
+        .find(|(joint, _)| joint.stem == "mast-foot")
+        .expect("the demo joint of the picture");
+    let press = Press::new();
+    let page = press
+        .page_svg(&crate::notes::source_of(produced).text, 0)
+        .unwrap();
+    let path = crate::tidy::root().join(PICTURE);
+    if std::env::var_os("INSTA_UPDATE").is_some_and(|mode| mode == "always") {
+        std::fs::write(&path, &page).unwrap();
+    }
+    let committed = std::fs::read_to_string(&path).unwrap_or_default();
+    assert!(committed == page, "{PICTURE} is not that of {}", joint.stem);
+    let readme = crate::tidy::file("README.md").text;
+    assert!(
+        readme.contains(&format!("]({PICTURE})")),
+        "README.md shows {PICTURE}"
+    );
 }

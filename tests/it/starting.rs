@@ -173,6 +173,33 @@ fn each_sheet_is_explained_whole() {
     shown("explain_sheet_of_runs", "AISC 360 J2.2b");
 }
 
+#[test]
+fn all_names_are_listed_and_values_of_checks_explained() {
+    let said = say(&["explain"]);
+    for name in [
+        "EN 1993-1-8 4.5.3.2",
+        "which-size",
+        "weld.runs.toe",
+        "sheet.needs.from",
+    ] {
+        assert!(
+            said.out.contains(&format!("\n  {name}\n")),
+            "{name}:\n{}",
+            said.out
+        );
+    }
+    let text = explain("gamma_M2", built_in()).unwrap();
+    assert!(
+        text.starts_with("value gamma_M2 of a check\n  EN 1993-1-8 4.5.3.2: "),
+        "{text}"
+    );
+    let text = explain("4.5.3", built_in()).unwrap_err();
+    assert!(
+        text.contains("`EN 1993-1-8 4.5.3.2` or `EN 1993-1-8 4.5.3.3`"),
+        "{text}"
+    );
+}
+
 /// A clause sheet as a page: every step typeset from the tree that notes compute with.
 #[test]
 fn each_sheet_is_set_as_a_page_with_its_steps() {

@@ -41,9 +41,29 @@ pub fn fault_words() -> &'static BTreeMap<String, FaultWords> {
 const ALIKE: f64 = 0.78;
 
 /// Most names offered for one that stands for nothing.
-const MOST_OFFERED: usize = 3;
+const MOST_OFFERED: usize = 4;
 
-/// The explanation of a fault code, a clause sheet, or a key; of all three where a name is all.
+/// Everything that can be explained, by its names.
+#[must_use]
+pub fn everything(library: &Library) -> String {
+    let sheets: Vec<&str> = library
+        .sheets()
+        .map(|sheet| sheet.name.value.as_str())
+        .collect();
+    let codes: Vec<&str> = fault_words().keys().map(String::as_str).collect();
+    let mut keys: Vec<String> = key::names().filter(|name| name.contains('.')).collect();
+    keys.sort_unstable();
+    keys.dedup();
+    format!(
+        "clause sheets\n  {}\nfault codes\n  {}\nkeys\n  {}\n",
+        sheets.join("\n  "),
+        codes.join("\n  "),
+        keys.join("\n  ")
+    )
+}
+
+/// The explanation of a fault code, a clause sheet, a key, or a value that sheets take; of all where
+/// a name is all of them.
 ///
 /// # Errors
 ///
@@ -62,6 +82,7 @@ pub fn explain(thing: &str, library: &Library) -> Result<String, String> {
         found.push(sheet::says(sheet));
     }
     found.extend(key::says(thing));
+    found.extend(sheet::value_says(thing, library));
     if found.is_empty() {
         Err(unknown(thing, library))
     } else {
@@ -73,9 +94,18 @@ fn unknown(thing: &str, library: &Library) -> String {
     let low = thing.to_lowercase();
     let names = fault_words().keys().cloned();
     let names = names.chain(library.sheets().map(|sheet| sheet.name.value.clone()));
+    // A part of a name says more than a likeness.
+    let likeness = |name: &str| {
+        let name = name.to_lowercase();
+        if name.contains(&low) {
+            1.0
+        } else {
+            strsim::jaro_winkler(&low, &name)
+        }
+    };
     let mut alike: Vec<(f64, String)> = names
         .chain(key::names())
-        .map(|name| (strsim::jaro_winkler(&low, &name.to_lowercase()), name))
+        .map(|name| (likeness(&name), name))
         .filter(|(likeness, _)| *likeness > ALIKE)
         .collect();
     alike.sort_by(|a, b| b.0.total_cmp(&a.0).then_with(|| a.1.cmp(&b.1)));
@@ -89,5 +119,5 @@ fn unknown(thing: &str, library: &Library) -> String {
     if !offered.is_empty() {
         text += &format!("  = help: did you mean {}?\n", offered.join(" or "));
     }
-    text + "  = help: name a fault code, a clause sheet, or a key such as `weld.runs.toe`\n"
+    text + "  = help: name a fault code, a clause sheet, or a key such as `weld.runs.toe`; `seamnote explain` alone lists them\n"
 }

@@ -1,6 +1,6 @@
 //! Explains a clause sheet: what it takes, what it needs, its steps in plain algebra, its limits.
 
-use crate::criteria::{Capacity, CodeTable, Need, Sheet, Side};
+use crate::criteria::{Capacity, CodeTable, From, Library, Need, Sheet, Side};
 
 /// The whole sheet as text.
 pub(super) fn says(sheet: &Sheet) -> String {
@@ -101,4 +101,26 @@ fn table(table: &CodeTable) -> String {
         out += &format!("\n      {head}{}", rows.join("; "));
     }
     out
+}
+
+/// What a value is that a check gives to sheets, by sheet.
+pub(super) fn value_says(name: &str, library: &Library) -> Option<String> {
+    let given = |need: &&Need| {
+        let by_check = |from: &From| matches!(from, From::Check(given) if given == name);
+        need.from.iter().any(by_check)
+    };
+    let lines: Vec<String> = library
+        .sheets()
+        .filter_map(|sheet| {
+            let told = sheet.needs.iter().find(given)?;
+            let limits = told.limits();
+            let tail = if limits.is_empty() {
+                limits
+            } else {
+                format!(" [{limits}]")
+            };
+            Some(format!("  {}: {}{tail}", sheet.name.value, told.says))
+        })
+        .collect();
+    (!lines.is_empty()).then(|| format!("value {name} of a check\n{}\n", lines.join("\n")))
 }

@@ -165,7 +165,7 @@ pub static RUN: KeyTable = KeyTable::new(
         Key::may(
             "sides",
             Form::Either(&[Form::Words(&["both"]), Form::Map(&SIDES)]),
-            "both sides of the attached plate are welded",
+            "both sides of the attached plate are welded: `both` lays the two beads on one line, `both apart by` as far apart as the plate is thick",
             "both",
         ),
         Key::may(

@@ -31,6 +31,9 @@ const ROW_SHIFT: f64 = 1.2;
 const NAME_SPACE: f64 = 2.0;
 /// Radius of the ring around a run's number (mm).
 const RING: f64 = 1.75;
+/// Least distance of ticks on the scale (mm), and how many there are at most.
+const LEAST_STEP: f64 = 4.0;
+const MOST_TICKS: u32 = 40;
 /// Half the length of a tick (mm).
 const TICK: f64 = 1.0;
 
@@ -180,11 +183,26 @@ impl Layout {
         self.number_points(canvas, sketch);
         self.name_runs(canvas, sketch);
         let (left, right) = (P2::new(-3.0, 0.0), P2::new(self.right(), 0.0));
-        canvas.line(left, left - P2::y() * self.unit, Stroke::black(0.4));
-        for (part, text) in [(0.0, "0"), (0.5, "0.5"), (1.0, "1")] {
+        let curves = sketch.curves.iter().flat_map(|curve| &curve.runs);
+        let top = curves
+            .flat_map(|(_, ratios)| ratios)
+            .copied()
+            .fold(1.0, f64::max);
+        canvas.line(left, left - P2::y() * (top * self.unit), Stroke::black(0.4));
+        let title = canvas.words(vec![Span::new("U", Style::Italic)]);
+        let over = left - P2::y() * (top * self.unit + 1.0 + title.size()[1] / 2.0);
+        let title = title.label(over, 0.0);
+        canvas.draw_kept(Layer::Mark, Item::Label(title), Keep::Off);
+        let step = if self.unit < LEAST_STEP * 2.0 {
+            1.0
+        } else {
+            0.5
+        };
+        let ticks = (0..MOST_TICKS).map(|tick| f64::from(tick) * step);
+        for part in ticks.take_while(|part| *part <= top) {
             let up = -P2::y() * (part * self.unit);
             canvas.line(left + up - P2::x() * TICK, left + up, Stroke::black(0.4));
-            let words = canvas.words(vec![Span::new(text, Style::Plain)]);
+            let words = canvas.words(vec![Span::new(plain_number(part), Style::Plain)]);
             let centre = left + up - P2::x() * (TICK + 0.8 + words.size()[0] / 2.0);
             let label = words.label(centre, 0.0);
             canvas.draw_kept(Layer::Mark, Item::Label(label), Keep::Off);

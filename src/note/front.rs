@@ -58,8 +58,9 @@ impl Builder<'_> {
             text.push(piece(&format!("; geometry by drawing {}", drawing.value)));
         }
         text.push(piece(&format!(
-            "; the margin tells its lines. Every number below is in {}, {} and {}; an input given in another unit is converted on a line of its own. \
-             Re-keying the printed numbers of a line gives its printed result, to one unit in the last digit.",
+            "; “line 12” beside a step is a line of it. Every number below is in {}, {} and {}; an input given in another unit is converted on a line of its own. \
+             Re-keying the printed numbers of a line gives its printed result, to one unit in the last digit; margins are \
+             rounded down, utilisations up. Beside a step, “→ 12” leads to the steps that use its result.",
             units.force(),
             units.length(),
             units.stress()

@@ -430,7 +430,17 @@ impl Builder<'_> {
         } else {
             "Throats, lengths, areas and centroids"
         };
-        self.run_table("throats", caption, &second, false)
+        let caption = format!("{caption}{}", self.of_arcs());
+        self.run_table("throats", &caption, &second, false)
+    }
+
+    /// Words for a caption whose formulas hold for straight runs alone.
+    fn of_arcs(&self) -> &'static str {
+        if (0..self.runs.len()).all(|index| self.is_straight(index)) {
+            ""
+        } else {
+            "; the formulas are those of straight runs, arcs come from the steps of their own"
+        }
     }
 
     /// What each stop takes off: one leg, one throat, or nothing.
@@ -592,12 +602,11 @@ impl Builder<'_> {
                 sum: Some((sum, "Sum of the runs' own second moments")),
             })
             .collect();
-        self.run_table(
-            "own",
-            "Second moments of the runs about their own centroids",
-            &own,
-            false,
-        )?;
+        let caption = format!(
+            "Second moments of the runs about their own centroids{}",
+            self.of_arcs()
+        );
+        self.run_table("own", &caption, &own, false)?;
         let transfer: Vec<Property> = pairs
             .iter()
             .zip(MOVED.into_iter().zip(MOVED_SUMS))

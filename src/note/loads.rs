@@ -31,7 +31,7 @@ impl Builder<'_> {
     }
 
     /// The list of cases, in file order; `first` are the cases by rank, the one that governs in bold.
-    pub(super) fn case_table(&mut self, first: &[usize]) {
+    pub(super) fn case_table(&mut self, first: &[usize], governs: bool) {
         let units = self.joint.units.value;
         let (force, moment) = (units.text(Dim::FORCE), units.text(Dim::MOMENT));
         let cases = &self.joint.loads.cases;
@@ -63,7 +63,7 @@ impl Builder<'_> {
             columns.push(number_column(symbol(&Symbol::of("M", &[axis])), &moment));
         }
         // A lone case governs without being told so.
-        let rows_bold = cases.len() > 1 && !first.is_empty();
+        let rows_bold = cases.len() > 1 && governs;
         let mut rows = Vec::new();
         for index in shown {
             let case = self.joint.loads.cases[index].clone();
@@ -162,7 +162,7 @@ impl Builder<'_> {
             .unwrap_or_default()
             + 1;
         [0, 1, 2].map(|axis| {
-            let symbol = Symbol::of(AXES[axis], &[if framed { "told" } else { "P" }]);
+            let symbol = Symbol::of(AXES[axis], &[if framed { "given" } else { "P" }]);
             let says = format!("Point of application, {}", AXES[axis]);
             let id = format!("load-point-{number}.{}", AXES[axis]);
             self.input(
@@ -242,7 +242,7 @@ impl Builder<'_> {
         );
         let mut symbol = Symbol::of(base, &[AXES[axis]]);
         if base == "M" || case.frame.is_some() {
-            symbol = symbol.with(if case.frame.is_some() { "told" } else { "P" });
+            symbol = symbol.with(if case.frame.is_some() { "given" } else { "P" });
         }
         let says = format!(
             "{says} along {} of case {}{frame}",

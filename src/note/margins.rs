@@ -203,9 +203,10 @@ impl Builder<'_> {
         } else {
             format!(" {unit}")
         };
-        let utilisation = worked
-            .utilisation
-            .map_or(String::new(), |value| format!(", U = {}", text(value)));
+        let utilisation = worked.utilisation.map_or(String::new(), |value| {
+            let up = Printed::rounded(self.ledger.get(value).value, 3, true);
+            format!(", U = {}", up.text())
+        });
         format!(
             ": {} against {}{unit}{utilisation}",
             text(worked.demand),
@@ -418,11 +419,20 @@ impl Builder<'_> {
         if rows.is_empty() {
             return;
         }
-        let caption = "Margins of all strength checks at their governing points, the least in bold: demand, capacity, \
-                       utilisation rounded up, margin of safety rounded down";
+        let mut caption = "Margins of all strength checks at their governing points, the least in bold: demand, capacity, \
+                           utilisation rounded up, margin of safety rounded down"
+            .to_owned();
+        let proportional = |check: &Check| {
+            asked(calculation, check.outcome).sheet.checks[check.check].proportional
+        };
+        if !checks.iter().all(proportional) {
+            caption.push_str(
+                "; where the demand is not proportional to the loads, U is one over the load factor at the limit",
+            );
+        }
         self.table(Sheet {
             id: "margin-table".to_owned(),
-            caption: plain(caption),
+            caption: plain(&caption),
             formulas: Vec::new(),
             columns,
             rows,

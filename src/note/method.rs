@@ -172,7 +172,7 @@ fn collinear() -> Text {
             over(symbol("s", &[]), symbol("I", &["L"])),
         ])),
         piece(
-            ", s from the centroid along the line. A moment about the line itself finds no resistance and would be \
+            ", s from the centroid along the line. A moment about the line itself finds no resistance and is \
              refused.",
         ),
     ]
@@ -182,13 +182,15 @@ fn throat_words() -> Text {
     vec![
         piece("On the throat plane of a fillet with equal legs, tension positive: "),
         sym("sigma", &["perp"]),
-        piece(" = (out − across)/√2 and "),
+        piece(" = (out\u{a0}−\u{a0}across)\u{a0}/\u{a0}√2 and "),
         sym("tau", &["perp"]),
         piece(
-            " = (out + across)/√2 if the toe on the base stands toward the direction across, with the signs of “across” \
+            " = (out\u{a0}+\u{a0}across)\u{a0}/\u{a0}√2 if the toe on the base stands toward the direction across, with the signs of “across” \
              changed if it stands against it; \
              “out” is the stress out of the faying plane, “across” that across the run. Table “Runs as given” tells the \
-             toe of each run.",
+             toe of each run. At another angle the plane halves the angle between the faces; of unequal legs it is square \
+             to the line from toe to toe. A stated throat and a partial penetration weld are taken as fillets of equal \
+             legs; of a complete penetration weld the plane is the faying plane itself.",
         ),
     ]
 }

@@ -166,12 +166,15 @@ impl Picture {
                 } else {
                     "The kinds of weld in section"
                 };
-                format!(
-                    "{kinds}, square to the run; not to scale. Broken lines: planes that are checked."
-                )
+                let broken = if sections.iter().all(|section| section.planes.is_empty()) {
+                    ""
+                } else {
+                    " Broken lines: planes that are checked."
+                };
+                format!("{kinds}, square to the run; not to scale.{broken}")
             }
             Self::Stresses(sketch) => format!(
-                "Stress on the throat at the points of the group in case {}, {view}; arrows {scale}.",
+                "Stress on the throat at the points of the group in case {}, {view}. Scale of lengths {scale}.",
                 sketch.case
             ),
             Self::Demand(demand) => {

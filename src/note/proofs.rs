@@ -82,7 +82,7 @@ impl Builder<'_> {
 /// The words on replay.
 pub(super) fn replay_text(steps: usize) -> String {
     format!(
-        "Replay: each of the {steps} lines with a formula was evaluated again from its printed numbers and gave its \
+        "Replay: each of the {steps} lines and table cells with a formula was evaluated again from its printed numbers and gave its \
          printed result, to one unit in the last digit."
     )
 }

@@ -140,7 +140,7 @@ impl Calculation<'_> {
 
 /// The first part of a reason, cut where it is long; the note tells it whole.
 fn brief(reason: &str) -> String {
-    const LONGEST: usize = 140;
+    const LONGEST: usize = 240;
     let first = reason.split("; ").next().unwrap_or_default();
     if first.chars().count() <= LONGEST {
         return first.to_owned();

@@ -304,7 +304,7 @@ fn loads_part(b: &mut Builder<'_>, calculation: &Calculation<'_>, order: &[usize
     let all: Vec<usize> = (0..calculation.joint.loads.cases.len()).collect();
     let first = if order.is_empty() { &all } else { order };
     b.part("case-list", "Loads");
-    b.case_table(first);
+    b.case_table(first, !order.is_empty());
 }
 
 /// Moves the list of cases to its place before the line properties.
@@ -588,8 +588,7 @@ fn open_section(b: &Builder<'_>, assumptions: &[(String, String)]) -> Option<sup
     if items.is_empty() {
         return None;
     }
-    let intro =
-        "To be verified before this note is signed; margins that rest on an item are marked.";
+    let intro = "To be verified before this note is signed; utilisations and margins by a clause in question are marked.";
     let blocks = vec![Block::Para { text: plain(intro) }, Block::Items { items }];
     Some(super::doc::Section {
         title: "Open items".to_owned(),
@@ -648,6 +647,22 @@ fn identity_section(sections: &mut [super::doc::Section], identity: &Identity) {
     }
 }
 
+/// The failure paths that the note does not cover, and those left to others.
+fn coverage_words(b: &Builder<'_>, calculation: &Calculation<'_>) -> String {
+    let uncovered = super::standing::uncovered(calculation);
+    let mut words = if uncovered.is_empty() {
+        "Every failure path is checked or excluded.".to_owned()
+    } else {
+        format!("Not covered by this note: {}.", uncovered.join(", "))
+    };
+    let excluded = b.joint.excluded.iter();
+    let excluded: Vec<&str> = excluded.map(|entry| entry.path.value.as_str()).collect();
+    if !excluded.is_empty() {
+        words.push_str(&format!(" Left to others: {}.", excluded.join(", ")));
+    }
+    words
+}
+
 /// The verdict of the first page.
 fn verdict(
     b: &Builder<'_>,
@@ -658,10 +673,11 @@ fn verdict(
     let standing = Standing::of(calculation);
     let Some(check) = checks.first() else {
         let lines = vec![
-            plain(
-                "No strength check of this note has a number; the reasons stand under “Checks without a number”.",
-            ),
-            plain(&standing.tally()),
+            vec![
+                strong("No strength check of this note has a number."),
+                piece(&format!(" {}", standing.tally())),
+            ],
+            plain(&coverage_words(b, calculation)),
         ];
         return Verdict {
             label: "no margin".to_owned(),
@@ -710,12 +726,7 @@ fn verdict(
             marks.extend(b.ledger.marks_behind(value));
         }
     }
-    let uncovered = super::standing::uncovered(calculation);
-    let coverage = if uncovered.is_empty() {
-        "Every failure path is checked or excluded.".to_owned()
-    } else {
-        format!("Not covered by this note: {}.", uncovered.join(", "))
-    };
+    let coverage = coverage_words(b, calculation);
     let tally = if standing.holds() {
         plain(&format!("{} {coverage}", standing.tally()))
     } else {

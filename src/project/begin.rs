@@ -50,7 +50,7 @@ const METRIC: Sizes = Sizes {
     strengths: "f_y: 355 MPa, f_u: 470 MPa, source: \"EN 10025-2:2019, table 7\"",
     forces: ["2 kN", "-6 kN", "4 kN"],
     material: "S355J2",
-    filler: "{name: G 46 4 M21 3Si1, f_u: 480 MPa, source: WPS-1 rev 0}",
+    filler: "{name: G 46 4 M21 3Si1, f_u: 530 MPa, source: WPS-1 rev 0}",
     ends: "less throat",
     level: "ultimate",
     checks: "  - {clause: EN 1993-1-8 4.5.3.2, gamma_M2: 1.25}

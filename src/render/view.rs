@@ -268,13 +268,20 @@ fn step(step: &Step, targets: &Targets, uses: &Uses<'_>) -> Value {
         "used_more": used.len() > USES_NAMED,
         "equations": equations(&step.lines),
         "latex": step.latex,
-        "uses": step.uses.iter().map(|(id, no)| json!({
+        "uses": steps_first(&step.uses).map(|(id, no)| json!({
             "no": no,
             "table": no.starts_with("table"),
             "link": id,
             "anchor": targets.get(id).map(|t| &t.anchor),
         })).collect::<Vec<_>>(),
     })
+}
+
+/// What a step uses: steps in their order, then rows of tables.
+fn steps_first(uses: &[(String, String)]) -> impl Iterator<Item = &(String, String)> {
+    let is_table = |used: &&(String, String)| used.1.starts_with("table");
+    let steps = uses.iter().filter(move |used| !is_table(used));
+    steps.chain(uses.iter().filter(is_table))
 }
 
 /// Lines joined to equations: a line that is not continued begins a new one.

@@ -15,7 +15,7 @@ parts:
   deck: {material: S355J2, thickness: 12}
   never used: {material: S235JR}
 fillers:
-  G 46 4 M21 3Si1: {f_u: 480 MPa, source: WPS-31 rev 2}
+  G 46 4 M21 3Si1: {f_u: 530 MPa, source: WPS-31 rev 2}
 checks:
   - {clause: EN 1993-1-8 4.5.3.2, gamma_M2: 1.25}
   - {clause: EN 1993-1-8 4.5.3.3, gamma_M2: 1.25}
@@ -38,7 +38,7 @@ fn own() -> String {
         ),
         ("  deck: {material: S355J2, thickness: 12}\n", ""),
         (
-            "filler: {name: G 46 4 M21 3Si1, f_u: 480 MPa, source: WPS-31 rev 2}",
+            "filler: {name: G 46 4 M21 3Si1, f_u: 530 MPa, source: WPS-31 rev 2}",
             "filler: G 46 4 M21 3Si1",
         ),
         (
@@ -324,8 +324,8 @@ fn show_tells_where_each_value_comes_from() {
         ),
         (
             "filler / f_u",
-            at("project.yaml", &shared, "f_u: 480"),
-            "480 MPa",
+            at("project.yaml", &shared, "f_u: 530"),
+            "530 MPa",
         ),
         (
             "weld / runs / lower edge / straight",

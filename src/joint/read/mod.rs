@@ -187,10 +187,55 @@ fn read_frame(item: Item<'_>) -> Option<FrameWords> {
     let origin = fields.required("origin", Item::line);
     let axes = ["x", "y", "z"].map(|axis| fields.optional(axis, Item::line));
     fields.finish();
+    if is_left_handed(
+        axes.each_ref()
+            .map(|words| words.as_ref().map(|told| told.value.as_str())),
+    ) {
+        let help = "moments go by the right-hand rule: turn one of the three round";
+        return item.refuse_with(
+            "left-handed",
+            "x, y and z as told make a left-handed frame",
+            help,
+        );
+    }
     Some(FrameWords {
         origin: origin?,
         axes,
     })
+}
+
+/// Whether the words of three axes tell a left-handed frame, as far as they are plain directions.
+fn is_left_handed(axes: [Option<&str>; 3]) -> bool {
+    // Forward, port and up are a right-handed frame.
+    const DIRECTIONS: [(&str, usize, i32); 8] = [
+        ("forward", 0, 1),
+        ("fore", 0, 1),
+        ("aft", 0, -1),
+        ("port", 1, 1),
+        ("starboard", 1, -1),
+        ("up", 2, 1),
+        ("upward", 2, 1),
+        ("down", 2, -1),
+    ];
+    let of = |words: &str| {
+        let mut found = words.split_whitespace().filter_map(|word| {
+            let word = word
+                .trim_matches(|c: char| !c.is_alphanumeric())
+                .to_lowercase();
+            DIRECTIONS.iter().find(|(known, ..)| *known == word)
+        });
+        let first = found.next()?;
+        found.next().is_none().then_some((first.1, first.2))
+    };
+    let [Some(x), Some(y), Some(z)] = axes.map(|words| words.and_then(of)) else {
+        return false;
+    };
+    let order = match [x.0, y.0, z.0] {
+        [0, 1, 2] | [1, 2, 0] | [2, 0, 1] => 1,
+        [0, 2, 1] | [2, 1, 0] | [1, 0, 2] => -1,
+        _ => return false,
+    };
+    order * x.1 * y.1 * z.1 < 0
 }
 
 /// Repeated names that are told at most: more have one cause.

@@ -234,16 +234,14 @@ pub(super) fn number_column(head: Inline, unit: &str) -> Column {
         head: vec![head],
         unit,
         align: Align::Point,
-        share: 0,
     }
 }
 
 /// A column of words.
-pub(super) fn word_column(head: &str, share: u32) -> Column {
+pub(super) fn word_column(head: &str) -> Column {
     Column {
         head: plain(head),
         unit: Vec::new(),
         align: Align::Left,
-        share,
     }
 }

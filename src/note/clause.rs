@@ -133,15 +133,9 @@ impl<'a> Symbols<'a> {
             id: "needs".to_owned(),
             caption: plain("What the sheet needs, and the first place that gives it"),
             formulas: Vec::new(),
-            columns: [
-                ("", 0),
-                ("what it is", 4),
-                ("kind", 0),
-                ("from", 3),
-                ("default, bounds", 4),
-            ]
-            .map(|(head, share)| column(head, share))
-            .into(),
+            columns: ["", "what it is", "kind", "from", "default, bounds"]
+                .map(column)
+                .into(),
             rows,
             foot: None,
         })]
@@ -282,12 +276,11 @@ fn taken(sheet: &Sheet) -> Block {
     Block::Para { text: plain(&says) }
 }
 
-fn column(head: &str, share: u32) -> Column {
+fn column(head: &str) -> Column {
     Column {
         head: plain(head),
         unit: Text::new(),
         align: Align::Left,
-        share,
     }
 }
 
@@ -343,7 +336,7 @@ fn tables(table: &CodeTable, document: &str) -> Vec<Block> {
             id: format!("table-{}-{system}", slug(&table.name.value)),
             caption: plain(&capital(&head)),
             formulas: Vec::new(),
-            columns: vec![column("for", 0), column("value", 0)],
+            columns: vec![column("for"), column("value")],
             rows: rows
                 .iter()
                 .map(|(key, value)| row(vec![plain(&key.value), plain(&value.value)]))

@@ -184,8 +184,6 @@ pub struct Column {
     pub unit: Text,
     /// How cells align.
     pub align: Align,
-    /// Share of the free width for a text column that may wrap; 0 for a column as wide as its cells.
-    pub share: u32,
 }
 
 /// Alignment of a column.

@@ -156,7 +156,7 @@ impl Builder<'_> {
 
     /// The faying normals of the runs.
     fn normals_table(&mut self) {
-        let mut columns = vec![word_column("", 0), word_column("run", 0)];
+        let mut columns = vec![word_column(""), word_column("run")];
         columns.extend(
             super::points::AXES
                 .map(|axis| super::builder::number_column(symbol(&Symbol::of("k", &[axis])), "")),
@@ -192,13 +192,13 @@ impl Builder<'_> {
     /// The runs as told.
     fn told_runs(&mut self) {
         let columns = vec![
-            word_column("", 0),
-            word_column("run", 3),
-            word_column("weld", 3),
-            word_column("from", 0),
-            word_column("to", 0),
-            word_column("toe", 2),
-            word_column("ends", 3),
+            word_column(""),
+            word_column("run"),
+            word_column("weld"),
+            word_column("from"),
+            word_column("to"),
+            word_column("toe"),
+            word_column("ends"),
         ];
         let rows = (0..self.runs.len())
             .map(|index| {
@@ -302,8 +302,8 @@ impl Builder<'_> {
             number_column(symbol(&Symbol::of(base, &[index])), units.stress())
         };
         let columns = vec![
-            word_column("part", 2),
-            word_column("material", 2),
+            word_column("part"),
+            word_column("material"),
             number_column(symbol(&Symbol::of("t", &["p"])), units.length()),
             stress("f", "y"),
             stress("f", "u"),
@@ -311,7 +311,6 @@ impl Builder<'_> {
                 head: plain("source"),
                 unit: Vec::new(),
                 align: Align::Left,
-                share: 4,
             },
         ];
         let parts: Vec<Part> = self.joint.parts.clone();

@@ -109,13 +109,12 @@ impl Builder<'_> {
             head: plain(text),
             unit: Vec::new(),
             align: Align::Point,
-            share: 0,
         };
         let columns = vec![
-            word_column("property", 0),
+            word_column("property"),
             head("handbook"),
             head("sum of the runs"),
-            word_column("unit", 0),
+            word_column("unit"),
         ];
         let caption = plain("Handbook properties beside the sums");
         self.table(Sheet {

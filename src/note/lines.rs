@@ -199,7 +199,7 @@ impl Builder<'_> {
         }
         let formulas = self.column_formulas(properties)?;
         let units = self.ledger.units();
-        let mut columns = vec![word_column("", 0), word_column("run", 0)];
+        let mut columns = vec![word_column(""), word_column("run")];
         for property in properties {
             let value = self
                 .run_values

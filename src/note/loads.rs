@@ -49,12 +49,12 @@ impl Builder<'_> {
             .iter()
             .any(|case| case.says.is_some());
         let level = self.shared_level();
-        let mut columns = vec![word_column("case", 0)];
+        let mut columns = vec![word_column("case")];
         if level.is_none() {
-            columns.push(word_column("level", 0));
+            columns.push(word_column("level"));
         }
         if told {
-            columns.push(word_column("what", 1));
+            columns.push(word_column("what"));
         }
         for axis in AXES {
             columns.push(number_column(symbol(&Symbol::of("F", &[axis])), &force));
@@ -178,7 +178,7 @@ impl Builder<'_> {
     /// The table of points of application, each once with the cases that act there.
     fn load_points(&mut self, shown: &[usize]) {
         let unit = self.joint.units.value.length();
-        let mut columns = vec![word_column("acts at", 0)];
+        let mut columns = vec![word_column("acts at")];
         columns.extend(AXES.map(|axis| number_column(symbol(&Symbol::of(axis, &["P"])), unit)));
         let mut points: Vec<(usize, Vec<String>)> = Vec::new();
         for index in shown {
@@ -408,7 +408,7 @@ impl Builder<'_> {
             done.push(frame.name.value.clone());
             let (origin, axes) = self.frame_values(&frame);
             let unit = self.joint.units.value.length();
-            let mut columns = vec![word_column("component in the joint frame", 0)];
+            let mut columns = vec![word_column("component in the joint frame")];
             columns.push(number_column(symbol(&Symbol::of("o", &[])), unit));
             columns.extend(AXES.map(|axis| number_column(symbol(&Symbol::of("a", &[axis])), "")));
             let tag = slug(&frame.name.value);

@@ -354,17 +354,16 @@ impl Builder<'_> {
             head: plain(text),
             unit: Vec::new(),
             align,
-            share: 0,
         };
         let mut columns = vec![
-            word_column("check", 4),
-            word_column("case", 0),
-            word_column("place", 3),
+            word_column("check"),
+            word_column("case"),
+            word_column("place"),
             number_column(symbol(&Symbol::of("D", &[])), &unit),
             number_column(symbol(&Symbol::of("R", &[])), &unit),
         ];
         if one_unit.is_none() {
-            columns.push(word_column("unit", 0));
+            columns.push(word_column("unit"));
         }
         columns.push(number_column(symbol(&Symbol::of("U", &[])), ""));
         columns.push(head("MS", Align::Point));
@@ -500,19 +499,18 @@ impl Builder<'_> {
             return order;
         }
         let level = self.shared_level();
-        let mut columns = vec![word_column("case", 0)];
+        let mut columns = vec![word_column("case")];
         if level.is_none() {
-            columns.push(word_column("level", 0));
+            columns.push(word_column("level"));
         }
         columns.extend([
-            word_column("check", 4),
-            word_column("place", 3),
+            word_column("check"),
+            word_column("place"),
             number_column(symbol(&Symbol::of("U", &[])), ""),
             Column {
                 head: plain("MS"),
                 unit: Vec::new(),
                 align: Align::Point,
-                share: 0,
             },
         ]);
         let total = worst.len();
@@ -679,12 +677,12 @@ impl Builder<'_> {
         }
         let unit = self.joint.units.value.length();
         let columns = vec![
-            word_column("limit", 4),
-            word_column("run", 3),
+            word_column("limit"),
+            word_column("run"),
             number_column(piece("value"), unit),
-            word_column("", 0),
+            word_column(""),
             number_column(piece("bound"), unit),
-            word_column("", 0),
+            word_column(""),
         ];
         let caption = plain("Limits on sizes and lengths, run by run");
         self.table(Sheet {

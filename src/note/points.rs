@@ -124,12 +124,12 @@ impl Builder<'_> {
     pub(super) fn point_table(&mut self) {
         let unit = self.joint.units.value.length();
         let axes = axes(self.planar);
-        let mut columns = vec![word_column("point", 0)];
+        let mut columns = vec![word_column("point")];
         columns.extend(
             axes.iter()
                 .map(|axis| number_column(symbol(&Symbol::of(AXES[*axis], &[])), unit)),
         );
-        columns.push(word_column("where", 1));
+        columns.push(word_column("where"));
         let rows = (0..self.points.len())
             .map(|index| {
                 let Point { at, number, values } = self.points[index];

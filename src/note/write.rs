@@ -422,9 +422,9 @@ fn coverage(b: &mut Builder<'_>, calculation: &Calculation<'_>) {
         });
     }
     let columns = vec![
-        super::builder::word_column("failure path", 2),
-        super::builder::word_column("state", 0),
-        super::builder::word_column("by", 4),
+        super::builder::word_column("failure path"),
+        super::builder::word_column("state"),
+        super::builder::word_column("by"),
     ];
     let caption = plain("Failure paths of the joint, and where each is looked at");
     b.table(super::builder::Sheet {
@@ -541,9 +541,9 @@ fn closing(b: &mut Builder<'_>) {
             })
             .collect();
         let columns = vec![
-            super::builder::word_column("issue", 0),
-            super::builder::word_column("date", 0),
-            super::builder::word_column("what changed", 1),
+            super::builder::word_column("issue"),
+            super::builder::word_column("date"),
+            super::builder::word_column("what changed"),
         ];
         let caption = plain("Issues of this note");
         b.table(super::builder::Sheet {

@@ -80,14 +80,9 @@ fn step(no: u32, id: &str, says: &str, lines: Vec<Line>, latex: &str, source: &[
     })
 }
 
-fn column(head: Text, unit: &str, align: Align, share: u32) -> Column {
+fn column(head: Text, unit: &str, align: Align) -> Column {
     let unit = if unit.is_empty() { Vec::new() } else { t(unit) };
-    Column {
-        head,
-        unit,
-        align,
-        share,
-    }
+    Column { head, unit, align }
 }
 
 fn row(cells: Vec<Text>) -> Row {
@@ -160,12 +155,12 @@ fn inputs() -> Section {
                 caption: t("Strengths as given, with their sources"),
                 formulas: Vec::new(),
                 columns: vec![
-                    column(t("part"), "", Align::Left, 0),
-                    column(t("material"), "", Align::Left, 0),
-                    column(t("thickness"), "mm", Align::Point, 0),
-                    column(vec![maths("f_y", "f_y", "f y")], "MPa", Align::Point, 0),
-                    column(vec![maths("f_u", "f_u", "f u")], "MPa", Align::Point, 0),
-                    column(t("source"), "", Align::Left, 1),
+                    column(t("part"), "", Align::Left),
+                    column(t("material"), "", Align::Left),
+                    column(t("thickness"), "mm", Align::Point),
+                    column(vec![maths("f_y", "f_y", "f y")], "MPa", Align::Point),
+                    column(vec![maths("f_u", "f_u", "f u")], "MPa", Align::Point),
+                    column(t("source"), "", Align::Left),
                 ],
                 rows: rows.into(),
                 foot: None,
@@ -281,22 +276,20 @@ fn properties_table() -> Block {
         caption: t("Properties of the runs about the centroid"),
         formulas: Vec::new(),
         columns: vec![
-            column(t("run"), "", Align::Left, 0),
-            column(vec![maths("t", "t", "t")], "mm", Align::Point, 0),
-            column(vec![maths("L", "L", "L")], "mm", Align::Point, 0),
+            column(t("run"), "", Align::Left),
+            column(vec![maths("t", "t", "t")], "mm", Align::Point),
+            column(vec![maths("L", "L", "L")], "mm", Align::Point),
             column(
                 vec![maths("A = t L", "A = t L", "A is t L")],
                 "mm²",
                 Align::Point,
-                0,
             ),
             column(
                 vec![maths("y - y_c", "y - y_c", "y less y c")],
                 "mm",
                 Align::Point,
-                0,
             ),
-            column(t("own and transfer"), "mm⁴", Align::Point, 0),
+            column(t("own and transfer"), "mm⁴", Align::Point),
         ],
         rows,
         foot: Some(row(vec![
@@ -386,13 +379,13 @@ fn cases() -> Section {
                 ],
                 formulas: Vec::new(),
                 columns: vec![
-                    column(t("case"), "", Align::Left, 0),
-                    column(t("says"), "", Align::Left, 1),
-                    column(vec![maths("F_x", "F_x", "F x")], "N", Align::Point, 0),
-                    column(vec![maths("F_y", "F_y", "F y")], "N", Align::Point, 0),
-                    column(t("demand"), "MPa", Align::Point, 0),
-                    column(t("utilisation"), "", Align::Point, 0),
-                    column(t("MS"), "", Align::Point, 0),
+                    column(t("case"), "", Align::Left),
+                    column(t("says"), "", Align::Left),
+                    column(vec![maths("F_x", "F_x", "F x")], "N", Align::Point),
+                    column(vec![maths("F_y", "F_y", "F y")], "N", Align::Point),
+                    column(t("demand"), "MPa", Align::Point),
+                    column(t("utilisation"), "", Align::Point),
+                    column(t("MS"), "", Align::Point),
                 ],
                 rows: rows.collect(),
                 foot: None,
@@ -422,9 +415,9 @@ fn ending() -> Section {
                 caption: t("Issues"),
                 formulas: Vec::new(),
                 columns: vec![
-                    column(t("issue"), "", Align::Left, 0),
-                    column(t("date"), "", Align::Left, 0),
-                    column(t("what changed"), "", Align::Left, 1),
+                    column(t("issue"), "", Align::Left),
+                    column(t("date"), "", Align::Left),
+                    column(t("what changed"), "", Align::Left),
                 ],
                 rows: vec![
                     row(vec![t("A"), t("2026-03-02"), t("First issue")]),

@@ -74,12 +74,7 @@ impl Press {
             .iter()
             .map(|a| Bytes::new(a.bytes.clone()))
             .collect();
-        let job = Job::new(self, text, bytes);
-        let result = compile(&job)
-            .and_then(|document| resolve_links(&document))
-            .and_then(|document| export(&job, &document, &ARCHIVED));
-        comemo::evict(MEMORY);
-        result
+        finish(&Job::new(self, text, bytes), &ARCHIVED)
     }
 
     /// Sets a source without a date, such as a clause sheet, and exports it: no archival profile.
@@ -89,11 +84,7 @@ impl Press {
     /// As [`Press::pdf`].
     pub fn undated_pdf(&self, source: &str) -> Result<Pdf, RenderError> {
         let job = Job::new(self, source.to_owned(), Vec::new());
-        let result = compile(&job)
-            .and_then(|document| resolve_links(&document))
-            .and_then(|document| export(&job, &document, &[PdfStandard::Ua_1]));
-        comemo::evict(MEMORY);
-        result
+        finish(&job, &[PdfStandard::Ua_1])
     }
 
     /// Sets the source and exports its only page as SVG, text as outlines.
@@ -171,6 +162,15 @@ pub(super) fn compile(job: &Job<'_>) -> Result<PagedDocument, RenderError> {
         return Ok(document);
     }
     Err(complain(job, &warned.warnings))
+}
+
+/// Sets a source into pages, resolves their links and exports them in the given profiles.
+fn finish(job: &Job<'_>, profiles: &[PdfStandard]) -> Result<Pdf, RenderError> {
+    let result = compile(job)
+        .and_then(|document| resolve_links(&document))
+        .and_then(|document| export(job, &document, profiles));
+    comemo::evict(MEMORY);
+    result
 }
 
 /// Exports pages in the given profiles.

@@ -192,6 +192,19 @@ impl<'a> Fields<'a> {
         self.take(key).and_then(read)
     }
 
+    /// Reads a value that entries below fall back on: the outer `None` if it is not told, the inner
+    /// one if it is told but refused, or misspelt.
+    pub fn usual<T>(
+        &mut self,
+        key: &'static str,
+        read: impl FnOnce(Item<'a>) -> Option<T>,
+    ) -> Option<Option<T>> {
+        match self.take(key) {
+            Some(item) => Some(read(item)),
+            None => self.misspells(&[key]).then_some(None),
+        }
+    }
+
     /// Reads a list that may be left out: then, and after a fault, it is empty.
     pub fn optional_list<T>(
         &mut self,

@@ -1,7 +1,7 @@
 //! Load cases and the frames they may be told in.
 
 use super::value::{read_full_triple, read_triple, zero};
-use super::{check_distinct, unknown_name};
+use super::{check_distinct, read_named, unknown_name};
 use crate::joint::{Case, Level, LoadFrame, Loads, Triple, keys};
 use crate::quantity::{Dim, UnitSet, real};
 use crate::source::{Diagnostic, Fields, Item, Told};
@@ -20,49 +20,33 @@ struct Usual {
     names: Vec<Told<String>>,
     /// Whether `frames` itself is misspelt, so that no name of a frame is known.
     misspelt_frames: bool,
-    /// Whether a case has been told to lack its level, its point: once for all cases is enough.
-    missed: Cell<[bool; 2]>,
-}
-
-impl Usual {
-    /// Whether this lack, of the level or of the point, is the first of its kind.
-    fn first(&self, which: usize) -> bool {
-        let mut missed = self.missed.get();
-        let first = !std::mem::replace(&mut missed[which], true);
-        self.missed.set(missed);
-        first
-    }
+    /// Whether a case has been told to lack its level: once for all cases is enough.
+    missed_level: Cell<bool>,
+    /// As `missed_level`, for the point of application.
+    missed_point: Cell<bool>,
 }
 
 /// Reads `loads`.
 pub(super) fn read_loads(item: Item<'_>, set: UnitSet) -> Option<Loads> {
     let mut fields = item.keyed(&keys::LOADS)?;
-    let at = match fields.take("at") {
-        Some(item) => Some(read_triple(item, Dim::LENGTH, set)),
-        None => fields.misspells(&["at"]).then_some(None),
-    };
-    let level = match fields.take("level") {
-        Some(item) => Some(read_level(item)),
-        None => fields.misspells(&["level"]).then_some(None),
-    };
+    let at = fields.usual("at", |item| read_triple(item, Dim::LENGTH, set));
+    let level = fields.usual("level", read_level);
     let misspelt_frames = fields.misspells(&["frames"]);
     let mut names = Vec::new();
-    let mut frames = Vec::new();
-    if let Some(item) = fields.take("frames") {
-        let read = item.entries(|name, frame| {
+    let frames = fields.optional("frames", |item| {
+        read_named(item, "frames", |name, frame| {
             names.push(name.clone());
             Some(read_frame(name, frame, set))
-        });
-        check_distinct(names.iter(), "frames", item.faults);
-        frames = read.unwrap_or_default().into_iter().flatten().collect();
-    }
+        })
+    });
     let usual = Usual {
         at,
         level,
-        frames,
+        frames: frames.into_iter().flatten().flatten().collect(),
         names,
         misspelt_frames,
-        missed: Cell::default(),
+        missed_level: Cell::default(),
+        missed_point: Cell::default(),
     };
     let cases = fields.required("cases", |item| {
         item.list(|case| read_case(case, &usual, set))
@@ -148,7 +132,7 @@ fn pick_level(fields: &mut Fields<'_>, usual: &Usual) -> Option<Told<Level>> {
         .or_else(|| usual.level.clone())
     {
         Some(level) => level,
-        None if !usual.first(0) => None,
+        None if usual.missed_level.replace(true) => None,
         None => fields.lacks(
             "missing-level",
             &["level"],
@@ -179,7 +163,7 @@ fn pick_point(
             place: fields.place().clone(),
         });
     }
-    if !usual.first(1) {
+    if usual.missed_point.replace(true) {
         return None;
     }
     if has_frame {

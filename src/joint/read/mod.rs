@@ -275,6 +275,22 @@ fn check_distinct<'a>(
     }
 }
 
+/// Reads the entries of a map with free keys and refuses keys that look alike or stand twice,
+/// those of faulty entries too; `what` says what they name.
+fn read_named<'a, T>(
+    item: Item<'a>,
+    what: &str,
+    mut read: impl FnMut(&'a Told<String>, Item<'a>) -> Option<T>,
+) -> Option<Vec<T>> {
+    let mut names = Vec::new();
+    let entries = item.entries(|name, entry| {
+        names.push(name);
+        read(name, entry)
+    });
+    check_distinct(names.into_iter(), what, item.faults);
+    entries
+}
+
 /// The fault of a name that stands for nothing, with the nearest that does.
 fn unknown_name(code: &'static str, what: &str, name: &Told<String>, known: &[&str]) -> Diagnostic {
     let fault = Diagnostic::error(

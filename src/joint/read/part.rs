@@ -1,6 +1,6 @@
 //! Parts, filler, checks, and the lists of words: assumptions, exclusions, changes.
 
-use super::check_distinct;
+use super::read_named;
 use super::value::{read_date, read_free_positive, read_positive};
 use crate::joint::{Assumption, Change, CheckSpec, Exclusion, Filler, Part, RawQuantity, keys};
 use crate::quantity::{Dim, UnitSet};
@@ -8,13 +8,7 @@ use crate::source::{Fields, Item, Told, Value};
 
 /// Reads `parts`, in file order.
 pub(super) fn read_parts(item: Item<'_>, set: UnitSet) -> Option<Vec<Part>> {
-    let mut names = Vec::new();
-    let parts = item.entries(|name, part| {
-        names.push(name.clone());
-        read_part(name, part, set)
-    });
-    check_distinct(names.iter(), "parts", item.faults);
-    let parts = parts?;
+    let parts = read_named(item, "parts", |name, part| read_part(name, part, set))?;
     if parts.is_empty() {
         item.refuse("empty-list", "`parts` names no part")
     } else {

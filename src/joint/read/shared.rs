@@ -2,7 +2,7 @@
 
 use super::part;
 use super::value::{read_free_positive, read_positive};
-use super::{check_distinct, read_units};
+use super::{read_named, read_units};
 use crate::joint::{Paper, keys};
 use crate::quantity::{Dim, UnitSet};
 use crate::source::{FaultBag, Item, KeyTable, Node, Told, read_keyed};
@@ -24,13 +24,9 @@ pub(in crate::joint) fn check_project(root: &Node, faults: &FaultBag) -> Option<
         ("fillers", &keys::SHARED_FILLER),
     ] {
         fields.optional(key, |item| {
-            let mut names = Vec::new();
-            let read = item.entries(|name, entry| {
-                names.push(name.clone());
+            read_named(item, key, |name, entry| {
                 check_strengths(name, entry, table, set)
-            });
-            check_distinct(names.iter(), key, item.faults);
-            read
+            })
         });
     }
     fields.optional("checks", part::read_checks);

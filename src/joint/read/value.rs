@@ -68,24 +68,17 @@ fn refuse_with_help<T>(
     usual: String,
 ) -> Option<T> {
     let (code, message, help) = match error {
-        GivenError::NotANumber(_) if ungrouped(text).is_some() => (
+        GivenError::NotANumber(_) => (
             "not-a-number",
             format!("`{text}` is not a number"),
-            format!(
-                "write `{}`: thousands have no separator",
-                ungrouped(text).unwrap_or_default()
-            ),
+            match ungrouped(text) {
+                Some(plain) => format!("write `{plain}`: thousands have no separator"),
+                None if text.contains(['"', '″', '\'']) => {
+                    "inches are written `in`, feet `ft`".to_owned()
+                }
+                None => usual,
+            },
         ),
-        GivenError::NotANumber(_)
-            if text.contains(['"', '″', '\'']) && ungrouped(text).is_none() =>
-        {
-            (
-                "not-a-number",
-                format!("`{text}` is not a number"),
-                "inches are written `in`, feet `ft`".to_owned(),
-            )
-        }
-        GivenError::NotANumber(_) => ("not-a-number", format!("`{text}` is not a number"), usual),
         GivenError::NotFinite(_) => ("not-a-number", error.to_string(), usual),
         GivenError::Comma(_) => (
             "decimal-comma",

@@ -27,10 +27,7 @@ pub(super) struct Usual {
 pub(super) fn read_weld(item: Item<'_>, context: Context<'_>) -> Option<WeldSpec> {
     let mut fields = item.keyed(&keys::WELD)?;
     let usual = Usual {
-        joins: match fields.take("joins") {
-            Some(item) => Some(read_joins(item, context)),
-            None => fields.misspells(&["joins"]).then_some(None),
-        },
+        joins: fields.usual("joins", |item| read_joins(item, context)),
         ends: read_ends(&mut fields),
         size: size::read_size(&mut fields, context.set)
             .or_else(|| fields.misspells(&size::KEYS).then_some(None)),

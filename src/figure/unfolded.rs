@@ -29,6 +29,8 @@ const ROW_SPACE: f64 = 0.6;
 const ROW_SHIFT: f64 = 1.2;
 /// Between names of runs (mm).
 const NAME_SPACE: f64 = 2.0;
+/// What it costs a letter to stand beside the run of its curve's ring.
+const OUTSIDE: f64 = 4.0;
 /// Radius of the ring around a run's number (mm).
 const RING: f64 = 1.75;
 /// Least distance of ticks on the scale (mm), and how many there are at most.
@@ -280,13 +282,10 @@ impl Layout {
     }
 
     fn mark_governing(&self, canvas: &mut Canvas<'_>, curve: &Curve) {
-        let (run, part, ratio, text) = &curve.governing;
-        let at = self.point(*run, *part, *ratio);
+        let (run, part, ratio) = curve.governing;
+        let at = self.point(run, part, ratio);
         canvas.mark([circle(at, 1.0, Stroke::black(0.8), Fill::White)]);
-        let mut spans = vec![Span::new(curve.letter.clone(), Style::Bold)];
-        if !text.is_empty() {
-            spans.push(Span::new(format!("  {text}"), Style::Plain));
-        }
+        let spans = vec![Span::new(curve.letter.clone(), Style::Bold)];
         let words = canvas.words(spans);
         let mark = Rect::upright(at, 1.0, 1.0);
         let mark = canvas.name(MarkKind::Point, vec![mark]);
@@ -295,6 +294,13 @@ impl Layout {
         let toward = unit(inward);
         let mut places = around(at, 1.8, words.size(), toward);
         places.extend(dearer(around(at, 2.6, words.size(), toward), 3.0));
+        // Over its own run if there is room.
+        let own = self.starts[run]..self.starts[run] + self.widths[run];
+        for place in &mut places {
+            if !own.contains(&place.centre.x) {
+                place.cost += OUTSIDE;
+            }
+        }
         canvas
             .want(rank::GOVERNING, words, at, places)
             .naming(mark, 1.0);

@@ -101,6 +101,8 @@ pub(super) struct Builder<'a> {
     pub(super) unchecked: Vec<String>,
     /// Values that have their place on a page already.
     pub(super) placed: BTreeSet<Value>,
+    /// How many drawings have their place already.
+    pub(super) figures: usize,
 }
 
 impl Builder<'_> {

@@ -107,6 +107,15 @@ impl Block {
             None
         }
     }
+
+    /// The drawing, if it is one.
+    pub fn as_figure(&self) -> Option<&FigureRef> {
+        if let Self::Figure(figure) = self {
+            Some(figure)
+        } else {
+            None
+        }
+    }
 }
 
 /// An entry of a labelled list.
@@ -212,6 +221,8 @@ pub struct Row {
 pub struct FigureRef {
     /// Name of its file without extension.
     pub name: String,
+    /// Stable id.
+    pub id: String,
     /// Caption.
     pub caption: Text,
     /// Alternative text.
@@ -265,11 +276,57 @@ pub enum Inline {
         /// Plain words.
         words: String,
     },
-    /// A link to a step by its printed number, such as `step 12`.
+    /// A link to a step or a drawing by its printed number, such as `step 12`.
     StepRef {
-        /// Id of the step.
+        /// Id of the step or drawing.
         id: String,
         /// Text of the link.
         text: String,
     },
+}
+
+impl Inline {
+    /// The plain characters of a piece, maths as its words.
+    #[must_use]
+    pub fn words(&self) -> String {
+        match self {
+            Self::Plain { text }
+            | Self::Emph { text }
+            | Self::Strong { text }
+            | Self::Aside { text }
+            | Self::StepRef { text, .. } => text.clone(),
+            Self::Number {
+                whole,
+                decimals,
+                exponent,
+                ..
+            } => format!("{whole}{}", tail(decimals, *exponent)),
+            Self::Math { words, .. } => words.clone(),
+        }
+    }
+}
+
+/// The plain characters of a text, maths as its words.
+#[must_use]
+pub fn words(text: &[Inline]) -> String {
+    text.iter().map(Inline::words).collect()
+}
+
+/// What follows the whole digits of a number: decimals and power of ten.
+#[must_use]
+pub fn tail(decimals: &str, exponent: Option<i32>) -> String {
+    let power = exponent
+        .map(|e| format!("×10{}", superscript(e)))
+        .unwrap_or_default();
+    format!("{decimals}{power}")
+}
+
+/// An integer in superior figures.
+fn superscript(n: i32) -> String {
+    let figures = ['⁰', '¹', '²', '³', '⁴', '⁵', '⁶', '⁷', '⁸', '⁹'];
+    let raise = |c: char| match c.to_digit(10) {
+        Some(d) => figures[d as usize],
+        None => '⁻',
+    };
+    n.to_string().chars().map(raise).collect()
 }

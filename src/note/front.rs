@@ -1,7 +1,7 @@
 //! What stands before the calculation: purpose, inputs and sources, assumptions, axes, materials.
 
 use super::builder::{Builder, Cell, Line, Sheet, number_column, word_column};
-use super::doc::{Align, Block, Column, FigureRef, Item, Text};
+use super::doc::{Align, Block, Column, FigureRef, Inline, Item, Text};
 use super::pictures::{JOINT, SECTIONS};
 use super::points::ends;
 use super::text::{emph, piece, plain, symbol};
@@ -133,6 +133,11 @@ impl Builder<'_> {
                 "The group stands in space; each run has its own faying normal.",
             ));
         }
+        text.push(piece(" "));
+        text.push(self.figure_ref(1, JOINT));
+        text.push(piece(" draws the group, "));
+        text.push(self.figure_ref(2, SECTIONS));
+        text.push(piece(" its welds in section."));
         self.para(text);
         self.figure(JOINT);
         if !self.points.is_empty() {
@@ -147,11 +152,21 @@ impl Builder<'_> {
 
     /// The place of a drawing; its caption is written once it is drawn.
     pub(super) fn figure(&mut self, name: &str) {
+        self.figures += 1;
         self.block(Block::Figure(FigureRef {
             name: name.to_owned(),
+            id: figure_id(name),
             caption: Vec::new(),
             alt: String::new(),
         }));
+    }
+
+    /// A link to the drawing that stands `ahead` drawings on.
+    pub(super) fn figure_ref(&self, ahead: usize, name: &str) -> Inline {
+        Inline::StepRef {
+            id: figure_id(name),
+            text: format!("Figure {}", self.figures + ahead),
+        }
     }
 
     /// The faying normals of the runs.
@@ -410,6 +425,10 @@ impl Builder<'_> {
             self.show(value);
         }
     }
+}
+
+fn figure_id(name: &str) -> String {
+    format!("figure.{name}")
 }
 
 /// A source in words, with the mark of one that is missing or open.

@@ -205,19 +205,8 @@ impl Builder<'_> {
 
     /// Where the numbers of a line come from: `steps 5, 7–9` and `tables 1, 2`.
     fn used_lines(&self, uses: &[Value]) -> Vec<Text> {
-        let (mut steps, mut tables) = (Vec::new(), Vec::new());
-        for used in uses {
-            let no = &self.ledger.get(*used).no;
-            match no.strip_prefix("table ") {
-                Some(table) => tables.extend(table.parse::<usize>().ok()),
-                None => steps.extend(no.parse::<usize>().ok()),
-            }
-        }
-        [("step", steps), ("table", tables)]
-            .into_iter()
-            .filter(|(_, numbers)| !numbers.is_empty())
-            .map(|(word, numbers)| plain(&ranges(word, numbers)))
-            .collect()
+        let numbers = uses.iter().map(|used| self.ledger.get(*used).no.as_str());
+        steps_and_tables(numbers).map(|text| plain(&text)).collect()
     }
 
     fn table_block(&self, sheet: Sheet) -> Table {
@@ -306,6 +295,23 @@ pub(super) fn origin(origin: &Origin) -> String {
         Origin::Method(method) => method.clone(),
         Origin::Input(place) => place.short(),
     }
+}
+
+/// Numbers of lines in words: `steps 5, 7–9`, then `tables 1, 2`, as far as there are some.
+pub(super) fn steps_and_tables<'n>(
+    numbers: impl Iterator<Item = &'n str>,
+) -> impl Iterator<Item = String> {
+    let (mut steps, mut tables) = (Vec::new(), Vec::new());
+    for no in numbers {
+        match no.strip_prefix("table ") {
+            Some(table) => tables.extend(table.parse::<usize>().ok()),
+            None => steps.extend(no.parse::<usize>().ok()),
+        }
+    }
+    [("step", steps), ("table", tables)]
+        .into_iter()
+        .filter(|(_, numbers)| !numbers.is_empty())
+        .map(|(word, numbers)| ranges(word, numbers))
 }
 
 /// `step 5`, `steps 5, 7–9`.

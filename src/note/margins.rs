@@ -149,6 +149,10 @@ impl Builder<'_> {
                 "Stress at the governing points"
             },
         );
+        self.para(vec![
+            self.figure_ref(1, STRESSES),
+            piece(" draws the stress on the throat at the points of the group."),
+        ]);
         self.figure(STRESSES);
         let regime = calculation.resistance.class.regime;
         let mut sites = Vec::new();
@@ -468,6 +472,10 @@ impl Builder<'_> {
         if calculation.outcomes.iter().any(
             |outcome| matches!(outcome, Outcome::Assessed(asked) if !asked.strength.is_empty()),
         ) {
+            self.para(vec![
+                self.figure_ref(1, DEMAND),
+                piece(" follows the utilisation of each check along the weld."),
+            ]);
             self.figure(DEMAND);
         }
         let mut of_case: BTreeMap<usize, (usize, usize, &Governing)> = BTreeMap::new();

@@ -4,9 +4,10 @@
 
 use super::builder::Builder;
 use super::calculation::{Calculation, Outcome};
+use super::doc::{Inline, Text};
 use super::margins::{Check, asked, check_name};
 use super::sketch::Sketch;
-use super::text::capital;
+use super::text::{capital, emph, number, piece, plain, strong};
 use crate::criteria::{FailurePath, Governing, Ground, profiles};
 use crate::formula::Value;
 use crate::joint::{RunSpec, SizeSpec};
@@ -121,10 +122,12 @@ pub struct Curve {
     pub letter: String,
     /// The check and its case, for the caption.
     pub says: String,
+    /// Its utilisation as printed, with a link to its step.
+    pub utilisation: Option<Inline>,
     /// By run: the ratio at equal steps of its length.
     pub runs: Vec<(usize, Vec<f64>)>,
-    /// Where it governs: run, part of its length, the utilisation and its printed text.
-    pub governing: (usize, f64, f64, String),
+    /// Where it governs: run, part of its length and the utilisation.
+    pub governing: (usize, f64, f64),
 }
 
 impl Picture {
@@ -142,7 +145,7 @@ impl Picture {
     /// The words of its caption, once it is drawn: from where it is seen, at which scale, and what
     /// the drawing leaves out.
     #[must_use]
-    pub fn caption(&self, view: &str, scale: &str, remarks: &[String]) -> String {
+    pub fn caption(&self, view: &str, scale: &str, remarks: &[String]) -> Text {
         let lengths = |units: &str| match units {
             "in" => "inches".to_owned(),
             other => other.to_owned(),
@@ -151,14 +154,14 @@ impl Picture {
             .iter()
             .map(|remark| format!(" {}.", capital(remark.trim_end_matches('.'))))
             .collect();
-        let words = match self {
+        let mut words = match self {
             Self::Joint(sketch) => {
                 let case = sketch.case.as_ref();
                 let case = case.map_or(String::new(), |case| format!(", with case {case}"));
-                format!(
+                plain(&format!(
                     "The weld group, {view}{case}. Scale {scale}; lengths in {}.",
                     lengths(sketch.units)
-                )
+                ))
             }
             Self::Sections(sections) => {
                 let kinds = if sections.len() == 1 {
@@ -171,31 +174,37 @@ impl Picture {
                 } else {
                     " Broken lines: planes that are checked."
                 };
-                format!("{kinds}, square to the run; not to scale.{broken}")
+                plain(&format!(
+                    "{kinds}, square to the run; not to scale.{broken}"
+                ))
             }
-            Self::Stresses(sketch) => format!(
+            Self::Stresses(sketch) => plain(&format!(
                 "Stress on the throat at the points of the group in case {}, {view}. Scale of lengths {scale}.",
                 sketch.case
-            ),
+            )),
             Self::Demand(demand) => {
-                let curves: Vec<String> = demand
-                    .curves
-                    .iter()
-                    .enumerate()
-                    .map(|(at, curve)| format!("{} ({}) {}", curve.letter, DASHES[at], curve.says))
-                    .collect();
-                let rest = match demand.left_out {
+                let mut words = plain(
+                    "Utilisation along the weld, laid out run by run, each check in its governing case: ",
+                );
+                for (at, curve) in demand.curves.iter().enumerate() {
+                    words.push(strong(&curve.letter));
+                    words.push(piece(&format!(" ({}) {}", DASHES[at], curve.says)));
+                    if let Some(utilisation) = &curve.utilisation {
+                        words.extend([piece(", "), emph("U"), piece(" = "), utilisation.clone()]);
+                    }
+                    let last = at + 1 == demand.curves.len();
+                    words.push(piece(if last { "." } else { "; " }));
+                }
+                words.push(piece(&match demand.left_out {
                     0 => String::new(),
                     1 => " One further check is not drawn.".to_owned(),
                     some => format!(" {some} further checks are not drawn."),
-                };
-                format!(
-                    "Utilisation along the weld, laid out run by run, each check in its governing case: {}.{rest}",
-                    curves.join("; ")
-                )
+                }));
+                words
             }
         };
-        format!("{words}{remarks}")
+        words.push(piece(&remarks));
+        words
     }
 
     /// What the drawing shows, for those who do not see it.
@@ -231,10 +240,8 @@ impl Picture {
                     .curves
                     .iter()
                     .map(|curve| {
-                        format!(
-                            "curve {} is largest on {}, {}",
-                            curve.letter, demand.runs[curve.governing.0].name, curve.governing.3
-                        )
+                        let run = &demand.runs[curve.governing.0].name;
+                        format!("curve {} is largest on {run}", curve.letter)
                     })
                     .collect();
                 let runs: Vec<&str> = demand.runs.iter().map(|run| run.name.as_str()).collect();
@@ -504,8 +511,9 @@ impl Builder<'_> {
                 continue;
             };
             let worked = check.worked.as_ref().and_then(|worked| worked.utilisation);
-            let text = worked.map_or(String::new(), |value| {
-                format!("U = {}", self.ledger.printed(value).text())
+            let utilisation = worked.map(|value| {
+                let step = self.ledger.get(value).anchor.clone();
+                number(&self.ledger.printed(value), false, Some(step))
             });
             curves.push(Curve {
                 letter: letter.to_string(),
@@ -518,7 +526,8 @@ impl Builder<'_> {
                     .into_iter()
                     .map(|along| (along.run, along.ratios))
                     .collect(),
-                governing: (governing.run, governing.s, governing.utilisation, text),
+                utilisation,
+                governing: (governing.run, governing.s, governing.utilisation),
             });
         }
         DemandSketch {

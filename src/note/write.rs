@@ -101,6 +101,7 @@ fn builder<'c>(calculation: &'c Calculation<'_>) -> Builder<'c> {
             size,
         ),
         env: Env::default(),
+        figures: 0,
         parts: Vec::new(),
         slugs,
         planar: calculation.is_planar(),
@@ -580,7 +581,8 @@ fn open_section(b: &Builder<'_>, assumptions: &[(String, String)]) -> Option<sup
         items.push(super::layout::item(&label, plain(&text)));
     }
     for (reason, numbers) in b.open_items() {
-        let words = [steps_and_tables(&numbers)];
+        let numbers = numbers.iter().map(String::as_str);
+        let words: Vec<String> = super::layout::steps_and_tables(numbers).collect();
         let label = format!("O{}", items.len() + 1);
         let text = format!("{}: {}.", capital(&reason), words.join(", "));
         items.push(super::layout::item(&label, plain(&text)));
@@ -588,7 +590,7 @@ fn open_section(b: &Builder<'_>, assumptions: &[(String, String)]) -> Option<sup
     if items.is_empty() {
         return None;
     }
-    let intro = "To be verified before this note is signed; utilisations and margins by a clause in question are marked.";
+    let intro = "To be verified before this note is signed. Lines by a clause in question are marked, and utilisations and margins that rest on an open item.";
     let blocks = vec![Block::Para { text: plain(intro) }, Block::Items { items }];
     Some(super::doc::Section {
         title: "Open items".to_owned(),
@@ -607,24 +609,6 @@ fn unrecorded_issue(joint: &Joint) -> Option<String> {
         .any(|change| change.revision.value == revision);
     let first = joint.changes.is_empty() && FIRST.contains(&revision);
     (!told && !first).then(|| format!("The record of changes has no entry for issue {revision}."))
-}
-
-/// Steps by their numbers, then tables: `steps 61, 62, table 3`.
-fn steps_and_tables(numbers: &[String]) -> String {
-    let (tables, steps): (Vec<&String>, Vec<&String>) =
-        numbers.iter().partition(|no| no.starts_with("table"));
-    let joined = |all: &[&String]| {
-        all.iter()
-            .map(|no| no.as_str())
-            .collect::<Vec<_>>()
-            .join(", ")
-    };
-    let lead = if steps.len() == 1 { "step" } else { "steps" };
-    match (steps.is_empty(), tables.is_empty()) {
-        (true, _) => joined(&tables),
-        (false, true) => format!("{lead} {}", joined(&steps)),
-        (false, false) => format!("{lead} {}, {}", joined(&steps), joined(&tables)),
-    }
 }
 
 /// The identity in words, before the signatures, which name it.
@@ -888,7 +872,7 @@ impl Note {
     /// Completes the captions of a picture once it is drawn.
     pub fn set_caption(&mut self, picture: usize, view: &str, scale: &str, remarks: &[String]) {
         let picture = &self.pictures[picture];
-        let words = picture.caption(view, scale, remarks);
+        let caption = picture.caption(view, scale, remarks);
         let blocks = self
             .doc
             .sections
@@ -898,8 +882,8 @@ impl Note {
             if let Block::Figure(figure) = block
                 && figure.name == picture.name()
             {
-                figure.alt = picture.alt(&words);
-                figure.caption = plain(&words);
+                figure.alt = picture.alt(&super::doc::words(&caption));
+                figure.caption.clone_from(&caption);
             }
         }
     }

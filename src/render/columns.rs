@@ -5,10 +5,10 @@
 
 use serde_json::{Value, json};
 
-use crate::note::doc::{Align, Column, Inline, Row, Table, Text};
+use crate::note::doc::{Align, Column, Inline, Row, Table, Text, tail, words};
 
 use super::faces::{Cut, text_width};
-use super::view::{TEXT_WIDTH, Targets, own_target, plain, tail, text, texts};
+use super::view::{TEXT_WIDTH, Targets, own_target, text, texts};
 use super::widths::{Need, Width, squeezed, widths};
 
 /// Size of table text (pt).
@@ -153,8 +153,8 @@ fn measure<'a>(column: &Column, cells: impl Iterator<Item = (&'a Text, bool)>) -
 /// Width of the widest word of a text (pt), as far as it does not break.
 fn longest_word(pieces: &[Inline], strong: bool) -> f64 {
     let strong = strong || pieces.iter().any(|p| matches!(p, Inline::Strong { .. }));
-    let words = plain(pieces);
-    let widths = words.split_whitespace().map(|w| width(w, strong));
+    let widths = words(pieces);
+    let widths = widths.split_whitespace().map(|w| width(w, strong));
     widths.fold(0.0, f64::max).min(WORD)
 }
 

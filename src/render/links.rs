@@ -14,6 +14,7 @@ use typst::model::{Destination, Document, Url};
 use typst::utils::PicoStr;
 use typst_layout::PagedDocument;
 
+use super::drawings::settle_drawings;
 use super::error::RenderError;
 
 /// The document with every pseudo-address replaced by the place of its label.
@@ -35,6 +36,7 @@ pub(super) fn resolve_links(document: &PagedDocument) -> Result<PagedDocument, R
     if !lost.is_empty() {
         return Err(RenderError::Unresolved(lost.into_iter().collect()));
     }
+    settle_drawings(&mut pages);
     Ok(PagedDocument::new(pages, document.info().clone()))
 }
 

@@ -4,6 +4,7 @@
 
 mod check;
 mod columns;
+mod drawings;
 mod error;
 mod escape;
 mod faces;

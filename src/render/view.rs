@@ -5,7 +5,7 @@ use std::collections::BTreeMap;
 
 use serde_json::{Value, json};
 
-use crate::note::doc::{Block, Doc, Head, Inline, Item, Line, Section, Step, Text};
+use crate::note::doc::{Block, Doc, Head, Inline, Item, Line, Section, Step, Text, tail, words};
 
 use super::columns::table_view;
 use super::error::RenderError;
@@ -76,7 +76,7 @@ pub(super) fn view(doc: &Doc, drawings: Option<&Drawings>) -> Result<Value, Rend
     }))
 }
 
-/// Where links can lead: steps and rows by their ids, then tables and sections.
+/// Where links can lead: steps and rows by their ids, then tables, drawings and sections.
 fn targets(doc: &Doc) -> Targets {
     let mut found = Targets::new();
     let blocks = || doc.sections.iter().flat_map(|s| &s.blocks);
@@ -103,6 +103,13 @@ fn targets(doc: &Doc) -> Targets {
     }
     for section in &doc.sections {
         add(&section.id, "section", &section.id);
+    }
+    for figure in blocks().filter_map(Block::as_figure) {
+        let target = Target {
+            label: format!("figure {}", figure.name),
+            anchor: anchor("figure", &figure.name),
+        };
+        found.entry(figure.id.clone()).or_insert(target);
     }
     found
 }
@@ -217,6 +224,8 @@ fn block(
                 .transpose()?;
             json!({
                 "kind": "figure",
+                "target": own_target(&figure.id, targets).0,
+                "anchor": own_target(&figure.id, targets).1,
                 "name": figure.name,
                 "alt": figure.alt,
                 "caption": text(&figure.caption, targets),
@@ -357,52 +366,11 @@ fn piece(piece: &Inline, targets: &Targets) -> Value {
     }
 }
 
-/// What follows the whole digits of a number: decimals and power of ten.
-pub(super) fn tail(decimals: &str, exponent: Option<i32>) -> String {
-    let power = exponent
-        .map(|e| format!("×10{}", superscript(e)))
-        .unwrap_or_default();
-    format!("{decimals}{power}")
-}
-
-/// An integer in superior figures.
-fn superscript(n: i32) -> String {
-    let figures = ['⁰', '¹', '²', '³', '⁴', '⁵', '⁶', '⁷', '⁸', '⁹'];
-    let raise = |c: char| match c.to_digit(10) {
-        Some(d) => figures[d as usize],
-        None => '⁻',
-    };
-    n.to_string().chars().map(raise).collect()
-}
-
-/// The plain characters of a text, maths as its words.
-pub(super) fn plain(pieces: &[Inline]) -> String {
-    pieces.iter().map(plain_piece).collect()
-}
-
-fn plain_piece(piece: &Inline) -> String {
-    match piece {
-        Inline::Plain { text }
-        | Inline::Emph { text }
-        | Inline::Strong { text }
-        | Inline::Aside { text }
-        | Inline::StepRef { text, .. } => text.clone(),
-        Inline::Number {
-            whole,
-            decimals,
-            exponent,
-            ..
-        } => {
-            format!("{whole}{}", tail(decimals, *exponent))
-        }
-        Inline::Math { words, .. } => words.clone(),
-    }
-}
-
-/// How many lines the sources take in the margin.
+/// How many lines the sources take in the margin, one after the other.
 fn margin_lines(source: &[Text]) -> usize {
-    source
-        .iter()
-        .map(|t| wrapped_lines(&soften(&plain(t), MARGIN_ROOM), MARGIN_ROOM))
-        .sum()
+    let entries: Vec<String> = source.iter().map(|t| words(t)).collect();
+    match entries.len() {
+        0 => 0,
+        _ => wrapped_lines(&soften(&entries.join("; "), MARGIN_ROOM), MARGIN_ROOM),
+    }
 }

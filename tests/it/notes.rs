@@ -8,10 +8,12 @@ use seamnote::note::Picture;
 use seamnote::project::{
     JointFile, Kinds, Produced, Workshop, find_joints, read_joint_file, read_surroundings,
 };
-use seamnote::render::{Drawings, Fault, Press, Stray, TypstSource, overflow, render_typst};
+use seamnote::render::{Drawings, Press, Stray, TypstSource, overflow, render_typst};
 use std::collections::BTreeSet;
 use std::path::{Path, PathBuf};
 use std::sync::OnceLock;
+use typst::foundations::Value;
+use typst::introspection::MetadataElem;
 use typst::layout::{Frame, FrameItem};
 use typst_layout::PagedDocument;
 
@@ -158,16 +160,21 @@ pub(crate) fn pages(press: &Press, produced: &Produced) -> PagedDocument {
         .unwrap_or_else(|fault| panic!("{}", source.explain(fault)))
 }
 
+/// A note to change, without what was written of it.
+fn produced_alike(produced: &Produced) -> Produced {
+    Produced {
+        note: produced.note.clone(),
+        outputs: Vec::new(),
+    }
+}
+
 /// What stands where it must not in the demo notes, on either paper.
 pub(crate) fn strays() -> Vec<(String, Stray)> {
     let press = Press::new();
     let mut found = Vec::new();
     for (joint, produced) in demo() {
         for paper in ["a4", "us-letter"] {
-            let mut produced = Produced {
-                note: produced.note.clone(),
-                outputs: Vec::new(),
-            };
+            let mut produced = produced_alike(produced);
             produced.note.doc.head.paper = paper;
             let strays = overflow(&pages(&press, &produced));
             found.extend(
@@ -180,18 +187,80 @@ pub(crate) fn strays() -> Vec<(String, Stray)> {
     found
 }
 
-/// Height that no upright line of text reaches (mm).
-const TALL: f64 = 6.0;
-
 #[test]
 fn nothing_leaves_its_column_or_overlaps_on_either_paper() {
-    for (name, stray) in strays() {
-        // The check compares upright boxes, so two slanted labels that stand clear of each other
-        // are told as an overlap today; they are known by their height.
-        let is_slanted = stray.at[3] - stray.at[1] > TALL;
-        let is_overlap = matches!(stray.fault, Fault::Overlap { .. });
-        assert!(is_overlap && is_slanted, "{name}: {stray:#?}");
+    assert!(strays().is_empty(), "{:#?}", strays());
+}
+
+/// Where the marks of the template stand in a frame: their words and heights (pt).
+fn marks(frame: &Frame, top: f64, out: &mut Vec<(String, f64)>) {
+    for (at, item) in frame.items() {
+        let top = top + at.y.to_pt();
+        match item {
+            FrameItem::Group(group) => marks(&group.frame, top, out),
+            FrameItem::Tag(typst::introspection::Tag::Start(content, _)) => {
+                let Some(mark) = content.to_packed::<MetadataElem>() else {
+                    continue;
+                };
+                let Value::Dict(mark) = &mark.value else {
+                    continue;
+                };
+                for (kind, name) in mark.iter() {
+                    if let Value::Str(name) = name {
+                        out.push((format!("{kind} {name}"), top));
+                    }
+                }
+            }
+            _ => {}
+        }
     }
+}
+
+#[test]
+fn a_drawing_stands_at_its_spot_or_at_the_head_of_the_next_page() {
+    /// From its spot down to a drawing at most (pt).
+    const NEAR: f64 = 10.0;
+    let press = Press::new();
+    let (mut at_spot, mut later) = (0, 0);
+    for (joint, produced) in demo() {
+        for paper in ["a4", "us-letter"] {
+            let mut produced = produced_alike(produced);
+            produced.note.doc.head.paper = paper;
+            let document = pages(&press, &produced);
+            let mut found: Vec<(usize, String, f64)> = Vec::new();
+            for (page, set) in document.pages().iter().enumerate() {
+                let mut on_page = Vec::new();
+                marks(&set.frame, 0.0, &mut on_page);
+                found.extend(on_page.into_iter().map(|(words, y)| (page, words, y)));
+            }
+            let mut order = Vec::new();
+            for picture in &produced.note.pictures {
+                let place = |kind: &str| {
+                    let words = format!("{kind} {}", picture.name());
+                    found.iter().find(|mark| mark.1 == words).unwrap()
+                };
+                let (spot, drawing) = (place("spot"), place("drawing"));
+                let from = drawing.2 - spot.2;
+                let name = format!("{}, {paper}, {}", joint.stem, picture.name());
+                if spot.0 == drawing.0 {
+                    at_spot += 1;
+                    assert!(
+                        (0.0..NEAR).contains(&from),
+                        "{name}: {from} pt from its spot"
+                    );
+                } else {
+                    later += 1;
+                    assert_eq!(spot.0 + 1, drawing.0, "{name}");
+                }
+                order.push((drawing.0, drawing.2));
+            }
+            assert!(order.is_sorted(), "{}: {order:?}", joint.stem);
+        }
+    }
+    assert!(
+        at_spot > 20 && later > 10,
+        "{at_spot} and {later}: both ways are to be seen"
+    );
 }
 
 /// The text of a frame, without blanks: the typesetter spaces words by position.

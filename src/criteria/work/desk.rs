@@ -138,7 +138,11 @@ impl<'a, 'g> Desk<'a, 'g> {
         if let Some(known) = self.ledger.find(&draft.id) {
             return Ok(known);
         }
+        let of_clause = draft.origin == self.cited();
         let value = self.ledger.step(draft, env)?;
+        if of_clause {
+            self.mark(value);
+        }
         self.steps.push(value);
         Ok(value)
     }

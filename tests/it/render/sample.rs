@@ -220,6 +220,7 @@ fn geometry() -> Section {
             },
             Block::Figure(FigureRef {
                 name: "figure".into(),
+                id: "figure.figure".into(),
                 caption: t(
                     "The weld group in the faying plane, seen from outboard, with case L07. Scale 1:2; lengths in mm.",
                 ),

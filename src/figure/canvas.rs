@@ -8,6 +8,9 @@ use super::rect::{Bounds, Rect};
 use super::text::{TextWidth, Words};
 use crate::quantity::real::{cos, sin};
 
+/// How far a thin line breaks off before a label (mm).
+const BREAK: f64 = 0.4;
+
 /// Layers from the bottom up.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord)]
 pub(super) enum Layer {
@@ -174,7 +177,10 @@ impl<'a> Canvas<'a> {
     }
 
     /// The drawing of all that stands here, the lowest layer first, moved to the upper left corner.
+    /// A thin line breaks off where a label stands on it.
     pub(super) fn finish(mut self, labels: Vec<Item>) -> Drawing {
+        let breaks = self.breaks(&labels);
+        self.items.extend(breaks);
         self.items.sort_by_key(|(layer, _)| *layer);
         let below = self.items.into_iter().map(|(_, item)| item);
         let all: Vec<Item> = below.chain(labels).collect();
@@ -192,6 +198,21 @@ impl<'a> Canvas<'a> {
             marks: self.marks.iter().map(|mark| mark.shifted(by)).collect(),
             ties: self.ties.iter().map(|tie| tie.shifted(by)).collect(),
         }
+    }
+
+    /// White under each label that stands on thin lines.
+    fn breaks(&self, labels: &[Item]) -> Vec<(Layer, Item)> {
+        let is_aid = |(layer, item): &(Layer, Item)| (*layer == Layer::Aid).then(|| strokes(item));
+        let aids: Vec<Rect> = self.items.iter().filter_map(is_aid).flatten().collect();
+        let boxes = labels.iter().filter_map(|item| match item {
+            Item::Label(label) => Some(label.rect().grown(BREAK)),
+            Item::Path(_) | Item::Circle { .. } => None,
+        });
+        boxes
+            .filter(|rect| aids.iter().any(|aid| aid.overlaps(rect)))
+            .map(|rect| Item::Path(Path::filled(&rect.corners(), Fill::White)))
+            .map(|white| (Layer::Aid, white))
+            .collect()
     }
 
     /// Whether a box is clear of all that must not be covered.

@@ -7,7 +7,7 @@ use super::load::{AT_CENTROID, Spot, draw_load, draw_outline, spot};
 use super::place::{around, dearer, place_labels, rank};
 use super::rect::Bounds;
 use super::scale::{Scale, standard};
-use super::scene::{Dimension, RunLine, Scene};
+use super::scene::{Axis, Dimension, Load, RunLine, Scene};
 use super::text::TextWidth;
 use super::triad::{draw_centroid, draw_triad};
 use super::view::{View, samples, unit};
@@ -229,43 +229,51 @@ impl<'a> Sheet<'a> {
     }
 
     fn dimension(&mut self, dimension: &Dimension) {
-        let load_at = |p: &V3| {
-            self.scene
-                .loads
-                .iter()
-                .position(|l| (l.at - p).norm() < 1e-9 * (1.0 + p.norm()))
+        let pairs = std::iter::once((dimension.from, dimension.to)).chain(dimension.alike.clone());
+        let placed: Vec<Placed<'_>> = pairs.map(|pair| self.placed(dimension, pair)).collect();
+        draw_dimension(&mut self.canvas, &self.view, dimension, &placed);
+    }
+
+    /// A dimension between two of the points that it may be drawn between.
+    fn placed<'d>(&self, dimension: &'d Dimension, (from, to): (V3, V3)) -> Placed<'d> {
+        let is_load = |p: &V3| {
+            let near = |l: &Load| (l.at - p).norm() < 1e-9 * (1.0 + p.norm());
+            self.scene.loads.iter().any(near)
         };
-        let hits = [load_at(&dimension.from), load_at(&dimension.to)];
         let found = |p: &V3| spot(self.view.image(p), &self.group, self.centre, self.far);
-        let found = [found(&dimension.from), found(&dimension.to)];
+        let found = [found(&from), found(&to)];
         let mut ends = found.map(|s| s.at);
         let mut broken = found.iter().any(|s| s.broken);
-        let centroid_only = self.scene.centroid.is_some_and(|c| {
-            (c - dimension.from).norm() < 1e-9 || (c - dimension.to).norm() < 1e-9
-        });
+        let centroid_only = self
+            .scene
+            .centroid
+            .is_some_and(|c| (c - from).norm() < 1e-9 || (c - to).norm() < 1e-9);
+        let mut from_end = None;
         if !self.view.flat {
-            (ends, broken) = self.squared(dimension, ends, broken);
+            let axis = dimension.axis;
+            let along = (to[axis.index()] - from[axis.index()]) * self.view.scale;
+            (ends, broken, from_end) = self.squared(axis, along, ends, broken);
         }
-        let to_load = hits.iter().any(Option::is_some) || (centroid_only && !dimension.optional);
-        draw_dimension(
-            &mut self.canvas,
-            &self.view,
-            &Placed {
-                dimension,
-                ends,
-                to_load,
-                group: self.group,
-                broken,
-            },
-        );
+        Placed {
+            dimension,
+            ends,
+            to_load: is_load(&from) || is_load(&to) || (centroid_only && !dimension.optional),
+            group: self.group,
+            broken,
+            from_end,
+        }
     }
 
     /// In space, both ends are brought onto one line along the axis, so that the line's length is
     /// the distance measured; a thin line shows where the second end came from. A line much longer
     /// than the group is broken.
-    fn squared(&mut self, dimension: &Dimension, ends: [P2; 2], broken: bool) -> ([P2; 2], bool) {
-        let axis = dimension.axis;
-        let along = (dimension.to[axis.index()] - dimension.from[axis.index()]) * self.view.scale;
+    fn squared(
+        &self,
+        axis: Axis,
+        along: f64,
+        ends: [P2; 2],
+        broken: bool,
+    ) -> ([P2; 2], bool, Option<P2>) {
         let longest = LONGEST_LINE * self.group.size().norm().max(10.0);
         // To a point drawn nearer, a line reaches as far as the point does.
         let reach = (ends[1] - ends[0]).dot(&self.view.direction(axis));
@@ -274,10 +282,8 @@ impl<'a> Sheet<'a> {
             false => (along.clamp(-longest, longest), along.abs() > longest),
         };
         let second = ends[0] + self.view.direction(axis) * shown;
-        if (second - ends[1]).norm() > 0.5 {
-            self.canvas.aid(second, ends[1], Stroke::grey(0.3).dashed());
-        }
-        ([ends[0], second], broken)
+        let from_end = ((second - ends[1]).norm() > 0.5).then_some(ends[1]);
+        ([ends[0], second], broken, from_end)
     }
 }
 

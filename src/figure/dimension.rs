@@ -17,10 +17,14 @@ const BAND: f64 = 3.2;
 const GAP: f64 = 1.6;
 /// Cost of a way that would crowd the drawing with a dimension that may be left out.
 const CROWDED: f64 = 70.0;
+/// Cost of a line that stays over what is drawn, however far it is carried.
+const THROUGH: f64 = 20.0;
+/// Cost of what stands between the points and the line, at each of three places.
+const BETWEEN: f64 = 5.0;
 /// How far an extension line passes the dimension line (mm).
 const PAST: f64 = 1.2;
 
-/// A dimension with its ends as drawn.
+/// A dimension with its ends as drawn, one pair of those that show it alike.
 pub(super) struct Placed<'a> {
     /// As asked for.
     pub(super) dimension: &'a Dimension,
@@ -32,6 +36,8 @@ pub(super) struct Placed<'a> {
     pub(super) group: Bounds,
     /// Whether it is not to scale.
     pub(super) broken: bool,
+    /// Where the second end came from, if it was brought in line with the first.
+    pub(super) from_end: Option<P2>,
 }
 
 /// A way of setting the dimension line off.
@@ -42,20 +48,31 @@ struct Way {
     cost: f64,
 }
 
-/// Draws a dimension outside all that stands beside it.
-pub(super) fn draw_dimension(canvas: &mut Canvas<'_>, view: &View, placed: &Placed<'_>) {
-    let d = view.direction(placed.dimension.axis);
-    let ways = ways(canvas, view, placed);
-    let Some(way) = ways.into_iter().min_by(|a, b| a.cost.total_cmp(&b.cost)) else {
+/// Draws a dimension outside all that stands beside it, between the ends that leave it the best way.
+pub(super) fn draw_dimension(
+    canvas: &mut Canvas<'_>,
+    view: &View,
+    dimension: &Dimension,
+    placed: &[Placed<'_>],
+) {
+    let rated = placed.iter().flat_map(|placed| {
+        let ways = ways(canvas, view, placed);
+        ways.into_iter().map(move |way| (placed, way))
+    });
+    let Some((placed, way)) = rated.min_by(|a, b| a.1.cost.total_cmp(&b.1.cost)) else {
         canvas.remarks.push(format!(
             "the dimension {} lies along the line of sight",
-            placed.dimension.text
+            dimension.text
         ));
         return;
     };
+    let d = view.direction(dimension.axis);
     let crowded = way.cost > CROWDED || placed.broken || canvas.runs > MANY;
-    if placed.dimension.optional && crowded {
+    if dimension.optional && crowded {
         return;
+    }
+    if let Some(from) = placed.from_end {
+        canvas.aid(placed.ends[1], from, Stroke::grey(0.3).dashed());
     }
     let [a, b] = way.feet;
     for (foot, end) in [(a, placed.ends[0]), (b, placed.ends[1])] {
@@ -113,13 +130,17 @@ fn way(canvas: &Canvas<'_>, view: &View, placed: &Placed<'_>, out: P2) -> Way {
     let clear =
         |feet: &[P2; 2]| canvas.is_clear(&Rect::line(feet[0], feet[1], BAND).lengthened(1.0));
     let levels = (0..80).map(|i| base + STEP + 0.5 * f64::from(i));
-    let feet = levels
-        .map(at_level)
-        .find(clear)
-        .unwrap_or_else(|| at_level(base + STEP));
+    let found = levels.map(at_level).find(clear);
+    let through = found.is_none();
+    let feet = found.unwrap_or_else(|| at_level(base + STEP));
     let crossings = feet.iter().zip(&ends).filter(|(foot, end)| {
         let line = Rect::line(*end + out * 2.5, **foot, 0.1);
         (*foot - *end).dot(&out) > 2.5 && !canvas.is_clear(&line)
+    });
+    // What stands between the points and the line leaves less room for its labels.
+    let between = [0.35, 0.65, 0.95].into_iter().filter(|part| {
+        let [a, b] = [0, 1].map(|end: usize| ends[end] + (feet[end] - ends[end]) * *part);
+        !view.flat && !canvas.is_clear(&Rect::line(a, b, 0.5))
     });
     let middle = (ends[0] + ends[1]) / 2.0;
     let inward = !view.flat && out.dot(&(middle - placed.group.centre())) < 0.0;
@@ -127,6 +148,8 @@ fn way(canvas: &Canvas<'_>, view: &View, placed: &Placed<'_>, out: P2) -> Way {
     let reach = (feet[0] - ends[0]).norm().max((feet[1] - ends[1]).norm());
     let cost = reach
         + 8.0 * f64::from(u8::try_from(crossings.count()).unwrap_or(u8::MAX))
+        + BETWEEN * f64::from(u8::try_from(between.count()).unwrap_or(u8::MAX))
+        + if through { THROUGH } else { 0.0 }
         + if inward { 12.0 } else { 0.0 }
         + if against {
             if view.flat { 60.0 } else { 6.0 }

@@ -54,6 +54,7 @@ pub fn scene(sketch: &Sketch) -> Scene {
             .map(|dimension| Dimension {
                 from: dimension.from,
                 to: dimension.to,
+                alike: dimension.alike.clone(),
                 axis: Axis::ALL[dimension.axis],
                 text: dimension.text.clone(),
                 optional: dimension.optional,

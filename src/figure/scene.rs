@@ -160,6 +160,8 @@ pub struct Dimension {
     pub from: V3,
     /// Second point.
     pub to: V3,
+    /// Other pairs of points that show the same distance as straight.
+    pub alike: Vec<(V3, V3)>,
     /// The axis along which the distance is measured.
     pub axis: Axis,
     /// The distance as printed, perhaps with its symbol, such as `x_c = 16.2`.

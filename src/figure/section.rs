@@ -13,7 +13,7 @@ use crate::note::{SectionShape, WeldSection};
 use crate::quantity::real::{cos, sin, tan};
 
 /// Width of a section, and its height without the words below (mm).
-const CELL: [f64; 2] = [42.0, 40.0];
+const CELL: [f64; 2] = [48.0, 40.0];
 /// Sections in a row, and rows.
 const ACROSS: usize = 3;
 const DOWN: usize = 3;
@@ -33,7 +33,7 @@ const MOST_LINES: usize = 3;
 /// Draws the sections, row by row.
 #[must_use]
 pub fn draw_sections(sections: &[WeldSection], fonts: &dyn TextWidth) -> Drawing {
-    let mut canvas = Canvas::new(fonts, P2::new(128.0, 170.0));
+    let mut canvas = Canvas::new(fonts, P2::new(150.0, 170.0));
     let drawn = &sections[..sections.len().min(ACROSS * DOWN)];
     let mut top = 0.0;
     for row in drawn.chunks(ACROSS) {
@@ -142,7 +142,7 @@ impl Cell<'_, '_> {
         let [attached, base] = self.section.parts.clone();
         let middle = (top(slide) + top(far + slide)) / 2.0;
         self.name(&attached, middle, P2::y());
-        self.name(&base, P2::new(REACH - 1.0, -BASE / 2.0), P2::x());
+        self.name(&base, P2::new(left + 1.0, -BASE / 2.0), -P2::x());
     }
 
     /// The name of a part near a place.
@@ -153,7 +153,7 @@ impl Cell<'_, '_> {
         let inside = Candidate {
             centre: at - P2::x() * (words.size()[0] / 2.0 * toward.x),
             angle: 0.0,
-            cost: if toward.x > 0.0 { 0.0 } else { 20.0 },
+            cost: if toward.x == 0.0 { 20.0 } else { 0.0 },
         };
         let mut places = vec![inside];
         places.extend(around(at, 1.2, words.size(), toward));
@@ -290,9 +290,10 @@ impl Cell<'_, '_> {
         }
     }
 
-    /// A leg's dimension, set off to one side.
+    /// A leg's dimension, set off to one side; its text stands over a level line.
     fn leg(&mut self, from: P2, to: P2, out: P2, text: &str) {
-        let off = out * 3.6;
+        let level = out.y < -0.9;
+        let off = out * if level { 4.8 } else { 3.6 };
         let thin = Stroke::black(0.35);
         for p in [from, to] {
             self.path(&[p + out * 1.0, p + off + out * 0.8], thin);
@@ -307,7 +308,7 @@ impl Cell<'_, '_> {
         }
         let words = self.canvas.words(vec![Span::new(text, Style::Plain)]);
         let (a, b) = (self.on_sheet(from + off), self.on_sheet(to + off));
-        let toward = P2::new(out.x, -out.y);
+        let toward = P2::new(out.x, if level { out.y } else { -out.y });
         let places = beside(a, b, 0.5, words.size(), toward, false);
         self.canvas
             .want(rank::DIMENSION, words, (a + b) / 2.0, places);

@@ -298,7 +298,7 @@ impl Builder<'_> {
         }
         if let Some(stitch) = &spec.stitch {
             words.push_str(&format!(
-                ", beads {} at {} from start to start",
+                ", beads {}, pitch {}",
                 typed(&stitch.bead.value),
                 typed(&stitch.pitch.value)
             ));

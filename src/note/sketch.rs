@@ -55,6 +55,8 @@ pub struct SketchDimension {
     pub from: V3,
     /// Second point.
     pub to: V3,
+    /// Other pairs of points that show the same distance as straight.
+    pub alike: Vec<(V3, V3)>,
     /// Number of the axis.
     pub axis: usize,
     /// The distance as printed.
@@ -80,6 +82,8 @@ pub struct SketchLoad {
 
 /// Characters of a run's name that the drawing shows at most; it shortens further to fit.
 const LONGEST_NAME: usize = 60;
+/// Further pairs of points that a dimension may be drawn between.
+const MOST_ALIKE: usize = 7;
 
 /// A load higher over the group than this part of the group's size is high, if it stands aside of the
 /// centroid by less than this part of its height.
@@ -229,6 +233,7 @@ impl Builder<'_> {
         SketchDimension {
             from,
             to,
+            alike: Vec::new(),
             axis,
             text,
             optional: false,
@@ -272,12 +277,18 @@ impl Builder<'_> {
                 let level = move |point: &&V3| (point[axis] - level).abs() < 1e-6 * size;
                 points.iter().filter(level)
             };
-            let pairs = at(low).flat_map(|from| at(high).map(move |to| (from, to)));
-            let (from, to) = pairs.min_by(|a, b| {
-                let off = |pair: &(&V3, &V3)| (pair.1 - pair.0).norm();
-                off(a).total_cmp(&(off(b) - 1e-9 * size))
-            })?;
-            (high - low > 1e-9 * size).then(|| self.dimension(*from, *to, axis))
+            let pairs = at(low).flat_map(|from| at(high).map(move |to| (*from, *to)));
+            let off = |pair: &(V3, V3)| (pair.1 - pair.0).norm();
+            let straightest = pairs
+                .clone()
+                .map(|pair| off(&pair))
+                .fold(f64::MAX, f64::min);
+            let mut alike = pairs.filter(|pair| off(pair) < straightest + 1e-6 * size);
+            let (from, to) = alike.next()?;
+            (high - low > 1e-9 * size).then(|| SketchDimension {
+                alike: alike.take(MOST_ALIKE).collect(),
+                ..self.dimension(from, to, axis)
+            })
         };
         axes.filter_map(extent).collect()
     }

@@ -11,8 +11,12 @@ use typst::introspection::{MetadataElem, Tag};
 use typst::layout::{Abs, Frame, FrameItem, GroupItem, Point};
 use typst_layout::Page;
 
-/// Part of the space that stands above a drawing; the text before it leaves its own.
-const ABOVE: f64 = 0.3;
+/// Part of the free room between text and text that stands above a drawing; and of its own space
+/// where nothing follows it on the page.
+const ABOVE: f64 = 0.45;
+const ABOVE_LAST: f64 = 0.8;
+/// How far letters reach under their line, in parts of their size.
+const DESCENT: f64 = 0.25;
 
 /// An item of a frame at its place.
 type Placed = (Point, FrameItem);
@@ -95,19 +99,42 @@ fn interleaved(text: Vec<Placed>, drawings: &[Drawing]) -> Vec<Placed> {
     let room = |drawing: &Drawing| drawing.height + drawing.space;
     let above = drawings.iter().filter(|drawing| drawing.top);
     let mut shift = -above.map(room).sum::<Abs>();
+    let is_ink = |item: &FrameItem| !matches!(item, FrameItem::Tag(_));
+    let last = text.iter().rposition(|(_, item)| is_ink(item));
+    let mut filled = shift;
     let mut out = Vec::with_capacity(text.len() + drawings.len());
-    for (at, item) in text {
+    for (n, (at, item)) in text.into_iter().enumerate() {
         let at = at + Point::with_y(shift);
         let name = spot(&item);
+        if is_ink(&item) {
+            filled = filled.max(bottom(at, &item));
+        }
         let here = drawings.iter().find(|d| Some(&d.name) == name.as_ref());
         out.push((at, item));
         if let Some(drawing) = here {
-            let place = Point::new(drawing.left, at.y + drawing.space * ABOVE);
+            let above = if last < Some(n) {
+                drawing.space * ABOVE_LAST
+            } else {
+                (at.y - filled + drawing.space) * ABOVE
+            };
+            let place = Point::new(drawing.left, filled + above);
             out.push((place, drawing.item.clone()));
             shift += room(drawing);
+            filled = place.y + drawing.height;
         }
     }
     out
+}
+
+/// How far down an item reaches.
+fn bottom(at: Point, item: &FrameItem) -> Abs {
+    at.y + match item {
+        FrameItem::Group(group) => group.frame.height(),
+        FrameItem::Text(text) => text.size * DESCENT,
+        FrameItem::Shape(shape, _) => shape.bbox(true).max.y,
+        FrameItem::Image(_, size, _) => size.y,
+        FrameItem::Link(..) | FrameItem::Tag(_) => Abs::zero(),
+    }
 }
 
 /// Names of the spots that stand directly in a text.

@@ -68,25 +68,36 @@ pub(super) fn table_view(table: &Table, targets: &Targets) -> Value {
             )
         })
         .collect();
-    let (size, widths) = fitted(&table.columns, &measures);
-    let row = |r: &Row| row_view(r, &table.columns, &measures, size / SIZE, targets);
+    let bands = bands(&table.columns, &measures);
+    // Padding is measured at the usual size; a table in several bands has that.
+    let scale = bands.first().map_or(1.0, |band| band.size / SIZE);
+    let row = |r: &Row| row_view(r, &table.columns, &measures, scale, targets);
     json!({
         "kind": "table",
         "target": own_target(&table.id, targets).0,
         "anchor": own_target(&table.id, targets).1,
         "caption": text(&table.caption, targets),
         "formulas": texts(&table.formulas, targets),
-        "size": (size < SIZE).then_some(size),
-        "columns": table.columns.iter().zip(&widths).map(|(c, (_, room))| json!({
+        "columns": table.columns.iter().map(|c| json!({
             "head": text(&c.head, targets),
             "unit": text(&c.unit, targets),
             "align": c.align,
-            "room": room,
         })).collect::<Vec<_>>(),
-        "widths": widths.iter().map(|(width, _)| written(width)).collect::<Vec<_>>().join(", ") + ",",
-        "sides": table.columns.iter().map(side).collect::<Vec<_>>().join(", ") + ",",
+        "bands": bands.iter().map(|band| band_view(band, &table.columns)).collect::<Vec<_>>(),
         "rows": table.rows.iter().map(row).collect::<Vec<_>>(),
         "foot": table.foot.as_ref().map(row),
+    })
+}
+
+/// A band as the template takes it: its columns by their numbers, each with its room for words.
+fn band_view(band: &Band, columns: &[Column]) -> Value {
+    let joined = |parts: Vec<String>| parts.join(", ") + ",";
+    json!({
+        "size": (band.size < SIZE).then_some(band.size),
+        "columns": band.columns,
+        "rooms": band.widths.iter().map(|(_, room)| room).collect::<Vec<_>>(),
+        "widths": joined(band.widths.iter().map(|(width, _)| written(width)).collect()),
+        "sides": joined(band.columns.iter().map(|i| side(&columns[*i]).to_owned()).collect()),
     })
 }
 
@@ -256,30 +267,77 @@ fn need(column: &Column, measure: &Measure, inset: f64, scale: f64) -> Need {
     }
 }
 
-/// The size of the table's text (pt), its columns' widths, and the width (ems) from which a word of
-/// each is given places to break: smaller text only where the usual one leaves a word no room.
-fn fitted(columns: &[Column], measures: &[Measure]) -> (f64, Vec<(Width, f64)>) {
-    let sides = |i| inset(i, columns.len());
-    let needs = |size: f64| -> Vec<Need> {
-        let pairs = columns.iter().zip(measures).enumerate();
-        pairs
-            .map(|(i, (c, m))| need(c, m, sides(i), size / SIZE))
+/// Columns of a table that stand side by side on one line.
+struct Band {
+    /// Their numbers.
+    columns: Vec<usize>,
+    /// Size of the text (pt).
+    size: f64,
+    /// The width of each, and the width (ems) from which a word is given places to break.
+    widths: Vec<(Width, f64)>,
+}
+
+/// How the columns share lines: on one, with smaller text where the usual one leaves a word no room;
+/// else in bands at the usual size, each led by the columns that name its rows; words break only
+/// where even that leaves no room.
+fn bands(columns: &[Column], measures: &[Measure]) -> Vec<Band> {
+    let all: Vec<usize> = (0..columns.len()).collect();
+    let needs = |chosen: &[usize], size: f64| -> Vec<Need> {
+        let sides = |at| inset(at, chosen.len());
+        let each = chosen.iter().enumerate();
+        each.map(|(at, i)| need(&columns[*i], &measures[*i], sides(at), size / SIZE))
             .collect()
     };
-    for size in [SIZE, MIDDLE_SIZE, LEAST_SIZE] {
-        if let Some(widths) = widths(&needs(size), TEXT_WIDTH) {
-            let whole = widths.into_iter().map(|width| (width, WORD_EMS));
-            return (size, whole.collect());
-        }
+    let whole = |chosen: &[usize], size: f64| {
+        let widths = widths(&needs(chosen, size), TEXT_WIDTH)?;
+        Some(Band {
+            columns: chosen.to_vec(),
+            size,
+            widths: widths.into_iter().map(|width| (width, WORD_EMS)).collect(),
+        })
+    };
+    let sizes = [SIZE, MIDDLE_SIZE, LEAST_SIZE];
+    if let Some(band) = sizes.into_iter().find_map(|size| whole(&all, size)) {
+        return vec![band];
     }
-    let needs = needs(LEAST_SIZE);
+    if let Some(bands) = in_bands(columns, &|chosen| whole(chosen, SIZE)) {
+        return bands;
+    }
+    let needs = needs(&all, LEAST_SIZE);
     let room = |i: usize, width: &Width| match width {
-        Width::Points(points) if *points < needs[i].least => (points - sides(i)) / LEAST_SIZE,
+        Width::Points(points) if *points < needs[i].least => {
+            (points - inset(i, columns.len())) / LEAST_SIZE
+        }
         Width::Points(_) | Width::Auto => WORD_EMS,
     };
     let widths = squeezed(&needs, TEXT_WIDTH).into_iter().enumerate();
-    let broken = widths.map(|(i, width)| (width, room(i, &width)));
-    (LEAST_SIZE, broken.collect())
+    vec![Band {
+        widths: widths.map(|(i, width)| (width, room(i, &width))).collect(),
+        columns: all,
+        size: LEAST_SIZE,
+    }]
+}
+
+/// The fewest bands, as even as they can be; none if a column finds no room beside those that name
+/// the rows, or if all columns are words.
+fn in_bands(columns: &[Column], whole: &dyn Fn(&[usize]) -> Option<Band>) -> Option<Vec<Band>> {
+    /// Columns that name a row at most, such as its number and its name.
+    const MOST_KEYS: usize = 2;
+    let is_words = |column: &&Column| column.align == Align::Left;
+    let words = columns.iter().take_while(is_words).count();
+    let keys = words.clamp(1, MOST_KEYS);
+    let rest: Vec<usize> = (keys..columns.len()).collect();
+    if words == columns.len() || rest.is_empty() {
+        return None;
+    }
+    let band = |chosen: &[usize]| {
+        let with_keys: Vec<usize> = (0..keys).chain(chosen.iter().copied()).collect();
+        whole(&with_keys)
+    };
+    (2..=rest.len()).find_map(|count| {
+        let each = rest.len().div_ceil(count);
+        rest.chunks(each).map(band).collect()
+    })
 }
 
 fn written(width: &Width) -> String {

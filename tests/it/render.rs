@@ -10,6 +10,7 @@ use seamnote::render::{
     Attachment, Drawings, EQUATION_WIDTH, Press, Relation, RenderError, TypstSource, markdown_text,
     overflow, render_markdown, render_typst,
 };
+use typst::layout::{Frame, FrameItem};
 
 fn drawings() -> Drawings {
     Drawings::from([("figure".to_owned(), sample::DRAWING.to_owned())])
@@ -554,5 +555,56 @@ fn nasty_text_reads_as_typed_in_markdown() {
 fn markdown_text_alone_is_a_paragraph_of_itself() {
     for text in NASTY {
         assert_eq!(shown(&markdown_text(text)), [text.trim()], "{text:?}");
+    }
+}
+
+/// The texts of a frame with their sizes (pt).
+fn texts(frame: &Frame, out: &mut Vec<(String, f64)>) {
+    for (_, item) in frame.items() {
+        match item {
+            FrameItem::Group(group) => texts(&group.frame, out),
+            FrameItem::Text(text) => out.push((text.text.to_string(), text.size.to_pt())),
+            FrameItem::Shape(..)
+            | FrameItem::Image(..)
+            | FrameItem::Link(..)
+            | FrameItem::Tag(_) => {}
+        }
+    }
+}
+
+/// Columns that no line holds stand in bands, each led by number and name of the rows; no number is
+/// lost or set twice, and none is smaller than the least size.
+#[test]
+fn a_table_too_wide_for_the_line_stands_in_bands() {
+    const LEAST: f64 = 7.5;
+    for (numbers, bands) in [(5, 1), (9, 2), (14, 3), (30, 5)] {
+        let mut doc = sample::sample();
+        let table = sample::wide_table(numbers);
+        doc.sections[0].blocks.push(Block::Table(table));
+        let document = Press::new().pages(&source(&doc).text).unwrap();
+        assert_eq!(overflow(&document), [], "{numbers} columns");
+        let mut found = Vec::new();
+        for page in document.pages() {
+            texts(&page.frame, &mut found);
+        }
+        for run in 1..=3 {
+            let times = |wanted: &str| {
+                found
+                    .iter()
+                    .filter(|(text, _)| text.ends_with(wanted))
+                    .count()
+            };
+            let leads = times(&format!("flange {run}"));
+            assert_eq!(leads, bands, "{numbers} columns, run {run}");
+            for at in 1..=numbers {
+                let number = format!("−{run}{at:02}.123456");
+                assert_eq!(times(&number), 1, "{number} of {numbers} columns");
+            }
+        }
+        let in_table = found.iter().filter(|(text, _)| text.contains(".123456"));
+        let least = in_table
+            .map(|(_, size)| *size)
+            .fold(f64::INFINITY, f64::min);
+        assert!(least >= LEAST, "{least} pt in {numbers} columns");
     }
 }

@@ -465,6 +465,34 @@ pub(crate) fn sample() -> Doc {
     }
 }
 
+/// A table that no line of the page holds: as many columns of numbers as asked for.
+pub(crate) fn wide_table(numbers: usize) -> Table {
+    let head = |at: usize| column(t(&format!("f{at}")), "N/mm", Align::Point);
+    let mut columns = vec![
+        column(t(""), "", Align::Left),
+        column(t("run"), "", Align::Left),
+    ];
+    columns.extend((1..=numbers).map(head));
+    columns.push(column(t("state"), "", Align::Left));
+    let line = |run: usize| {
+        let mut cells = vec![t(&run.to_string()), t(&format!("stiffener flange {run}"))];
+        cells.extend((1..=numbers).map(|at| num(&format!("-{run}{at:02}.123456"))));
+        cells.push(t("holds"));
+        Row {
+            id: Some(format!("wide.{run}")),
+            ..row(cells)
+        }
+    };
+    Table {
+        id: "wide".into(),
+        caption: t("Stresses of the runs"),
+        formulas: Vec::new(),
+        columns,
+        rows: (1..=3).map(line).collect(),
+        foot: None,
+    }
+}
+
 /// A small drawing as the figure room emits them.
 pub(crate) const DRAWING: &str = r##"box(width: 128mm, height: 60mm, {
   place(top + left, dx: 20mm, dy: 5mm, line(length: 40mm, stroke: 2pt))

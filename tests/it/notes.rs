@@ -218,7 +218,7 @@ fn marks(frame: &Frame, top: f64, out: &mut Vec<(String, f64)>) {
 
 #[test]
 fn a_drawing_stands_at_its_spot_or_at_the_head_of_the_next_page() {
-    /// From its spot down to a drawing at most (pt).
+    /// Between its spot and a drawing at most (pt).
     const NEAR: f64 = 25.0;
     let press = Press::new();
     let (mut at_spot, mut later) = (0, 0);

@@ -4,11 +4,12 @@
 //! printed result, to one unit in the last digit, has the operand raised whose half-unit error moves
 //! the result most; that operand is then printed with the new digits everywhere. A small difference of
 //! large numbers, which would ask for more than seven, is printed with fewer digits of its own instead.
-//! Repeated to a bound.
+//! Equal values of one symbol rise together. Repeated to a bound.
 
 use super::flat::Flat;
 use super::ledger::{EntryLook, Freedom, Kind, Ledger, Rounding, Value};
 use super::node::{Kind as NodeKind, Op};
+use super::symbol::Symbol;
 use super::{FormulaError, Problem, evaluate};
 use crate::quantity::{Dim, real};
 use std::collections::VecDeque;
@@ -40,11 +41,21 @@ impl Ledger {
         while let Some(value) = queue.pop_front() {
             waiting[value.0] = false;
             while let Some(raised) = self.raise_or_round(value, &lines)? {
-                self.keep_printed(Some(raised));
-                for other in lines.users[raised.0].iter().copied().chain([raised]) {
-                    if other != value && !waiting[other.0] {
-                        waiting[other.0] = true;
-                        queue.push_back(other);
+                let digits = self.get(raised).digits;
+                for changed in lines.alike[raised.0].iter().copied().chain([raised]) {
+                    let entry = self.get_mut(changed);
+                    if changed != raised {
+                        if entry.digits >= digits || entry.freedom != Freedom::Free {
+                            continue;
+                        }
+                        entry.digits = digits;
+                    }
+                    self.keep_printed(Some(changed));
+                    for other in lines.users[changed.0].iter().copied().chain([changed]) {
+                        if other != value && !waiting[other.0] {
+                            waiting[other.0] = true;
+                            queue.push_back(other);
+                        }
                     }
                 }
             }
@@ -282,6 +293,8 @@ struct Lines {
     uses: Vec<Vec<Value>>,
     /// For each value, the lines whose formulas use it.
     users: Vec<Vec<Value>>,
+    /// For each value, the equal ones of its family: they are printed alike, as far as they can be.
+    alike: Vec<Vec<Value>>,
 }
 
 impl Lines {
@@ -309,6 +322,35 @@ impl Lines {
             flats: ledger.values().map(flat).collect(),
             uses,
             users,
+            alike: alike(ledger),
         }
     }
+}
+
+/// For each value, the others of its family that are equal to it, such as throats of runs of one size.
+fn alike(ledger: &Ledger) -> Vec<Vec<Value>> {
+    /// Values that differ by less, in parts of themselves, are equal.
+    const EQUAL: f64 = 1e-12;
+    let mut ranked: Vec<(Symbol, f64, Value)> = ledger
+        .values()
+        .map(|value| {
+            (
+                ledger.get(value).symbol.family(),
+                ledger.get(value).value,
+                value,
+            )
+        })
+        .collect();
+    ranked.sort_by(|a, b| a.0.cmp(&b.0).then(a.1.total_cmp(&b.1)));
+    let mut alike = vec![Vec::new(); ranked.len()];
+    let is_equal = |a: &(Symbol, f64, Value), b: &(Symbol, f64, Value)| {
+        a.0 == b.0 && (a.1 - b.1).abs() <= EQUAL * a.1.abs()
+    };
+    for group in ranked.chunk_by(is_equal) {
+        for (_, _, one) in group {
+            let others = group.iter().map(|(_, _, other)| *other);
+            alike[one.0] = others.filter(|other| other != one).collect();
+        }
+    }
+    alike
 }

@@ -69,6 +69,17 @@ impl Symbol {
         Self::declared(base, index).expect("the program's own symbols are well formed")
     }
 
+    /// The symbol without the number that tells one run's value from another's.
+    #[must_use]
+    pub fn family(&self) -> Self {
+        let mut family = self.clone();
+        let is_number = |part: &String| part.chars().all(|c| c.is_ascii_digit());
+        if family.index.last().is_some_and(is_number) {
+            family.index.pop();
+        }
+        family
+    }
+
     /// A symbol as a user declares it, or a text saying what is wrong with it.
     ///
     /// # Errors

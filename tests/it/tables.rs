@@ -331,6 +331,39 @@ fn links_of_limits_lead_to_their_own_run() {
     assert!(seen > 5, "only {seen} limits lead to a run's row");
 }
 
+/// Equal values of one symbol print the same digits, run by run and step by step.
+#[test]
+fn what_is_equal_is_printed_alike() {
+    let long = produced(&long_names(12, 3));
+    let mut pairs = 0;
+    for produced in demo().iter().map(|(_, produced)| produced).chain([&long]) {
+        let trace: serde_json::Value = serde_json::from_str(&produced.note.trace_json()).unwrap();
+        let steps = trace["steps"].as_array().unwrap().iter();
+        let run = |c: char| c.is_ascii_digit();
+        let computed: Vec<(&str, f64, &str)> = steps
+            .filter(|step| step["kind"] == "step")
+            .map(|step| {
+                let symbol = step["symbol"].as_str().unwrap().trim_end_matches(run);
+                let printed = step["printed"].as_str().unwrap();
+                (symbol, step["value"].as_f64().unwrap(), printed)
+            })
+            .collect();
+        for (at, one) in computed.iter().enumerate() {
+            for other in &computed[at + 1..] {
+                if one.0 == other.0 && (one.1 - other.1).abs() < 1e-13 * one.1.abs() {
+                    pairs += 1;
+                    assert_eq!(
+                        one.2, other.2,
+                        "{} of {}",
+                        one.0, produced.note.doc.head.note
+                    );
+                }
+            }
+        }
+    }
+    assert!(pairs > 100, "only {pairs} pairs of equal values");
+}
+
 /// A box on a page: left, top, right, bottom (pt).
 type Ink = [f64; 4];
 

@@ -80,36 +80,31 @@ pub(super) fn view(doc: &Doc, drawings: Option<&Drawings>) -> Result<Value, Rend
 fn targets(doc: &Doc) -> Targets {
     let mut found = Targets::new();
     let blocks = || doc.sections.iter().flat_map(|s| &s.blocks);
-    let mut add = |id: &str, kind: &str, label: &str| {
-        let target = Target {
-            label: format!("{kind} {label}"),
-            anchor: anchor(kind, id),
-        };
+    let mut add = |id: &str, kind: &str, name: &str, label: String| {
+        let anchor = anchor(kind, name);
+        let target = Target { label, anchor };
         found.entry(id.to_owned()).or_insert(target);
     };
     for step in blocks().filter_map(Block::as_step) {
-        add(&step.id, "step", &step.no);
+        add(&step.id, "step", &step.id, format!("step {}", step.no));
+    }
+    for (table, no) in blocks().filter_map(Block::as_table).zip(1..) {
+        for (row, line) in table.rows.iter().chain(&table.foot).zip(1..) {
+            if let Some(id) = &row.id {
+                add(id, "row", id, format!("table {no}, row {line}"));
+            }
+        }
     }
     for table in blocks().filter_map(Block::as_table) {
-        let ids = table
-            .rows
-            .iter()
-            .chain(&table.foot)
-            .filter_map(|r| r.id.as_ref());
-        ids.for_each(|id| add(id, "row", id));
-    }
-    for table in blocks().filter_map(Block::as_table) {
-        add(&table.id, "table", &table.id);
+        add(&table.id, "table", &table.id, format!("table {}", table.id));
     }
     for section in &doc.sections {
-        add(&section.id, "section", &section.id);
+        let id = &section.id;
+        add(id, "section", id, format!("section {id}"));
     }
     for figure in blocks().filter_map(Block::as_figure) {
-        let target = Target {
-            label: format!("figure {}", figure.name),
-            anchor: anchor("figure", &figure.name),
-        };
-        found.entry(figure.id.clone()).or_insert(target);
+        let (id, name) = (&figure.id, &figure.name);
+        add(id, "figure", name, format!("figure {name}"));
     }
     found
 }

@@ -201,7 +201,7 @@ fn resolved_links_equal_the_typesetters_own() {
         );
     let own = own
         .replace("#link(\"", "#link(label(\"")
-        .replace("(label(\"row ixx\",", "(label(\"row ixx\"),");
+        .replace("(label(\"table 2, row 1\",", "(label(\"table 2, row 1\"),");
     let own = own
         .replace("(label(\"step 1\",", "(label(\"step 1\"),")
         .replace("(label(\"step 3\",", "(label(\"step 3\"),");

@@ -62,10 +62,7 @@ impl Given {
     pub fn parse(text: &str, dim: Dim, set: UnitSet) -> Result<Self, GivenError> {
         let text = text.trim();
         let (number, unit) = split_unit(text);
-        let typed = parse_number(number)?;
-        if !typed.is_finite() {
-            return Err(GivenError::NotFinite(text.to_owned()));
-        }
+        let typed = Self::typed_number(text)?;
         let Some(unit_text) = unit else {
             if dim == Dim::ANGLE && typed != 0.0 {
                 return Err(GivenError::BareAngle(text.to_owned()));
@@ -108,6 +105,21 @@ impl Given {
             conversion,
             value,
         })
+    }
+
+    /// The number of a quantity's text, whatever its unit.
+    ///
+    /// # Errors
+    ///
+    /// [`GivenError`] if the number is wrong.
+    pub fn typed_number(text: &str) -> Result<f64, GivenError> {
+        let text = text.trim();
+        let typed = parse_number(split_unit(text).0)?;
+        if typed.is_finite() {
+            Ok(typed)
+        } else {
+            Err(GivenError::NotFinite(text.to_owned()))
+        }
     }
 
     /// A quantity that the program itself states, such as a default, in the printing set.

@@ -20,11 +20,7 @@ pub fn read_quantity(item: Item<'_>, dim: Dim, set: UnitSet) -> Option<GivenAt> 
 /// Reads a further strength: as [`read_free`], above zero.
 pub(super) fn read_free_positive(item: Item<'_>, set: UnitSet) -> Option<RawQuantity> {
     let text = read_free(item, set)?;
-    let number = text.value.trim_start_matches(['+', ' ']);
-    let digits = |c: char| matches!(c, '0' | '.' | ' ');
-    let zero = number.trim_start_matches(digits);
-    let is_zero = number.starts_with('0') && !zero.starts_with(|c: char| c.is_ascii_digit());
-    if number.starts_with(['-', '−']) || is_zero {
+    if !Given::typed_number(&text.value).is_ok_and(|number| number > 0.0) {
         let message = format!("`{}` is {}, but must be above 0", item.name, text.value);
         return item.refuse_with("out-of-range", message, "a strength is a positive number");
     }

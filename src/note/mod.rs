@@ -9,6 +9,8 @@ mod builder;
 mod calculation;
 mod cases;
 mod clause;
+mod closing;
+mod coverage;
 pub mod doc;
 mod front;
 mod handbook;
@@ -28,6 +30,7 @@ mod stress;
 mod text;
 mod throats;
 mod trace;
+mod verdict;
 mod words;
 mod write;
 

@@ -1,0 +1,96 @@
+//! Failure paths: which the note checks, which are left to others, which it does not cover.
+
+use super::builder::Builder;
+use super::calculation::{Calculation, Outcome};
+use super::text::{capital, plain, slug, strong};
+use super::words::words;
+
+/// Failure paths: checked, excluded by the user, or not covered by this note.
+pub(super) fn coverage(b: &mut Builder<'_>, calculation: &Calculation<'_>) {
+    b.part("coverage", "Failure paths");
+    let mut rows = Vec::new();
+    for (word, name) in ordered_paths() {
+        let by: Vec<String> = calculation
+            .outcomes
+            .iter()
+            .filter_map(|outcome| match outcome {
+                Outcome::Assessed(asked)
+                    if asked.sheet.covers.iter().any(|path| path.word() == word) =>
+                {
+                    Some(asked.sheet.name.value.clone())
+                }
+                Outcome::Assessed(_) | Outcome::Refused(_) => None,
+            })
+            .collect();
+        let excluded = calculation
+            .joint
+            .excluded
+            .iter()
+            .find(|exclusion| exclusion.path.value == word);
+        let (state, detail) = match (by.is_empty(), excluded) {
+            (false, _) => (plain("checked"), by.join("; ")),
+            (true, Some(exclusion)) => (plain("excluded"), exclusion.by.value.clone()),
+            (true, None) => (
+                vec![strong("not covered")],
+                "not checked in this note; to be checked elsewhere".to_owned(),
+            ),
+        };
+        let cells = vec![
+            super::builder::Cell::Text(plain(&capital(&name))),
+            super::builder::Cell::Text(state),
+            super::builder::Cell::Text(plain(&detail)),
+        ];
+        rows.push(super::builder::Line {
+            id: format!("path.{}", slug(&word)),
+            cells,
+            strong: false,
+        });
+    }
+    let columns = vec![
+        super::builder::word_column("failure path"),
+        super::builder::word_column("state"),
+        super::builder::word_column("by"),
+    ];
+    let caption = plain("Failure paths of the joint, and where each is looked at");
+    b.table(super::builder::Sheet {
+        id: "paths".to_owned(),
+        caption,
+        formulas: Vec::new(),
+        columns,
+        rows,
+        foot: None,
+    });
+}
+
+/// Failure paths in the order of the sheets' words.
+fn ordered_paths() -> Vec<(String, String)> {
+    crate::criteria::FailurePath::WORDS
+        .iter()
+        .map(|(word, _)| {
+            (
+                (*word).to_owned(),
+                words()
+                    .paths
+                    .get(*word)
+                    .cloned()
+                    .unwrap_or_else(|| (*word).to_owned()),
+            )
+        })
+        .collect()
+}
+
+/// The failure paths that the note does not cover, and those left to others.
+pub(super) fn coverage_words(b: &Builder<'_>, calculation: &Calculation<'_>) -> String {
+    let uncovered = super::standing::uncovered(calculation);
+    let mut words = if uncovered.is_empty() {
+        "Every failure path is checked or excluded.".to_owned()
+    } else {
+        format!("Not covered by this note: {}.", uncovered.join(", "))
+    };
+    let excluded = b.joint.excluded.iter();
+    let excluded: Vec<&str> = excluded.map(|entry| entry.path.value.as_str()).collect();
+    if !excluded.is_empty() {
+        words.push_str(&format!(" Left to others: {}.", excluded.join(", ")));
+    }
+    words
+}

@@ -146,7 +146,7 @@ fn work(
         .map_or(available, usize::from)
         .min(joints.len())
         .max(1);
-    let sets = |surroundings: &Surroundings| !surroundings.templates.files.is_empty();
+    let sets = |surroundings: &Surroundings| !surroundings.templates.is_built_in();
     let workshop = match job {
         Job::Write { .. } => Some(Workshop::new()),
         Job::Vet => folders.values().any(sets).then(Workshop::new),
@@ -214,7 +214,7 @@ fn one(
             ))
         }
         // Templates of a project are vetted by setting the note with them.
-        (Job::Vet, Some(workshop)) if !surroundings.templates.files.is_empty() => {
+        (Job::Vet, Some(workshop)) if !surroundings.templates.is_built_in() => {
             let produced = workshop.produce(joint, surroundings, Kinds::ALL)?;
             Ok(said(&produced.note.standing, joint, ""))
         }

@@ -166,7 +166,7 @@ impl Workshop {
                 )
             }));
             attachments.extend(used_sheets(&calculation));
-            let pdf = if own.files.is_empty() {
+            let pdf = if own.is_built_in() {
                 self.press.pdf(&source.text, &attachments)
             } else {
                 self.bounded(source.text.clone(), attachments)

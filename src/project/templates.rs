@@ -65,6 +65,12 @@ pub(super) fn read_templates(folder: &Path) -> Result<OwnTemplates, ProjectError
 }
 
 impl OwnTemplates {
+    /// Whether a note is set with the built-in templates alone.
+    #[must_use]
+    pub fn is_built_in(&self) -> bool {
+        self.files.is_empty()
+    }
+
     /// A fault of setting a note: at its line of the project's own template, if it stands there.
     pub(super) fn explain(&self, joint: &str, fault: RenderError) -> ProjectError {
         let faults = match &fault {

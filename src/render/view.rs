@@ -34,7 +34,7 @@ type Uses<'a> = BTreeMap<&'a str, Vec<(&'a str, &'a str)>>;
 const USES_NAMED: usize = 6;
 
 /// Steps from which on a note has a list of its sections.
-const LONG_NOTE: usize = 90;
+const LONG_NOTE: usize = 60;
 
 /// A place that links can lead to.
 #[derive(Clone, Debug)]

@@ -175,6 +175,8 @@ pub struct Entry {
     pub signed: bool,
     /// Which way it is rounded where it is printed.
     pub rounding: Rounding,
+    /// Of a found value, what it was found from.
+    pub rests_on: Vec<Value>,
     /// What the checker's margin calls it, such as `step 12` or `table 2`; empty until the note is laid out.
     pub no: String,
     /// The id that links lead to: its own, or that of the table row it stands in.
@@ -207,30 +209,27 @@ pub struct Draft<'a> {
 /// Which way a printed value is rounded: margins down, utilisations up, so that neither flatters.
 #[derive(Clone, Copy, PartialEq, Eq, Debug)]
 pub enum Rounding {
-    /// To the nearest.
+    /// To the nearest, with the digits that its lines ask for.
     Nearest,
-    /// Toward −∞.
+    /// A margin of safety: toward −∞, to [`MARGIN_DECIMALS`].
     Down,
-    /// Toward +∞.
+    /// A utilisation: toward +∞, to [`UTILISATION_DECIMALS`].
     Up,
 }
 
+/// Decimals of a margin of safety.
+pub const MARGIN_DECIMALS: i32 = 2;
+/// Decimals of a utilisation.
+pub const UTILISATION_DECIMALS: i32 = 3;
+
 impl Rounding {
-    /// The value rounded this way to the digits that the nearest printing has.
+    /// The value rounded this way.
     fn of(self, value: f64, nearest: Printed) -> Printed {
-        let up = match self {
-            Self::Nearest => return nearest,
-            Self::Down => false,
-            Self::Up => true,
-        };
-        if nearest.exponent.is_some() || nearest.mantissa == "0" {
-            return nearest;
+        match self {
+            Self::Nearest => nearest,
+            Self::Down => Printed::rounded(value, MARGIN_DECIMALS, false),
+            Self::Up => Printed::rounded(value, UTILISATION_DECIMALS, true),
         }
-        let decimals = nearest
-            .mantissa
-            .split_once('.')
-            .map_or(0, |(_, decimals)| decimals.len());
-        Printed::rounded(value, i32::try_from(decimals).unwrap_or(i32::MAX), up)
     }
 }
 
@@ -321,6 +320,7 @@ impl Ledger {
             mark: None,
             signed: false,
             rounding: Rounding::Nearest,
+            rests_on: Vec::new(),
             no: String::new(),
             digits: START_DIGITS,
             floor: self.floor(dim),
@@ -491,11 +491,12 @@ impl Ledger {
         }
     }
 
-    /// The values that a line's numbers come from, in the order of its formula, each once.
+    /// The values that a line's numbers come from, in the order of its formula, each once; of a found
+    /// value, those that it was found from.
     #[must_use]
     pub fn uses(&self, value: Value) -> Vec<Value> {
         let Kind::Step { node, env, .. } = &self.get(value).kind else {
-            return Vec::new();
+            return self.get(value).rests_on.clone();
         };
         let mut uses = Vec::new();
         let mut seen = BTreeSet::new();

@@ -25,7 +25,10 @@ pub use batch::{Block, Program};
 pub use digits::Printed;
 pub use dims::dimension;
 pub use eval::{Look, evaluate};
-pub use ledger::{Bound, Draft, Entry, Env, Kind, Ledger, Mark, Origin, Rounding, SumSet, Value};
+pub use ledger::{
+    Bound, Draft, Entry, Env, Kind, Ledger, MARGIN_DECIMALS, Mark, Origin, Rounding, SumSet,
+    UTILISATION_DECIMALS, Value,
+};
 pub use lines::{Equation, EquationLine};
 pub use math::Math;
 pub use node::{Branch, Condition, Function, Kind as NodeKind, Literal, Node, Op, Relation};

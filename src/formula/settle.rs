@@ -125,6 +125,9 @@ impl Ledger {
     /// where trailing zeros were dropped.
     fn unit(&self, value: Value) -> f64 {
         let printed = self.printed(value);
+        if self.get(value).rounding != Rounding::Nearest {
+            return printed.unit_in_last();
+        }
         let size = printed.value().abs();
         let digits = i32::try_from(self.get(value).digits).unwrap_or(i32::MAX);
         #[expect(

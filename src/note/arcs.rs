@@ -265,7 +265,7 @@ impl Builder<'_> {
             for component in 0..3 {
                 let name = format!("{letter}_{}", AXES[component]);
                 if !self.run_values[index].contains_key(&name) {
-                    let says = format!("Axis {letter} of the arc's plane, {}", AXES[component]);
+                    let says = format!("Axis {letter} of the arc’s plane, {}", AXES[component]);
                     let value = self.direction_value(
                         index,
                         &name,
@@ -392,14 +392,14 @@ impl Builder<'_> {
 
     fn own_moments(&mut self, index: usize) -> Result<(), FormulaError> {
         let q = |a: &str, b: &str| Symbol::of("Q", &[a, b]);
-        let says = "Second moment about the arc's own centroid, toward its middle";
+        let says = "Second moment about the arc’s own centroid, toward its middle";
         let radial = "t*R^3*(L/(2*R) + sin(beta)*cos(beta) - 4*R*sin(beta)^2/L)";
         let depth = self.arc_step(index, "Q_r", Symbol::of("Q", &["r"]), says, radial)?;
         // The depth of a flat arc: a difference of terms of the size A R², of which it keeps little.
         let of = |name: &str| self.ledger.get(self.run_values[index][name]).value;
         let size = of("A") * of("R") * of("R");
         self.ledger.raise_floor(depth, FLAT * size);
-        let says = "Second moment about the arc's own centroid, square to that";
+        let says = "Second moment about the arc’s own centroid, square to that";
         self.arc_step(
             index,
             "Q_t",
@@ -408,7 +408,7 @@ impl Builder<'_> {
             "t*R^3*(L/(2*R) - sin(beta)*cos(beta))",
         )?;
         let width = self.ledger.get(self.run_values[index]["Q_t"]).value;
-        let says = "Second moment about the arc's own centroid";
+        let says = "Second moment about the arc’s own centroid";
         let uu = "Q_r*cos(mu)^2 + Q_t*sin(mu)^2".to_owned();
         let vv = "Q_r*sin(mu)^2 + Q_t*cos(mu)^2".to_owned();
         let uv = "(Q_r - Q_t)*sin(mu)*cos(mu)";

@@ -1,6 +1,6 @@
 //! The way from a joint as told to the outcome of every check: runs, properties, stresses, margins.
 
-use crate::criteria::{Asked, FailurePath, Ground, Library, assess_one, unchecked_runs};
+use crate::criteria::{Asked, FailurePath, Ground, Library, Sheet, assess_one, unchecked_runs};
 use crate::formula::Printed;
 use crate::joint::Joint;
 use crate::load::{Action, FrameError, actions};
@@ -46,6 +46,10 @@ pub struct Refusal {
     pub reason: String,
     /// What would help.
     pub help: String,
+    /// The failure paths that the sheet covers.
+    pub covers: Vec<FailurePath>,
+    /// The number of the case that finds no resistance, if that is why.
+    pub case: Option<usize>,
 }
 
 /// Faults of an assessment that are no mistakes of the file: a clause that does not apply.
@@ -121,12 +125,14 @@ impl<'a> Calculation<'a> {
             match assess_one(&ground, index, library) {
                 Ok(asked) if !asked.strength.is_empty() && self.unresisted().is_some() => {
                     let (case, why) = self.unresisted().expect("it was just found");
-                    let refusal = self.no_path(clause.clone(), case, &why);
-                    outcomes.push(Outcome::Refused(refusal));
+                    outcomes.push(Outcome::Refused(self.no_path(&asked.sheet, case, &why)));
                 }
                 Ok(asked) => outcomes.push(Outcome::Assessed(asked)),
                 Err(found) if found.0.iter().all(|fault| REFUSALS.contains(&fault.code)) => {
-                    outcomes.push(Outcome::Refused(refusal(clause, &found.0)));
+                    let sheet = library
+                        .find(clause)
+                        .expect("a clause without a sheet is a fault");
+                    outcomes.push(Outcome::Refused(refusal(sheet, &found.0)));
                 }
                 Err(found) => faults.extend(found.0),
             }
@@ -167,7 +173,7 @@ impl<'a> Calculation<'a> {
         }
     }
 
-    fn no_path(&self, clause: String, case: usize, why: &Unresisted) -> Refusal {
+    fn no_path(&self, sheet: &Sheet, case: usize, why: &Unresisted) -> Refusal {
         let name = &self.joint.loads.cases[case].name.value;
         let help = match why {
             Unresisted::AboutLine { .. } => {
@@ -181,20 +187,24 @@ impl<'a> Calculation<'a> {
             }
         };
         Refusal {
-            clause,
+            clause: sheet.name.value.clone(),
             reason: format!("case {name}: {}", self.unresisted_words(why)),
             help: help.to_owned(),
+            covers: sheet.covers.clone(),
+            case: Some(case),
         }
     }
 }
 
 /// A check without a number, for the faults that kept it from one.
-fn refusal(clause: &str, faults: &[Diagnostic]) -> Refusal {
+fn refusal(sheet: &Sheet, faults: &[Diagnostic]) -> Refusal {
     let help = faults.iter().flat_map(|fault| &fault.help);
     Refusal {
-        clause: clause.to_owned(),
+        clause: sheet.name.value.clone(),
         reason: once(faults.iter().map(|fault| fault.message.as_str())),
         help: once(help.map(String::as_str)),
+        covers: sheet.covers.clone(),
+        case: None,
     }
 }
 
@@ -211,7 +221,7 @@ fn refuse_unchecked(ground: &Ground<'_>, outcomes: Vec<Outcome>) -> Vec<Outcome>
     }
     let refuse = |outcome: Outcome| match outcome {
         Outcome::Assessed(asked) if !asked.strength.is_empty() => {
-            Outcome::Refused(refusal(&asked.sheet.name.value, &faults))
+            Outcome::Refused(refusal(&asked.sheet, &faults))
         }
         other => other,
     };

@@ -138,6 +138,7 @@ impl<'a> Symbols<'a> {
                 .into(),
             rows,
             foot: None,
+            uses: Vec::new(),
         })]
     }
 
@@ -342,6 +343,7 @@ fn tables(table: &CodeTable, document: &str) -> Vec<Block> {
                 .map(|(key, value)| row(vec![plain(&key.value), plain(&value.value)]))
                 .collect(),
             foot: None,
+            uses: Vec::new(),
         }))
     };
     told.filter_map(block).collect()

@@ -158,7 +158,7 @@ pub(super) fn identity_section(sections: &mut [super::doc::Section], identity: &
             piece("Calculation identity "),
             strong(&identity.printed()),
             piece(&format!(
-                ", over inputs, clause sheets and printed results; words {}. Written by Seamnote {}. A signature stands \
+                ", over inputs, clause sheets and printed results; the words have the digest {}. Written by Seamnote {}. A signature stands \
                  for this identity only: a note that prints another one is unsigned.",
                 identity.printed_words(),
                 env!("CARGO_PKG_VERSION")

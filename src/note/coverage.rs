@@ -4,24 +4,27 @@ use super::builder::Builder;
 use super::calculation::{Calculation, Outcome};
 use super::text::{capital, plain, slug, strong};
 use super::words::words;
+use crate::criteria::FailurePath;
 
 /// Failure paths: checked, excluded by the user, or not covered by this note.
 pub(super) fn coverage(b: &mut Builder<'_>, calculation: &Calculation<'_>) {
     b.part("coverage", "Failure paths");
     let mut rows = Vec::new();
     for (word, name) in ordered_paths() {
-        let by: Vec<String> = calculation
-            .outcomes
-            .iter()
-            .filter_map(|outcome| match outcome {
-                Outcome::Assessed(asked)
-                    if asked.sheet.covers.iter().any(|path| path.word() == word) =>
-                {
-                    Some(asked.sheet.name.value.clone())
+        let mut by: Vec<String> = Vec::new();
+        let mut without: Vec<String> = Vec::new();
+        for outcome in &calculation.outcomes {
+            let covers = |paths: &[FailurePath]| paths.iter().any(|path| path.word() == word);
+            match outcome {
+                Outcome::Assessed(asked) if covers(&asked.sheet.covers) => {
+                    by.push(asked.sheet.name.value.clone());
                 }
-                Outcome::Assessed(_) | Outcome::Refused(_) => None,
-            })
-            .collect();
+                Outcome::Refused(refusal) if covers(&refusal.covers) => {
+                    without.push(refusal.clause.clone());
+                }
+                Outcome::Assessed(_) | Outcome::Refused(_) => {}
+            }
+        }
         let excluded = calculation
             .joint
             .excluded
@@ -30,6 +33,10 @@ pub(super) fn coverage(b: &mut Builder<'_>, calculation: &Calculation<'_>) {
         let (state, detail) = match (by.is_empty(), excluded) {
             (false, _) => (plain("checked"), by.join("; ")),
             (true, Some(exclusion)) => (plain("excluded"), exclusion.by.value.clone()),
+            (true, None) if !without.is_empty() => (
+                vec![strong("no number")],
+                format!("{}: see “Checks without a number”", without.join("; ")),
+            ),
             (true, None) => (
                 vec![strong("not covered")],
                 "not checked in this note; to be checked elsewhere".to_owned(),
@@ -64,7 +71,7 @@ pub(super) fn coverage(b: &mut Builder<'_>, calculation: &Calculation<'_>) {
 
 /// Failure paths in the order of the sheets' words.
 fn ordered_paths() -> Vec<(String, String)> {
-    crate::criteria::FailurePath::WORDS
+    FailurePath::WORDS
         .iter()
         .map(|(word, _)| {
             (

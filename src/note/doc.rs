@@ -182,6 +182,8 @@ pub struct Table {
     pub rows: Vec<Row>,
     /// A last row set off by a light rule, such as the sums.
     pub foot: Option<Row>,
+    /// Ids of the steps that its cells take numbers from.
+    pub uses: Vec<String>,
 }
 
 /// A column of a table.

@@ -1,14 +1,14 @@
 //! What stands before the calculation: purpose, inputs and sources, assumptions, axes, materials.
 
 use super::builder::{Builder, Cell, Line, Sheet, number_column, word_column};
-use super::doc::{Align, Block, Column, FigureRef, Inline, Item, Text};
+use super::doc::{Block, FigureRef, Inline, Item, Text};
 use super::pictures::{JOINT, SECTIONS};
 use super::points::ends;
 use super::text::{emph, piece, plain, symbol};
 use crate::formula::{Origin, Printed, Symbol};
 use crate::joint::{Part, SizeSpec, ToeSpec};
-use crate::quantity::Dim;
-use crate::weld::{End, Segment, ThroatRule};
+use crate::quantity::{Dim, Given};
+use crate::weld::{End, GAP_FREE_IN, Segment, ThroatRule, inch};
 
 impl Builder<'_> {
     /// What the note is for.
@@ -58,12 +58,18 @@ impl Builder<'_> {
             text.push(piece(&format!("; geometry by drawing {}", drawing.value)));
         }
         text.push(piece(&format!(
-            "; “line 12” beside a step is a line of it. Every number below is in {}, {} and {}; an input given in another unit is converted on a line of its own. \
+            "; “line 12” beside a step is a line of {}. Every number below is in {}, {} and {}; an input given in another unit is converted on a line of its own. \
              Re-keying the printed numbers of a line gives its printed result, to one unit in the last digit; margins are \
-             rounded down, utilisations up. Beside a step, “→ 12” leads to the steps that use its result.",
+             rounded down, utilisations up. Beside a step, “→ 12” leads to where its result is used, and the box is for \
+             the checker’s tick.",
+            match self.joint.inherits_from() {
+                Some(shared) => format!("the first, “{shared}:12” one of the second"),
+                None => "it".to_owned(),
+            },
             units.force(),
             units.length(),
-            units.stress()
+            // No line ends inside a unit.
+            units.stress().replace('/', "/\u{2060}")
         )));
         self.para(text);
     }
@@ -135,7 +141,7 @@ impl Builder<'_> {
         }
         text.push(piece(" "));
         text.push(self.figure_ref(1, JOINT));
-        text.push(piece(" draws the group, "));
+        text.push(piece(" shows the group, "));
         text.push(self.figure_ref(2, SECTIONS));
         text.push(piece(" its welds in section."));
         self.para(text);
@@ -247,6 +253,27 @@ impl Builder<'_> {
             rows,
             foot: None,
         });
+        self.free_gaps();
+    }
+
+    /// Gaps that take nothing off a leg.
+    fn free_gaps(&mut self) {
+        let free = GAP_FREE_IN * inch(self.joint.units.value);
+        let mut gaps: Vec<(String, String)> = Vec::new();
+        for run in self.runs {
+            let Some(gap) = &self.joint.weld.runs[run.spec].gap else {
+                continue;
+            };
+            let told = (run.name.clone(), self.typed_length(&gap.value));
+            if gap.value.value > 0.0 && gap.value.value <= free && !gaps.contains(&told) {
+                gaps.push(told);
+            }
+        }
+        for (run, gap) in gaps {
+            self.para(plain(&format!(
+                "The root gap of {run}, {gap}, is not over 1/16 in, so its legs count in full (AWS D1.1, fit-up)."
+            )));
+        }
     }
 
     /// The side of the root on which the fillet's toe on the base stands.
@@ -266,15 +293,19 @@ impl Builder<'_> {
         }
     }
 
+    /// A length as typed, with the note's unit where it has none of its own.
+    fn typed_length(&self, given: &Given) -> String {
+        match &given.unit {
+            Some(_) => given.text(),
+            None => format!("{} {}", given.number, self.joint.units.value.length()),
+        }
+    }
+
     /// A run's weld in words, sizes as typed.
     pub(super) fn weld_words(&self, index: usize) -> String {
         let run = &self.runs[index];
         let spec = &self.joint.weld.runs[run.spec];
-        let length = self.joint.units.value.length();
-        let typed = |given: &crate::quantity::Given| match &given.unit {
-            Some(_) => given.text(),
-            None => format!("{} {length}", given.number),
-        };
+        let typed = |given: &Given| self.typed_length(given);
         let mut words = match &spec.size {
             SizeSpec::Fillet { leg, .. } => format!("fillet, leg {}", typed(&leg.value)),
             SizeSpec::Unequal {
@@ -316,19 +347,20 @@ impl Builder<'_> {
         let stress = |base: &str, index: &str| {
             number_column(symbol(&Symbol::of(base, &[index])), units.stress())
         };
-        let columns = vec![
-            word_column("part"),
-            word_column("material"),
+        let parts: Vec<Part> = self.joint.parts.clone();
+        let told = [
+            parts.iter().any(|part| part.thickness.is_some()),
+            parts.iter().any(|part| part.f_y.is_some()),
+            parts.iter().any(|part| part.f_u.is_some()),
+        ];
+        let mut columns = vec![word_column("part"), word_column("material")];
+        let numbers = [
             number_column(symbol(&Symbol::of("t", &["p"])), units.length()),
             stress("f", "y"),
             stress("f", "u"),
-            Column {
-                head: plain("source"),
-                unit: Vec::new(),
-                align: Align::Left,
-            },
         ];
-        let parts: Vec<Part> = self.joint.parts.clone();
+        columns.extend(kept(numbers, told));
+        columns.push(word_column("source"));
         let mut rows = Vec::new();
         for (index, part) in parts.iter().enumerate() {
             let number = (index + 1).to_string();
@@ -336,7 +368,7 @@ impl Builder<'_> {
                 Cell::Text(plain(&part.name.value)),
                 Cell::Text(plain(&part.material.value)),
             ];
-            for (name, symbol, says, given) in [
+            let values = [
                 (
                     "thickness",
                     Symbol::of("t", &["p", &number]),
@@ -355,7 +387,8 @@ impl Builder<'_> {
                     "Ultimate strength",
                     &part.f_u,
                 ),
-            ] {
+            ];
+            for (name, symbol, says, given) in kept(values, told) {
                 let Some(given) = given else {
                     cells.push(Cell::Text(plain("–")));
                     continue;
@@ -427,6 +460,15 @@ impl Builder<'_> {
     }
 }
 
+/// The columns that some part has a value for.
+fn kept<T>(columns: [T; 3], told: [bool; 3]) -> impl Iterator<Item = T> {
+    columns
+        .into_iter()
+        .zip(told)
+        .filter(|(_, told)| *told)
+        .map(|(column, _)| column)
+}
+
 fn figure_id(name: &str) -> String {
     format!("figure.{name}")
 }
@@ -435,8 +477,8 @@ fn figure_id(name: &str) -> String {
 fn source_words(source: Option<&str>, to_be_verified: bool) -> Text {
     match (source, to_be_verified) {
         (Some(source), false) => plain(source),
-        (Some(source), true) => vec![piece(source), super::text::strong(" (to be verified)")],
-        (None, _) => vec![super::text::strong("no source: to be verified")],
+        (Some(source), true) => vec![piece(source), super::text::strong(" [to be verified]")],
+        (None, _) => vec![super::text::strong("[no source: to be verified]")],
     }
 }
 

@@ -44,7 +44,7 @@ impl Builder<'_> {
         let unit = |base: &str, index: &[&str]| Symbol::of(base, index);
         let mut told = Vec::new();
         if drawn_so {
-            let says = "Centroid of the unit lines from the pattern's origin, by the handbook";
+            let says = "Centroid of the unit lines from the pattern’s origin, by the handbook";
             told.push(Told {
                 index: 1,
                 unit: unit("x", &["u"]),
@@ -125,7 +125,7 @@ impl Builder<'_> {
             rows,
             foot: None,
         });
-        let says = "Largest difference of a handbook value from its sum, as a part of it (centroids: of the group's size)";
+        let says = "Largest difference of a handbook value from its sum, as a part of it (centroids: of the group’s size)";
         self.bound(
             "agreement.handbook",
             Symbol::of("delta", &["hb"]),

@@ -180,7 +180,14 @@ impl Builder<'_> {
     fn is_open(&self, value: Value) -> bool {
         let entry = self.ledger.get(value);
         let result = matches!(entry.symbol.plain().as_str(), "U" | "MS");
-        entry.mark.is_some() || (result && !self.ledger.marks_behind(value).is_empty())
+        let assumed = || {
+            self.joint
+                .assumptions
+                .iter()
+                .any(|told| told.to_be_verified)
+        };
+        entry.mark.is_some()
+            || (result && (assumed() || !self.ledger.marks_behind(value).is_empty()))
     }
 
     /// Everything still to be verified, with the numbers of the lines that carry it.
@@ -211,6 +218,7 @@ impl Builder<'_> {
 
     fn table_block(&self, sheet: Sheet) -> Table {
         let powers = powers(&self.ledger, &sheet);
+        let uses = self.steps_behind(&sheet);
         let row = |line| self.row(line, &powers);
         let mut columns = sheet.columns;
         for (column, power) in columns.iter_mut().zip(&powers) {
@@ -226,7 +234,29 @@ impl Builder<'_> {
             columns,
             rows: sheet.rows.into_iter().map(row).collect(),
             foot: sheet.foot.map(row),
+            uses,
         }
+    }
+
+    /// The steps that the cells of a table take their numbers from, each once.
+    fn steps_behind(&self, sheet: &Sheet) -> Vec<String> {
+        let lines = sheet.rows.iter().chain(&sheet.foot);
+        let mut found: Vec<String> = Vec::new();
+        for cell in lines.flat_map(|line| &line.cells) {
+            let values = match cell {
+                Cell::Own(value) => self.ledger.uses(*value),
+                Cell::Linked(value) => vec![*value],
+                Cell::Text(_) | Cell::Rounded { .. } => Vec::new(),
+            };
+            for value in values {
+                let entry = self.ledger.get(value);
+                let is_step = !entry.no.is_empty() && !entry.no.starts_with("table");
+                if is_step && !found.contains(&entry.anchor) {
+                    found.push(entry.anchor.clone());
+                }
+            }
+        }
+        found
     }
 
     fn row(&self, line: Line, powers: &[Option<i32>]) -> Row {
@@ -336,7 +366,8 @@ fn ranges(word: &str, mut numbers: Vec<usize>) -> String {
         at = end + 1;
     }
     let plural = if numbers.len() == 1 { "" } else { "s" };
-    format!("{word}{plural} {}", parts.join(", "))
+    // The word stays with its first number.
+    format!("{word}{plural}\u{a0}{}", parts.join(", "))
 }
 
 /// A plain entry of a list.

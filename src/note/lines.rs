@@ -597,9 +597,9 @@ impl Builder<'_> {
                 name: own,
                 symbol: Self::pair_symbol(name).with("0"),
                 formula: self.own_formula(*p, *q),
-                says: "Second moment about the run's own centroid",
+                says: "Second moment about the run’s own centroid",
                 every_run: false,
-                sum: Some((sum, "Sum of the runs' own second moments")),
+                sum: Some((sum, "Sum of the runs’ own second moments")),
             })
             .collect();
         let caption = format!(
@@ -711,7 +711,7 @@ fn first_moment(axis: usize) -> Property {
         name: FIRST[axis],
         symbol: Symbol::of("G", &[a]),
         formula: format!("A*{a}_m"),
-        says: "First moment of the run's area",
+        says: "First moment of the run’s area",
         every_run: true,
         sum: Some((FIRST_SUMS[axis], "First moment of all areas")),
     }

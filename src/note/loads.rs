@@ -22,6 +22,14 @@ pub(super) struct CaseValues {
     pub(super) about: [Value; 3],
 }
 
+/// The name of a case, with the frame that its values are given in.
+fn framed_name(case: &Case) -> String {
+    match &case.frame {
+        Some(frame) => format!("{} (in frame {})", case.name.value, frame.name.value),
+        None => case.name.value.clone(),
+    }
+}
+
 impl Builder<'_> {
     /// The level of the cases, where all have the same.
     pub(super) fn shared_level(&self) -> Option<&'static str> {
@@ -56,11 +64,13 @@ impl Builder<'_> {
         if told {
             columns.push(word_column("what"));
         }
-        for axis in AXES {
-            columns.push(number_column(symbol(&Symbol::of("F", &[axis])), &force));
-        }
-        for axis in AXES {
-            columns.push(number_column(symbol(&Symbol::of("M", &[axis])), &moment));
+        let turned = cases.iter().all(|case| case.frame.is_some());
+        for (base, unit) in [("F", &force), ("M", &moment)] {
+            columns.extend(AXES.map(|axis| {
+                let head = Symbol::of(base, &[axis]);
+                let head = if turned { head.with("given") } else { head };
+                number_column(symbol(&head), unit)
+            }));
         }
         // A lone case governs without being told so.
         let rows_bold = cases.len() > 1 && governs;
@@ -68,7 +78,7 @@ impl Builder<'_> {
         for index in shown {
             let case = self.joint.loads.cases[index].clone();
             let id = format!("case.{}-{}", index + 1, slug(&case.name.value));
-            let mut cells = vec![Cell::Text(plain(&case.name.value))];
+            let mut cells = vec![Cell::Text(plain(&framed_name(&case)))];
             if level.is_none() {
                 cells.push(Cell::Text(plain(case.level.value.word())));
             }
@@ -140,7 +150,7 @@ impl Builder<'_> {
         };
         self.para(plain(&format!(
             "Actions on the weld group from the attached part; moments about the point of application, by the \
-             right-hand rule. The file holds {count}; {run}. Components of one case are never mixed with another's."
+             right-hand rule. The file holds {count}; {run}. Components of one case are never mixed with another’s."
         )));
     }
 
@@ -178,15 +188,15 @@ impl Builder<'_> {
     /// The table of points of application, each once with the cases that act there.
     fn load_points(&mut self, shown: &[usize]) {
         let unit = self.joint.units.value.length();
-        let mut columns = vec![word_column("acts at")];
-        columns.extend(AXES.map(|axis| number_column(symbol(&Symbol::of(axis, &["P"])), unit)));
+        let mut columns = vec![word_column("case")];
+        let all = &self.joint.loads.cases;
+        let turned = shown.iter().all(|case| all[*case].frame.is_some());
+        let index = if turned { "given" } else { "P" };
+        columns.extend(AXES.map(|axis| number_column(symbol(&Symbol::of(axis, &[index])), unit)));
         let mut points: Vec<(usize, Vec<String>)> = Vec::new();
         for index in shown {
             let case = &self.joint.loads.cases[*index];
-            let name = match &case.frame {
-                Some(frame) => format!("{} (in frame {})", case.name.value, frame.name.value),
-                None => case.name.value.clone(),
-            };
+            let name = framed_name(case);
             let start = |other: usize| self.joint.loads.cases[other].at.place.start;
             match points
                 .iter_mut()

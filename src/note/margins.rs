@@ -12,10 +12,11 @@ use crate::criteria::{
     Asked, From, Governing, Ground, LimitOutcome, Margin, Side, Turn, Worked, partner, work,
     work_limit,
 };
-use crate::formula::Bound;
-use crate::formula::{Draft, Env, Origin, Printed, Symbol, Value};
+use crate::formula::{
+    Bound, Draft, Env, MARGIN_DECIMALS, Origin, Printed, Symbol, UTILISATION_DECIMALS, Value,
+};
 use crate::quantity::Dim;
-use crate::solve::{Batch, Points};
+use crate::solve::{Batch, Points, Regime};
 use crate::weld::V3;
 use std::collections::{BTreeMap, BTreeSet};
 
@@ -151,7 +152,7 @@ impl Builder<'_> {
         );
         self.para(vec![
             self.figure_ref(1, STRESSES),
-            piece(" draws the stress on the throat at the points of the group."),
+            piece(" shows the stress on the throat at the points of the group."),
         ]);
         self.figure(STRESSES);
         let regime = calculation.resistance.class.regime;
@@ -162,17 +163,8 @@ impl Builder<'_> {
                 self.place_words(spot),
                 self.joint.loads.cases[spot.case].name.value
             );
+            self.case_at_centroid(spot.case, regime, cases)?;
             self.heading(&capital(&words));
-            if let std::collections::btree_map::Entry::Vacant(e) = cases.entry(spot.case) {
-                let values = self.work_case(spot.case)?;
-                let tag = format!(
-                    "case.{}-{}",
-                    spot.case + 1,
-                    slug(&self.joint.loads.cases[spot.case].name.value)
-                );
-                let env = self.case_terms(&tag, spot.case, &values, regime)?;
-                e.insert((values, env));
-            }
             let (values, case_env) = cases[&spot.case].clone();
             let tag = format!("stress-{}", index + 1);
             let env = self.work_spot(&tag, spot, &values, &case_env, regime, &|name| {
@@ -185,37 +177,32 @@ impl Builder<'_> {
     }
 
     /// Demand, capacity and utilisation of a worked check, in words: `: 399.3 against 1023 N/mm, U = 0.391`.
-    pub(super) fn held_against(&self, check: &Check) -> String {
+    pub(super) fn held_against(&self, check: &Check) -> Text {
         let Some(worked) = &check.worked else {
-            return String::new();
+            return Vec::new();
         };
         let text = |value: Value| self.ledger.printed(value).text();
         let is_factor = |value: &&Value| self.ledger.get(**value).id.ends_with(".load-factor");
         if let Some(factor) = worked.steps.iter().find(is_factor) {
-            return format!(
+            return plain(&format!(
                 ": its limit is reached at {} times the loads",
                 text(*factor)
-            );
+            ));
         }
-        let unit = self
-            .joint
-            .units
-            .value
-            .text(self.ledger.get(worked.demand).dim);
-        let unit = if unit.is_empty() {
-            unit
-        } else {
-            format!(" {unit}")
-        };
-        let utilisation = worked.utilisation.map_or(String::new(), |value| {
-            let up = Printed::rounded(self.ledger.get(value).value, 3, true);
-            format!(", U = {}", up.text())
-        });
-        format!(
-            ": {} against {}{unit}{utilisation}",
-            text(worked.demand),
-            text(worked.capacity)
-        )
+        let unit = self.ledger.get(worked.demand).dim;
+        let unit = self.joint.units.value.text(unit);
+        let space = if unit.is_empty() { "" } else { " " };
+        let (demand, capacity) = (text(worked.demand), text(worked.capacity));
+        let mut words = plain(&format!(": {demand} against {capacity}{space}{unit}"));
+        if let Some(value) = worked.utilisation {
+            let up = Printed::rounded(self.ledger.get(value).value, UTILISATION_DECIMALS, true);
+            words.extend([
+                piece(", "),
+                super::text::emph("U"),
+                piece(&format!(" = {}", up.text())),
+            ]);
+        }
+        words
     }
 
     /// Works every check at its governing point.
@@ -400,14 +387,14 @@ impl Builder<'_> {
                 || Cell::Text(plain("0")),
                 |value| Cell::Rounded {
                     value,
-                    decimals: 3,
+                    decimals: UTILISATION_DECIMALS,
                     up: true,
                 },
             ));
             cells.push(match (worked.margin, check.governing.margin) {
                 (Some(value), _) => Cell::Rounded {
                     value,
-                    decimals: 2,
+                    decimals: MARGIN_DECIMALS,
                     up: false,
                 },
                 (None, Margin::FixedTermsExceed) => Cell::Text(plain("fails")),
@@ -474,7 +461,7 @@ impl Builder<'_> {
         ) {
             self.para(vec![
                 self.figure_ref(1, DEMAND),
-                piece(" follows the utilisation of each check along the weld."),
+                piece(" shows the utilisation of each check along the weld."),
             ]);
             self.figure(DEMAND);
         }
@@ -543,7 +530,7 @@ impl Builder<'_> {
                     self.ledger.get_mut(value).signed = true;
                     Cell::Rounded {
                         value,
-                        decimals: 2,
+                        decimals: MARGIN_DECIMALS,
                         up: false,
                     }
                 }
@@ -559,7 +546,7 @@ impl Builder<'_> {
                 Cell::Text(plain(&self.place_words(spot_of(at)))),
                 Cell::Rounded {
                     value: utilisation,
-                    decimals: 3,
+                    decimals: UTILISATION_DECIMALS,
                     up: true,
                 },
                 margin,
@@ -607,7 +594,11 @@ impl Builder<'_> {
     }
 
     /// Checks that gave no number, and why.
-    pub(super) fn refusals(&mut self, calculation: &Calculation<'_>) {
+    pub(super) fn refusals(
+        &mut self,
+        calculation: &Calculation<'_>,
+        cases: &mut CaseTerms,
+    ) -> Result<(), NoteError> {
         let refused: Vec<_> = calculation
             .outcomes
             .iter()
@@ -617,8 +608,9 @@ impl Builder<'_> {
             })
             .collect();
         if refused.is_empty() {
-            return;
+            return Ok(());
         }
+        let unresisted = refused.iter().find_map(|refusal| refusal.case);
         self.part("refusals", "Checks without a number");
         self.para(plain(
             "For these checks mechanics or the clause gives no number, so this note gives none.",
@@ -637,6 +629,29 @@ impl Builder<'_> {
             })
             .collect();
         self.items(items);
+        if let Some(case) = unresisted {
+            self.case_at_centroid(case, calculation.resistance.class.regime, cases)?;
+        }
+        Ok(())
+    }
+
+    /// The actions of a case about the centroid, under a heading of their own, unless they are worked.
+    fn case_at_centroid(
+        &mut self,
+        case: usize,
+        regime: Regime,
+        cases: &mut CaseTerms,
+    ) -> Result<(), NoteError> {
+        if cases.contains_key(&case) {
+            return Ok(());
+        }
+        let name = self.joint.loads.cases[case].name.value.clone();
+        self.heading(&format!("Case {name}, about the centroid"));
+        let values = self.work_case(case)?;
+        let tag = format!("case.{}-{}", case + 1, slug(&name));
+        let env = self.case_terms(&tag, case, &values, regime)?;
+        cases.insert(case, (values, env));
+        Ok(())
     }
 
     /// Limits on sizes and lengths: each distinct one in steps, then all runs.
@@ -788,6 +803,12 @@ impl Builder<'_> {
             spot.p <= 0.0 || spot.p >= 1.0,
         ) {
             let end = if spot.p <= 0.0 { "start" } else { "end" };
+            let cut = (at - run.told.point(spot.p)).norm() > 1e-9 * self.properties.size;
+            let end = if cut {
+                format!("effective {end}")
+            } else {
+                end.to_owned()
+            };
             let closed =
                 (run.told.point(0.0) - run.told.point(1.0)).norm() < 1e-9 * self.properties.size;
             let end = if closed {

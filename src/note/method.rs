@@ -3,7 +3,7 @@
 use super::builder::Builder;
 use super::doc::{Inline, Text};
 use super::text::{math, piece};
-use crate::formula::{Math, Symbol};
+use crate::formula::{Math, Printed, Symbol};
 use crate::solve::Regime;
 
 /// A symbol as a piece of text.
@@ -48,37 +48,55 @@ impl Builder<'_> {
             Regime::Point => {}
         }
         if on_throat {
-            self.para(throat_words());
+            self.para(throat_words(regime));
         }
-        self.para(vec![
-            piece("Symbols: index "),
-            sym("s", &[]),
-            piece(" is the start of a run, "),
-            sym("e", &[]),
-            piece(" its end, "),
-            sym("m", &[]),
-            piece(" its middle, "),
-            sym("c", &[]),
-            piece(" the centroid of the group, "),
-            sym("P", &[]),
-            piece(" the point of application; "),
+        let stopped = (0..self.runs.len()).any(|run| self.counted(run).is_some());
+        self.para(symbols(stopped, on_throat));
+    }
+}
+
+/// The symbols that stand in formulas without a step of their own.
+fn symbols(stopped: bool, on_throat: bool) -> Text {
+    let mut text = vec![
+        piece("Symbols: index "),
+        sym("s", &[]),
+        piece(" is the start of a run, "),
+        sym("e", &[]),
+        piece(" its end, "),
+        sym("m", &[]),
+        piece(" its middle, "),
+        sym("c", &[]),
+        piece(" the centroid of the group, "),
+        sym("P", &[]),
+        piece(" the point of application; "),
+    ];
+    if stopped {
+        text.extend([
             sym("c", &["s"]),
             piece(" and "),
             sym("c", &["e"]),
-            piece(" shorten a run at its stops; "),
-            sym("i", &[]),
-            piece(" counts the runs; an index a, b, … tells sizes apart. "),
+            piece(" are what a stop takes off a run; "),
+        ]);
+    }
+    text.extend([
+        sym("i", &[]),
+        piece(" counts the runs; an index a, b, … tells sizes apart. "),
+    ]);
+    if on_throat {
+        text.extend([
             sym("ell", &[]),
             piece(" is the direction of a run, "),
             sym("n", &[]),
             piece(" the direction across it in the faying plane, "),
             sym("k", &[]),
-            piece(
-                " the faying normal. Along a straight run the largest value of a check that is convex in the stress \
-                 stands at an end; on arcs and for other checks it is searched along the run.",
-            ),
+            piece(" the faying normal. "),
         ]);
     }
+    text.push(piece(
+        "Along a straight run the largest value of a check that is convex in the stress stands at an end; on arcs and \
+         for other checks it is searched along the run.",
+    ));
+    text
 }
 
 fn planar() -> Text {
@@ -166,31 +184,57 @@ fn space() -> Text {
 
 fn collinear() -> Text {
     vec![
-        piece("All runs lie on one line along u: the stress from the moments is "),
+        piece("All runs lie on one line, along its unit vector u: the stress from the moments is "),
         math(&Math::Row(vec![
             Math::Word("(M × u)".to_owned()),
-            over(symbol("s", &[]), symbol("I", &["L"])),
+            over(symbol("p", &[]), symbol("I", &["L"])),
         ])),
+        piece(", with M about the centroid, "),
+        sym("p", &[]),
+        piece(" from the centroid along the line and "),
+        sym("I", &["L"]),
         piece(
-            ", s from the centroid along the line. A moment about the line itself finds no resistance and is \
+            " the second moment of the throats about it. A moment about the line itself finds no resistance and is \
              refused.",
         ),
     ]
 }
 
-fn throat_words() -> Text {
+/// `(out ± across)/√2` with its symbols.
+fn on_throat_plane(minus: bool, out: &Math) -> Math {
+    let across = symbol("f", &["n"]);
+    let terms = Math::Terms(vec![(false, out.clone()), (minus, across)]);
+    let root = Math::Root(Box::new(Math::Number {
+        printed: Printed::typed("2", 2.0),
+        degrees: false,
+        link: None,
+    }));
+    over(Math::Bracket(Box::new(terms)), root)
+}
+
+fn throat_words(regime: Regime) -> Text {
+    let out = match regime {
+        Regime::Planar => symbol("f", &["w", "z"]),
+        Regime::Space | Regime::Collinear { .. } | Regime::Point => symbol("f", &["out"]),
+    };
     vec![
         piece("On the throat plane of a fillet with equal legs, tension positive: "),
-        sym("sigma", &["perp"]),
-        piece(" = (out\u{a0}−\u{a0}across)\u{a0}/\u{a0}√2 and "),
-        sym("tau", &["perp"]),
+        equals(symbol("sigma", &["perp"]), on_throat_plane(true, &out)),
+        piece(" and "),
+        equals(symbol("tau", &["perp"]), on_throat_plane(false, &out)),
         piece(
-            " = (out\u{a0}+\u{a0}across)\u{a0}/\u{a0}√2 if the toe on the base stands toward the direction across, with the signs of “across” \
-             changed if it stands against it; \
-             “out” is the stress out of the faying plane, “across” that across the run. Table “Runs as given” tells the \
-             toe of each run. At another angle the plane halves the angle between the faces; of unequal legs it is square \
+            " if the toe on the base stands toward the direction across the run, with the signs of ",
+        ),
+        sym("f", &["n"]),
+        piece(" changed if it stands against it; "),
+        math(&out),
+        piece(" is the stress out of the faying plane, "),
+        sym("f", &["n"]),
+        piece(
+            " that across the run, and the table “Runs as given” tells the toe of each run. At another angle the plane \
+             halves the angle between the faces; with unequal legs it is square \
              to the line from toe to toe. A stated throat and a partial penetration weld are taken as fillets of equal \
-             legs; of a complete penetration weld the plane is the faying plane itself.",
+             legs; the plane of a complete penetration weld is the faying plane itself.",
         ),
     ]
 }

@@ -518,8 +518,11 @@ impl Builder<'_> {
             curves.push(Curve {
                 letter: letter.to_string(),
                 says: format!(
-                    "{}, case {}",
+                    "{}{}, case {}",
                     check_name(asked, check.check),
+                    governing
+                        .part
+                        .map_or(String::new(), |turn| format!(", {}", turn.word())),
                     self.joint.loads.cases[governing.case].name.value
                 ),
                 runs: followed

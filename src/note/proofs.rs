@@ -30,7 +30,7 @@ impl Builder<'_> {
         let name = self.joint.loads.cases[case].name.value.clone();
         self.para(plain(&format!(
             "Closure, case {name}: the stresses of the steps above, summed numerically along the runs, must give back the force \
-             applied, and about the load's own point the moment given."
+             applied, and about the load’s own point the moment given."
         )));
         let says = "Force that the sum misses, as a part of the force applied";
         self.bound(
@@ -40,7 +40,7 @@ impl Builder<'_> {
             closure.force_residual(),
         );
         let says =
-            "Moment about the load's point that the sum misses, as a part of the moment applied";
+            "Moment about the load’s point that the sum misses, as a part of the moment applied";
         self.bound(
             "closure.moment",
             Symbol::of("delta", &["M"]),

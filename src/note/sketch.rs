@@ -160,7 +160,7 @@ impl Builder<'_> {
     }
 
     /// The part of a run that is counted, if it is not the whole.
-    fn counted(&self, index: usize) -> Option<Segment> {
+    pub(super) fn counted(&self, index: usize) -> Option<Segment> {
         let run = &self.runs[index];
         let cut = run.told.length() - run.path.length();
         (cut > 1e-9 * self.properties.size).then(|| run.path.clone())
@@ -367,7 +367,7 @@ fn size_words(size: &SizeSpec) -> String {
         SizeSpec::Throat { throat, .. } | SizeSpec::Partial { throat } => {
             format!("throat {}", throat.value.text())
         }
-        SizeSpec::Complete { .. } => "full penetration".to_owned(),
+        SizeSpec::Complete { .. } => "complete penetration".to_owned(),
     }
 }
 

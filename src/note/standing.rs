@@ -4,7 +4,7 @@ use super::calculation::{Calculation, Outcome};
 use super::margins::{asked, check_name, ranked};
 use super::text::count;
 use crate::criteria::Margin;
-use crate::formula::Printed;
+use crate::formula::{MARGIN_DECIMALS, Printed};
 
 /// How a joint stands.
 #[derive(Clone, PartialEq, Debug)]
@@ -13,8 +13,10 @@ pub struct Standing {
     pub margin: Option<Margin>,
     /// The check that governs, and its case.
     pub governing: Option<(String, String)>,
-    /// Strength checks and limits that hold, and all of them.
-    pub held: (usize, usize),
+    /// Strength checks that hold, and all of them; a check of both parts counts twice.
+    pub strength: (usize, usize),
+    /// Limits that hold, and all of them.
+    pub limits: (usize, usize),
     /// Names of the checks and limits that do not hold.
     pub failed: Vec<String>,
     /// Names of the checks that gave no number, each with its reason in brief.
@@ -27,7 +29,10 @@ impl Standing {
     /// The standing of a calculation.
     #[must_use]
     pub fn of(calculation: &Calculation<'_>) -> Self {
-        let (mut held, mut failed, mut refused) = (0, Vec::new(), Vec::new());
+        let (mut limits, mut failed, mut refused) = ((0, 0), Vec::new(), Vec::new());
+        let checks = ranked(calculation);
+        let holding = checks.iter().filter(|check| check.governing.margin.holds());
+        let strength = (holding.count(), checks.len());
         for outcome in &calculation.outcomes {
             match outcome {
                 Outcome::Refused(refusal) => {
@@ -35,16 +40,15 @@ impl Standing {
                 }
                 Outcome::Assessed(asked) => {
                     for strength in &asked.strength {
-                        if strength.governing.margin.holds() {
-                            held += 1;
-                        } else {
+                        if !strength.governing.margin.holds() {
                             failed.push(check_name(asked, strength.check));
                         }
                     }
                     for (index, limit) in asked.sheet.limits.iter().enumerate() {
                         let mut of_limit = asked.limits.iter().filter(|found| found.limit == index);
+                        limits.1 += 1;
                         if of_limit.all(|found| found.holds) {
-                            held += 1;
+                            limits.0 += 1;
                         } else {
                             failed
                                 .push(format!("{}, {}", asked.sheet.name.value, limit.name.value));
@@ -53,7 +57,7 @@ impl Standing {
                 }
             }
         }
-        let first = ranked(calculation).into_iter().next();
+        let first = checks.into_iter().next();
         let governing = first.as_ref().map(|check| {
             let case = calculation.joint.loads.cases[check.governing.case]
                 .name
@@ -67,7 +71,8 @@ impl Standing {
         Self {
             margin: first.map(|check| check.governing.margin),
             governing,
-            held: (held, held + failed.len()),
+            strength,
+            limits,
             failed,
             refused,
             unchecked: unchecked(calculation),
@@ -84,7 +89,9 @@ impl Standing {
     #[must_use]
     pub fn figure(&self) -> String {
         match self.margin {
-            Some(Margin::Value(value)) => Printed::rounded(value, 2, false).signed_text(),
+            Some(Margin::Value(value)) => {
+                Printed::rounded(value, MARGIN_DECIMALS, false).signed_text()
+            }
             Some(Margin::High) => "high".to_owned(),
             Some(Margin::FixedTermsExceed) => "fails".to_owned(),
             None => "none".to_owned(),
@@ -94,10 +101,34 @@ impl Standing {
     /// How many checks hold, in words.
     #[must_use]
     pub fn tally(&self) -> String {
-        let (held, all) = self.held;
-        let all = all + self.refused.len();
-        let verb = if held == 1 { "holds" } else { "hold" };
-        let mut text = format!("{held} of {} {verb}.", count(all, "check", "checks"));
+        let counted = |(held, all): (usize, usize), one: &str, many: &str| {
+            (all > 0).then(|| format!("{held} of {}", count(all, one, many)))
+        };
+        // A check without a number is one that does not hold.
+        let (held, rows) = self.strength;
+        let all = if rows > 0 {
+            rows + self.refused.len()
+        } else {
+            0
+        };
+        let parts: Vec<String> = [
+            counted((held, all), "strength check", "strength checks"),
+            counted(self.limits, "limit", "limits"),
+        ]
+        .into_iter()
+        .flatten()
+        .collect();
+        let one = (all == 0 || held == 1) && (self.limits.1 == 0 || self.limits.0 == 1);
+        let verb = if one && parts.len() == 1 {
+            "holds"
+        } else {
+            "hold"
+        };
+        let mut text = if parts.is_empty() {
+            String::new()
+        } else {
+            format!("{} {verb}.", parts.join(" and "))
+        };
         for (names, one, many) in [
             (&self.failed, "Not held", "Not held"),
             (&self.refused, "Without a number", "Without a number"),
@@ -109,7 +140,8 @@ impl Standing {
         ] {
             if !names.is_empty() {
                 let lead = if names.len() == 1 { one } else { many };
-                text.push_str(&format!(" {lead}: {}.", names.join("; ")));
+                let space = if text.is_empty() { "" } else { " " };
+                text.push_str(&format!("{space}{lead}: {}.", names.join("; ")));
             }
         }
         text
@@ -154,7 +186,8 @@ pub(super) fn uncovered(calculation: &Calculation<'_>) -> Vec<&'static str> {
     let covered = |word: &str| {
         let checked = calculation.outcomes.iter().any(|outcome| match outcome {
             Outcome::Assessed(asked) => asked.sheet.covers.iter().any(|path| path.word() == word),
-            Outcome::Refused(_) => false,
+            // That there is no number is told by itself.
+            Outcome::Refused(refusal) => refusal.covers.iter().any(|path| path.word() == word),
         });
         checked
             || calculation

@@ -5,7 +5,7 @@ use super::calculation::Calculation;
 use super::loads::CaseValues;
 use super::margins::Site;
 use super::points::{AXES, axes};
-use crate::formula::{Draft, Env, FormulaError, Origin, Symbol, Value};
+use crate::formula::{Bound, Draft, Env, FormulaError, Origin, Symbol, Value};
 use crate::quantity::Dim;
 use crate::solve::Regime;
 use crate::weld::{Segment, ThroatRule, V3};
@@ -188,6 +188,15 @@ impl Builder<'_> {
     fn twist(&mut self, sheet: &mut Sheet, case: usize) -> Result<(), FormulaError> {
         let action = self.actions[case];
         let (_, moment) = action.about(self.properties.centroid);
+        let from: Vec<Value> = [
+            "K_xx", "K_yy", "K_zz", "K_xy", "K_yz", "K_zx", "M_x", "M_y", "M_z",
+        ]
+        .into_iter()
+        .filter_map(|name| match sheet.env.names.get(name) {
+            Some(Bound::Value(value)) => Some(*value),
+            Some(Bound::Word(_)) | None => None,
+        })
+        .collect();
         let theta = self
             .properties
             .tensor
@@ -206,9 +215,12 @@ impl Builder<'_> {
                 &name,
                 symbol,
                 &says,
-                "verified by the three lines below",
+                "verified by the three lines that follow these",
                 (theta[axis], dim),
             );
+            if let Some(Bound::Value(found)) = sheet.env.names.get(&name) {
+                self.ledger.get_mut(*found).rests_on.clone_from(&from);
+            }
         }
         for (axis, formula) in [
             "K_xx*theta_x + K_xy*theta_y + K_zx*theta_z",
@@ -500,7 +512,7 @@ impl Builder<'_> {
         } else {
             let says = "Stress across the run, in its faying plane";
             self.at(sheet, "f_n", f("n"), says, &dot("m", false), "line method")?;
-            let says = "Stress out of the run's faying plane";
+            let says = "Stress out of the run’s faying plane";
             self.at(
                 sheet,
                 "f_out",

@@ -62,6 +62,34 @@ pub(super) fn number(printed: &Printed, signed: bool, step: Option<String>) -> I
     }
 }
 
+/// Text whose words such as `F_su` are set as symbols.
+pub(super) fn with_symbols(text: &str) -> Text {
+    let mut out: Text = Vec::new();
+    let mut rest = String::new();
+    for word in text.split_inclusive(' ') {
+        let bare = word.trim_end_matches([' ', ',', ';', '.', ':']);
+        let named = bare.split_once('_').filter(|(base, index)| {
+            base.len() == 1 && base.is_ascii() && index.chars().all(|c| c.is_ascii_alphanumeric())
+        });
+        let made =
+            named.and_then(|(base, index)| Symbol::declared(base, vec![index.to_owned()]).ok());
+        match made {
+            Some(made) => {
+                if !rest.is_empty() {
+                    out.push(piece(&std::mem::take(&mut rest)));
+                }
+                out.push(symbol(&made));
+                rest.push_str(&word[bare.len()..]);
+            }
+            None => rest.push_str(word),
+        }
+    }
+    if !rest.is_empty() {
+        out.push(piece(&rest));
+    }
+    out
+}
+
 /// A short name for ids: lower-case letters and digits with single hyphens.
 pub(super) fn slug(text: &str) -> String {
     let mut out = String::new();

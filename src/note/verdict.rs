@@ -6,7 +6,7 @@ use super::coverage::coverage_words;
 use super::doc::{Block, Item, Text, Verdict};
 use super::margins::{Check, asked, check_name};
 use super::standing::Standing;
-use super::text::{capital, count, piece, plain, strong};
+use super::text::{capital, count, piece, plain, strong, with_symbols};
 use crate::joint::Joint;
 use std::collections::BTreeSet;
 
@@ -20,7 +20,10 @@ pub(super) fn open_section(
         let label_of = format!("O{}", items.len() + 1);
         items.push(super::layout::item(
             &label_of,
-            plain(&format!("Assumption {label}: {says}")),
+            plain(&format!(
+                "Assumption {label}: {}.",
+                says.trim_end_matches('.')
+            )),
         ));
     }
     if let Some(text) = unrecorded_issue(b.joint) {
@@ -32,12 +35,12 @@ pub(super) fn open_section(
         let words: Vec<String> = super::layout::steps_and_tables(numbers).collect();
         let label = format!("O{}", items.len() + 1);
         let text = format!("{}: {}.", capital(&reason), words.join(", "));
-        items.push(super::layout::item(&label, plain(&text)));
+        items.push(super::layout::item(&label, with_symbols(&text)));
     }
     if items.is_empty() {
         return None;
     }
-    let intro = "To be verified before this note is signed. Lines by a clause in question are marked, and utilisations and margins that rest on an open item.";
+    let intro = "To be verified before this note is signed. The mark “to be verified” stands at each line of a clause in question, and at each utilisation and margin that rests on an open item.";
     let blocks = vec![Block::Para { text: plain(intro) }, Block::Items { items }];
     Some(super::doc::Section {
         title: "Open items".to_owned(),
@@ -93,8 +96,11 @@ pub(super) fn verdict(
         .part
         .map(|turn| format!(", {}", turn.word()))
         .unwrap_or_default();
-    let mut first: Text = vec![piece(&format!("{}{part}", check_name(asked, check.check)))];
-    first.push(piece(&b.held_against(check)));
+    let mut first: Text = vec![piece(&format!(
+        "{}{part}",
+        capital(&check_name(asked, check.check))
+    ))];
+    first.extend(b.held_against(check));
     first.extend([
         piece(", at "),
         super::text::emph(&b.place_words(spot)),
@@ -111,7 +117,7 @@ pub(super) fn verdict(
     }
     let mut marks: BTreeSet<String> = open
         .iter()
-        .map(|(label, says)| format!("assumption {label} ({says})"))
+        .map(|(label, says)| format!("assumption {label} ({})", says.trim_end_matches('.')))
         .collect();
     if let Some(worked) = &check.worked {
         for value in [Some(worked.demand), Some(worked.capacity), worked.margin]
@@ -145,7 +151,7 @@ pub(super) fn verdict(
     } else {
         let list: Vec<String> = marks.iter().cloned().collect();
         let verb = if list.len() == 1 { "stands" } else { "stand" };
-        lines.push(plain(&format!(
+        lines.push(with_symbols(&format!(
             "{} of {all} {verb} behind this margin, to be verified: {}.",
             capital(&count(list.len(), "open item", "open items")),
             list.join("; ")

@@ -153,7 +153,7 @@ fn compose(calculation: &Calculation<'_>) -> Result<Note, NoteError> {
     b.work_checks(calculation, &ground, &mut checks, &sites, &cases)?;
     b.margin_table(calculation, &checks);
     let order = b.case_margins(calculation);
-    b.refusals(calculation);
+    b.refusals(calculation, &mut cases)?;
     b.sizes(calculation, &ground)?;
     loads_part(&mut b, calculation, &order);
     let closure = second_opinions(&mut b, calculation, &checks, &sites)?;
@@ -183,7 +183,9 @@ fn compose(calculation: &Calculation<'_>) -> Result<Note, NoteError> {
             .collect();
         (check.governing.position, format!("governs, {case}"))
     });
+    let unresisted = calculation.unresisted().map(|(case, _)| case);
     let first_case = checks.first().map(|check| check.governing.case);
+    let first_case = first_case.or(unresisted);
     let sketch = b.sketch(first_case.and_then(|case| drawn(&cases, case)), governing);
     let pictures = pictures(&b, calculation, &ground, sketch, &checks, &sites);
     let trace = whole_trace(&b, calculation, &checks, &identity, closure.as_ref());

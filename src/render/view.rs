@@ -27,8 +27,8 @@ pub type Drawings = BTreeMap<String, String>;
 /// Where links can lead, by id.
 pub(super) type Targets = BTreeMap<String, Target>;
 
-/// The steps that use a step, by its id: their ids and numbers, in print order.
-type Uses<'a> = BTreeMap<&'a str, Vec<(&'a str, &'a str)>>;
+/// The steps, then the tables, that use a step, by its id: their ids and numbers, in print order.
+type Uses<'a> = BTreeMap<&'a str, Vec<(&'a str, String)>>;
 
 /// Uses of a step that its margin names; the first ones lead on to the others.
 const USES_NAMED: usize = 6;
@@ -53,7 +53,14 @@ pub(super) fn view(doc: &Doc, drawings: Option<&Drawings>) -> Result<Value, Rend
     let mut uses = Uses::new();
     for step in steps.clone() {
         for (id, _) in &step.uses {
-            uses.entry(id).or_default().push((&step.id, &step.no));
+            let user = (step.id.as_str(), step.no.clone());
+            uses.entry(id).or_default().push(user);
+        }
+    }
+    for (table, no) in blocks().filter_map(Block::as_table).zip(1..) {
+        for id in &table.uses {
+            let user = (table.id.as_str(), format!("table\u{a0}{no}"));
+            uses.entry(id).or_default().push(user);
         }
     }
     let sections: Result<Vec<_>, _> = doc
@@ -165,17 +172,21 @@ fn section(
     uses: &Uses<'_>,
     drawings: Option<&Drawings>,
 ) -> Result<Value, RenderError> {
-    let blocks: Result<Vec<_>, _> = section
-        .blocks
-        .iter()
-        .map(|b| block(b, targets, uses, drawings))
-        .collect();
+    let mut blocks = Vec::new();
+    for (n, told) in section.blocks.iter().enumerate() {
+        let mut value = block(told, targets, uses, drawings)?;
+        if matches!(told, Block::Para { .. }) {
+            let next = section.blocks.get(n + 1);
+            value["leads"] = matches!(next, Some(Block::Items { .. } | Block::Step(_))).into();
+        }
+        blocks.push(value);
+    }
     Ok(json!({
         "title": section.title,
         "target": own_target(&section.id, targets).0,
         "anchor": own_target(&section.id, targets).1,
         "whole": section.blocks.iter().any(is_short_sign_off),
-        "blocks": blocks?,
+        "blocks": blocks,
     }))
 }
 
@@ -249,7 +260,7 @@ fn item(item: &Item, targets: &Targets) -> Value {
 fn step(step: &Step, targets: &Targets, uses: &Uses<'_>) -> Value {
     let used = uses.get(step.id.as_str()).map_or(&[][..], Vec::as_slice);
     let named = used.iter().take(USES_NAMED);
-    let numbers: Vec<&str> = named.clone().map(|(_, no)| *no).collect();
+    let numbers: Vec<&str> = named.clone().map(|(_, no)| no.as_str()).collect();
     let back = format!("→ {}", numbers.join(", "));
     let back_lines = if used.is_empty() {
         0

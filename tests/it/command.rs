@@ -130,7 +130,7 @@ fn write_makes_every_output_and_says_how_the_joint_stands() {
     for wanted in [
         "joints/mast-foot.yaml",
         "least margin +",
-        "checks hold",
+        "strength checks and 2 of 2 limits hold",
         "out/mast-foot",
     ] {
         assert!(ran.out.contains(wanted), "{wanted}: {}", ran.out);

@@ -608,7 +608,7 @@ fn runs_of_two_kinds_have_the_numbers_of_their_own_sheets() {
     assert_eq!(standing.failed, failed, "both strengths are exceeded");
     let markdown = text(produced, "note.md");
     assert!(
-        markdown.contains("1 of 3 checks holds. Not held: EN 1993-1-8 4.7.1"),
+        markdown.contains("1 of 3 strength checks holds. Not held: EN 1993-1-8 4.7.1"),
         "{markdown}"
     );
 }

@@ -152,7 +152,7 @@ fn its_sheet_is_read_and_gives_its_margin() {
     let text = joint_text() + &block("yaml", "  - {clause: LM-M7 7.4");
     let (said, markdown) = worked(text, &library);
     assert!(
-        said.contains("least margin +1.30  LM-M7 7.4, case L2  6 of 6"),
+        said.contains("least margin +1.30  LM-M7 7.4, case L2  5 of 5 strength checks"),
         "{said}"
     );
     assert!(

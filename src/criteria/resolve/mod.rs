@@ -224,7 +224,7 @@ impl Asking<'_> {
     ) -> Result<Option<String>, Diagnostic> {
         let what = format!("{name} of the check {}", self.sheet.name.value);
         if self.spec.to_be_verified {
-            return Ok(Some(format!("{what}: to be verified")));
+            return Ok(Some(what));
         }
         let matters = given.dim == Dim::STRESS || need.role.is_some();
         if self.spec.source.is_some() || !matters {
@@ -267,8 +267,12 @@ impl Asking<'_> {
             .source
             .clone()
             .unwrap_or_else(|| self.sheet.source.cited());
-        let mark = (stated.status == Status::Recalled)
-            .then(|| format!("{source}: text recalled, not yet compared with the document"));
+        let recalled = stated.status == Status::Recalled;
+        let mark = match &stated.source {
+            Some(_) => recalled
+                .then(|| format!("{source}: text recalled, not yet compared with the document")),
+            None => self.sheet.mark(),
+        };
         Ok(Some(Resolved::One(Box::new(Sourced {
             id: format!("check.{}.{kind}.{}", self.index + 1, slug(&need.name.value)),
             symbol: need.symbol.clone(),

@@ -66,7 +66,7 @@ impl Asking<'_> {
         let mark = if !is_strength {
             None
         } else if part.to_be_verified {
-            Some(format!("{name} of {}: to be verified", part.name.value))
+            Some(format!("{name} of {}", part.name.value))
         } else if part.source.is_none() {
             Some(format!("{name} of {}: no source given", part.name.value))
         } else {
@@ -107,7 +107,7 @@ impl Asking<'_> {
             _ => self.raw(need, &filler.more, name)?,
         };
         let mark = if filler.to_be_verified {
-            Some(format!("{name} of {}: to be verified", filler.name.value))
+            Some(format!("{name} of {}", filler.name.value))
         } else if filler.source.is_none() {
             Some(format!("{name} of {}: no source given", filler.name.value))
         } else {

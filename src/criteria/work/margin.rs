@@ -72,6 +72,7 @@ impl Desk<'_, '_> {
     pub(super) fn margin_by_factor(
         &mut self,
         check: usize,
+        (demand, capacity): (Value, Value),
         factor: f64,
     ) -> Result<(Value, Value), WorkError> {
         let id = format!("{}.{}.at-limit", self.prefix, check + 1);
@@ -84,6 +85,7 @@ impl Desk<'_, '_> {
             dim: Some(Dim::NONE),
         };
         let lambda = self.ledger.found(lambda, factor, Dim::NONE);
+        self.ledger.get_mut(lambda).rests_on = vec![demand, capacity];
         self.steps.push(lambda);
         let ratio = self.at_factor(check, lambda, &id)?;
         self.agree("demand over capacity at the limit", ratio, 1.0, 1.0)?;

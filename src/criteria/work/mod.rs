@@ -142,7 +142,8 @@ pub fn work(
             )
         }
         Margin::Value(_) => {
-            let (utilisation, margin) = desk.margin_by_factor(check, at.load_factor)?;
+            let (utilisation, margin) =
+                desk.margin_by_factor(check, (demand, capacity), at.load_factor)?;
             (Some(utilisation), Some(margin))
         }
         Margin::FixedTermsExceed => (Some(desk.utilisation(check, demand, capacity)?), None),

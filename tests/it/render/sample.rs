@@ -164,6 +164,7 @@ fn inputs() -> Section {
                 ],
                 rows: rows.into(),
                 foot: None,
+                uses: Vec::new(),
             }),
             Block::Heading {
                 text: "Assumptions".into(),
@@ -301,6 +302,7 @@ fn properties_table() -> Block {
             t(""),
             power("4.235", 6, "j"),
         ])),
+        uses: Vec::new(),
     })
 }
 
@@ -390,6 +392,7 @@ fn cases() -> Section {
                 ],
                 rows: rows.collect(),
                 foot: None,
+                uses: Vec::new(),
             }),
             step(
                 9,
@@ -429,6 +432,7 @@ fn ending() -> Section {
                     ]),
                 ],
                 foot: None,
+                uses: Vec::new(),
             }),
             Block::Signatures {
                 roles: ["prepared", "checked", "approved"].map(String::from).into(),
@@ -490,6 +494,7 @@ pub(crate) fn wide_table(numbers: usize) -> Table {
         columns,
         rows: (1..=3).map(line).collect(),
         foot: None,
+        uses: Vec::new(),
     }
 }
 

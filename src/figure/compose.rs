@@ -15,6 +15,8 @@ use crate::weld::V3;
 
 /// Points nearer than this on the sheet share a mark (mm).
 pub(super) const SAME: f64 = 0.25;
+/// Half of the cross at the foot of a load (mm).
+const FOOT: f64 = 0.9;
 /// A dimension in space longer than this many times the group's size is broken.
 const LONGEST_LINE: f64 = 1.5;
 /// An origin further outside the group than this part of its size is not drawn.
@@ -232,6 +234,29 @@ impl<'a> Sheet<'a> {
         let pairs = std::iter::once((dimension.from, dimension.to)).chain(dimension.alike.clone());
         let placed: Vec<Placed<'_>> = pairs.map(|pair| self.placed(dimension, pair)).collect();
         draw_dimension(&mut self.canvas, &self.view, dimension, &placed);
+        self.mark_foot(dimension);
+    }
+
+    /// A small cross where a dimension to a load begins, if nothing else stands there.
+    fn mark_foot(&mut self, dimension: &Dimension) {
+        let at = dimension.from;
+        let near = |p: &V3| (at - p).norm() < 1e-9 * (1.0 + p.norm());
+        let to_load = self
+            .scene
+            .loads
+            .iter()
+            .any(|load| (load.at - dimension.to).norm() < 1e-9);
+        let known = self.scene.points.iter().any(|point| near(&point.at))
+            || self.scene.centroid.as_ref().is_some_and(near)
+            || self.scene.origin.as_ref().is_some_and(near);
+        if self.view.flat || !to_load || known {
+            return;
+        }
+        let foot = self.view.image(&at);
+        let thin = Stroke::black(0.4);
+        for arm in [P2::x() * FOOT, P2::y() * FOOT] {
+            self.canvas.line(foot - arm, foot + arm, thin);
+        }
     }
 
     /// A dimension between two of the points that it may be drawn between.

@@ -72,7 +72,7 @@ pub(super) fn draw_dimension(
         return;
     }
     if let Some(from) = placed.from_end {
-        canvas.aid(placed.ends[1], from, Stroke::grey(0.3).dashed());
+        canvas.aid(placed.ends[1], from, Stroke::black(0.3));
     }
     let [a, b] = way.feet;
     for (foot, end) in [(a, placed.ends[0]), (b, placed.ends[1])] {
@@ -89,7 +89,7 @@ pub(super) fn draw_dimension(
     if placed.broken {
         canvas.mark(break_mark(a + (b - a) * 0.78, unit(b - a)));
     }
-    want_text(canvas, placed, a, b, way.out);
+    want_text(canvas, dimension, view.flat, [a, b], way.out);
 }
 
 /// The ways that the view offers: along another axis, to either side; none for a dimension along
@@ -170,26 +170,25 @@ fn wish(d: P2, to_load: bool) -> P2 {
     if to_load { -own } else { own }
 }
 
-fn want_text(canvas: &mut Canvas<'_>, placed: &Placed<'_>, a: P2, b: P2, out: P2) {
-    let words = canvas.words(symbol_spans(&placed.dimension.text));
+fn want_text(canvas: &mut Canvas<'_>, dimension: &Dimension, flat: bool, [a, b]: [P2; 2], out: P2) {
+    let words = canvas.words(symbol_spans(&dimension.text));
     let d = unit(b - a);
     let angle = reading_angle(d);
     let (along, up) = super::drawing::Label::directions(angle);
     let size = words.size();
     let lift = 0.7 + size[1] / 2.0;
+    // Over the line; in space on the side away from what is measured.
+    let over = if flat || up.dot(&out) > 0.0 { up } else { -up };
     let mut places = Vec::new();
     for (part, cost) in [(0.5, 0.0), (0.4, 1.0), (0.6, 1.0), (0.3, 2.0), (0.7, 2.0)] {
         let on = a + (b - a) * part;
-        places.push(Candidate {
-            centre: on + up * lift,
-            angle,
-            cost,
-        });
-        places.push(Candidate {
-            centre: on - up * lift,
-            angle,
-            cost: cost + 3.0,
-        });
+        for (side, more) in [(1.0, 0.0), (-1.0, 3.0)] {
+            places.push(Candidate {
+                centre: on + over * (side * lift),
+                angle,
+                cost: cost + more,
+            });
+        }
     }
     // A span too short for its text: beside either end, on the line's own prolongation.
     let length = (b - a).norm();

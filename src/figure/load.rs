@@ -87,7 +87,7 @@ fn exit(bounds: &Bounds, from: P2, d: P2) -> f64 {
 /// Draws a load at its spot; `centre` is where its lead starts.
 pub(super) fn draw_load(canvas: &mut Canvas<'_>, view: &View, load: &Load, spot: Spot, centre: P2) {
     if nonzero(&load.force).chain(nonzero(&load.moment)).count() > 0 {
-        canvas.remark("arrows at the load show directions, not sizes");
+        canvas.remark("arrows at the load show directions, not sizes; their values are components along the axes");
     }
     draw_lead(canvas, load, spot, centre);
     let end_on_force = nonzero(&load.force).find(|c| faces_reader(view, c.axis));

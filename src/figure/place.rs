@@ -243,7 +243,7 @@ fn place_round(canvas: &mut Canvas<'_>, wants: &[Want], last: bool) -> Result<Ve
         .iter()
         .any(|item| matches!(item, Item::Circle { .. }))
     {
-        canvas.remark("circled numbers: the table of runs");
+        canvas.remark("circled numbers: rows of the table “Runs as given”");
     }
     let taken = table.taken.into_iter().map(|rect| Obstacle {
         rect,

@@ -23,6 +23,8 @@ const ATTACHED: f64 = 6.0;
 const BASE: f64 = 7.0;
 /// How far the parts reach from the root (mm).
 const REACH: f64 = 17.0;
+/// From a toe to the plane through the part beside it (mm).
+const BEYOND: f64 = 1.2;
 /// Root gap as drawn (mm).
 const GAP: f64 = 1.6;
 /// From line to line of the words below (mm).
@@ -189,14 +191,14 @@ impl Cell<'_, '_> {
         let bead = |root: P2, x: P2| {
             let on_attached = root + face * attached;
             if groove {
-                // The bevel goes into the attached part; its root lies inside.
-                let inner = root - x * (0.45 * self.width_on_base());
-                let middle = (root + on_attached) / 2.0;
+                // The bevel goes into the attached part; its root lies inside. The plane is that of a
+                // fillet with equal legs.
+                let depth = 0.45 * self.width_on_base();
                 return Bead {
-                    root: inner,
+                    root: root - x * depth,
                     on_base: root,
                     on_attached,
-                    throat: middle,
+                    throat: root + face * depth,
                 };
             }
             let on_base = root + x * base;
@@ -248,7 +250,7 @@ impl Cell<'_, '_> {
 
     /// The fusion faces and the planes of the parts that are checked, each a little off the face.
     fn beside_planes(&mut self, bead: &Bead, checks: &dyn Fn(FailurePath) -> bool, broken: Stroke) {
-        let (_, into) = self.face();
+        let (face, into) = self.face();
         let rows = [
             (
                 FailurePath::FusionFaceBase,
@@ -260,15 +262,16 @@ impl Cell<'_, '_> {
                 [bead.root, bead.on_attached],
                 into * 0.7,
             ),
+            // Through the thickness of the part, just beyond the toe.
             (
                 FailurePath::BaseMetalBase,
                 [bead.on_base, bead.on_base - P2::y() * BASE],
-                P2::zeros(),
+                P2::x() * BEYOND,
             ),
             (
                 FailurePath::BaseMetalAttached,
-                [bead.root, bead.on_attached],
-                into * 2.2,
+                [bead.on_attached, bead.on_attached + into * ATTACHED],
+                face * BEYOND,
             ),
         ];
         for (path, [from, to], off) in rows {
@@ -293,7 +296,13 @@ impl Cell<'_, '_> {
     /// A leg's dimension, set off to one side; its text stands over a level line.
     fn leg(&mut self, from: P2, to: P2, out: P2, text: &str) {
         let level = out.y < -0.9;
-        let off = out * if level { 4.8 } else { 3.6 };
+        // Outside the attached part, unless a bead stands there.
+        let off = out
+            * match (level, self.section.both) {
+                (true, _) => 4.8,
+                (false, true) => 3.6,
+                (false, false) => ATTACHED + 4.0,
+            };
         let thin = Stroke::black(0.35);
         for p in [from, to] {
             self.path(&[p + out * 1.0, p + off + out * 0.8], thin);

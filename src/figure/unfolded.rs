@@ -54,6 +54,9 @@ struct Layout {
     widths: Vec<f64>,
     /// Height of a ratio of 1 (mm).
     unit: f64,
+    /// From tick to tick of the scale, and its end (ratios).
+    step: f64,
+    top: f64,
 }
 
 /// Labels in a row below the weld, from left to right.
@@ -152,10 +155,21 @@ impl Layout {
             .flat_map(|(_, ratios)| ratios)
             .copied()
             .fold(1.0, f64::max);
+        // The scale ends at a tick, in halves or, where they would stand too close, in whole units.
+        let to_tick = |step: f64| (top / step - 1e-9).ceil() * step;
+        let unit = |top: f64| HEIGHT * if top > TALLEST { TALLEST / top } else { 1.0 };
+        let halves = to_tick(0.5);
+        let (step, top) = if unit(halves) < LEAST_STEP * 2.0 {
+            (1.0, to_tick(1.0))
+        } else {
+            (0.5, halves)
+        };
         Self {
             starts,
             widths,
-            unit: HEIGHT * if top > TALLEST { TALLEST / top } else { 1.0 },
+            unit: unit(top),
+            step,
+            top,
         }
     }
 
@@ -185,21 +199,12 @@ impl Layout {
         self.number_points(canvas, sketch);
         self.name_runs(canvas, sketch);
         let (left, right) = (P2::new(-3.0, 0.0), P2::new(self.right(), 0.0));
-        let curves = sketch.curves.iter().flat_map(|curve| &curve.runs);
-        let top = curves
-            .flat_map(|(_, ratios)| ratios)
-            .copied()
-            .fold(1.0, f64::max);
+        let (step, top) = (self.step, self.top);
         canvas.line(left, left - P2::y() * (top * self.unit), Stroke::black(0.4));
         let title = canvas.words(vec![Span::new("U", Style::Italic)]);
         let over = left - P2::y() * (top * self.unit + 1.0 + title.size()[1] / 2.0);
         let title = title.label(over, 0.0);
         canvas.draw_kept(Layer::Mark, Item::Label(title), Keep::Off);
-        let step = if self.unit < LEAST_STEP * 2.0 {
-            1.0
-        } else {
-            0.5
-        };
         let ticks = (0..MOST_TICKS).map(|tick| f64::from(tick) * step);
         for part in ticks.take_while(|part| *part <= top) {
             let up = -P2::y() * (part * self.unit);
@@ -258,7 +263,7 @@ impl Layout {
         if !fit {
             let number = |index: usize| words(&index.to_string()).ringed(RING);
             labels = (1..=labels.len()).map(number).collect();
-            canvas.remark("circled numbers: the table of runs");
+            canvas.remark("circled numbers: rows of the table “Runs as given”");
         }
         let mut row = Row::at(NAMES);
         for (index, label) in labels.iter().enumerate() {

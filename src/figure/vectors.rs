@@ -12,6 +12,8 @@ use crate::quantity::real::ten_to;
 /// Length of the longest vector, and of the shortest that is drawn (mm).
 const LONGEST: f64 = 24.0;
 const LEAST: f64 = 0.6;
+/// A vector that a view shows by less than this part of itself points at the eye.
+const SEEN: f64 = 0.1;
 
 impl Sheet<'_> {
     /// Arrows at their points, the longest within bounds, to a scale of 1, 2 or 5 and their tenfolds.
@@ -27,7 +29,13 @@ impl Sheet<'_> {
         let stroke = Stroke::black(0.8);
         for (index, (at, f)) in vectors.arrows.iter().enumerate() {
             let from = self.view.image(at);
-            let along = self.view.image(f) / (self.view.scale * per_mm);
+            // As long as the vector is, whatever the view makes of its direction.
+            let seen = self.view.image(f) / (self.view.scale * per_mm);
+            let along = if seen.norm() > SEEN * f.norm() / per_mm {
+                unit(seen) * (f.norm() / per_mm)
+            } else {
+                seen
+            };
             let to = from + along;
             if along.norm() < LEAST {
                 continue;
@@ -48,7 +56,10 @@ impl Sheet<'_> {
             }
         }
         let text = plain_number(per_mm);
-        let says = format!("arrows: {text} {} to the millimetre", vectors.unit);
+        let says = format!(
+            "arrows: {text} {} to the millimetre of their length",
+            vectors.unit
+        );
         self.canvas.remark(&says);
     }
 }

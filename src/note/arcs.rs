@@ -383,7 +383,7 @@ impl Builder<'_> {
                 index,
                 &format!("{a}_m"),
                 Symbol::of(a, &["m"]),
-                "Centroid of the arc",
+                &format!("Centroid of the arc, {a}"),
                 &formula,
             )?;
         }
@@ -416,7 +416,9 @@ impl Builder<'_> {
             // In the plane u is x and v is y: I_yy is the integral of x², I_xx that of y².
             for (at, formula) in [(0, vv.as_str()), (1, uu.as_str()), (2, uv)] {
                 let symbol = Self::pair_symbol(self.pairs()[at].0).with("0");
-                let value = self.arc_step(index, OWN[at], symbol, says, formula)?;
+                let (_, p, r) = self.pairs()[at];
+                let says = format!("{says}, {}-{}", AXES[p], AXES[r]);
+                let value = self.arc_step(index, OWN[at], symbol, &says, formula)?;
                 self.ledger.raise_floor(value, FLAT * width);
             }
             return Ok(());
@@ -426,7 +428,9 @@ impl Builder<'_> {
             ("Q_vv", q("v", "v"), vv.as_str()),
             ("Q_uv", q("u", "v"), uv),
         ] {
-            let value = self.arc_step(index, name, symbol, says, formula)?;
+            let pair: Vec<String> = name[2..].chars().map(String::from).collect();
+            let says = format!("{says}, {}", pair.join("-"));
+            let value = self.arc_step(index, name, symbol, &says, formula)?;
             self.ledger.raise_floor(value, FLAT * width);
         }
         for (at, (name, p, r)) in self.pairs().iter().enumerate() {
@@ -440,7 +444,7 @@ impl Builder<'_> {
                 index,
                 OWN[at],
                 Self::pair_symbol(name).with("0"),
-                says,
+                &format!("{says}, {a}-{b}"),
                 &formula,
             )?;
         }

@@ -436,10 +436,11 @@ impl Builder<'_> {
 
     /// Words for a caption whose formulas hold for straight runs alone.
     fn of_arcs(&self) -> &'static str {
-        if (0..self.runs.len()).all(|index| self.is_straight(index)) {
-            ""
-        } else {
-            "; the formulas are those of straight runs, arcs come from the steps of their own"
+        let straight = (0..self.runs.len()).filter(|index| self.is_straight(*index));
+        match straight.count() {
+            0 => "; arcs from their own steps",
+            count if count == self.runs.len() => "",
+            _ => "; the formulas are of straight runs, the values of arcs from their own steps",
         }
     }
 

@@ -15,7 +15,7 @@ use crate::quantity::Dim;
 use crate::weld::{Run, ThroatRule, V3};
 
 /// Steps in which a path is followed for the drawing of demand along it.
-const STEPS: u32 = 64;
+const STEPS: u32 = 96;
 /// Checks drawn at most, those of the largest utilisation.
 const MOST_CURVES: usize = 5;
 
@@ -159,7 +159,7 @@ impl Picture {
                 let case = sketch.case.as_ref();
                 let case = case.map_or(String::new(), |case| format!(", with case {case}"));
                 plain(&format!(
-                    "The weld group, {view}{case}. Scale {scale}; lengths in {}.",
+                    "The weld group, {view}{case}. Scale\u{a0}{scale}; lengths in {}.",
                     lengths(sketch.units)
                 ))
             }
@@ -179,7 +179,7 @@ impl Picture {
                 ))
             }
             Self::Stresses(sketch) => plain(&format!(
-                "Stress on the throat at the points of the group in case {}, {view}. Scale of lengths {scale}.",
+                "Stress on the throat at the points of the group in case {}, {view}. Scale of lengths\u{a0}{scale}.",
                 sketch.case
             )),
             Self::Demand(demand) => {

@@ -1016,7 +1016,7 @@ fn crowded_stitches_have_numbers_in_rings_for_names() {
     assert!(
         drawing
             .remarks
-            .contains(&"circled numbers: the table of runs".to_owned()),
+            .contains(&"circled numbers: rows of the table “Runs as given”".to_owned()),
         "{:?}",
         drawing.remarks
     );

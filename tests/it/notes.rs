@@ -192,6 +192,38 @@ fn nothing_leaves_its_column_or_overlaps_on_either_paper() {
     assert!(strays().is_empty(), "{:#?}", strays());
 }
 
+/// Sizes of the links of a frame (pt).
+fn links(frame: &Frame, out: &mut Vec<[f64; 2]>) {
+    for (_, item) in frame.items() {
+        match item {
+            FrameItem::Group(group) => links(&group.frame, out),
+            FrameItem::Link(_, size) => out.push([size.x.to_pt(), size.y.to_pt()]),
+            FrameItem::Text(_)
+            | FrameItem::Shape(..)
+            | FrameItem::Image(..)
+            | FrameItem::Tag(_) => {}
+        }
+    }
+}
+
+/// A link that begins in one column and goes on in the next has an empty part in the first, and a
+/// rectangle over both.
+#[test]
+fn no_link_is_empty() {
+    let press = Press::new();
+    for (joint, produced) in demo() {
+        let mut sizes = Vec::new();
+        for page in pages(&press, produced).pages() {
+            links(&page.frame, &mut sizes);
+        }
+        assert!(sizes.len() > 50, "{}: {} links", joint.stem, sizes.len());
+        let empty = sizes
+            .iter()
+            .find(|[width, height]| *width < 1.0 || *height < 1.0);
+        assert!(empty.is_none(), "{}: {empty:?}", joint.stem);
+    }
+}
+
 /// Where the marks of the template stand in a frame: their words and heights (pt).
 fn marks(frame: &Frame, top: f64, out: &mut Vec<(String, f64)>) {
     for (at, item) in frame.items() {

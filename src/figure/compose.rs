@@ -267,13 +267,23 @@ impl<'a> Sheet<'a> {
         };
         let found = |p: &V3| spot(self.view.image(p), &self.group, self.centre, self.far);
         let found = [found(&from), found(&to)];
-        let mut ends = found.map(|s| s.at);
+        let told = found.map(|s| s.at);
+        let mut ends = told;
         let mut broken = found.iter().any(|s| s.broken);
         let centroid_only = self
             .scene
             .centroid
             .is_some_and(|c| (c - from).norm() < 1e-9 || (c - to).norm() < 1e-9);
         let mut from_end = None;
+        let differs = |axis: &Axis| {
+            let (a, b) = (from[axis.index()], to[axis.index()]);
+            *axis != dimension.axis && (a - b).abs() > 1e-9 * (1.0 + a.abs() + b.abs())
+        };
+        let apart: Vec<Axis> = Axis::ALL.into_iter().filter(differs).collect();
+        let apart = match apart[..] {
+            [only] if !broken => Some(only),
+            _ => None,
+        };
         if !self.view.flat {
             let axis = dimension.axis;
             let along = (to[axis.index()] - from[axis.index()]) * self.view.scale;
@@ -282,6 +292,8 @@ impl<'a> Sheet<'a> {
         Placed {
             dimension,
             ends,
+            told,
+            apart,
             to_load: is_load(&from) || is_load(&to) || (centroid_only && !dimension.optional),
             group: self.group,
             broken,

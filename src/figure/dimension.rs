@@ -19,6 +19,10 @@ const GAP: f64 = 1.6;
 const CROWDED: f64 = 70.0;
 /// Cost of a line that stays over what is drawn, however far it is carried.
 const THROUGH: f64 = 20.0;
+/// Cost of an end that stands where nothing is drawn.
+const GHOST: f64 = 25.0;
+/// Cost of an extension line that crosses something.
+const CROSSING: f64 = 14.0;
 /// Cost of what stands between the points and the line, at each of three places.
 const BETWEEN: f64 = 5.0;
 /// How far an extension line passes the dimension line (mm).
@@ -28,8 +32,12 @@ const PAST: f64 = 1.2;
 pub(super) struct Placed<'a> {
     /// As asked for.
     pub(super) dimension: &'a Dimension,
-    /// Ends on the sheet.
+    /// Ends on the sheet, in space brought onto one line along the axis.
     pub(super) ends: [P2; 2],
+    /// Ends on the sheet as they are.
+    pub(super) told: [P2; 2],
+    /// The one other axis along which the ends differ: lines that lead along it start at both.
+    pub(super) apart: Option<Axis>,
     /// Whether an end is a load point: such dimensions stand on the other side.
     pub(super) to_load: bool,
     /// Bounds of the runs.
@@ -44,7 +52,10 @@ pub(super) struct Placed<'a> {
 #[derive(Clone, Copy)]
 struct Way {
     out: P2,
+    ends: [P2; 2],
     feet: [P2; 2],
+    /// Whether its lines start at the ends as they are.
+    direct: bool,
     cost: f64,
 }
 
@@ -71,11 +82,11 @@ pub(super) fn draw_dimension(
     if dimension.optional && crowded {
         return;
     }
-    if let Some(from) = placed.from_end {
+    if let Some(from) = placed.from_end.filter(|_| !way.direct) {
         canvas.aid(placed.ends[1], from, Stroke::black(0.3));
     }
     let [a, b] = way.feet;
-    for (foot, end) in [(a, placed.ends[0]), (b, placed.ends[1])] {
+    for (foot, end) in [(a, way.ends[0]), (b, way.ends[1])] {
         if (foot - end).dot(&way.out) > GAP {
             canvas.aid(
                 end + way.out * GAP,
@@ -102,22 +113,24 @@ fn ways(canvas: &Canvas<'_>, view: &View, placed: &Placed<'_>) -> Vec<Way> {
     let others = Axis::ALL
         .into_iter()
         .filter(|o| *o != axis && view.direction(*o).norm() > 1e-9);
-    others
-        .flat_map(|other| [1.0, -1.0].map(|sign| unit(view.direction(other) * sign)))
-        .map(|out| way(canvas, view, placed, out))
+    let outs = others.flat_map(|other| {
+        let direct = placed.apart == Some(other);
+        [1.0, -1.0].map(|sign| (unit(view.direction(other) * sign), direct))
+    });
+    outs.map(|(out, direct)| way(canvas, view, placed, out, direct))
         .collect()
 }
 
 /// Carries the line outward along `out` until it is clear, and rates the way: short, crossing
 /// little, on the wished side, away from the group.
-fn way(canvas: &Canvas<'_>, view: &View, placed: &Placed<'_>, out: P2) -> Way {
+fn way(canvas: &Canvas<'_>, view: &View, placed: &Placed<'_>, out: P2, direct: bool) -> Way {
     let d = unit(view.direction(placed.dimension.axis));
     let normal = if square(d).dot(&out) > 0.0 {
         square(d)
     } else {
         -square(d)
     };
-    let ends = placed.ends;
+    let ends = if direct { placed.told } else { placed.ends };
     let furthest = ends[0].dot(&normal).max(ends[1].dot(&normal));
     let border = placed.group.span(&normal)[1];
     let base = if view.flat {
@@ -147,16 +160,27 @@ fn way(canvas: &Canvas<'_>, view: &View, placed: &Placed<'_>, out: P2) -> Way {
     let against = out.dot(&wish(d, placed.to_load)) < 0.0;
     let reach = (feet[0] - ends[0]).norm().max((feet[1] - ends[1]).norm());
     let cost = reach
-        + 8.0 * f64::from(u8::try_from(crossings.count()).unwrap_or(u8::MAX))
+        + CROSSING * f64::from(u8::try_from(crossings.count()).unwrap_or(u8::MAX))
         + BETWEEN * f64::from(u8::try_from(between.count()).unwrap_or(u8::MAX))
         + if through { THROUGH } else { 0.0 }
+        + if placed.from_end.is_some() && !direct {
+            GHOST
+        } else {
+            0.0
+        }
         + if inward { 12.0 } else { 0.0 }
         + if against {
             if view.flat { 60.0 } else { 6.0 }
         } else {
             0.0
         };
-    Way { out, feet, cost }
+    Way {
+        out,
+        ends,
+        feet,
+        direct,
+        cost,
+    }
 }
 
 /// The side where the line is looked for: below and to the left; above and to the right for

@@ -28,6 +28,9 @@ const NOT_FAR: usize = 4;
 pub(super) const MANY: usize = 8;
 /// Cost of a leader, above every place without one.
 const LEADER: f64 = 100.0;
+/// A leader that rises less than this part of its run is level, and what that costs.
+const LEVEL: f64 = 0.35;
+const LEVEL_COST: f64 = 30.0;
 /// How much nearer to its own mark than to any other a label without leader stands (mm).
 const TELL: f64 = 0.3;
 /// How far off its mark it stands at most (mm).
@@ -352,7 +355,11 @@ impl Table {
         let ring_at = |(i, radius): (usize, &f64)| {
             let cost = LEADER + 20.0 * f64::from(u8::try_from(i).unwrap_or(u8::MAX));
             let radius = want.clear + radius;
-            dearer(ring(want.anchor, radius, size, P2::zeros(), 24), cost)
+            let mut places = dearer(ring(want.anchor, radius, size, P2::zeros(), 24), cost);
+            for place in &mut places {
+                place.cost += level_cost(place.centre - want.anchor);
+            }
+            places
         };
         let places: Vec<Candidate> = FAR[..radii]
             .iter()
@@ -383,6 +390,7 @@ impl Table {
     /// The free place nearest to the anchor, wherever it is: first within the room.
     fn anywhere(&self, want: &Want, words: &Words, canvas: &Canvas<'_>) -> Option<Candidate> {
         let size = P2::from(words.size());
+        let level = |centre: P2| level_cost(centre - want.anchor);
         let low = self.all.min - size - P2::repeat(4.0);
         let count = (self.all.max - low + size + P2::repeat(4.0)).map(|x| x / ANYWHERE);
         let steps = |n: f64| (0_u16..).take_while(move |i| f64::from(*i) <= n);
@@ -395,7 +403,10 @@ impl Table {
                 Candidate {
                     centre,
                     angle: 0.0,
-                    cost: 2.0 * LEADER + (centre - want.anchor).norm() + outside,
+                    cost: 2.0 * LEADER
+                        + (centre - want.anchor).norm()
+                        + outside
+                        + level(centre) / 8.0,
                 }
             })
             .collect();
@@ -413,6 +424,15 @@ impl Table {
         let found = led(Care::Marks).or_else(|| led(Care::Labels));
         let unled = open.first().copied().filter(|_| self.last);
         found.or(unled).copied()
+    }
+}
+
+/// What a level leader costs: a short one before a number reads as a minus sign.
+fn level_cost(off: P2) -> f64 {
+    if off.y.abs() < LEVEL * off.x.abs() {
+        LEVEL_COST
+    } else {
+        0.0
     }
 }
 

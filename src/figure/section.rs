@@ -23,6 +23,8 @@ const ATTACHED: f64 = 6.0;
 const BASE: f64 = 7.0;
 /// How far the parts reach from the root (mm).
 const REACH: f64 = 17.0;
+/// From the base's face down to a dimension (mm).
+const UNDER: f64 = 4.8;
 /// From a toe to the plane through the part beside it (mm).
 const BEYOND: f64 = 1.2;
 /// Root gap as drawn (mm).
@@ -232,7 +234,9 @@ impl Cell<'_, '_> {
         } else {
             Stroke::black(0.5)
         };
-        self.path(&[bead.root, bead.throat], throat);
+        for bead in &beads {
+            self.path(&[bead.root, bead.throat], throat);
+        }
         self.beside_planes(bead, &checks, broken);
         self.sizes(bead);
         if !self.section.angle_text.is_empty() {
@@ -283,26 +287,31 @@ impl Cell<'_, '_> {
 
     /// Legs and throat with their sizes.
     fn sizes(&mut self, bead: &Bead) {
-        let throat = self.section.throat.clone();
-        let out = unit(bead.throat - bead.root);
-        self.label(format!("throat {throat}"), bead.throat + out * 0.6, out);
+        let throat = format!("throat {}", self.section.throat);
+        if matches!(self.section.shape, SectionShape::Partial(_)) {
+            // The throat is the depth that the weld goes in from the face.
+            self.leg(bead.root, bead.on_base, (-P2::y(), UNDER), &throat);
+        } else {
+            let out = unit(bead.throat - bead.root);
+            self.label(throat, bead.throat + out * 0.6, out);
+        }
         if let SectionShape::Fillet([base, attached]) = self.section.shape.clone() {
-            self.leg(bead.root, bead.on_base, -P2::y(), &base.1);
+            self.leg(bead.root, bead.on_base, (-P2::y(), UNDER), &base.1);
             let (_, into) = self.face();
-            self.leg(bead.root, bead.on_attached, into, &attached.1);
+            // Outside the attached part; beyond the bead where the part is welded on both sides.
+            let beside = if self.section.both {
+                (-into, (bead.on_base - bead.root).norm() + 4.0)
+            } else {
+                (into, ATTACHED + 4.0)
+            };
+            self.leg(bead.root, bead.on_attached, beside, &attached.1);
         }
     }
 
     /// A leg's dimension, set off to one side; its text stands over a level line.
-    fn leg(&mut self, from: P2, to: P2, out: P2, text: &str) {
+    fn leg(&mut self, from: P2, to: P2, (out, away): (P2, f64), text: &str) {
         let level = out.y < -0.9;
-        // Outside the attached part, unless a bead stands there.
-        let off = out
-            * match (level, self.section.both) {
-                (true, _) => 4.8,
-                (false, true) => 3.6,
-                (false, false) => ATTACHED + 4.0,
-            };
+        let off = out * away;
         let thin = Stroke::black(0.35);
         for p in [from, to] {
             self.path(&[p + out * 1.0, p + off + out * 0.8], thin);

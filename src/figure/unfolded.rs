@@ -120,8 +120,9 @@ pub fn draw_unfolded(sketch: &DemandSketch, fonts: &dyn TextWidth) -> Drawing {
     for (curve, (width, dash)) in sketch.curves.iter().zip(CURVES) {
         layout.draw_curve(&mut canvas, curve, Stroke::black(width).with(dash));
     }
-    for curve in &sketch.curves {
-        layout.mark_governing(&mut canvas, curve);
+    // The ring of the largest utilisation lies on top.
+    for (index, curve) in sketch.curves.iter().enumerate().rev() {
+        layout.mark_governing(&mut canvas, curve, index == 0);
     }
     let labels = place_labels(&mut canvas);
     canvas.finish(labels)
@@ -286,7 +287,8 @@ impl Layout {
         }
     }
 
-    fn mark_governing(&self, canvas: &mut Canvas<'_>, curve: &Curve) {
+    /// The ring of a curve, and its letter: over the largest curve, under the others.
+    fn mark_governing(&self, canvas: &mut Canvas<'_>, curve: &Curve, first: bool) {
         let (run, part, ratio) = curve.governing;
         let at = self.point(run, part, ratio);
         canvas.mark([circle(at, 1.0, Stroke::black(0.8), Fill::White)]);
@@ -295,7 +297,8 @@ impl Layout {
         let mark = Rect::upright(at, 1.0, 1.0);
         let mark = canvas.name(MarkKind::Point, vec![mark]);
         // Toward the middle, so that the ends of the diagram keep their width.
-        let inward = P2::new((self.right() / 2.0 - at.x) / WIDTH, -1.0);
+        let side = if first { -1.0 } else { 1.0 };
+        let inward = P2::new((self.right() / 2.0 - at.x) / WIDTH, side);
         let toward = unit(inward);
         let mut places = around(at, 1.8, words.size(), toward);
         places.extend(dearer(around(at, 2.6, words.size(), toward), 3.0));

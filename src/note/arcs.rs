@@ -416,8 +416,7 @@ impl Builder<'_> {
             // In the plane u is x and v is y: I_yy is the integral of x², I_xx that of y².
             for (at, formula) in [(0, vv.as_str()), (1, uu.as_str()), (2, uv)] {
                 let symbol = Self::pair_symbol(self.pairs()[at].0).with("0");
-                let (_, p, r) = self.pairs()[at];
-                let says = format!("{says}, {}-{}", AXES[p], AXES[r]);
+                let says = format!("{says}, {}", &self.pairs()[at].0[2..]);
                 let value = self.arc_step(index, OWN[at], symbol, &says, formula)?;
                 self.ledger.raise_floor(value, FLAT * width);
             }
@@ -428,8 +427,7 @@ impl Builder<'_> {
             ("Q_vv", q("v", "v"), vv.as_str()),
             ("Q_uv", q("u", "v"), uv),
         ] {
-            let pair: Vec<String> = name[2..].chars().map(String::from).collect();
-            let says = format!("{says}, {}", pair.join("-"));
+            let says = format!("{says}, {}", &name[2..]);
             let value = self.arc_step(index, name, symbol, &says, formula)?;
             self.ledger.raise_floor(value, FLAT * width);
         }
@@ -444,7 +442,7 @@ impl Builder<'_> {
                 index,
                 OWN[at],
                 Self::pair_symbol(name).with("0"),
-                &format!("{says}, {a}-{b}"),
+                &format!("{says}, {a}{b}"),
                 &formula,
             )?;
         }

@@ -1,4 +1,4 @@
-//! Failure paths: which the note checks, which are left to others, which it does not cover.
+//! Failure paths: which the note checks, which the user excludes, which it does not cover.
 
 use super::builder::Builder;
 use super::calculation::{Calculation, Outcome};
@@ -12,12 +12,18 @@ pub(super) fn coverage(b: &mut Builder<'_>, calculation: &Calculation<'_>) {
     let mut rows = Vec::new();
     for (word, name) in ordered_paths() {
         let mut by: Vec<String> = Vec::new();
+        let mut fails = false;
         let mut without: Vec<String> = Vec::new();
         for outcome in &calculation.outcomes {
             let covers = |paths: &[FailurePath]| paths.iter().any(|path| path.word() == word);
             match outcome {
                 Outcome::Assessed(asked) if covers(&asked.sheet.covers) => {
                     by.push(asked.sheet.name.value.clone());
+                    fails |= asked
+                        .strength
+                        .iter()
+                        .any(|strength| !strength.governing.margin.holds());
+                    fails |= asked.limits.iter().any(|limit| !limit.holds);
                 }
                 Outcome::Refused(refusal) if covers(&refusal.covers) => {
                     without.push(refusal.clause.clone());
@@ -31,6 +37,7 @@ pub(super) fn coverage(b: &mut Builder<'_>, calculation: &Calculation<'_>) {
             .iter()
             .find(|exclusion| exclusion.path.value == word);
         let (state, detail) = match (by.is_empty(), excluded) {
+            (false, _) if fails => (vec![strong("does not hold")], by.join("; ")),
             (false, _) => (plain("checked"), by.join("; ")),
             (true, Some(exclusion)) => (plain("excluded"), exclusion.by.value.clone()),
             (true, None) if !without.is_empty() => (
@@ -86,7 +93,7 @@ fn ordered_paths() -> Vec<(String, String)> {
         .collect()
 }
 
-/// The failure paths that the note does not cover, and those left to others.
+/// The failure paths that the note does not cover, and those that the user excludes.
 pub(super) fn coverage_words(b: &Builder<'_>, calculation: &Calculation<'_>) -> String {
     let uncovered = super::standing::uncovered(calculation);
     let mut words = if uncovered.is_empty() {
@@ -97,7 +104,7 @@ pub(super) fn coverage_words(b: &Builder<'_>, calculation: &Calculation<'_>) -> 
     let excluded = b.joint.excluded.iter();
     let excluded: Vec<&str> = excluded.map(|entry| entry.path.value.as_str()).collect();
     if !excluded.is_empty() {
-        words.push_str(&format!(" Left to others: {}.", excluded.join(", ")));
+        words.push_str(&format!(" Excluded: {}.", excluded.join(", ")));
     }
     words
 }

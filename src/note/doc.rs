@@ -38,7 +38,7 @@ pub struct Head {
 /// The verdict: one large figure and the words beside it.
 #[derive(Clone, Debug, Serialize)]
 pub struct Verdict {
-    /// What the figure is: `least margin of safety`, or `no margin` with a refusal.
+    /// What the figure is: `least margin of safety`, or that of the margins found.
     pub label: String,
     /// The figure with its sign, such as `+0.14`.
     pub figure: String,

@@ -60,7 +60,7 @@ impl Builder<'_> {
         text.push(piece(&format!(
             "; “line 12” beside a step is a line of {}. Every number below is in {}, {} and {}; an input given in another unit is converted on a line of its own. \
              Re-keying the printed numbers of a line gives its printed result, to one unit in the last digit; margins are \
-             rounded down, utilisations up. Beside a step, “→ 12” leads to where its result is used, and the box is for \
+             rounded down, utilisations up. Beside a step, “→ 12” leads to where its result is used (… stands for more), and the box is for \
              the checker’s tick.",
             match self.joint.inherits_from() {
                 Some(shared) => format!("the first, “{shared}:12” one of the second"),
@@ -91,6 +91,20 @@ impl Builder<'_> {
                     .to_be_verified
                     .then(|| "to be verified".to_owned()),
                 source: Some(super::layout::line_of(&assumption.says.place)),
+            });
+        }
+        for (run, gap) in self.free_gaps() {
+            let label = format!("A{}", items.len() + 1);
+            let says = format!(
+                "The root gap of {run}, {gap}, is not over 1/16 in, so the legs count in full: the fit-up rule for \
+                 steel, to be confirmed for the material and the code that governs."
+            );
+            open.push((label.clone(), says.clone()));
+            items.push(Item {
+                label,
+                text: plain(&says),
+                mark: Some("to be verified".to_owned()),
+                source: Some("AWS D1.1".to_owned()),
             });
         }
         for (says, source) in of_sheets {
@@ -253,11 +267,10 @@ impl Builder<'_> {
             rows,
             foot: None,
         });
-        self.free_gaps();
     }
 
-    /// Gaps that take nothing off a leg.
-    fn free_gaps(&mut self) {
+    /// Runs with a gap that takes nothing off a leg, and the gap as told.
+    pub(super) fn free_gaps(&self) -> Vec<(String, String)> {
         let free = GAP_FREE_IN * inch(self.joint.units.value);
         let mut gaps: Vec<(String, String)> = Vec::new();
         for run in self.runs {
@@ -269,11 +282,7 @@ impl Builder<'_> {
                 gaps.push(told);
             }
         }
-        for (run, gap) in gaps {
-            self.para(plain(&format!(
-                "The root gap of {run}, {gap}, is not over 1/16 in, so its legs count in full (AWS D1.1, fit-up)."
-            )));
-        }
+        gaps
     }
 
     /// The side of the root on which the fillet's toe on the base stands.

@@ -181,10 +181,8 @@ impl Builder<'_> {
         let entry = self.ledger.get(value);
         let result = matches!(entry.symbol.plain().as_str(), "U" | "MS");
         let assumed = || {
-            self.joint
-                .assumptions
-                .iter()
-                .any(|told| told.to_be_verified)
+            let told = &self.joint.assumptions;
+            told.iter().any(|told| told.to_be_verified) || !self.free_gaps().is_empty()
         };
         entry.mark.is_some()
             || (result && (assumed() || !self.ledger.marks_behind(value).is_empty()))

@@ -68,7 +68,11 @@ impl Builder<'_> {
         for (base, unit) in [("F", &force), ("M", &moment)] {
             columns.extend(AXES.map(|axis| {
                 let head = Symbol::of(base, &[axis]);
-                let head = if turned { head.with("given") } else { head };
+                let head = match (turned, base) {
+                    (true, _) => head.with("given"),
+                    (false, "M") => head.with("P"),
+                    (false, _) => head,
+                };
                 number_column(symbol(&head), unit)
             }));
         }
@@ -125,6 +129,16 @@ impl Builder<'_> {
         }
         if rows_bold {
             caption.push_str("; the case that governs in bold");
+        }
+        let framed = self
+            .joint
+            .loads
+            .cases
+            .iter()
+            .filter(|case| case.frame.is_some())
+            .count();
+        if framed > 0 && framed < total {
+            caption.push_str("; values of a case in a frame are components in it");
         }
         if shown < total {
             caption.push_str("; all stand in the table of cases");

@@ -461,7 +461,7 @@ impl Builder<'_> {
         ) {
             self.para(vec![
                 self.figure_ref(1, DEMAND),
-                piece(" shows the utilisation of each check along the weld."),
+                piece(" shows utilisations along the weld."),
             ]);
             self.figure(DEMAND);
         }
@@ -615,6 +615,11 @@ impl Builder<'_> {
         self.para(plain(
             "For these checks mechanics or the clause gives no number, so this note gives none.",
         ));
+        if unresisted.is_some() {
+            self.para(plain(
+                "Where one case finds no resistance, the check has no least margin, and none of its other cases is printed.",
+            ));
+        }
         let items = refused
             .into_iter()
             .map(|refusal| {

@@ -80,16 +80,23 @@ fn symbols(stopped: bool, on_throat: bool) -> Text {
     }
     text.extend([
         sym("i", &[]),
-        piece(" counts the runs; an index a, b, … tells sizes apart. "),
+        piece(
+            " counts the runs; a figure counts the runs too, with a coordinate the points, with a strength or a thickness \
+             the parts (1 attached, 2 base); an index a, b, … tells sizes apart. ",
+        ),
     ]);
     if on_throat {
         text.extend([
             sym("ell", &[]),
             piece(" is the direction of a run, "),
-            sym("n", &[]),
-            piece(" the direction across it in the faying plane, "),
             sym("k", &[]),
-            piece(" the faying normal. "),
+            piece(" the faying normal, "),
+            sym("n", &[]),
+            piece(" = "),
+            sym("k", &[]),
+            piece(" × "),
+            sym("ell", &[]),
+            piece(" the direction across the run. "),
         ]);
     }
     text.push(piece(

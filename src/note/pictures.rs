@@ -8,7 +8,7 @@ use super::doc::{Inline, Text};
 use super::margins::{Check, asked, check_name};
 use super::sketch::Sketch;
 use super::text::{capital, emph, number, piece, plain, strong};
-use crate::criteria::{FailurePath, Governing, Ground, profiles};
+use crate::criteria::{FailurePath, Governing, Ground, partner, profiles};
 use crate::formula::Value;
 use crate::joint::{RunSpec, SizeSpec};
 use crate::quantity::Dim;
@@ -184,7 +184,7 @@ impl Picture {
             )),
             Self::Demand(demand) => {
                 let mut words = plain(
-                    "Utilisation along the weld, laid out run by run, each check in its governing case: ",
+                    "Utilisation along the weld, laid out run by run at its effective length, each check in its governing case: ",
                 );
                 for (at, curve) in demand.curves.iter().enumerate() {
                     words.push(strong(&curve.letter));
@@ -427,7 +427,7 @@ impl Builder<'_> {
                 )
             },
             gap: spec.gap.as_ref().map(|gap| bare(gap.value.text())),
-            both: spec.both_sides.is_some(),
+            both: spec.both_sides.is_some() || partner(self.runs, index).is_some(),
             throat,
             thickness,
             planes,
@@ -520,9 +520,11 @@ impl Builder<'_> {
                 says: format!(
                     "{}{}, case {}",
                     check_name(asked, check.check),
-                    governing
-                        .part
-                        .map_or(String::new(), |turn| format!(", {}", turn.word())),
+                    if governing.part.is_some() {
+                        ", the worse part"
+                    } else {
+                        ""
+                    },
                     self.joint.loads.cases[governing.case].name.value
                 ),
                 runs: followed

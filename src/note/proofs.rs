@@ -32,15 +32,14 @@ impl Builder<'_> {
             "Closure, case {name}: the stresses of the steps above, summed numerically along the runs, must give back the force \
              applied, and about the load’s own point the moment given."
         )));
-        let says = "Force that the sum misses, as a part of the force applied";
+        let says = "Force that the sum misses, as a part of the force applied, or of the moment over the size";
         self.bound(
             "closure.force",
             Symbol::of("delta", &["F"]),
             says,
             closure.force_residual(),
         );
-        let says =
-            "Moment about the load’s point that the sum misses, as a part of the moment applied";
+        let says = "Moment about the load’s point that the sum misses, as a part of the largest moment of the case: given, about the centroid, or force times size";
         self.bound(
             "closure.moment",
             Symbol::of("delta", &["M"]),

@@ -61,6 +61,15 @@ fn unrecorded_issue(joint: &Joint) -> Option<String> {
     (!told && !first).then(|| format!("The record of changes has no entry for issue {revision}."))
 }
 
+/// How many open items a note has.
+fn open_words(all: usize) -> String {
+    match all {
+        0 => "No open item in this note.".to_owned(),
+        1 => "1 open item in this note, see “Open items”.".to_owned(),
+        many => format!("{many} open items in this note, see “Open items”."),
+    }
+}
+
 /// The verdict of the first page.
 pub(super) fn verdict(
     b: &Builder<'_>,
@@ -69,6 +78,7 @@ pub(super) fn verdict(
     open: &[(String, String)],
 ) -> Verdict {
     let standing = Standing::of(calculation);
+    let all = open.len() + b.open_items().len() + usize::from(unrecorded_issue(b.joint).is_some());
     let Some(check) = checks.first() else {
         let lines = vec![
             vec![
@@ -76,9 +86,10 @@ pub(super) fn verdict(
                 piece(&format!(" {}", standing.tally())),
             ],
             plain(&coverage_words(b, calculation)),
+            plain(&open_words(all)),
         ];
         return Verdict {
-            label: "no margin".to_owned(),
+            label: "least margin of safety".to_owned(),
             figure: "none".to_owned(),
             lines,
         };
@@ -139,10 +150,9 @@ pub(super) fn verdict(
     } else {
         vec![tally, first]
     };
-    let all = open.len() + b.open_items().len() + usize::from(unrecorded_issue(b.joint).is_some());
     if marks.is_empty() {
         let text = match all {
-            0 => "No open item in this note.".to_owned(),
+            0 => open_words(0),
             many => format!(
                 "No open item stands behind this margin; {many} in the note, see “Open items”."
             ),

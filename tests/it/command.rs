@@ -316,7 +316,10 @@ fn must_hold_exits_with_3_where_a_check_has_no_number() {
         note.contains("Checks without a number"),
         "the note says why"
     );
-    assert!(note.contains("no margin"), "the verdict says so");
+    assert!(
+        note.contains("least margin of safety: none"),
+        "the verdict says so"
+    );
 }
 
 #[test]

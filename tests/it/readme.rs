@@ -261,7 +261,7 @@ fn its_picture_is_the_first_page_of_the_demo() {
     const PICTURE: &str = "out/first-page.svg";
     let (joint, produced) = crate::notes::demo()
         .iter()
-        .find(|(joint, _)| joint.stem == "hatch-hinge")
+        .find(|(joint, _)| joint.stem == "mast-foot")
         .expect("the demo joint of the picture");
     let press = Press::new();
     let page = press

@@ -22,15 +22,29 @@ pub(super) struct CaseValues {
     pub(super) about: [Value; 3],
 }
 
-/// The name of a case, with the frame that its values are given in.
-fn framed_name(case: &Case) -> String {
-    match &case.frame {
-        Some(frame) => format!("{} (in frame {})", case.name.value, frame.name.value),
-        None => case.name.value.clone(),
-    }
-}
-
 impl Builder<'_> {
+    /// The frame that all cases are given in, if it is one.
+    fn shared_frame(&self) -> Option<&str> {
+        let mut frames = self
+            .joint
+            .loads
+            .cases
+            .iter()
+            .map(|case| case.frame.as_ref().map(|frame| frame.name.value.as_str()));
+        let first = frames.next()??;
+        frames.all(|frame| frame == Some(first)).then_some(first)
+    }
+
+    /// The name of a case, with the frame of its own that its values are given in.
+    fn framed_name(&self, case: &Case) -> String {
+        match &case.frame {
+            Some(frame) if self.shared_frame().is_none() => {
+                format!("{} (in frame {})", case.name.value, frame.name.value)
+            }
+            _ => case.name.value.clone(),
+        }
+    }
+
     /// The level of the cases, where all have the same.
     pub(super) fn shared_level(&self) -> Option<&'static str> {
         let mut levels = self.joint.loads.cases.iter().map(|case| case.level.value);
@@ -82,7 +96,7 @@ impl Builder<'_> {
         for index in shown {
             let case = self.joint.loads.cases[index].clone();
             let id = format!("case.{}-{}", index + 1, slug(&case.name.value));
-            let mut cells = vec![Cell::Text(plain(&framed_name(&case)))];
+            let mut cells = vec![Cell::Text(plain(&self.framed_name(&case)))];
             if level.is_none() {
                 cells.push(Cell::Text(plain(case.level.value.word())));
             }
@@ -129,6 +143,9 @@ impl Builder<'_> {
         }
         if rows_bold {
             caption.push_str("; the case that governs in bold");
+        }
+        if let Some(frame) = self.shared_frame() {
+            caption.push_str(&format!("; components in frame {frame}"));
         }
         let framed = self
             .joint
@@ -210,7 +227,7 @@ impl Builder<'_> {
         let mut points: Vec<(usize, Vec<String>)> = Vec::new();
         for index in shown {
             let case = &self.joint.loads.cases[*index];
-            let name = framed_name(case);
+            let name = self.framed_name(case);
             let start = |other: usize| self.joint.loads.cases[other].at.place.start;
             match points
                 .iter_mut()
@@ -233,7 +250,11 @@ impl Builder<'_> {
                 strong: false,
             });
         }
-        let caption = plain("Points of application as given");
+        let mut caption = "Points of application as given".to_owned();
+        if let Some(frame) = self.shared_frame() {
+            caption.push_str(&format!(", in frame {frame}"));
+        }
+        let caption = plain(&caption);
         self.table(Sheet {
             id: "load-points".to_owned(),
             caption,

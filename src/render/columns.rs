@@ -28,7 +28,7 @@ const WORD: f64 = WORD_EMS * SIZE;
 /// A guess for a sign of mathematics (ems): no letter of the maths face is wider.
 const SIGN: f64 = 1.0;
 /// The same for a sign of an index.
-const INDEX_SIGN: f64 = 0.6;
+const INDEX_SIGN: f64 = 0.5;
 /// The same for an operator with the space at its sides.
 const OPERATOR: f64 = 1.4;
 /// Asides are smaller than the text that they stand in.

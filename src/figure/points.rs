@@ -65,7 +65,8 @@ impl Sheet<'_> {
         }
         let radius = ring_radius(at, shared);
         // Arrows that start at the point stay visible.
-        let core = if self.scene.vectors.is_some() {
+        // So do the runs, where the ring stands beside a point.
+        let core = if self.scene.vectors.is_some() || own.is_none() {
             Fill::None
         } else {
             Fill::White

@@ -193,14 +193,14 @@ impl Cell<'_, '_> {
         let bead = |root: P2, x: P2| {
             let on_attached = root + face * attached;
             if groove {
-                // The bevel goes into the attached part; its root lies inside. The plane is that of a
-                // fillet with equal legs.
+                // The bevel goes into the attached part; its root lies inside. The plane is as wide
+                // as the weld goes in, turned as in a fillet with equal legs.
                 let depth = 0.45 * self.width_on_base();
                 return Bead {
                     root: root - x * depth,
                     on_base: root,
                     on_attached,
-                    throat: root + face * depth,
+                    throat: root - x * depth + unit(x + face) * depth,
                 };
             }
             let on_base = root + x * base;
@@ -241,14 +241,6 @@ impl Cell<'_, '_> {
         self.sizes(bead);
         if !self.section.angle_text.is_empty() {
             self.angle();
-        }
-        if let Some(gap) = self.section.gap.clone() {
-            let far = P2::new(-self.width_on_base(), 0.0);
-            self.label(
-                format!("gap {gap}"),
-                far + P2::new(-0.5, GAP / 2.0),
-                -P2::x(),
-            );
         }
     }
 
@@ -487,6 +479,10 @@ impl Cell<'_, '_> {
             SectionShape::Partial(_) => "partial penetration".to_owned(),
             SectionShape::Complete { .. } => "complete penetration".to_owned(),
         };
-        format!("{kind}{both}")
+        let gap = match &self.section.gap {
+            Some(gap) => format!(", gap {gap}"),
+            None => String::new(),
+        };
+        format!("{kind}{both}{gap}")
     }
 }

@@ -125,7 +125,7 @@ fn free(canvas: &Canvas<'_>, rect: &Rect) -> bool {
 /// The centroid's mark: a cross in a circle.
 pub(super) fn draw_centroid(canvas: &mut Canvas<'_>, at: P2) {
     let thin = Stroke::black(0.7);
-    canvas.mark([circle(at, 1.3, thin, Fill::None)]);
+    canvas.mark([circle(at, 1.3, thin, Fill::White)]);
     canvas.line(at - P2::x() * 2.3, at + P2::x() * 2.3, thin);
     canvas.line(at - P2::y() * 2.3, at + P2::y() * 2.3, thin);
 }

@@ -175,7 +175,7 @@ pub struct Entry {
     pub signed: bool,
     /// Which way it is rounded where it is printed.
     pub rounding: Rounding,
-    /// Of a found value, what it was found from.
+    /// Of a found value, what it was found from; of a line that verifies, what it is to return.
     pub rests_on: Vec<Value>,
     /// What the checker's margin calls it, such as `step 12` or `table 2`; empty until the note is laid out.
     pub no: String,

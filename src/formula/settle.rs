@@ -21,6 +21,9 @@ const SUM_DIGITS: usize = 6;
 /// gives up a digit instead: it has no more to give.
 const MANY_DIGITS: usize = 7;
 
+/// How often equal values that are rounded apart are looked for.
+const ROUNDS_APART: usize = 2;
+
 /// No value is printed with more digits than this; beyond, the note refuses.
 const MOST_DIGITS: usize = 13;
 
@@ -36,31 +39,68 @@ impl Ledger {
     pub fn settle(&mut self) -> Result<(), FormulaError> {
         self.keep_printed(None);
         let lines = Lines::of(self);
-        let mut queue: VecDeque<Value> = self.values().collect();
-        let mut waiting = vec![true; queue.len()];
-        while let Some(value) = queue.pop_front() {
-            waiting[value.0] = false;
-            while let Some(raised) = self.raise_or_round(value, &lines)? {
+        let mut queue = Queue::of(self.values());
+        for _ in 0..ROUNDS_APART {
+            self.settle_lines(&mut queue, &lines)?;
+            // Equal values at the edge of a digit may be rounded apart: they get another one.
+            let apart = self.rounded_apart(&lines);
+            for value in apart {
+                self.get_mut(value).digits += 1;
+                self.keep_printed(Some(value));
+                queue.add(value);
+                queue.add_users(value, &lines, value);
+            }
+        }
+        self.settle_lines(&mut queue, &lines)
+    }
+
+    /// Raises digits until every line of the queue replays.
+    fn settle_lines(&mut self, queue: &mut Queue, lines: &Lines) -> Result<(), FormulaError> {
+        while let Some(value) = queue.next() {
+            while let Some(raised) = self.raise_or_round(value, lines)? {
+                self.keep_printed(Some(raised));
+                queue.add_users(raised, lines, value);
                 let digits = self.get(raised).digits;
-                for changed in lines.alike[raised.0].iter().copied().chain([raised]) {
-                    let entry = self.get_mut(changed);
-                    if changed != raised {
-                        if entry.digits >= digits || entry.freedom != Freedom::Free {
-                            continue;
-                        }
+                for twin in lines.alike[raised.0].iter().copied() {
+                    let entry = self.get_mut(twin);
+                    if entry.digits < digits && entry.freedom == Freedom::Free {
                         entry.digits = digits;
-                    }
-                    self.keep_printed(Some(changed));
-                    for other in lines.users[changed.0].iter().copied().chain([changed]) {
-                        if other != value && !waiting[other.0] {
-                            waiting[other.0] = true;
-                            queue.push_back(other);
-                        }
+                        self.keep_printed(Some(twin));
+                        queue.add_users(twin, lines, value);
                     }
                 }
             }
         }
         Ok(())
+    }
+
+    /// The values of those groups whose members print differently with the same digits.
+    fn rounded_apart(&self, lines: &Lines) -> Vec<Value> {
+        let free = |value: Value| {
+            let entry = self.get(value);
+            entry.freedom == Freedom::Free
+                && entry.rounding == Rounding::Nearest
+                && entry.digits < MANY_DIGITS
+                && matches!(entry.kind, Kind::Step { .. } | Kind::Found { .. })
+        };
+        let mut apart = Vec::new();
+        for first in self.values() {
+            let others = &lines.alike[first.0];
+            if others.is_empty() || others[0].0 < first.0 || !free(first) {
+                continue;
+            }
+            let (digits, text) = (self.get(first).digits, self.printed(first).text());
+            let alike = |other: &Value| free(*other) && self.get(*other).digits == digits;
+            let group: Vec<Value> = others.iter().copied().filter(alike).collect();
+            if group
+                .iter()
+                .any(|other| self.printed(*other).text() != text)
+            {
+                apart.push(first);
+                apart.extend(group);
+            }
+        }
+        apart
     }
 
     /// Raises an operand of a line; a result that is rounded to one side is rounded to the nearest
@@ -288,6 +328,41 @@ impl Ledger {
     }
 }
 
+/// Lines that are still to be looked at, each once.
+struct Queue {
+    values: VecDeque<Value>,
+    waiting: Vec<bool>,
+}
+
+impl Queue {
+    fn of(values: impl Iterator<Item = Value>) -> Self {
+        let values: VecDeque<Value> = values.collect();
+        let waiting = vec![true; values.len()];
+        Self { values, waiting }
+    }
+
+    fn next(&mut self) -> Option<Value> {
+        let value = self.values.pop_front()?;
+        self.waiting[value.0] = false;
+        Some(value)
+    }
+
+    fn add(&mut self, value: Value) {
+        if !std::mem::replace(&mut self.waiting[value.0], true) {
+            self.values.push_back(value);
+        }
+    }
+
+    /// A changed value and the lines that use it, but for the one at hand.
+    fn add_users(&mut self, changed: Value, lines: &Lines, at_hand: Value) {
+        for user in lines.users[changed.0].iter().copied().chain([changed]) {
+            if user != at_hand {
+                self.add(user);
+            }
+        }
+    }
+}
+
 /// What of the lines stays while digits move.
 struct Lines {
     /// The formula of each line that has one.
@@ -323,37 +398,78 @@ impl Lines {
         }
         Self {
             flats: ledger.values().map(flat).collect(),
+            alike: alike(ledger, &uses),
             uses,
             users,
-            alike: alike(ledger),
         }
     }
 }
 
-/// For each value, the others of its family that are equal to it, such as throats of runs of one size.
-fn alike(ledger: &Ledger) -> Vec<Vec<Value>> {
+/// For each value, those equal to it that are read beside it: of the same family, such as throats of
+/// runs of one size, operands that a line hands on, and what it verifies.
+fn alike(ledger: &Ledger, uses: &[Vec<Value>]) -> Vec<Vec<Value>> {
     /// Values that differ by less, in parts of themselves, are equal.
-    const EQUAL: f64 = 1e-12;
-    let mut ranked: Vec<(Symbol, f64, Value)> = ledger
-        .values()
-        .map(|value| {
-            (
-                ledger.get(value).symbol.family(),
-                ledger.get(value).value,
-                value,
-            )
-        })
-        .collect();
-    ranked.sort_by(|a, b| a.0.cmp(&b.0).then(a.1.total_cmp(&b.1)));
-    let mut alike = vec![Vec::new(); ranked.len()];
-    let is_equal = |a: &(Symbol, f64, Value), b: &(Symbol, f64, Value)| {
-        a.0 == b.0 && (a.1 - b.1).abs() <= EQUAL * a.1.abs()
+    const EQUAL: f64 = 1e-11;
+    let is_equal = |a: Value, b: Value| {
+        let (a, b) = (ledger.get(a), ledger.get(b));
+        a.dim == b.dim && a.value != 0.0 && (a.value - b.value).abs() <= EQUAL * a.value.abs()
     };
-    for group in ranked.chunk_by(is_equal) {
-        for (_, _, one) in group {
-            let others = group.iter().map(|(_, _, other)| *other);
-            alike[one.0] = others.filter(|other| other != one).collect();
+    let mut ranked: Vec<(Symbol, Value)> = ledger
+        .values()
+        .map(|value| (ledger.get(value).symbol.family(), value))
+        .collect();
+    ranked.sort_by(|a, b| {
+        let number = |value: Value| ledger.get(value).value;
+        a.0.cmp(&b.0).then(number(a.1).total_cmp(&number(b.1)))
+    });
+    let mut groups = Groups::of(ranked.len());
+    for pair in ranked.windows(2) {
+        if pair[0].0 == pair[1].0 && is_equal(pair[0].1, pair[1].1) {
+            groups.join(pair[0].1, pair[1].1);
         }
     }
-    alike
+    for (value, used) in ledger.values().zip(uses) {
+        let beside = used.iter().chain(&ledger.get(value).rests_on);
+        for used in beside.copied().filter(|used| is_equal(value, *used)) {
+            groups.join(value, used);
+        }
+    }
+    let values: Vec<Value> = ledger.values().collect();
+    groups.others(&values)
+}
+
+/// Values in groups, each of which knows its first.
+struct Groups(Vec<usize>);
+
+impl Groups {
+    fn of(count: usize) -> Self {
+        Self((0..count).collect())
+    }
+
+    fn first(&mut self, mut at: usize) -> usize {
+        while self.0[at] != at {
+            self.0[at] = self.0[self.0[at]];
+            at = self.0[at];
+        }
+        at
+    }
+
+    fn join(&mut self, a: Value, b: Value) {
+        let (a, b) = (self.first(a.0), self.first(b.0));
+        self.0[a.max(b)] = a.min(b);
+    }
+
+    /// For each value, the others of its group.
+    fn others(mut self, values: &[Value]) -> Vec<Vec<Value>> {
+        let mut members: Vec<Vec<Value>> = vec![Vec::new(); self.0.len()];
+        for value in values.iter().copied() {
+            let first = self.first(value.0);
+            members[first].push(value);
+        }
+        let others = |value: &Value| {
+            let group = members[self.first(value.0)].iter().copied();
+            group.filter(|other| other != value).collect()
+        };
+        values.iter().map(others).collect()
+    }
 }

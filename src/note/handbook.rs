@@ -227,7 +227,7 @@ impl Builder<'_> {
                 .with("hb"),
             says: "The same of the group".to_owned(),
             formula: whole,
-            origin: Origin::Clause("Shigley, eq. 9-6".to_owned()),
+            origin: Origin::Clause("Shigley, chapter 9".to_owned()),
             dim: None,
         };
         if told.index < 3 {

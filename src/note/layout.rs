@@ -243,8 +243,8 @@ impl Builder<'_> {
         for cell in lines.flat_map(|line| &line.cells) {
             let values = match cell {
                 Cell::Own(value) => self.ledger.uses(*value),
-                Cell::Linked(value) => vec![*value],
-                Cell::Text(_) | Cell::Rounded { .. } => Vec::new(),
+                Cell::Linked(value) | Cell::Rounded { value, .. } => vec![*value],
+                Cell::Text(_) => Vec::new(),
             };
             for value in values {
                 let entry = self.ledger.get(value);

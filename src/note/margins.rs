@@ -152,7 +152,7 @@ impl Builder<'_> {
         );
         self.para(vec![
             self.figure_ref(1, STRESSES),
-            piece(" shows the stress on the throat at the points of the group."),
+            piece(" shows the stress on the throat along the runs."),
         ]);
         self.figure(STRESSES);
         let regime = calculation.resistance.class.regime;

@@ -179,7 +179,7 @@ impl Picture {
                 ))
             }
             Self::Stresses(sketch) => plain(&format!(
-                "Stress on the throat at the points of the group in case {}, {view}. Scale of lengths\u{a0}{scale}.",
+                "Stress on the throat along the runs in case {}, {view}. Scale of lengths\u{a0}{scale}.",
                 sketch.case
             )),
             Self::Demand(demand) => {

@@ -232,7 +232,7 @@ impl Builder<'_> {
         {
             let a = AXES[axis];
             let says = format!("Verification: K θ returns the moment about {a}");
-            self.at(
+            let returned = self.at(
                 sheet,
                 &format!("M_{a}K"),
                 Symbol::of("M", &[a, "K"]),
@@ -240,6 +240,9 @@ impl Builder<'_> {
                 formula,
                 "line method",
             )?;
+            if let Some(Bound::Value(wanted)) = sheet.env.names.get(&format!("M_{a}")) {
+                self.ledger.get_mut(returned).rests_on = vec![*wanted];
+            }
         }
         Ok(())
     }

@@ -33,6 +33,8 @@ const INDEX_SIGN: f64 = 0.5;
 const OPERATOR: f64 = 1.4;
 /// Asides are smaller than the text that they stand in.
 const ASIDE: f64 = 0.86;
+/// So are units in heads, a little.
+const UNIT: f64 = 0.95;
 
 /// What is known of a column's width.
 struct Measure {
@@ -140,7 +142,7 @@ fn measure<'a>(column: &Column, cells: impl Iterator<Item = (&'a Text, bool)>) -
         head: head_width(column),
         word: 0.0,
         longest: 0.0,
-        guess: guess(&column.head).max(ASIDE * text_points(&column.unit, false)),
+        guess: guess(&column.head).max(UNIT * text_points(&column.unit, false)),
         maths: false,
     };
     for (cell, strong) in cells {
@@ -237,7 +239,7 @@ fn head_width(column: &Column) -> Option<f64> {
     if has_maths(&column.head) || has_maths(&column.unit) {
         return None;
     }
-    let unit = ASIDE * text_points(&column.unit, false);
+    let unit = UNIT * text_points(&column.unit, false);
     Some(text_points(&column.head, false).max(unit))
 }
 

@@ -1,7 +1,7 @@
 //! Dimension lines with their extension lines, oblique ticks and text.
 
-use super::canvas::Canvas;
-use super::drawing::{P2, Stroke};
+use super::canvas::{Canvas, Keep, Layer};
+use super::drawing::{Item, P2, Path, Stroke};
 use super::place::{Candidate, MANY, around, dearer, rank, reading_angle};
 use super::rect::{Bounds, Rect, square};
 use super::scene::{Axis, Dimension};
@@ -88,11 +88,9 @@ pub(super) fn draw_dimension(
     let [a, b] = way.feet;
     for (foot, end) in [(a, way.ends[0]), (b, way.ends[1])] {
         if (foot - end).dot(&way.out) > GAP {
-            canvas.aid(
-                end + way.out * GAP,
-                foot + way.out * PAST,
-                Stroke::black(0.3),
-            );
+            let points = [end + way.out * GAP, foot + way.out * PAST];
+            let line = Item::Path(Path::through(&points, Stroke::black(0.3)));
+            canvas.draw_kept(Layer::Aid, line, Keep::Off);
         }
     }
     canvas.line(a, b, Stroke::black(0.4));

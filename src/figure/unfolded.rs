@@ -36,6 +36,8 @@ const RING: f64 = 1.75;
 /// Least distance of ticks on the scale (mm), and how many there are at most.
 const LEAST_STEP: f64 = 4.0;
 const MOST_TICKS: u32 = 40;
+/// Thickness of the laid-out weld (pt).
+const WELD: f64 = 1.8;
 /// Half the length of a tick (mm).
 const TICK: f64 = 1.0;
 
@@ -191,7 +193,9 @@ impl Layout {
     fn draw_axis(&self, canvas: &mut Canvas<'_>, sketch: &DemandSketch) {
         for index in 0..sketch.runs.len() {
             let (from, to) = (self.point(index, 0.0, 0.0), self.point(index, 1.0, 0.0));
-            canvas.line(from, to, Stroke::black(1.8));
+            // Its upper edge is the zero of the scale, so that it hides no small utilisation.
+            let under = P2::y() * (WELD / 2.0 * super::PT);
+            canvas.line(from + under, to + under, Stroke::black(WELD));
             for end in [from, to] {
                 canvas.line(end, end + P2::y() * TICK, Stroke::black(0.6));
                 canvas.aid(end, end - P2::y() * self.unit, Stroke::grey(0.3));

@@ -456,7 +456,7 @@ impl Builder<'_> {
         for (index, run) in self.runs.iter().enumerate() {
             let steps: u32 = match run.path {
                 crate::weld::Segment::Straight { .. } => 2,
-                crate::weld::Segment::Arc { sweep, .. } if sweep.abs() > 3.0 => 8,
+                crate::weld::Segment::Arc { sweep, .. } if sweep.abs() > 4.0 => 8,
                 crate::weld::Segment::Arc { .. } => 4,
             };
             for step in 0..=steps {

@@ -4,6 +4,7 @@ use super::canvas::strokes;
 use super::compose::Sheet;
 use super::drawing::{Item, MarkKind, Path, Span, Stroke, Style};
 use super::place::{around, dearer, rank};
+use super::rect::Rect;
 use super::shape::small_head;
 use super::unfolded::plain_number;
 use super::view::unit;
@@ -27,6 +28,7 @@ impl Sheet<'_> {
             return;
         };
         let stroke = Stroke::black(0.8);
+        let (mut drawn, mut left_out): (Vec<Rect>, bool) = (Vec::new(), false);
         for (index, (at, f)) in vectors.arrows.iter().enumerate() {
             let from = self.view.image(at);
             // As long as the vector is, whatever the view makes of its direction.
@@ -43,6 +45,13 @@ impl Sheet<'_> {
             let shaft = Item::Path(Path::through(&[from, to], stroke));
             let head = small_head(to, unit(along), along.norm(), stroke);
             let rects = [&shaft, &head].map(strokes).concat();
+            // The first one is where the check governs; others keep off those before them.
+            let meets = |one: &Rect| drawn.iter().any(|known| known.overlaps(one));
+            if index > 0 && rects.iter().any(meets) {
+                left_out = true;
+                continue;
+            }
+            drawn.extend(rects.iter().copied());
             let mark = self.canvas.name(MarkKind::Arrow, rects);
             self.canvas.mark([shaft, head]);
             if index == 0 && !vectors.first.is_empty() {
@@ -61,6 +70,10 @@ impl Sheet<'_> {
             vectors.unit
         );
         self.canvas.remark(&says);
+        if left_out {
+            self.canvas
+                .remark("arrows that would cross others are left out");
+        }
     }
 }
 

@@ -195,7 +195,7 @@ impl Cell<'_, '_> {
             if groove {
                 // The bevel goes into the attached part; its root lies inside. The plane is as wide
                 // as the weld goes in, turned as in a fillet with equal legs.
-                let depth = 0.45 * self.width_on_base();
+                let depth = 0.75 * self.width_on_base();
                 return Bead {
                     root: root - x * depth,
                     on_base: root,

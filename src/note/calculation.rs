@@ -149,7 +149,7 @@ impl<'a> Calculation<'a> {
         let moment = |value: f64| {
             let printed = Printed::of(value.abs(), 4, 4, 0.0);
             format!(
-                "the moment of {} {}",
+                "the moment of magnitude {} {}",
                 printed.text(),
                 units.text(Dim::MOMENT)
             )

@@ -241,15 +241,10 @@ impl<'a> Sheet<'a> {
     fn mark_foot(&mut self, dimension: &Dimension) {
         let at = dimension.from;
         let near = |p: &V3| (at - p).norm() < 1e-9 * (1.0 + p.norm());
-        let to_load = self
-            .scene
-            .loads
-            .iter()
-            .any(|load| (load.at - dimension.to).norm() < 1e-9);
         let known = self.scene.points.iter().any(|point| near(&point.at))
             || self.scene.centroid.as_ref().is_some_and(near)
             || self.scene.origin.as_ref().is_some_and(near);
-        if self.view.flat || !to_load || known {
+        if self.view.flat || !self.is_load(&dimension.to) || known {
             return;
         }
         let foot = self.view.image(&at);
@@ -259,12 +254,13 @@ impl<'a> Sheet<'a> {
         }
     }
 
+    fn is_load(&self, p: &V3) -> bool {
+        let near = |load: &Load| (load.at - p).norm() < 1e-9 * (1.0 + p.norm());
+        self.scene.loads.iter().any(near)
+    }
+
     /// A dimension between two of the points that it may be drawn between.
     fn placed<'d>(&self, dimension: &'d Dimension, (from, to): (V3, V3)) -> Placed<'d> {
-        let is_load = |p: &V3| {
-            let near = |l: &Load| (l.at - p).norm() < 1e-9 * (1.0 + p.norm());
-            self.scene.loads.iter().any(near)
-        };
         let found = |p: &V3| spot(self.view.image(p), &self.group, self.centre, self.far);
         let found = [found(&from), found(&to)];
         let told = found.map(|s| s.at);
@@ -294,7 +290,9 @@ impl<'a> Sheet<'a> {
             ends,
             told,
             apart,
-            to_load: is_load(&from) || is_load(&to) || (centroid_only && !dimension.optional),
+            to_load: self.is_load(&from)
+                || self.is_load(&to)
+                || (centroid_only && !dimension.optional),
             group: self.group,
             broken,
             from_end,

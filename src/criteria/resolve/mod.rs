@@ -8,7 +8,7 @@ mod part;
 mod run;
 
 use super::from::{From, PointField, Property, RunField, Which};
-use super::sheet::{Need, Sheet, Status};
+use super::sheet::{Need, Sheet};
 use crate::formula::{Origin, Symbol};
 use crate::joint::{CheckSpec, GivenAt, Joint, Part};
 use crate::quantity::{Dim, Given, UnitSet};
@@ -267,10 +267,8 @@ impl Asking<'_> {
             .source
             .clone()
             .unwrap_or_else(|| self.sheet.source.cited());
-        let recalled = stated.status == Status::Recalled;
         let mark = match &stated.source {
-            Some(_) => recalled
-                .then(|| format!("{source}: text recalled, not yet compared with the document")),
+            Some(_) => stated.status.mark(&source),
             None => self.sheet.mark(),
         };
         Ok(Some(Resolved::One(Box::new(Sourced {

@@ -304,6 +304,14 @@ pub struct Validity {
     pub says: String,
 }
 
+impl Status {
+    /// The mark of what is cited with this status, if it still has to be verified.
+    pub(super) fn mark(self, cited: &str) -> Option<String> {
+        (self == Self::Recalled)
+            .then(|| format!("{cited}: text recalled, not yet compared with the document"))
+    }
+}
+
 impl Sheet {
     /// The tables for a printing set, by name.
     #[must_use]
@@ -354,12 +362,7 @@ impl Sheet {
     /// Whether the document's text still has to be verified, and the mark that says so.
     #[must_use]
     pub fn mark(&self) -> Option<String> {
-        (self.source.status == Status::Recalled).then(|| {
-            format!(
-                "{}: text recalled, not yet compared with the document",
-                self.source.cited()
-            )
-        })
+        self.source.status.mark(&self.source.cited())
     }
 
     /// Whether a weld of this kind is taken.

@@ -47,6 +47,7 @@ pub(super) struct Obstacle {
 }
 
 /// The sheet.
+#[derive(Clone)]
 pub(super) struct Canvas<'a> {
     pub(super) fonts: &'a dyn TextWidth,
     pub(super) items: Vec<(Layer, Item)>,
@@ -61,6 +62,10 @@ pub(super) struct Canvas<'a> {
     pub(super) dropped: Vec<String>,
     /// Boxes of the runs alone.
     pub(super) welds: Vec<Rect>,
+    /// Boxes of the thin lines of dimensions.
+    pub(super) extensions: Vec<Rect>,
+    /// Where such lines stood in the try before: arrows keep off them.
+    pub(super) foreseen: Vec<Rect>,
     /// How many runs there are.
     pub(super) runs: usize,
     /// The room on the page (mm).
@@ -79,6 +84,8 @@ impl<'a> Canvas<'a> {
             ties: vec![],
             dropped: vec![],
             welds: vec![],
+            extensions: vec![],
+            foreseen: vec![],
             runs: 0,
             room,
         }
@@ -140,7 +147,7 @@ impl<'a> Canvas<'a> {
         self.wants.push(Want {
             rank,
             forms: vec![Form { words, candidates }],
-            anchor,
+            anchors: vec![anchor],
             clear: 1.0,
             names: None,
         });

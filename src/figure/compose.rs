@@ -2,7 +2,7 @@
 
 use super::canvas::Canvas;
 use super::dimension::{Placed, draw_dimension};
-use super::drawing::{Drawing, P2, Span, Stroke, Style};
+use super::drawing::{Drawing, Mark, MarkKind, P2, Span, Stroke, Style};
 use super::load::{AT_CENTROID, Spot, draw_load, draw_outline, spot};
 use super::place::{around, dearer, place_labels, rank};
 use super::rect::Bounds;
@@ -21,6 +21,9 @@ const FOOT: f64 = 0.9;
 const LONGEST_LINE: f64 = 1.5;
 /// An origin further outside the group than this part of its size is not drawn.
 const ORIGIN_REACH: f64 = 0.6;
+
+/// How often loads and dimensions are drawn anew to keep them apart.
+const TRIES: usize = 3;
 
 /// A load point further outside the group than this many times its size is drawn nearer, the next
 /// number where the group would stay small.
@@ -140,14 +143,7 @@ impl<'a> Sheet<'a> {
         self.runs();
         self.points();
         self.centroid();
-        for (load, spot) in self.scene.loads.iter().zip(&self.spots) {
-            draw_load(&mut self.canvas, &self.view, load, *spot, self.centre);
-        }
-        self.vectors();
-        self.origin();
-        for dimension in &self.scene.dimensions {
-            self.dimension(dimension);
-        }
+        self.measured();
         let mut labels = place_labels(&mut self.canvas);
         draw_triad(
             &mut self.canvas,
@@ -161,6 +157,50 @@ impl<'a> Sheet<'a> {
             view: self.view.words,
             ..self.canvas.finish(labels)
         }
+    }
+
+    /// Loads and dimensions. Where a dimension's thin lines meet an arrow, both are drawn again with
+    /// the arrows off those lines; the try in which the fewest meet stands.
+    fn measured(&mut self) {
+        let bare = self.canvas.clone();
+        let mut best: Option<(usize, Canvas<'a>)> = None;
+        let mut foreseen = Vec::new();
+        for _ in 0..TRIES {
+            self.canvas = Canvas {
+                foreseen,
+                ..bare.clone()
+            };
+            for (load, spot) in self.scene.loads.iter().zip(&self.spots) {
+                draw_load(&mut self.canvas, &self.view, load, *spot, self.centre);
+            }
+            self.vectors();
+            self.origin();
+            for dimension in &self.scene.dimensions {
+                self.dimension(dimension);
+            }
+            let met = self.arrows_met();
+            foreseen = self.canvas.extensions.clone();
+            if best.as_ref().is_none_or(|(least, _)| met < *least) {
+                best = Some((met, self.canvas.clone()));
+            }
+            if met == 0 {
+                break;
+            }
+        }
+        if let Some((_, canvas)) = best {
+            self.canvas = canvas;
+        }
+    }
+
+    /// How many pairs of an arrow and a thin line of a dimension meet.
+    fn arrows_met(&self) -> usize {
+        let arrows = self.canvas.marks.iter();
+        let arrows = arrows.filter(|mark| mark.kind == MarkKind::Arrow);
+        let met = |mark: &Mark| {
+            let lines = self.canvas.extensions.iter();
+            lines.filter(|line| mark.meets(line)).count()
+        };
+        arrows.map(met).sum()
     }
 
     fn outlines(&mut self) {

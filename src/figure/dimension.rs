@@ -11,10 +11,14 @@ use super::view::{View, unit};
 
 /// From what is drawn to the first dimension line, and from line to line (mm).
 const STEP: f64 = 6.5;
+/// From a load in space to its first dimension line: room for the values at its arrows (mm).
+const LOAD_STEP: f64 = 18.0;
 /// Free to either side of a dimension line (mm).
 const BAND: f64 = 3.2;
 /// Gap between the point and its extension line (mm).
 const GAP: f64 = 1.6;
+/// From the point on, what stands at the point itself is not crossed (mm).
+const OFF: f64 = 2.5;
 /// Cost of a way that would crowd the drawing with a dimension that may be left out.
 const CROWDED: f64 = 70.0;
 /// Cost of a line that stays over what is drawn, however far it is carried.
@@ -84,6 +88,9 @@ pub(super) fn draw_dimension(
     }
     if let Some(from) = placed.from_end.filter(|_| !way.direct) {
         canvas.aid(placed.ends[1], from, Stroke::black(0.3));
+        canvas
+            .extensions
+            .push(Rect::line(placed.ends[1], from, 0.1));
     }
     let [a, b] = way.feet;
     for (foot, end) in [(a, way.ends[0]), (b, way.ends[1])] {
@@ -91,6 +98,8 @@ pub(super) fn draw_dimension(
             let points = [end + way.out * GAP, foot + way.out * PAST];
             let line = Item::Path(Path::through(&points, Stroke::black(0.3)));
             canvas.draw_kept(Layer::Aid, line, Keep::Off);
+            let off = end + way.out * OFF.min((foot - end).norm());
+            canvas.extensions.push(Rect::line(off, foot, 0.1));
         }
     }
     canvas.line(a, b, Stroke::black(0.4));
@@ -140,13 +149,18 @@ fn way(canvas: &Canvas<'_>, view: &View, placed: &Placed<'_>, out: P2, direct: b
         |level: f64| ends.map(|p| p + out * ((level - p.dot(&normal)) / out.dot(&normal)));
     let clear =
         |feet: &[P2; 2]| canvas.is_clear(&Rect::line(feet[0], feet[1], BAND).lengthened(1.0));
-    let levels = (0..80).map(|i| base + STEP + 0.5 * f64::from(i));
+    let step = if placed.to_load && !view.flat {
+        LOAD_STEP
+    } else {
+        STEP
+    };
+    let levels = (0..80).map(|i| base + step + 0.5 * f64::from(i));
     let found = levels.map(at_level).find(clear);
     let through = found.is_none();
-    let feet = found.unwrap_or_else(|| at_level(base + STEP));
+    let feet = found.unwrap_or_else(|| at_level(base + step));
     let crossings = feet.iter().zip(&ends).filter(|(foot, end)| {
-        let line = Rect::line(*end + out * 2.5, **foot, 0.1);
-        (*foot - *end).dot(&out) > 2.5 && !canvas.is_clear(&line)
+        let line = Rect::line(*end + out * OFF, **foot, 0.1);
+        (*foot - *end).dot(&out) > OFF && !canvas.is_clear(&line)
     });
     // What stands between the points and the line leaves less room for its labels.
     let between = [0.35, 0.65, 0.95].into_iter().filter(|part| {

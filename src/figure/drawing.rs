@@ -62,6 +62,8 @@ pub enum MarkKind {
     Arrow,
     /// A run.
     Run,
+    /// A curve of a diagram with its ring.
+    Curve,
 }
 
 impl Mark {

@@ -8,7 +8,7 @@ use super::scene::{Axis, Component, Load};
 use super::shape::{HEADS, break_mark, circle, end_on, open_head, turning_arrow};
 use super::text::symbol_spans;
 use super::view::{View, unit};
-use crate::quantity::real::{atan2, cos, sin};
+use crate::quantity::real::{atan2, cos, sin, sqrt};
 
 /// Length of an arrow (mm).
 const ARROW: f64 = 13.0;
@@ -26,16 +26,14 @@ const ALONG: f64 = 60.0;
 const TOUCHING: f64 = 6.0;
 const BEHIND: f64 = 5.0;
 const ASIDE_COST: f64 = 5.0;
-/// Radius of a turning arrow (mm).
+/// Least radius of a turning arrow (mm).
 const TURN: f64 = 6.5;
 /// Radius of a load point's mark, and of a force end on (mm).
 const POINT: f64 = 1.3;
 const END_ON: f64 = 1.7;
-/// Sweeps of a turning arrow, 200° and, where arrows leave no such opening, 120° (rad).
-const SWEEPS: [f64; 2] = [
-    200.0 * std::f64::consts::PI / 180.0,
-    120.0 * std::f64::consts::PI / 180.0,
-];
+/// Sweeps of a turning arrow, in degrees, and their radii (mm): where other lines leave no opening for
+/// the first, the next.
+const SWEEPS: [(f64, f64); 3] = [(200.0, TURN), (120.0, TURN), (60.0, 9.0)];
 /// A load point nearer than this to the centroid shares its mark and letters (mm).
 pub(super) const AT_CENTROID: f64 = 1.0;
 /// How far outside the group a load point is drawn whose lead is broken (mm).
@@ -107,6 +105,23 @@ pub(super) fn draw_load(canvas: &mut Canvas<'_>, view: &View, load: &Load, spot:
         }
         draw_turn(canvas, turn, spot.at, &busy);
     }
+}
+
+/// Directions in which thin lines cross the circle of a turning arrow.
+fn crossings(lines: &[Rect], at: P2, radius: f64) -> Vec<P2> {
+    let at_line = |line: &Rect| {
+        let foot = (at - line.centre).dot(&line.along);
+        let aside = (at - line.centre - line.along * foot).norm_squared();
+        let half = sqrt((radius * radius - aside).max(0.0));
+        let on = |along: &f64| along.abs() <= line.half[0];
+        let ends = [foot - half, foot + half].into_iter().filter(on);
+        let to = |along: f64| unit(line.centre + line.along * along - at);
+        match aside < radius * radius {
+            true => ends.map(to).collect(),
+            false => Vec::new(),
+        }
+    };
+    lines.iter().flat_map(at_line).collect()
 }
 
 /// Directions on the sheet of the arrows that a load will have.
@@ -321,10 +336,11 @@ fn arrow_stand(canvas: &Canvas<'_>, at: P2, d: P2, used: &[(P2, f64)]) -> Stand 
 /// What it costs an arrow to lie where it would.
 fn lying_cost(canvas: &Canvas<'_>, from: P2, d: P2) -> f64 {
     let rect = Rect::line(from, from + d * ARROW, 1.0);
-    let met = canvas.welds.iter().filter(|weld| weld.overlaps(&rect));
-    let worst = met
-        .map(|weld| {
-            if weld.along.dot(&d).abs() > 0.9 {
+    let lines = canvas.welds.iter().chain(&canvas.foreseen);
+    let worst = lines
+        .filter(|line| line.overlaps(&rect))
+        .map(|line| {
+            if line.along.dot(&d).abs() > 0.9 {
                 ALONG
             } else {
                 CROSSING
@@ -352,37 +368,32 @@ fn arrow_places([a, tip]: [P2; 2], d: P2, size: [f64; 2]) -> Vec<Candidate> {
 /// A turning arrow about the point, in the widest opening between the arrows.
 fn draw_turn(canvas: &mut Canvas<'_>, component: &Component, at: P2, busy: &[P2]) {
     let sense = component.value.signum();
-    let (wide, narrow) = (
-        opening(busy, sense, SWEEPS[0]),
-        opening(busy, sense, SWEEPS[1]),
-    );
-    let ((from, crossed), sweep) = if wide.1 > 0 {
-        (narrow, SWEEPS[1])
-    } else {
-        (wide, SWEEPS[0])
-    };
-    let (from, sweep) = if crossed > 0 {
-        (wide.0, SWEEPS[0])
-    } else {
-        (from, sweep)
-    };
+    let found = SWEEPS.map(|(degrees, radius)| {
+        let mut busy = busy.to_vec();
+        busy.extend(crossings(&canvas.foreseen, at, radius));
+        let sweep = degrees.to_radians();
+        let (from, crossed) = opening(&busy, sense, sweep);
+        (from, crossed, sweep, radius)
+    });
+    let free = found.iter().find(|(_, crossed, ..)| *crossed == 0);
+    let (from, _, sweep, radius) = *free.unwrap_or(&found[0]);
     let stroke = Stroke::black(1.1);
-    let parts = turning_arrow(at, TURN, from, sense * sweep, stroke);
+    let parts = turning_arrow(at, radius, from, sense * sweep, stroke);
     let rects = parts.iter().flat_map(strokes).collect();
     let mark = canvas.name(MarkKind::Arrow, rects);
     canvas.mark(parts);
     let middle = from + sense * sweep / 2.0;
     let out = P2::new(cos(middle), -sin(middle));
     let words = canvas.words(symbol(Kind::Moment, component));
-    let mut places = around(at, TURN + 1.6, words.size(), out);
-    places.extend(dearer(around(at, TURN + 2.6, words.size(), out), 4.0));
+    let mut places = around(at, radius + 1.6, words.size(), out);
+    places.extend(dearer(around(at, radius + 2.6, words.size(), out), 4.0));
     for part in [0.25, 0.75] {
         let turn = from + sense * sweep * part;
         let out = P2::new(cos(turn), -sin(turn));
-        places.extend(dearer(around(at, TURN + 2.0, words.size(), out), 2.0));
+        places.extend(dearer(around(at, radius + 2.0, words.size(), out), 2.0));
     }
     canvas
-        .want(rank::TURN, words, at + out * TURN, places)
+        .want(rank::TURN, words, at + out * radius, places)
         .naming(mark, 0.3);
 }
 
@@ -422,16 +433,14 @@ mod tests {
     #[test]
     fn a_turning_arrow_crosses_no_arrow_where_there_is_room() {
         let busy = [P2::new(1.0, 0.0), P2::new(0.0, 1.0)];
+        let sweep = SWEEPS[0].0.to_radians();
         for sense in [1.0, -1.0] {
-            let (from, crossed) = opening(&busy, sense, SWEEPS[0]);
+            let (from, crossed) = opening(&busy, sense, sweep);
             assert_eq!(crossed, 0, "there is room for 200°");
             for d in busy {
                 let turn = std::f64::consts::TAU;
                 let after = ((atan2(-d.y, d.x) - from) * sense).rem_euclid(turn);
-                assert!(
-                    after > SWEEPS[0],
-                    "the arc from {from} passes over an arrow"
-                );
+                assert!(after > sweep, "the arc from {from} passes over an arrow");
             }
         }
     }

@@ -13,9 +13,11 @@ use super::text::Words;
 use crate::quantity::real::{cos, sin};
 
 /// Space between labels (mm to each side).
-const PAD: f64 = 0.35;
+const PAD: f64 = 0.6;
 /// Space between a label and what it must keep off (mm).
-const CLEAR: f64 = 0.25;
+const CLEAR: f64 = 0.4;
+/// Space between a leader and a line beside it (mm).
+const APART: f64 = 0.4;
 /// Cost of standing on an aid such as an extension line.
 const ON_AID: f64 = 12.0;
 /// Cost of each mm by which a label makes the drawing larger than its room.
@@ -26,8 +28,9 @@ const FAR: [f64; 8] = [2.6, 4.2, 6.5, 9.0, 12.0, 16.0, 21.0, 28.0];
 const NOT_FAR: usize = 4;
 /// More runs than this are many: their names are not led at all.
 pub(super) const MANY: usize = 8;
-/// Cost of a leader, above every place without one.
+/// Cost of a leader, above every place without one; of each anchor after the first.
 const LEADER: f64 = 100.0;
+const OTHER_ANCHOR: f64 = 6.0;
 /// A leader that rises less than this part of its run is level, and what that costs.
 const LEVEL: f64 = 0.35;
 const LEVEL_COST: f64 = 30.0;
@@ -37,6 +40,9 @@ const TELL: f64 = 0.3;
 const NEAR: f64 = 4.0;
 /// Rounds of placement at most.
 const ROUNDS: usize = 48;
+/// Step along a line from its middle (part of it), and how many there are to either side.
+const SLIDE: f64 = 0.04;
+const SLIDES: u8 = 9;
 /// Step of the search for any free place (mm).
 const ANYWHERE: f64 = 1.5;
 
@@ -67,9 +73,9 @@ pub(super) struct Want {
     pub(super) rank: u8,
     /// Its wordings, the best first.
     pub(super) forms: Vec<Form>,
-    /// What it names; a leader would start here.
-    pub(super) anchor: P2,
-    /// Radius about the anchor that its leader leaves free (mm).
+    /// Where a leader would start on what it names, the best first; at least one.
+    pub(super) anchors: Vec<P2>,
+    /// Radius about an anchor that its leader leaves free (mm).
     pub(super) clear: f64,
     /// Number of the mark that it names, if it has to be told from others.
     pub(super) names: Option<usize>,
@@ -79,6 +85,12 @@ impl Want {
     /// Ties the label to a mark, `clear` large about its anchor.
     pub(super) fn naming(&mut self, mark: usize, clear: f64) -> &mut Self {
         (self.names, self.clear) = (Some(mark), clear);
+        self
+    }
+
+    /// Adds an anchor for where no leader starts well at those before.
+    pub(super) fn else_from(&mut self, anchors: impl IntoIterator<Item = P2>) -> &mut Self {
+        self.anchors.extend(anchors);
         self
     }
 
@@ -161,15 +173,13 @@ pub(super) fn beside(
         (n.x * size[0]).abs() / 2.0 + (n.y * size[1]).abs() / 2.0
     };
     let mut out = Vec::new();
-    for (i, part) in [0.5, 0.38, 0.62, 0.26, 0.74, 0.18, 0.82, 0.14, 0.86]
-        .into_iter()
-        .enumerate()
-    {
+    let slides = (0..=SLIDES).flat_map(|i| [1.0, -1.0].map(|way| f64::from(i) * way));
+    for slide in slides {
+        let part = 0.5 + SLIDE * slide;
         let on = a + (b - a) * part;
         for side in [1.0, -1.0] {
             let off = n * side * (clear + half);
-            let slide = f64::from(u8::try_from(i).unwrap_or(u8::MAX));
-            let cost = slide * 0.8 + if off.dot(&toward) > 0.0 { 0.0 } else { 3.0 };
+            let cost = slide.abs() * 0.8 + if off.dot(&toward) > 0.0 { 0.0 } else { 3.0 };
             out.push(Candidate {
                 centre: on + off,
                 angle,
@@ -221,13 +231,14 @@ fn place_round(canvas: &mut Canvas<'_>, wants: &[Want], last: bool) -> Result<Ve
     };
     let mut labels = Vec::new();
     for (index, want) in wants.iter().enumerate() {
-        let Some((words, place)) = table.choose(want, canvas) else {
+        let Some(Choice { words, place, from }) = table.choose(want, canvas) else {
             return Err(index);
         };
         let rect = words.rect(place.centre, place.angle);
-        let led = place.cost >= LEADER;
-        if led {
-            draw_leader(canvas, want, words, &place);
+        if let Some(from) = from {
+            let ends = leader_ends(from, want.clear, words, &place);
+            let item = Item::Path(Path::through(&ends, Stroke::black(0.4)));
+            canvas.draw_kept(Layer::Mark, item, Keep::Off);
         }
         if let Some(mark) = want.names {
             let text = words.text();
@@ -235,7 +246,7 @@ fn place_round(canvas: &mut Canvas<'_>, wants: &[Want], last: bool) -> Result<Ve
                 text,
                 rect,
                 mark,
-                led,
+                led: from.is_some(),
             });
         }
         rect.corners().iter().for_each(|p| table.all.add(*p, 0.0));
@@ -282,6 +293,14 @@ enum Care {
     Labels,
 }
 
+/// A wording at its place.
+struct Choice<'w> {
+    words: &'w Words,
+    place: Candidate,
+    /// The anchor that a leader joins it to.
+    from: Option<P2>,
+}
+
 /// What is placed so far.
 struct Table {
     /// Boxes of labels.
@@ -294,33 +313,31 @@ struct Table {
 
 impl Table {
     /// The first wording that finds a place: near by, or led; the last one stands anywhere.
-    fn choose<'w>(&self, want: &'w Want, canvas: &Canvas<'_>) -> Option<(&'w Words, Candidate)> {
+    fn choose<'w>(&self, want: &'w Want, canvas: &Canvas<'_>) -> Option<Choice<'w>> {
         let last = want.forms.last()?;
         for form in &want.forms {
+            let words = &form.words;
             let more = !std::ptr::eq(form, last);
             let radii = match more {
                 true if canvas.runs > MANY => 0,
                 true => NOT_FAR,
                 false => FAR.len(),
             };
-            let near: Vec<Candidate> = form
-                .candidates
-                .iter()
-                .filter(|place| tells(canvas, want, &form.words.rect(place.centre, place.angle)))
-                .copied()
-                .collect();
-            let place = self
-                .best(&form.words, &near, canvas)
-                .or_else(|| self.led(want, &form.words, canvas, radii, Care::Lines));
-            if let Some(place) = place {
-                return Some((&form.words, place));
+            let tells =
+                |place: &&Candidate| tells(canvas, want, &words.rect(place.centre, place.angle));
+            let near: Vec<Candidate> = form.candidates.iter().filter(tells).copied().collect();
+            if let Some(place) = self.best(words, &near, canvas) {
+                let from = None;
+                return Some(Choice { words, place, from });
+            }
+            if let Some(led) = self.led(want, words, canvas, radii, Care::Lines) {
+                return Some(led);
             }
         }
         // What names a place of its own may have a leader that passes over lines.
         let words = &last.words;
         self.led(want, words, canvas, FAR.len(), Care::Marks)
             .or_else(|| self.anywhere(want, words, canvas))
-            .map(|place| (words, place))
     }
 
     /// The cheapest free place; the first of equals.
@@ -343,54 +360,68 @@ impl Table {
     }
 
     /// A place further off, joined by a leader that crosses nothing it must not.
-    fn led(
+    fn led<'w>(
         &self,
         want: &Want,
-        words: &Words,
+        words: &'w Words,
         canvas: &Canvas<'_>,
         radii: usize,
         care: Care,
-    ) -> Option<Candidate> {
+    ) -> Option<Choice<'w>> {
         let size = words.size();
-        let ring_at = |(i, radius): (usize, &f64)| {
-            let cost = LEADER + 20.0 * f64::from(u8::try_from(i).unwrap_or(u8::MAX));
-            let radius = want.clear + radius;
-            let mut places = dearer(ring(want.anchor, radius, size, P2::zeros(), 24), cost);
-            for place in &mut places {
-                place.cost += level_cost(place.centre - want.anchor);
-            }
-            places
+        let dear = |each: f64, i: usize| each * f64::from(u8::try_from(i).unwrap_or(u8::MAX));
+        let from_anchor = |(nth, from): (usize, &P2)| {
+            let ring_at = |(i, radius): (usize, &f64)| {
+                let cost = LEADER + dear(20.0, i) + dear(OTHER_ANCHOR, nth);
+                let radius = want.clear + radius;
+                let mut places = dearer(ring(*from, radius, size, P2::zeros(), 24), cost);
+                for place in &mut places {
+                    place.cost += level_cost(place.centre - from);
+                }
+                places
+            };
+            let places: Vec<Candidate> = FAR[..radii]
+                .iter()
+                .enumerate()
+                .flat_map(ring_at)
+                .filter(|place| self.leads(*from, want, words, place, canvas, care))
+                .collect();
+            let place = self.best(words, &places, canvas)?;
+            let from = Some(*from);
+            Some(Choice { words, place, from })
         };
-        let places: Vec<Candidate> = FAR[..radii]
-            .iter()
-            .enumerate()
-            .flat_map(ring_at)
-            .filter(|place| self.leads(want, words, place, canvas, care))
-            .collect();
-        self.best(words, &places, canvas)
+        let found = want.anchors.iter().enumerate().filter_map(from_anchor);
+        found.min_by(|a, b| a.place.cost.total_cmp(&b.place.cost))
     }
 
-    /// Whether a leader from the anchor to a box crosses nothing that it must not.
+    /// Whether a leader from an anchor to a box crosses nothing that it must not.
     fn leads(
         &self,
+        from: P2,
         want: &Want,
         words: &Words,
         place: &Candidate,
         canvas: &Canvas<'_>,
         care: Care,
     ) -> bool {
-        let [from, to] = leader_ends(want, words, place);
+        let [from, to] = leader_ends(from, want.clear, words, place);
         let line = Rect::line(from, to, 0.1);
-        let later = Rect::line(from + super::view::unit(to - from) * 0.5, to, 0.1);
+        let later = Rect::line(from + super::view::unit(to - from) * 0.5, to, APART);
         !self.taken.iter().any(|t| t.overlaps(&line))
             && (care != Care::Lines || canvas.is_clear(&later))
             && (care == Care::Labels || !others(canvas, want).any(|other| other.meets(&line)))
     }
 
-    /// The free place nearest to the anchor, wherever it is: first within the room.
-    fn anywhere(&self, want: &Want, words: &Words, canvas: &Canvas<'_>) -> Option<Candidate> {
+    /// The free place nearest to the first anchor, wherever it is: first within the room.
+    fn anywhere<'w>(
+        &self,
+        want: &Want,
+        words: &'w Words,
+        canvas: &Canvas<'_>,
+    ) -> Option<Choice<'w>> {
+        let anchor = *want.anchors.first()?;
         let size = P2::from(words.size());
-        let level = |centre: P2| level_cost(centre - want.anchor);
+        let level = |centre: P2| level_cost(centre - anchor);
         let low = self.all.min - size - P2::repeat(4.0);
         let count = (self.all.max - low + size + P2::repeat(4.0)).map(|x| x / ANYWHERE);
         let steps = |n: f64| (0_u16..).take_while(move |i| f64::from(*i) <= n);
@@ -400,13 +431,11 @@ impl Table {
                 let centre = low + at * ANYWHERE;
                 let rect = words.rect(centre, 0.0);
                 let outside = outside_cost(&rect, canvas.room, &self.all);
+                let far = (centre - anchor).norm();
                 Candidate {
                     centre,
                     angle: 0.0,
-                    cost: 2.0 * LEADER
-                        + (centre - want.anchor).norm()
-                        + outside
-                        + level(centre) / 8.0,
+                    cost: 2.0 * LEADER + far + outside + level(centre) / 8.0,
                 }
             })
             .collect();
@@ -419,11 +448,15 @@ impl Table {
         let open: Vec<&Candidate> = places.iter().filter(free).collect();
         let led = |care: Care| {
             let mut open = open.iter().copied();
-            open.find(|place| self.leads(want, words, place, canvas, care))
+            open.find(|place| self.leads(anchor, want, words, place, canvas, care))
         };
         let found = led(Care::Marks).or_else(|| led(Care::Labels));
         let unled = open.first().copied().filter(|_| self.last);
-        found.or(unled).copied()
+        found.or(unled).map(|place| Choice {
+            words,
+            place: *place,
+            from: Some(anchor),
+        })
     }
 }
 
@@ -476,10 +509,10 @@ fn outside_cost(rect: &Rect, room: P2, all: &Bounds) -> f64 {
     OUTSIDE * (over(0) + over(1)).min(10.0)
 }
 
-/// From just off the anchor to the nearest point of the box, or to the ring around the words.
-fn leader_ends(want: &Want, words: &Words, place: &Candidate) -> [P2; 2] {
+/// From just off an anchor to the nearest point of the box, or to the ring around the words.
+fn leader_ends(anchor: P2, clear: f64, words: &Words, place: &Candidate) -> [P2; 2] {
     let rect = words.rect(place.centre, place.angle);
-    let d = want.anchor - rect.centre;
+    let d = anchor - rect.centre;
     let n = super::rect::square(rect.along);
     let (u, v) = (d.dot(&rect.along), d.dot(&n));
     let clamp = |x: f64, half: f64| x.clamp(-half - 0.3, half + 0.3);
@@ -488,12 +521,6 @@ fn leader_ends(want: &Want, words: &Words, place: &Candidate) -> [P2; 2] {
     } else {
         rect.centre + rect.along * clamp(u, rect.half[0]) + n * clamp(v, rect.half[1])
     };
-    let way = super::view::unit(end - want.anchor);
-    [want.anchor + way * (want.clear + 0.2), end]
-}
-
-fn draw_leader(canvas: &mut Canvas<'_>, want: &Want, words: &Words, place: &Candidate) {
-    let [a, b] = leader_ends(want, words, place);
-    let item = Item::Path(Path::through(&[a, b], Stroke::black(0.4)));
-    canvas.draw_kept(Layer::Mark, item, Keep::Off);
+    let way = super::view::unit(end - anchor);
+    [anchor + way * (clear + 0.2), end]
 }

@@ -11,7 +11,7 @@ use super::view::View;
 /// Length of an axis (mm).
 const LENGTH: f64 = 9.0;
 /// Space kept around (mm).
-const CLEAR: f64 = 1.2;
+const CLEAR: f64 = 2.4;
 /// Cost of a place inside the group.
 const AMONG: f64 = 30.0;
 /// Step of the search for a free corner (mm).

@@ -1,10 +1,10 @@
 //! Demand over capacity along the weld, laid out straight run by run.
 //!
 //! The capacity is the line at 1. Each curve is its check's in its governing case; a ring marks
-//! where it governs. Numbers of points stand at the ends, names of runs below.
+//! where it governs; rings that overlap share their letters. Numbers of points stand at the ends, names of runs below.
 
 use super::PT;
-use super::canvas::{Canvas, Keep, Layer};
+use super::canvas::{Canvas, Keep, Layer, strokes};
 use super::drawing::{Dash, Drawing, Fill, Item, MarkKind, P2, Path, Span, Stroke, Style};
 use super::place::{Candidate, around, dearer, place_labels, rank};
 use super::rect::Rect;
@@ -31,6 +31,9 @@ const ROW_SHIFT: f64 = 1.2;
 const NAME_SPACE: f64 = 2.0;
 /// What it costs a letter to stand beside the run of its curve's ring.
 const OUTSIDE: f64 = 4.0;
+/// Radius of the ring where a curve governs, and how near two stand that share their letters (mm).
+const PEAK: f64 = 1.0;
+const RIM: f64 = 0.4;
 /// Radius of the ring around a run's number (mm).
 const RING: f64 = 1.75;
 /// Least distance of ticks on the scale (mm), and how many there are at most.
@@ -59,6 +62,16 @@ struct Layout {
     /// From tick to tick of the scale, and its end (ratios).
     step: f64,
     top: f64,
+}
+
+/// Where a curve governs.
+struct Peak {
+    at: P2,
+    /// Number of the run.
+    run: usize,
+    letters: String,
+    /// Boxes of the curve.
+    rects: Vec<Rect>,
 }
 
 /// Labels in a row below the weld, from left to right.
@@ -119,12 +132,23 @@ pub fn draw_unfolded(sketch: &DemandSketch, fonts: &dyn TextWidth) -> Drawing {
     let mut canvas = Canvas::new(fonts, P2::new(WIDTH + 18.0, 85.0));
     let layout = Layout::of(sketch);
     layout.draw_axis(&mut canvas, sketch);
-    for (curve, (width, dash)) in sketch.curves.iter().zip(CURVES) {
-        layout.draw_curve(&mut canvas, curve, Stroke::black(width).with(dash));
-    }
+    let looks = CURVES.map(|(width, dash)| Stroke::black(width).with(dash));
+    let drawn = sketch.curves.iter().zip(looks);
+    let peaks: Vec<Peak> = drawn
+        .map(|(curve, stroke)| Peak {
+            at: layout.governing(curve),
+            run: curve.governing.0,
+            letters: curve.letter.clone(),
+            rects: layout.draw_curve(&mut canvas, curve, stroke),
+        })
+        .collect();
     // The ring of the largest utilisation lies on top.
-    for (index, curve) in sketch.curves.iter().enumerate().rev() {
-        layout.mark_governing(&mut canvas, curve, index == 0);
+    for peak in peaks.iter().rev() {
+        canvas.mark([circle(peak.at, PEAK, Stroke::black(0.8), Fill::White)]);
+    }
+    let apart = joined(&mut canvas, peaks);
+    for (index, peak) in apart.iter().enumerate().rev() {
+        layout.letter(&mut canvas, peak, index == 0);
     }
     let labels = place_labels(&mut canvas);
     canvas.finish(labels)
@@ -277,7 +301,9 @@ impl Layout {
         row.tell(canvas, "runs");
     }
 
-    fn draw_curve(&self, canvas: &mut Canvas<'_>, curve: &Curve, stroke: Stroke) {
+    /// Draws a curve; returns the boxes of its strokes.
+    fn draw_curve(&self, canvas: &mut Canvas<'_>, curve: &Curve, stroke: Stroke) -> Vec<Rect> {
+        let mut rects = Vec::new();
         for (run, ratios) in &curve.runs {
             let steps = ratios.len().saturating_sub(1).max(1);
             let part = |step: usize| step as f64 / steps as f64;
@@ -287,19 +313,25 @@ impl Layout {
                 .map(|(step, ratio)| self.point(*run, part(step), *ratio))
                 .collect();
             let item = Item::Path(Path::through(&points, stroke));
+            rects.extend(strokes(&item));
             canvas.draw_kept(Layer::Weld, item, Keep::Off);
         }
+        rects
     }
 
-    /// The ring of a curve, and its letter: over the largest curve, under the others.
-    fn mark_governing(&self, canvas: &mut Canvas<'_>, curve: &Curve, first: bool) {
+    /// Where a curve governs.
+    fn governing(&self, curve: &Curve) -> P2 {
         let (run, part, ratio) = curve.governing;
-        let at = self.point(run, part, ratio);
-        canvas.mark([circle(at, 1.0, Stroke::black(0.8), Fill::White)]);
-        let spans = vec![Span::new(curve.letter.clone(), Style::Bold)];
-        let words = canvas.words(spans);
-        let mark = Rect::upright(at, 1.0, 1.0);
-        let mark = canvas.name(MarkKind::Point, vec![mark]);
+        self.point(run, part, ratio)
+    }
+
+    /// The letters of a ring: over the largest curve, under the others.
+    fn letter(&self, canvas: &mut Canvas<'_>, peak: &Peak, first: bool) {
+        let at = peak.at;
+        let words = canvas.words(vec![Span::new(peak.letters.clone(), Style::Bold)]);
+        let mut rects = peak.rects.clone();
+        rects.push(Rect::upright(at, PEAK, PEAK));
+        let mark = canvas.name(MarkKind::Curve, rects);
         // Toward the middle, so that the ends of the diagram keep their width.
         let side = if first { -1.0 } else { 1.0 };
         let inward = P2::new((self.right() / 2.0 - at.x) / WIDTH, side);
@@ -307,7 +339,7 @@ impl Layout {
         let mut places = around(at, 1.8, words.size(), toward);
         places.extend(dearer(around(at, 2.6, words.size(), toward), 3.0));
         // Over its own run if there is room.
-        let own = self.starts[run]..self.starts[run] + self.widths[run];
+        let own = self.starts[peak.run]..self.starts[peak.run] + self.widths[peak.run];
         for place in &mut places {
             if !own.contains(&place.centre.x) {
                 place.cost += OUTSIDE;
@@ -315,8 +347,29 @@ impl Layout {
         }
         canvas
             .want(rank::GOVERNING, words, at, places)
-            .naming(mark, 1.0);
+            .naming(mark, PEAK);
     }
+}
+
+/// Rings that overlap, one with the next, as one: at the place of the first, with all letters.
+fn joined(canvas: &mut Canvas<'_>, peaks: Vec<Peak>) -> Vec<Peak> {
+    let mut found: Vec<(Peak, Vec<P2>)> = Vec::new();
+    for peak in peaks {
+        let near = |known: &P2| (known - peak.at).norm() < 2.0 * PEAK + RIM;
+        match found.iter_mut().find(|(_, rings)| rings.iter().any(near)) {
+            Some((first, rings)) => {
+                first.letters = format!("{}, {}", first.letters, peak.letters);
+                first.rects.extend(peak.rects);
+                rings.push(peak.at);
+                canvas.remark("letters that stand together name their rings from the upper down");
+            }
+            None => {
+                let at = peak.at;
+                found.push((peak, vec![at]));
+            }
+        }
+    }
+    found.into_iter().map(|(peak, _)| peak).collect()
 }
 
 /// A curve is at least as thick as print needs.

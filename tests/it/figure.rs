@@ -10,7 +10,7 @@ use std::sync::{Arc, OnceLock};
 use seamnote::criteria::built_in;
 use seamnote::figure::{
     Axis, CheckPoint, Component, Dimension, Drawing, Fill, Governing, Ink, Item, Label, Load,
-    MarkKind, Rect, RunLine, Scene, SerifFaces, draw, draw_picture, standalone_source,
+    MarkKind, PT, Piece, Rect, RunLine, Scene, SerifFaces, draw, draw_picture, standalone_source,
     typst_source,
 };
 use seamnote::joint::read_joint;
@@ -790,6 +790,50 @@ fn every_point_and_every_run_is_labelled() {
             found.push(format!("{name}: not every run is labelled"));
         }
     }
+    none(&found);
+}
+
+/// The thin straight lines of dimensions: black, of 0.3 pt.
+fn thin_lines(drawing: &Drawing) -> Vec<Rect> {
+    let paths = drawing.items.iter().filter_map(|item| match item {
+        Item::Path(path) => Some(path),
+        Item::Circle { .. } | Item::Label(_) => None,
+    });
+    let thin = paths.filter_map(|path| {
+        let stroke = path.stroke.filter(|stroke| stroke.ink == Ink::Black)?;
+        let is_thin = (stroke.width - 0.3 * PT).abs() < 1e-9;
+        match path.pieces[..] {
+            [Piece::Line(to)] if is_thin => Some(Rect::line(path.start, to, 0.05)),
+            _ => None,
+        }
+    });
+    thin.collect()
+}
+
+/// An arrow on an extension line would read as a part of the dimension: none lies along one.
+#[test]
+fn no_arrow_lies_along_a_line_of_a_dimension() {
+    let (mut found, mut lines) = (Vec::new(), 0);
+    for (name, drawing) in everything() {
+        let thin = thin_lines(drawing);
+        lines += thin.len();
+        let arrows = drawing.marks.iter();
+        for arrow in arrows.filter(|mark| mark.kind == MarkKind::Arrow) {
+            // The shaft comes first.
+            let Some(shaft) = arrow.rects.first().filter(|shaft| shaft.half[0] > 3.0) else {
+                continue;
+            };
+            let along = |line: &&Rect| line.along.dot(&shaft.along).abs() > 0.99;
+            let on = thin
+                .iter()
+                .filter(along)
+                .any(|line| line.overlaps(&shaft.grown(-0.1)));
+            if on {
+                found.push(format!("{name}: an arrow on a thin line"));
+            }
+        }
+    }
+    assert!(lines > 200, "only {lines} thin lines are seen");
     none(&found);
 }
 

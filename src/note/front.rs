@@ -185,7 +185,7 @@ impl Builder<'_> {
     pub(super) fn figure_ref(&self, ahead: usize, name: &str) -> Inline {
         Inline::StepRef {
             id: figure_id(name),
-            text: format!("Figure {}", self.figures + ahead),
+            text: format!("Figure\u{a0}{}", self.figures + ahead),
         }
     }
 

@@ -142,7 +142,7 @@ impl Builder<'_> {
             caption.push_str(&format!("; level {level}"));
         }
         if rows_bold {
-            caption.push_str("; the case that governs in bold");
+            caption.push_str("; governing case in bold");
         }
         if let Some(frame) = self.shared_frame() {
             caption.push_str(&format!("; components in frame {frame}"));

@@ -199,7 +199,7 @@ impl Builder<'_> {
             words.extend([
                 piece(", "),
                 super::text::emph("U"),
-                piece(&format!(" = {}", up.text())),
+                piece(&format!("\u{a0}=\u{a0}{}", up.text())),
             ]);
         }
         words
@@ -417,7 +417,7 @@ impl Builder<'_> {
         };
         if !checks.iter().all(proportional) {
             caption.push_str(
-                "; where the demand is not proportional to the loads, U is one over the load factor at the limit",
+                "; where the demand is not proportional to the loads, the utilisation is one over the load factor at the limit",
             );
         }
         self.table(Sheet {
@@ -567,7 +567,7 @@ impl Builder<'_> {
         if let Some(level) = level {
             caption.push_str(&format!("; level {level}"));
         }
-        caption.push_str("; the case that governs in bold");
+        caption.push_str("; governing case in bold");
         self.table(Sheet {
             id: "case-margins".to_owned(),
             caption: plain(&caption),

@@ -188,9 +188,14 @@ impl Picture {
                 );
                 for (at, curve) in demand.curves.iter().enumerate() {
                     words.push(strong(&curve.letter));
-                    words.push(piece(&format!(" ({}) {}", DASHES[at], curve.says)));
+                    words.push(piece(&format!("\u{a0}({}) {}", DASHES[at], curve.says)));
                     if let Some(utilisation) = &curve.utilisation {
-                        words.extend([piece(", "), emph("U"), piece(" = "), utilisation.clone()]);
+                        words.extend([
+                            piece(", "),
+                            emph("U"),
+                            piece("\u{a0}=\u{a0}"),
+                            utilisation.clone(),
+                        ]);
                     }
                     let last = at + 1 == demand.curves.len();
                     words.push(piece(if last { "." } else { "; " }));

@@ -147,7 +147,7 @@ impl<'a> Canvas<'a> {
         self.wants.push(Want {
             rank,
             forms: vec![Form { words, candidates }],
-            anchors: vec![anchor],
+            anchor,
             clear: 1.0,
             names: None,
         });

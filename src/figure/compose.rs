@@ -263,7 +263,7 @@ impl<'a> Sheet<'a> {
         let toward = if letter == "C" {
             P2::new(0.7, -0.7)
         } else {
-            P2::new(-0.8, -0.6)
+            P2::new(-1.0, -0.1)
         };
         let mut places = around(at, clear, words.size(), toward);
         places.extend(dearer(around(at, clear + 1.4, words.size(), toward), 5.0));
@@ -271,10 +271,15 @@ impl<'a> Sheet<'a> {
     }
 
     fn dimension(&mut self, dimension: &Dimension) {
-        let pairs = std::iter::once((dimension.from, dimension.to)).chain(dimension.alike.clone());
-        let placed: Vec<Placed<'_>> = pairs.map(|pair| self.placed(dimension, pair)).collect();
-        draw_dimension(&mut self.canvas, &self.view, dimension, &placed);
-        self.mark_foot(dimension);
+        let mut placed = vec![self.placed(dimension, (dimension.from, dimension.to))];
+        // To a point drawn nearer only its own line leads.
+        let alike = dimension.alike.iter();
+        let alike = alike.map(|pair| self.placed(dimension, *pair));
+        placed.extend(alike.filter(|placed| !placed.broken));
+        let drawn = draw_dimension(&mut self.canvas, &self.view, dimension, &placed);
+        if drawn == Some(0) {
+            self.mark_foot(dimension);
+        }
     }
 
     /// A small cross where a dimension to a load begins, if nothing else stands there.
@@ -300,7 +305,7 @@ impl<'a> Sheet<'a> {
     }
 
     /// A dimension between two of the points that it may be drawn between.
-    fn placed<'d>(&self, dimension: &'d Dimension, (from, to): (V3, V3)) -> Placed<'d> {
+    fn placed(&self, dimension: &Dimension, (from, to): (V3, V3)) -> Placed {
         let found = |p: &V3| spot(self.view.image(p), &self.group, self.centre, self.far);
         let found = [found(&from), found(&to)];
         let told = found.map(|s| s.at);
@@ -326,7 +331,7 @@ impl<'a> Sheet<'a> {
             (ends, broken, from_end) = self.squared(axis, along, ends, broken);
         }
         Placed {
-            dimension,
+            axis: dimension.axis,
             ends,
             told,
             apart,

@@ -33,9 +33,9 @@ const BETWEEN: f64 = 5.0;
 const PAST: f64 = 1.2;
 
 /// A dimension with its ends as drawn, one pair of those that show it alike.
-pub(super) struct Placed<'a> {
-    /// As asked for.
-    pub(super) dimension: &'a Dimension,
+pub(super) struct Placed {
+    /// The axis along which it is measured.
+    pub(super) axis: Axis,
     /// Ends on the sheet, in space brought onto one line along the axis.
     pub(super) ends: [P2; 2],
     /// Ends on the sheet as they are.
@@ -63,28 +63,30 @@ struct Way {
     cost: f64,
 }
 
-/// Draws a dimension outside all that stands beside it, between the ends that leave it the best way.
+/// Draws a dimension outside all that stands beside it, between the ends that leave it the best way;
+/// the number of that pair, `None` if it is left out.
 pub(super) fn draw_dimension(
     canvas: &mut Canvas<'_>,
     view: &View,
     dimension: &Dimension,
-    placed: &[Placed<'_>],
-) {
-    let rated = placed.iter().flat_map(|placed| {
+    placed: &[Placed],
+) -> Option<usize> {
+    let rated = placed.iter().enumerate().flat_map(|(pair, placed)| {
         let ways = ways(canvas, view, placed);
-        ways.into_iter().map(move |way| (placed, way))
+        ways.into_iter().map(move |way| (pair, way))
     });
-    let Some((placed, way)) = rated.min_by(|a, b| a.1.cost.total_cmp(&b.1.cost)) else {
+    let Some((pair, way)) = rated.min_by(|a, b| a.1.cost.total_cmp(&b.1.cost)) else {
         canvas.remarks.push(format!(
             "the dimension {} lies along the line of sight",
             dimension.text
         ));
-        return;
+        return None;
     };
+    let placed = &placed[pair];
     let d = view.direction(dimension.axis);
     let crowded = way.cost > CROWDED || placed.broken || canvas.runs > MANY;
     if dimension.optional && crowded {
-        return;
+        return None;
     }
     if let Some(from) = placed.from_end.filter(|_| !way.direct) {
         canvas.aid(placed.ends[1], from, Stroke::black(0.3));
@@ -108,12 +110,13 @@ pub(super) fn draw_dimension(
         canvas.mark(break_mark(a + (b - a) * 0.78, unit(b - a)));
     }
     want_text(canvas, dimension, view.flat, [a, b], way.out);
+    Some(pair)
 }
 
 /// The ways that the view offers: along another axis, to either side; none for a dimension along
 /// the line of sight.
-fn ways(canvas: &Canvas<'_>, view: &View, placed: &Placed<'_>) -> Vec<Way> {
-    let axis = placed.dimension.axis;
+fn ways(canvas: &Canvas<'_>, view: &View, placed: &Placed) -> Vec<Way> {
+    let axis = placed.axis;
     if view.direction(axis).norm() < 1e-9 {
         return Vec::new();
     }
@@ -130,8 +133,8 @@ fn ways(canvas: &Canvas<'_>, view: &View, placed: &Placed<'_>) -> Vec<Way> {
 
 /// Carries the line outward along `out` until it is clear, and rates the way: short, crossing
 /// little, on the wished side, away from the group.
-fn way(canvas: &Canvas<'_>, view: &View, placed: &Placed<'_>, out: P2, direct: bool) -> Way {
-    let d = unit(view.direction(placed.dimension.axis));
+fn way(canvas: &Canvas<'_>, view: &View, placed: &Placed, out: P2, direct: bool) -> Way {
+    let d = unit(view.direction(placed.axis));
     let normal = if square(d).dot(&out) > 0.0 {
         square(d)
     } else {
@@ -149,15 +152,15 @@ fn way(canvas: &Canvas<'_>, view: &View, placed: &Placed<'_>, out: P2, direct: b
         |level: f64| ends.map(|p| p + out * ((level - p.dot(&normal)) / out.dot(&normal)));
     let clear =
         |feet: &[P2; 2]| canvas.is_clear(&Rect::line(feet[0], feet[1], BAND).lengthened(1.0));
-    let step = if placed.to_load && !view.flat {
-        LOAD_STEP
-    } else {
-        STEP
+    let beside_load = match placed.to_load && !view.flat {
+        true => ends[1].dot(&normal) + LOAD_STEP,
+        false => f64::NEG_INFINITY,
     };
-    let levels = (0..80).map(|i| base + step + 0.5 * f64::from(i));
+    let first = beside_load.max(base + STEP);
+    let levels = (0..80).map(|i| first + 0.5 * f64::from(i));
     let found = levels.map(at_level).find(clear);
     let through = found.is_none();
-    let feet = found.unwrap_or_else(|| at_level(base + step));
+    let feet = found.unwrap_or_else(|| at_level(first));
     let crossings = feet.iter().zip(&ends).filter(|(foot, end)| {
         let line = Rect::line(*end + out * OFF, **foot, 0.1);
         (*foot - *end).dot(&out) > OFF && !canvas.is_clear(&line)

@@ -7,7 +7,7 @@
 //! study of algorithms for point-feature label placement*, ACM Trans. Graphics 14 (1995), section 3.
 
 use super::canvas::{Canvas, Keep, Layer, Obstacle};
-use super::drawing::{Fill, Item, Mark, P2, Path, Stroke, Tie};
+use super::drawing::{Fill, Item, Mark, MarkKind, P2, Path, Stroke, Tie};
 use super::rect::{Bounds, Rect};
 use super::text::Words;
 use crate::quantity::real::{cos, sin};
@@ -28,9 +28,8 @@ const FAR: [f64; 8] = [2.6, 4.2, 6.5, 9.0, 12.0, 16.0, 21.0, 28.0];
 const NOT_FAR: usize = 4;
 /// More runs than this are many: their names are not led at all.
 pub(super) const MANY: usize = 8;
-/// Cost of a leader, above every place without one; of each anchor after the first.
+/// Cost of a leader, above every place without one.
 const LEADER: f64 = 100.0;
-const OTHER_ANCHOR: f64 = 6.0;
 /// A leader that rises less than this part of its run is level, and what that costs.
 const LEVEL: f64 = 0.35;
 const LEVEL_COST: f64 = 30.0;
@@ -73,9 +72,9 @@ pub(super) struct Want {
     pub(super) rank: u8,
     /// Its wordings, the best first.
     pub(super) forms: Vec<Form>,
-    /// Where a leader would start on what it names, the best first; at least one.
-    pub(super) anchors: Vec<P2>,
-    /// Radius about an anchor that its leader leaves free (mm).
+    /// What it names; a leader would start here.
+    pub(super) anchor: P2,
+    /// Radius about the anchor that its leader leaves free (mm).
     pub(super) clear: f64,
     /// Number of the mark that it names, if it has to be told from others.
     pub(super) names: Option<usize>,
@@ -85,12 +84,6 @@ impl Want {
     /// Ties the label to a mark, `clear` large about its anchor.
     pub(super) fn naming(&mut self, mark: usize, clear: f64) -> &mut Self {
         (self.names, self.clear) = (Some(mark), clear);
-        self
-    }
-
-    /// Adds an anchor for where no leader starts well at those before.
-    pub(super) fn else_from(&mut self, anchors: impl IntoIterator<Item = P2>) -> &mut Self {
-        self.anchors.extend(anchors);
         self
     }
 
@@ -231,14 +224,13 @@ fn place_round(canvas: &mut Canvas<'_>, wants: &[Want], last: bool) -> Result<Ve
     };
     let mut labels = Vec::new();
     for (index, want) in wants.iter().enumerate() {
-        let Some(Choice { words, place, from }) = table.choose(want, canvas) else {
+        let Some((words, place)) = table.choose(want, canvas) else {
             return Err(index);
         };
         let rect = words.rect(place.centre, place.angle);
-        if let Some(from) = from {
-            let ends = leader_ends(from, want.clear, words, &place);
-            let item = Item::Path(Path::through(&ends, Stroke::black(0.4)));
-            canvas.draw_kept(Layer::Mark, item, Keep::Off);
+        let led = place.cost >= LEADER;
+        if led {
+            draw_leader(canvas, want, words, &place);
         }
         if let Some(mark) = want.names {
             let text = words.text();
@@ -246,7 +238,7 @@ fn place_round(canvas: &mut Canvas<'_>, wants: &[Want], last: bool) -> Result<Ve
                 text,
                 rect,
                 mark,
-                led: from.is_some(),
+                led,
             });
         }
         rect.corners().iter().for_each(|p| table.all.add(*p, 0.0));
@@ -293,14 +285,6 @@ enum Care {
     Labels,
 }
 
-/// A wording at its place.
-struct Choice<'w> {
-    words: &'w Words,
-    place: Candidate,
-    /// The anchor that a leader joins it to.
-    from: Option<P2>,
-}
-
 /// What is placed so far.
 struct Table {
     /// Boxes of labels.
@@ -313,31 +297,33 @@ struct Table {
 
 impl Table {
     /// The first wording that finds a place: near by, or led; the last one stands anywhere.
-    fn choose<'w>(&self, want: &'w Want, canvas: &Canvas<'_>) -> Option<Choice<'w>> {
+    fn choose<'w>(&self, want: &'w Want, canvas: &Canvas<'_>) -> Option<(&'w Words, Candidate)> {
         let last = want.forms.last()?;
         for form in &want.forms {
-            let words = &form.words;
             let more = !std::ptr::eq(form, last);
             let radii = match more {
                 true if canvas.runs > MANY => 0,
                 true => NOT_FAR,
                 false => FAR.len(),
             };
-            let tells =
-                |place: &&Candidate| tells(canvas, want, &words.rect(place.centre, place.angle));
-            let near: Vec<Candidate> = form.candidates.iter().filter(tells).copied().collect();
-            if let Some(place) = self.best(words, &near, canvas) {
-                let from = None;
-                return Some(Choice { words, place, from });
-            }
-            if let Some(led) = self.led(want, words, canvas, radii, Care::Lines) {
-                return Some(led);
+            let near: Vec<Candidate> = form
+                .candidates
+                .iter()
+                .filter(|place| tells(canvas, want, &form.words.rect(place.centre, place.angle)))
+                .copied()
+                .collect();
+            let place = self
+                .best(&form.words, &near, canvas)
+                .or_else(|| self.led(want, &form.words, canvas, radii, Care::Lines));
+            if let Some(place) = place {
+                return Some((&form.words, place));
             }
         }
         // What names a place of its own may have a leader that passes over lines.
         let words = &last.words;
         self.led(want, words, canvas, FAR.len(), Care::Marks)
             .or_else(|| self.anywhere(want, words, canvas))
+            .map(|place| (words, place))
     }
 
     /// The cheapest free place; the first of equals.
@@ -360,51 +346,43 @@ impl Table {
     }
 
     /// A place further off, joined by a leader that crosses nothing it must not.
-    fn led<'w>(
+    fn led(
         &self,
         want: &Want,
-        words: &'w Words,
+        words: &Words,
         canvas: &Canvas<'_>,
         radii: usize,
         care: Care,
-    ) -> Option<Choice<'w>> {
+    ) -> Option<Candidate> {
         let size = words.size();
-        let dear = |each: f64, i: usize| each * f64::from(u8::try_from(i).unwrap_or(u8::MAX));
-        let from_anchor = |(nth, from): (usize, &P2)| {
-            let ring_at = |(i, radius): (usize, &f64)| {
-                let cost = LEADER + dear(20.0, i) + dear(OTHER_ANCHOR, nth);
-                let radius = want.clear + radius;
-                let mut places = dearer(ring(*from, radius, size, P2::zeros(), 24), cost);
-                for place in &mut places {
-                    place.cost += level_cost(place.centre - from);
-                }
-                places
-            };
-            let places: Vec<Candidate> = FAR[..radii]
-                .iter()
-                .enumerate()
-                .flat_map(ring_at)
-                .filter(|place| self.leads(*from, want, words, place, canvas, care))
-                .collect();
-            let place = self.best(words, &places, canvas)?;
-            let from = Some(*from);
-            Some(Choice { words, place, from })
+        let ring_at = |(i, radius): (usize, &f64)| {
+            let cost = LEADER + 20.0 * f64::from(u8::try_from(i).unwrap_or(u8::MAX));
+            let radius = want.clear + radius;
+            let mut places = dearer(ring(want.anchor, radius, size, P2::zeros(), 24), cost);
+            for place in &mut places {
+                place.cost += level_cost(place.centre - want.anchor);
+            }
+            places
         };
-        let found = want.anchors.iter().enumerate().filter_map(from_anchor);
-        found.min_by(|a, b| a.place.cost.total_cmp(&b.place.cost))
+        let places: Vec<Candidate> = FAR[..radii]
+            .iter()
+            .enumerate()
+            .flat_map(ring_at)
+            .filter(|place| self.leads(want, words, place, canvas, care))
+            .collect();
+        self.best(words, &places, canvas)
     }
 
-    /// Whether a leader from an anchor to a box crosses nothing that it must not.
+    /// Whether a leader from the anchor to a box crosses nothing that it must not.
     fn leads(
         &self,
-        from: P2,
         want: &Want,
         words: &Words,
         place: &Candidate,
         canvas: &Canvas<'_>,
         care: Care,
     ) -> bool {
-        let [from, to] = leader_ends(from, want.clear, words, place);
+        let [from, to] = leader_ends(want, words, place);
         let line = Rect::line(from, to, 0.1);
         let later = Rect::line(from + super::view::unit(to - from) * 0.5, to, APART);
         !self.taken.iter().any(|t| t.overlaps(&line))
@@ -412,16 +390,10 @@ impl Table {
             && (care == Care::Labels || !others(canvas, want).any(|other| other.meets(&line)))
     }
 
-    /// The free place nearest to the first anchor, wherever it is: first within the room.
-    fn anywhere<'w>(
-        &self,
-        want: &Want,
-        words: &'w Words,
-        canvas: &Canvas<'_>,
-    ) -> Option<Choice<'w>> {
-        let anchor = *want.anchors.first()?;
+    /// The free place nearest to the anchor, wherever it is: first within the room.
+    fn anywhere(&self, want: &Want, words: &Words, canvas: &Canvas<'_>) -> Option<Candidate> {
         let size = P2::from(words.size());
-        let level = |centre: P2| level_cost(centre - anchor);
+        let level = |centre: P2| level_cost(centre - want.anchor);
         let low = self.all.min - size - P2::repeat(4.0);
         let count = (self.all.max - low + size + P2::repeat(4.0)).map(|x| x / ANYWHERE);
         let steps = |n: f64| (0_u16..).take_while(move |i| f64::from(*i) <= n);
@@ -431,11 +403,13 @@ impl Table {
                 let centre = low + at * ANYWHERE;
                 let rect = words.rect(centre, 0.0);
                 let outside = outside_cost(&rect, canvas.room, &self.all);
-                let far = (centre - anchor).norm();
                 Candidate {
                     centre,
                     angle: 0.0,
-                    cost: 2.0 * LEADER + far + outside + level(centre) / 8.0,
+                    cost: 2.0 * LEADER
+                        + (centre - want.anchor).norm()
+                        + outside
+                        + level(centre) / 8.0,
                 }
             })
             .collect();
@@ -448,15 +422,11 @@ impl Table {
         let open: Vec<&Candidate> = places.iter().filter(free).collect();
         let led = |care: Care| {
             let mut open = open.iter().copied();
-            open.find(|place| self.leads(anchor, want, words, place, canvas, care))
+            open.find(|place| self.leads(want, words, place, canvas, care))
         };
         let found = led(Care::Marks).or_else(|| led(Care::Labels));
         let unled = open.first().copied().filter(|_| self.last);
-        found.or(unled).map(|place| Choice {
-            words,
-            place: *place,
-            from: Some(anchor),
-        })
+        found.or(unled).copied()
     }
 }
 
@@ -481,11 +451,16 @@ fn tells(canvas: &Canvas<'_>, want: &Want, rect: &Rect) -> bool {
     others(canvas, want).all(|other| other.distance(rect) > near)
 }
 
-/// The marks of the kind of that which a label names, but for those at its very place.
+/// The marks of the kind of that which a label names, but for those at its very place; and arrows that
+/// stand off it.
 fn others<'c>(canvas: &'c Canvas<'_>, want: &Want) -> impl Iterator<Item = &'c Mark> {
     let own = want.names.map(|own| &canvas.marks[own]);
     canvas.marks.iter().filter(move |other| {
-        own.is_some_and(|own| own.kind == other.kind && own.rects != other.rects)
+        own.is_some_and(|own| {
+            let apart = || !own.rects.iter().any(|rect| other.meets(rect));
+            let alike = own.kind == other.kind && own.rects != other.rects;
+            alike || (other.kind == MarkKind::Arrow && apart())
+        })
     })
 }
 
@@ -509,10 +484,10 @@ fn outside_cost(rect: &Rect, room: P2, all: &Bounds) -> f64 {
     OUTSIDE * (over(0) + over(1)).min(10.0)
 }
 
-/// From just off an anchor to the nearest point of the box, or to the ring around the words.
-fn leader_ends(anchor: P2, clear: f64, words: &Words, place: &Candidate) -> [P2; 2] {
+/// From just off the anchor to the nearest point of the box, or to the ring around the words.
+fn leader_ends(want: &Want, words: &Words, place: &Candidate) -> [P2; 2] {
     let rect = words.rect(place.centre, place.angle);
-    let d = anchor - rect.centre;
+    let d = want.anchor - rect.centre;
     let n = super::rect::square(rect.along);
     let (u, v) = (d.dot(&rect.along), d.dot(&n));
     let clamp = |x: f64, half: f64| x.clamp(-half - 0.3, half + 0.3);
@@ -521,6 +496,12 @@ fn leader_ends(anchor: P2, clear: f64, words: &Words, place: &Candidate) -> [P2;
     } else {
         rect.centre + rect.along * clamp(u, rect.half[0]) + n * clamp(v, rect.half[1])
     };
-    let way = super::view::unit(end - anchor);
-    [anchor + way * (clear + 0.2), end]
+    let way = super::view::unit(end - want.anchor);
+    [want.anchor + way * (want.clear + 0.2), end]
+}
+
+fn draw_leader(canvas: &mut Canvas<'_>, want: &Want, words: &Words, place: &Candidate) {
+    let [a, b] = leader_ends(want, words, place);
+    let item = Item::Path(Path::through(&[a, b], Stroke::black(0.4)));
+    canvas.draw_kept(Layer::Mark, item, Keep::Off);
 }

@@ -23,8 +23,6 @@ const RIM: f64 = 0.3;
 /// Radius of the ring around a run's number, at least, and its space about the digits (mm).
 const NUMBER_RING: f64 = 1.75;
 const NUMBER_SPACE: f64 = 0.35;
-/// Where on a run a leader starts instead of at its middle (parts of its length).
-const ANCHORS: [f64; 4] = [0.4, 0.6, 0.3, 0.7];
 
 /// An end of a run on the sheet.
 #[derive(Clone, Copy)]
@@ -192,10 +190,9 @@ impl Sheet<'_> {
         let words = self.canvas.words(vec![span]);
         let number = self.number(run).ringed(ring);
         let (places, anchor) = self.run_places(&run.path, half, words.size(), true);
-        let elsewhere = ANCHORS.map(|part| self.view.image(&run.path.point(part)));
         let (plain, _) = self.run_places(&run.path, half, number.size(), false);
         let want = self.canvas.want(rank::RUN, words, anchor, places);
-        want.naming(mark, half).else_from(elsewhere);
+        want.naming(mark, half);
         if !run.number.is_empty() {
             want.or(number, plain);
         }

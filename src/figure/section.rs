@@ -6,10 +6,10 @@ use super::canvas::{Canvas, Keep, Layer};
 use super::drawing::{Drawing, Fill, Item, P2, Path, Span, Stroke, Style};
 use super::place::{Candidate, around, beside, dearer, place_labels, rank};
 use super::shape::tick;
-use super::text::{TextWidth, Words};
+use super::text::{TextWidth, Words, symbol, symbol_spans};
 use super::view::unit;
 use crate::criteria::FailurePath;
-use crate::note::{SectionShape, WeldSection};
+use crate::note::{SectionShape, WeldSection, list_mark};
 use crate::quantity::real::{cos, sin, tan};
 
 /// Width of a section, and its height without the words below (mm).
@@ -60,6 +60,10 @@ pub fn draw_sections(sections: &[WeldSection], fonts: &dyn TextWidth) -> Drawing
     }
     let labels = place_labels(&mut canvas);
     canvas.finish(labels)
+}
+
+fn plain(text: &str) -> Vec<Span> {
+    vec![Span::new(text, Style::Plain)]
 }
 
 /// A section under way; its own axes have the root as origin, x along the base, y off it.
@@ -193,14 +197,14 @@ impl Cell<'_, '_> {
         let bead = |root: P2, x: P2| {
             let on_attached = root + face * attached;
             if groove {
-                // The bevel goes into the attached part; its root lies inside. The plane is as wide
-                // as the weld goes in, turned as in a fillet with equal legs.
+                // The bevel goes into the attached part; its root lies inside. The plane stands as in
+                // a fillet with equal legs, from the root to the face.
                 let depth = 0.75 * self.width_on_base();
                 return Bead {
                     root: root - x * depth,
                     on_base: root,
                     on_attached,
-                    throat: root - x * depth + unit(x + face) * depth,
+                    throat: root + face * depth,
                 };
             }
             let on_base = root + x * base;
@@ -279,16 +283,16 @@ impl Cell<'_, '_> {
 
     /// Legs and throat with their sizes.
     fn sizes(&mut self, bead: &Bead) {
-        let throat = format!("throat {}", self.section.throat);
+        let throat = symbol(&self.section.throat.0);
         if matches!(self.section.shape, SectionShape::Partial(_)) {
             // The throat is the depth that the weld goes in from the face.
-            self.leg(bead.root, bead.on_base, (-P2::y(), UNDER), &throat);
+            self.leg(bead.root, bead.on_base, (-P2::y(), UNDER), throat);
         } else {
             let out = unit(bead.throat - bead.root);
             self.label(throat, bead.throat + out * 0.6, out);
         }
         if let SectionShape::Fillet([base, attached]) = self.section.shape.clone() {
-            self.leg(bead.root, bead.on_base, (-P2::y(), UNDER), &base.1);
+            self.leg(bead.root, bead.on_base, (-P2::y(), UNDER), plain(&base.1));
             let (_, into) = self.face();
             // Outside the attached part; beyond the bead where the part is welded on both sides.
             let beside = if self.section.both {
@@ -296,12 +300,12 @@ impl Cell<'_, '_> {
             } else {
                 (into, ATTACHED + 4.0)
             };
-            self.leg(bead.root, bead.on_attached, beside, &attached.1);
+            self.leg(bead.root, bead.on_attached, beside, plain(&attached.1));
         }
     }
 
     /// A leg's dimension, set off to one side; its text stands over a level line.
-    fn leg(&mut self, from: P2, to: P2, (out, away): (P2, f64), text: &str) {
+    fn leg(&mut self, from: P2, to: P2, (out, away): (P2, f64), text: Vec<Span>) {
         let level = out.y < -0.9;
         let off = out * away;
         let thin = Stroke::black(0.35);
@@ -316,7 +320,7 @@ impl Cell<'_, '_> {
             );
             self.canvas.mark([tick(p, unit(d))]);
         }
-        let words = self.canvas.words(vec![Span::new(text, Style::Plain)]);
+        let words = self.canvas.words(text);
         let (a, b) = (self.on_sheet(from + off), self.on_sheet(to + off));
         let toward = P2::new(out.x, if level { out.y } else { -out.y });
         let places = beside(a, b, 0.5, words.size(), toward, false);
@@ -337,11 +341,11 @@ impl Cell<'_, '_> {
         self.path(&points, Stroke::black(0.35));
         let out = P2::new(cos(half), sin(half));
         let at = P2::new(cos(half * 0.5), sin(half * 0.5)) * (radius + 0.5);
-        self.label(self.section.angle_text.clone(), at, out);
+        self.label(plain(&self.section.angle_text), at, out);
     }
 
-    fn label(&mut self, text: String, at: P2, toward: P2) {
-        let words = self.canvas.words(vec![Span::new(text, Style::Plain)]);
+    fn label(&mut self, text: Vec<Span>, at: P2, toward: P2) {
+        let words = self.canvas.words(text);
         let at = self.on_sheet(at);
         let toward = P2::new(toward.x, -toward.y);
         let mut places = around(at, 0.8, words.size(), toward);
@@ -378,7 +382,7 @@ impl Cell<'_, '_> {
             let p = self.on_sheet(p + off);
             self.canvas.mark([tick(p, unit(d))]);
         }
-        let throat = format!("throat {}", self.section.throat);
+        let throat = symbol(&self.section.throat.0);
         self.label(throat, to + off, unit(to - from));
     }
 
@@ -409,25 +413,20 @@ impl Cell<'_, '_> {
 
     /// The runs, the kind of weld, the planes checked, in lines below.
     fn words(&mut self) -> usize {
-        let planes = self.section.planes.iter().map(|path| path.word());
-        let checked: Vec<String> = planes
-            .filter(|word| *word != "size and length")
-            .map(str::to_owned)
-            .collect();
-        let checked = if checked.is_empty() {
+        let checked = if self.section.checked.is_empty() {
             vec!["no strength checked".to_owned()]
         } else {
-            self.lines("checked: ", &checked, Style::Plain)
+            self.lines("checked: ", &self.section.checked, Style::Plain)
         };
         let names = self.lines("", &self.section.runs, Style::Bold);
-        let mut lines: Vec<(String, Style)> = Vec::new();
-        lines.extend(names.into_iter().map(|line| (line, Style::Bold)));
-        lines.push((self.kind(), Style::Plain));
-        lines.extend(checked.into_iter().map(|line| (line, Style::Plain)));
+        let fit = |text: &String, style: Style| self.fit(text, style, CELL[0] - 2.0);
+        let mut lines: Vec<Words> = names.iter().map(|line| fit(line, Style::Bold)).collect();
+        lines.push(fit(&self.kind(), Style::Plain));
+        lines.push(self.throat());
+        lines.extend(checked.iter().map(|line| fit(line, Style::Plain)));
         let left = self.origin.x - self.width_on_base() - REACH + 3.0;
         let top = self.origin.y + BASE + 5.0;
-        for (index, (text, style)) in lines.iter().enumerate() {
-            let words = self.fit(text, *style, CELL[0] - 2.0);
+        for (index, words) in lines.iter().enumerate() {
             // On one baseline, whatever descends below it.
             let drop = (words.fall - words.rise) / 2.0;
             let y = top + index as f64 * LINE + drop;
@@ -446,7 +445,8 @@ impl Cell<'_, '_> {
         };
         let mut lines = vec![head.to_owned()];
         for (index, item) in items.iter().enumerate() {
-            let comma = if index + 1 < items.len() { "," } else { "" };
+            let mark = list_mark(items).to_string();
+            let comma = if index + 1 < items.len() { &mark } else { "" };
             let line = lines.len() - 1;
             let space = if index == 0 { "" } else { " " };
             let longer = format!("{}{space}{item}{comma}", lines[line]);
@@ -460,6 +460,14 @@ impl Cell<'_, '_> {
             }
         }
         lines
+    }
+
+    /// The effective throat with its value.
+    fn throat(&self) -> Words {
+        let (name, value) = &self.section.throat;
+        let mut spans = plain("throat ");
+        spans.extend(symbol_spans(&format!("{name} = {value}")));
+        self.canvas.words(spans)
     }
 
     fn kind(&self) -> String {

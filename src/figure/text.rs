@@ -128,16 +128,24 @@ impl TextWidth for SerifFaces {
 
 /// Pieces of a text that may begin with a symbol and its index, such as `x_c = 16.2`.
 pub(super) fn symbol_spans(text: &str) -> Vec<Span> {
-    let parts = text
-        .split_once(' ')
-        .and_then(|(symbol, rest)| Some((symbol.split_once('_')?, rest)));
-    match parts {
-        Some(((letter, index), rest)) => vec![
+    match text.split_once(' ') {
+        Some((name, rest)) if name.contains('_') || rest.starts_with('=') => {
+            let mut spans = symbol(name);
+            spans.push(Span::new(format!(" {rest}"), Style::Plain));
+            spans
+        }
+        _ => vec![Span::new(text, Style::Plain)],
+    }
+}
+
+/// A symbol such as `t` or `t_a`.
+pub(super) fn symbol(name: &str) -> Vec<Span> {
+    match name.split_once('_') {
+        Some((letter, index)) => vec![
             Span::new(letter, Style::Italic),
             Span::new(index, Style::Sub),
-            Span::new(format!(" {rest}"), Style::Plain),
         ],
-        None => vec![Span::new(text, Style::Plain)],
+        None => vec![Span::new(name, Style::Italic)],
     }
 }
 

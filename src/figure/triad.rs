@@ -124,8 +124,20 @@ fn free(canvas: &Canvas<'_>, rect: &Rect) -> bool {
 
 /// The centroid's mark: a cross in a circle.
 pub(super) fn draw_centroid(canvas: &mut Canvas<'_>, at: P2) {
+    canvas.mark(centroid_mark(at));
+}
+
+/// The boxes of the centroid's mark.
+pub(super) fn centroid_rects(at: P2) -> Vec<Rect> {
+    centroid_mark(at).iter().flat_map(strokes).collect()
+}
+
+fn centroid_mark(at: P2) -> [Item; 3] {
     let thin = Stroke::black(0.7);
-    canvas.mark([circle(at, 1.3, thin, Fill::White)]);
-    canvas.line(at - P2::x() * 2.3, at + P2::x() * 2.3, thin);
-    canvas.line(at - P2::y() * 2.3, at + P2::y() * 2.3, thin);
+    let arm = |arm: P2| Item::Path(Path::through(&[at - arm, at + arm], thin));
+    [
+        circle(at, 1.3, thin, Fill::White),
+        arm(P2::x() * 2.3),
+        arm(P2::y() * 2.3),
+    ]
 }

@@ -361,7 +361,8 @@ fn joined(canvas: &mut Canvas<'_>, peaks: Vec<Peak>) -> Vec<Peak> {
                 first.letters = format!("{}, {}", first.letters, peak.letters);
                 first.rects.extend(peak.rects);
                 rings.push(peak.at);
-                canvas.remark("letters that stand together name their rings from the upper down");
+                canvas
+                    .remark("letters that stand together name their rings from the upper one down");
             }
             None => {
                 let at = peak.at;

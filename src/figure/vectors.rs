@@ -6,6 +6,7 @@ use super::drawing::{Item, MarkKind, Path, Span, Stroke, Style};
 use super::place::{around, dearer, rank};
 use super::rect::Rect;
 use super::shape::small_head;
+use super::triad::centroid_rects;
 use super::unfolded::plain_number;
 use super::view::unit;
 use crate::quantity::real::ten_to;
@@ -28,7 +29,9 @@ impl Sheet<'_> {
             return;
         };
         let stroke = Stroke::black(0.8);
-        let (mut drawn, mut left_out): (Vec<Rect>, bool) = (Vec::new(), false);
+        let centroid = self.scene.centroid.map(|c| self.view.image(&c));
+        let mut drawn: Vec<Rect> = centroid.map(centroid_rects).unwrap_or_default();
+        let mut left_out = false;
         for (index, (at, f)) in vectors.arrows.iter().enumerate() {
             let from = self.view.image(at);
             // As long as the vector is, whatever the view makes of its direction.
@@ -45,7 +48,7 @@ impl Sheet<'_> {
             let shaft = Item::Path(Path::through(&[from, to], stroke));
             let head = small_head(to, unit(along), along.norm(), stroke);
             let rects = [&shaft, &head].map(strokes).concat();
-            // The first one is where the check governs; others keep off those before them.
+            // The first one is where the check governs; others keep off those before them and the centroid.
             let meets = |one: &Rect| drawn.iter().any(|known| known.overlaps(one));
             if index > 0 && rects.iter().any(meets) {
                 left_out = true;
@@ -72,7 +75,7 @@ impl Sheet<'_> {
         self.canvas.remark(&says);
         if left_out {
             self.canvas
-                .remark("arrows that would cross others are left out");
+                .remark("arrows that would cross others or the centroid’s mark are left out");
         }
     }
 }

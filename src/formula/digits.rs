@@ -18,6 +18,9 @@ pub struct Printed {
 /// A few units in the last place of a double: what a sum of exact decimals may lose.
 const EXACT: f64 = 1e-13;
 
+/// Up to this many digits a tie is told from its neighbours.
+const TIE_DIGITS: usize = 10;
+
 /// From this power of ten on, m × 10ⁿ is printed.
 const LARGE: i32 = 5;
 
@@ -42,7 +45,7 @@ impl Printed {
         let (figures, power) = (1..=digits.max(exact))
             .map(|count| decompose(size, count))
             .find(|(figures, power)| (compose(figures, *power) - size).abs() <= EXACT * size)
-            .unwrap_or_else(|| decompose(size, digits));
+            .unwrap_or_else(|| decompose(off_tie(size, digits), digits));
         let is_exact = (compose(&figures, power) - size).abs() <= EXACT * size;
         let count = i32::try_from(figures.len()).unwrap_or(i32::MAX);
         let negative = value < 0.0;
@@ -225,6 +228,16 @@ impl Printed {
     }
 }
 
+/// A size whose tie is rounded up, as a calculator does, where the double stands just below it:
+/// 19.575 is 19.574999999999999.
+fn off_tie(size: f64, digits: usize) -> f64 {
+    if digits <= TIE_DIGITS {
+        size * (1.0 + EXACT)
+    } else {
+        size
+    }
+}
+
 /// The digits of `size` to `count` significant figures (trailing zeros kept) and its power of ten.
 fn decompose(size: f64, count: usize) -> (String, i32) {
     let text = format!("{size:.*e}", count - 1);
@@ -300,6 +313,8 @@ mod tests {
             (0.000_512_34, 4,      4,     "5.123*10^(-4)"),
             (0.001_234_56, 4,      4,     "0.001235"),
             (0.1 + 0.2,    4,      4,     "0.3"),
+            (19.575,       4,      4,     "19.58"),
+            (19.574_9,     4,      4,     "19.57"),
             (9_999.96,     4,      4,     "1.000*10^4"),
         ];
         for (value, digits, exact, printed) in rows {

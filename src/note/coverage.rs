@@ -3,7 +3,7 @@
 use super::builder::Builder;
 use super::calculation::{Calculation, Outcome};
 use super::text::{capital, plain, slug, strong};
-use super::words::words;
+use super::words::{path_names, words};
 use crate::criteria::FailurePath;
 
 /// Failure paths: checked, excluded by the user, or not covered by this note.
@@ -99,10 +99,10 @@ pub(super) fn coverage_words(b: &Builder<'_>, calculation: &Calculation<'_>) -> 
     let mut words = if uncovered.is_empty() {
         "Every failure path is checked or excluded.".to_owned()
     } else {
-        format!("Not covered by this note: {}.", uncovered.join(", "))
+        let names = path_names(&uncovered);
+        format!("Not covered by this note: {}.", names.join(", "))
     };
-    let excluded = b.joint.excluded.iter();
-    let excluded: Vec<&str> = excluded.map(|entry| entry.path.value.as_str()).collect();
+    let excluded = path_names(&super::standing::excluded(b.joint));
     if !excluded.is_empty() {
         words.push_str(&format!(" Excluded: {}.", excluded.join(", ")));
     }

@@ -157,7 +157,10 @@ impl Builder<'_> {
         text.push(self.figure_ref(1, JOINT));
         text.push(piece(" shows the group, "));
         text.push(self.figure_ref(2, SECTIONS));
-        text.push(piece(" its welds in section."));
+        text.push(piece(match self.weld_kinds().len() {
+            1 => " its weld in section.",
+            _ => " its welds in section.",
+        }));
         self.para(text);
         self.figure(JOINT);
         if !self.points.is_empty() {

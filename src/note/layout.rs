@@ -359,7 +359,8 @@ fn ranges(word: &str, mut numbers: Vec<usize>) -> String {
                 parts.push(numbers[at].to_string());
                 parts.push(numbers[end].to_string());
             }
-            _ => parts.push(format!("{}–{}", numbers[at], numbers[end])),
+            // A range is not broken after its dash.
+            _ => parts.push(format!("{}–\u{2060}{}", numbers[at], numbers[end])),
         }
         at = end + 1;
     }

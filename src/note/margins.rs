@@ -612,9 +612,13 @@ impl Builder<'_> {
         }
         let unresisted = refused.iter().find_map(|refusal| refusal.case);
         self.part("refusals", "Checks without a number");
-        self.para(plain(
-            "For these checks mechanics or the clause gives no number, so this note gives none.",
-        ));
+        let these = match refused.len() {
+            1 => "this check",
+            _ => "these checks",
+        };
+        self.para(plain(&format!(
+            "For {these} mechanics or the clause gives no number, so this note gives none."
+        )));
         if unresisted.is_some() {
             self.para(plain(
                 "Where one case finds no resistance, the check has no least margin, and none of its other cases is printed.",

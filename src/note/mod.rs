@@ -24,6 +24,7 @@ mod pictures;
 mod points;
 mod powers;
 mod proofs;
+mod section;
 mod sketch;
 mod standing;
 mod stress;
@@ -37,9 +38,8 @@ mod write;
 pub use calculation::{Calculation, Outcome, Refusal};
 pub use clause::sheet_page;
 pub use identity::Identity;
-pub use pictures::{
-    Curve, DemandSketch, Picture, SectionShape, StressSketch, Unfolded, WeldSection,
-};
+pub use pictures::{Curve, DemandSketch, Picture, StressSketch, Unfolded};
+pub use section::{SectionShape, WeldSection, list_mark};
 pub use sketch::{Sketch, SketchDimension, SketchLoad, SketchRun};
 pub use standing::Standing;
 pub use trace::{

@@ -3,16 +3,16 @@
 //! The joint with its load, its welds in section, the stress at its points, the demand along it.
 
 use super::builder::Builder;
-use super::calculation::{Calculation, Outcome};
+use super::calculation::Calculation;
 use super::doc::{Inline, Text};
 use super::margins::{Check, asked, check_name};
+use super::section::{WeldSection, listed};
 use super::sketch::Sketch;
 use super::text::{capital, emph, number, piece, plain, strong};
-use crate::criteria::{FailurePath, Governing, Ground, partner, profiles};
+use crate::criteria::{Governing, Ground, profiles};
 use crate::formula::Value;
-use crate::joint::{RunSpec, SizeSpec};
 use crate::quantity::Dim;
-use crate::weld::{Run, ThroatRule, V3};
+use crate::weld::{Run, V3};
 
 /// Steps in which a path is followed for the drawing of demand along it.
 const STEPS: u32 = 96;
@@ -33,47 +33,6 @@ pub enum Picture {
     Stresses(StressSketch),
     /// Demand over capacity along the unfolded weld.
     Demand(DemandSketch),
-}
-
-/// A kind of weld in section, square to the run.
-#[derive(Clone, Debug)]
-pub struct WeldSection {
-    /// The runs of this kind, by their names.
-    pub runs: Vec<String>,
-    /// Attached part and base part, by their names.
-    pub parts: [String; 2],
-    /// What the weld is.
-    pub shape: SectionShape,
-    /// Dihedral angle between the faces (rad).
-    pub angle: f64,
-    /// The angle as text, where it is not a right one.
-    pub angle_text: String,
-    /// Root gap as told, if any.
-    pub gap: Option<String>,
-    /// Whether the other side of the attached part is welded alike.
-    pub both: bool,
-    /// The effective throat as printed, with its symbol's index, such as `a`.
-    pub throat: String,
-    /// Thickness of the attached and of the base part, if told: value and text.
-    pub thickness: [Option<(f64, String)>; 2],
-    /// The planes that the note checks.
-    pub planes: Vec<FailurePath>,
-}
-
-/// The shape of a weld in section.
-#[derive(Clone, Debug)]
-pub enum SectionShape {
-    /// Fillet: legs on the base and on the attached part, values and texts.
-    Fillet([(f64, String); 2]),
-    /// Fillet of a stated throat.
-    Throat(f64),
-    /// Partial penetration groove of a stated throat.
-    Partial(f64),
-    /// Complete penetration, a tee or a butt.
-    Complete {
-        /// Whether the joint is a tee.
-        tee: bool,
-    },
 }
 
 /// The stress at the points of the group, in one case.
@@ -223,13 +182,13 @@ impl Picture {
                     .map(|section| {
                         format!(
                             "{}: {}, throat {}",
-                            section.runs.join(", "),
+                            listed(&section.runs),
                             section.shape.words(),
-                            section.throat
+                            section.throat.1
                         )
                     })
                     .collect();
-                format!("Sections through the welds. {}.", each.join("; "))
+                format!("Sections through the welds. {}.", each.join(". "))
             }
             Self::Stresses(sketch) => {
                 let governs = match sketch.resultant.as_str() {
@@ -249,10 +208,10 @@ impl Picture {
                         format!("curve {} is largest on {run}", curve.letter)
                     })
                     .collect();
-                let runs: Vec<&str> = demand.runs.iter().map(|run| run.name.as_str()).collect();
+                let runs: Vec<String> = demand.runs.iter().map(|run| run.name.clone()).collect();
                 format!(
                     "Diagram over the runs {}; the capacity is the line at 1: {}.",
-                    runs.join(", "),
+                    listed(&runs),
                     each.join("; ")
                 )
             }
@@ -328,117 +287,7 @@ pub(super) const DEMAND: &str = "demand";
 /// How the curves of demand are drawn, in their order.
 const DASHES: [&str; MOST_CURVES] = ["full", "dashed", "dotted", "dash-dotted", "thin"];
 
-impl SectionShape {
-    fn words(&self) -> String {
-        match self {
-            Self::Fillet([base, attached]) if base.1 == attached.1 => {
-                format!("fillet, leg {}", base.1)
-            }
-            Self::Fillet([base, attached]) => {
-                format!(
-                    "fillet, leg {} on the base, {} on the attached part",
-                    base.1, attached.1
-                )
-            }
-            Self::Throat(_) => "fillet of stated throat".to_owned(),
-            Self::Partial(_) => "partial penetration".to_owned(),
-            Self::Complete { tee: true } => "complete penetration, tee".to_owned(),
-            Self::Complete { tee: false } => "complete penetration, butt".to_owned(),
-        }
-    }
-}
-
 impl Builder<'_> {
-    /// The kinds of weld, each once, in file order.
-    pub(super) fn weld_sections(&self, calculation: &Calculation<'_>) -> Vec<WeldSection> {
-        let mut found: Vec<(usize, WeldSection)> = Vec::new();
-        for (index, run) in self.runs.iter().enumerate() {
-            let alike = found
-                .iter_mut()
-                .find(|(first, _)| self.alike(&self.runs[*first], run));
-            match alike {
-                Some((_, section)) => {
-                    if !section.runs.contains(&run.name) {
-                        section.runs.push(run.name.clone());
-                    }
-                }
-                None => found.push((index, self.weld_section(calculation, index))),
-            }
-        }
-        found.into_iter().map(|(_, section)| section).collect()
-    }
-
-    /// Whether two runs look the same in section.
-    fn alike(&self, one: &Run, other: &Run) -> bool {
-        let spec = |run: &Run| &self.joint.weld.runs[run.spec];
-        let told = |spec: &RunSpec| {
-            (
-                spec.gap.as_ref().map(|gap| gap.value.text()),
-                spec.both_sides.is_some(),
-            )
-        };
-        one.rule == other.rule
-            && one.joins == other.joins
-            && (one.angle - other.angle).abs() < 1e-9
-            && told(spec(one)) == told(spec(other))
-    }
-
-    fn weld_section(&self, calculation: &Calculation<'_>, index: usize) -> WeldSection {
-        let run = &self.runs[index];
-        let spec = &self.joint.weld.runs[run.spec];
-        let unit = format!(" {}", self.joint.units.value.length());
-        let bare = |text: String| text.replace(&unit, "");
-        let leg = |given: &crate::joint::GivenAt| (given.value.value, bare(given.value.text()));
-        let shape = match &spec.size {
-            SizeSpec::Fillet { leg: told, .. } => SectionShape::Fillet([leg(told), leg(told)]),
-            SizeSpec::Unequal {
-                on_base,
-                on_attached,
-            } => SectionShape::Fillet([leg(on_base), leg(on_attached)]),
-            SizeSpec::Throat { .. } => SectionShape::Throat(run.throat),
-            SizeSpec::Partial { .. } => SectionShape::Partial(run.throat),
-            SizeSpec::Complete { tee, .. } => SectionShape::Complete { tee: *tee },
-        };
-        let right = (run.angle - std::f64::consts::FRAC_PI_2).abs() < 1e-9;
-        let part = |at: usize| &self.joint.parts[run.joins[at]];
-        let thickness = [0, 1].map(|at: usize| {
-            let told = part(at).thickness.as_ref()?;
-            Some((told.value.value, bare(told.value.text())))
-        });
-        let throat = self.run_values[index].get("t");
-        let throat = throat.map_or(String::new(), |value| self.ledger.printed(*value).text());
-        let mut planes: Vec<FailurePath> = Vec::new();
-        for outcome in &calculation.outcomes {
-            if let Outcome::Assessed(asked) = outcome
-                && !asked.strength.is_empty()
-                && !asked.left_out.contains(&index)
-            {
-                planes.extend(&asked.sheet.covers);
-            }
-        }
-        planes.sort_unstable();
-        planes.dedup();
-        WeldSection {
-            runs: vec![run.name.clone()],
-            parts: [0, 1].map(|at| part(at).name.value.clone()),
-            shape,
-            angle: run.angle,
-            angle_text: if right || matches!(run.rule, ThroatRule::Complete { .. }) {
-                String::new()
-            } else {
-                format!(
-                    "{}°",
-                    crate::formula::Printed::of(run.angle.to_degrees(), 5, 7, 1e-6).text()
-                )
-            },
-            gap: spec.gap.as_ref().map(|gap| bare(gap.value.text())),
-            both: spec.both_sides.is_some() || partner(self.runs, index).is_some(),
-            throat,
-            thickness,
-            planes,
-        }
-    }
-
     /// The stress at the points of the group in the case of a check, and the resultant where it governs.
     pub(super) fn stress_sketch(
         &self,

@@ -309,7 +309,17 @@ impl Builder<'_> {
     fn height(&self, load: V3) -> SketchDimension {
         let plane = self.properties.centroid.z;
         let foot = V3::new(load.x, load.y, plane);
-        let mut height = self.dimension(foot, load, 2);
+        // From a point of the group beside the foot the height shows as well.
+        let near = 1e-6 * self.properties.size;
+        let beside = |point: &V3| {
+            let apart = [0, 1].map(|axis: usize| (point[axis] - load[axis]).abs() > near);
+            apart[0] != apart[1]
+        };
+        let points = self.extreme_points().into_iter().filter(beside);
+        let mut height = SketchDimension {
+            alike: points.map(|point| (point, load)).take(MOST_ALIKE).collect(),
+            ..self.dimension(foot, load, 2)
+        };
         // Where the plane is that of the origin, the height is the coordinate.
         if plane.abs() < 1e-9 * self.properties.size {
             height.text = format!("z_P = {}", short(load.z, self.properties.size));

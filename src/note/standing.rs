@@ -3,8 +3,9 @@
 use super::calculation::{Calculation, Outcome};
 use super::margins::{asked, check_name, ranked};
 use super::text::count;
-use crate::criteria::Margin;
+use crate::criteria::{FailurePath, Margin};
 use crate::formula::{MARGIN_DECIMALS, Printed};
+use crate::joint::Joint;
 
 /// How a joint stands.
 #[derive(Clone, PartialEq, Debug)]
@@ -181,25 +182,27 @@ fn brief(reason: &str) -> String {
     format!("{} …", cut.trim_end())
 }
 
-/// The failure paths that are neither checked by a sheet nor excluded by the user, by their words.
-pub(super) fn uncovered(calculation: &Calculation<'_>) -> Vec<&'static str> {
-    let covered = |word: &str| {
+/// The failure paths that are neither checked by a sheet nor excluded by the user, in print order.
+pub(super) fn uncovered(calculation: &Calculation<'_>) -> Vec<FailurePath> {
+    let excluded = excluded(calculation.joint);
+    let covered = |path: &FailurePath| {
         let checked = calculation.outcomes.iter().any(|outcome| match outcome {
-            Outcome::Assessed(asked) => asked.sheet.covers.iter().any(|path| path.word() == word),
+            Outcome::Assessed(asked) => asked.sheet.covers.contains(path),
             // That there is no number is told by itself.
-            Outcome::Refused(refusal) => refusal.covers.iter().any(|path| path.word() == word),
+            Outcome::Refused(refusal) => refusal.covers.contains(path),
         });
-        checked
-            || calculation
-                .joint
-                .excluded
-                .iter()
-                .any(|exclusion| exclusion.path.value == word)
+        checked || excluded.contains(path)
     };
-    crate::criteria::FailurePath::WORDS
-        .iter()
-        .filter(|(word, _)| !covered(word))
-        .map(|(word, _)| *word)
+    let all = FailurePath::WORDS.into_iter().map(|(_, path)| path);
+    all.filter(|path| !covered(path)).collect()
+}
+
+/// The failure paths that the user excludes, in print order.
+pub(super) fn excluded(joint: &Joint) -> Vec<FailurePath> {
+    let told = |word: &str| joint.excluded.iter().any(|entry| entry.path.value == word);
+    let all = FailurePath::WORDS.into_iter();
+    all.filter(|(word, _)| told(word))
+        .map(|(_, path)| path)
         .collect()
 }
 

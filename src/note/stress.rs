@@ -205,7 +205,7 @@ impl Builder<'_> {
         for axis in 0..3 {
             let symbol = Symbol::of("theta", &[AXES[axis]]);
             let says = format!(
-                "Twist of the stress field about {}: the solution of K θ = M",
+                "Twist of the stress field about {}: the solution of Kθ = M",
                 AXES[axis]
             );
             let name = format!("theta_{}", AXES[axis]);
@@ -231,7 +231,7 @@ impl Builder<'_> {
         .enumerate()
         {
             let a = AXES[axis];
-            let says = format!("Verification: K θ returns the moment about {a}");
+            let says = format!("Verification: Kθ returns the moment about {a}");
             let returned = self.at(
                 sheet,
                 &format!("M_{a}K"),

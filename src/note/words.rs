@@ -1,5 +1,6 @@
 //! Words that every note prints: the usual cautions and the names of failure paths.
 
+use crate::criteria::FailurePath;
 use serde::Deserialize;
 use std::collections::BTreeMap;
 use std::sync::OnceLock;
@@ -12,6 +13,36 @@ pub(super) struct Words {
     pub(super) cautions: Vec<String>,
     /// Failure paths by the word of the sheets, as the note names them.
     pub(super) paths: BTreeMap<String, String>,
+    /// Two paths that one name tells.
+    pairs: Vec<Pair>,
+}
+
+/// Two failure paths with a common name.
+#[derive(Deserialize, Debug)]
+#[serde(deny_unknown_fields)]
+struct Pair {
+    of: [String; 2],
+    together: String,
+}
+
+/// Failure paths in a list, as the note names them; `paths` are in print order, so that pairs stand
+/// side by side.
+pub(super) fn path_names(paths: &[FailurePath]) -> Vec<String> {
+    let words = words();
+    let mut rest = paths;
+    let mut names = Vec::new();
+    while let [path, after @ ..] = rest {
+        let next = after.first().map(|next| next.word());
+        let is_pair = |pair: &&Pair| pair.of[0] == path.word() && Some(pair.of[1].as_str()) == next;
+        let pair = words.pairs.iter().find(is_pair);
+        rest = &after[usize::from(pair.is_some())..];
+        names.push(match (pair, words.paths.get(path.word())) {
+            (Some(pair), _) => pair.together.clone(),
+            (None, Some(name)) => name.clone(),
+            (None, None) => path.word().to_owned(),
+        });
+    }
+    names
 }
 
 /// The words, read once.

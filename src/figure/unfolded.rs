@@ -1,7 +1,8 @@
 //! Demand over capacity along the weld, laid out straight run by run.
 //!
 //! The capacity is the line at 1. Each curve is its check's in its governing case; a ring marks
-//! where it governs; rings that overlap share their letters. Numbers of points stand at the ends, names of runs below.
+//! where it governs; rings that overlap share their letters. Numbers of points stand at the ends,
+//! names of runs below.
 
 use super::PT;
 use super::canvas::{Canvas, Keep, Layer, strokes};
@@ -147,7 +148,7 @@ pub fn draw_unfolded(sketch: &DemandSketch, fonts: &dyn TextWidth) -> Drawing {
         canvas.mark([circle(peak.at, PEAK, Stroke::black(0.8), Fill::White)]);
     }
     let apart = joined(&mut canvas, peaks);
-    for (index, peak) in apart.iter().enumerate().rev() {
+    for (index, peak) in apart.into_iter().enumerate().rev() {
         layout.letter(&mut canvas, peak, index == 0);
     }
     let labels = place_labels(&mut canvas);
@@ -326,10 +327,10 @@ impl Layout {
     }
 
     /// The letters of a ring: over the largest curve, under the others.
-    fn letter(&self, canvas: &mut Canvas<'_>, peak: &Peak, first: bool) {
+    fn letter(&self, canvas: &mut Canvas<'_>, peak: Peak, first: bool) {
         let at = peak.at;
-        let words = canvas.words(vec![Span::new(peak.letters.clone(), Style::Bold)]);
-        let mut rects = peak.rects.clone();
+        let words = canvas.words(vec![Span::new(peak.letters, Style::Bold)]);
+        let mut rects = peak.rects;
         rects.push(Rect::upright(at, PEAK, PEAK));
         let mark = canvas.name(MarkKind::Curve, rects);
         // Toward the middle, so that the ends of the diagram keep their width.

@@ -451,15 +451,19 @@ fn tells(canvas: &Canvas<'_>, want: &Want, rect: &Rect) -> bool {
     others(canvas, want).all(|other| other.distance(rect) > near)
 }
 
-/// The marks of the kind of that which a label names, but for those at its very place; and arrows that
-/// stand off it.
+/// The marks of the kind of that which a label names, but for those at its very place and the ring
+/// around a point; and arrows that stand off it.
 fn others<'c>(canvas: &'c Canvas<'_>, want: &Want) -> impl Iterator<Item = &'c Mark> {
     let own = want.names.map(|own| &canvas.marks[own]);
     canvas.marks.iter().filter(move |other| {
         own.is_some_and(|own| {
             let apart = || !own.rects.iter().any(|rect| other.meets(rect));
-            let alike = own.kind == other.kind && own.rects != other.rects;
-            alike || (other.kind == MarkKind::Arrow && apart())
+            match (own.kind, other.kind) {
+                (MarkKind::Point, MarkKind::Point) => apart(),
+                (kind, alike) if kind == alike => own.rects != other.rects,
+                (_, MarkKind::Arrow) => apart(),
+                _ => false,
+            }
         })
     })
 }

@@ -96,7 +96,7 @@ impl Builder<'_> {
         for (run, gap) in self.free_gaps() {
             let label = format!("A{}", items.len() + 1);
             let says = format!(
-                "The root gap of {run}, {gap}, is not over 1/16 in, so the legs count in full: the fit-up rule for \
+                "The root gap of run “{run}”, {gap}, is not over 1/16 in, so the legs count in full: the fit-up rule for \
                  steel, to be confirmed for the material and the code that governs."
             );
             open.push((label.clone(), says.clone()));
@@ -262,9 +262,15 @@ impl Builder<'_> {
                 }
             })
             .collect();
+        let stitched = |spec: &crate::joint::RunSpec| spec.stitch.is_some();
+        let caption = if self.joint.weld.runs.iter().any(stitched) {
+            "Runs as given; stitched beads end by themselves, also where they meet another run"
+        } else {
+            "Runs as given"
+        };
         self.table(Sheet {
             id: "runs".to_owned(),
-            caption: plain("Runs as given"),
+            caption: plain(caption),
             formulas: Vec::new(),
             columns,
             rows,

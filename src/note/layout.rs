@@ -303,8 +303,22 @@ impl Builder<'_> {
 pub(super) fn in_margin(from: &Origin) -> String {
     match from {
         Origin::Input(place) => line_of(place),
-        Origin::Clause(_) | Origin::Method(_) => origin(from),
+        Origin::Clause(_) | Origin::Method(_) => with_its_word(&origin(from)),
     }
+}
+
+/// A text whose short whole numbers stay with the word before: the 3 of `issue 3`, alone on a line of
+/// the margin, would read as a step.
+fn with_its_word(text: &str) -> String {
+    let mut words = text.split(' ');
+    let mut out = words.next().unwrap_or_default().to_owned();
+    for word in words {
+        let bare = word.trim_end_matches([',', ';', ':', ')']);
+        let is_number = (1..=2).contains(&bare.len()) && bare.chars().all(|c| c.is_ascii_digit());
+        out.push(if is_number { '\u{a0}' } else { ' ' });
+        out.push_str(word);
+    }
+    out
 }
 
 /// The line of a place; with its file where that is the project's.

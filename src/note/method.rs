@@ -81,7 +81,7 @@ fn symbols(stopped: bool, on_throat: bool) -> Text {
     text.extend([
         sym("i", &[]),
         piece(
-            " counts the runs; a figure counts the runs too, with a coordinate the points, with a strength or a thickness \
+            " counts the runs; a figure counts the runs too, with a coordinate the points, with a leg, a strength or a thickness \
              the parts (1 attached, 2 base); an index a, b, … tells sizes apart. ",
         ),
     ]);
@@ -179,12 +179,8 @@ fn space() -> Text {
         along("y", "z", "x"),
         piece("; "),
         along("z", "x", "y"),
-        piece(", where the twist "),
-        sym("theta", &[]),
-        piece(" solves K"),
-        sym("theta", &[]),
         piece(
-            " = M for the moments about the centroid, and K is the inertia tensor of the throat areas.",
+            ", where the twist θ solves Kθ = M for the moments about the centroid, and K is the inertia tensor of the throat areas.",
         ),
     ]
 }
@@ -201,8 +197,7 @@ fn collinear() -> Text {
         piece(" from the centroid along the line and "),
         sym("I", &["L"]),
         piece(
-            " the second moment of the throats about it. A moment about the line itself finds no resistance and is \
-             refused.",
+            " the second moment of the throats about the centroid. A moment about the line itself finds no resistance and is refused.",
         ),
     ]
 }

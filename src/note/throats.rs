@@ -72,7 +72,11 @@ impl Builder<'_> {
     }
 
     fn length_of(&mut self, base: &str, letter: &str, says: &str, given: &Told<Given>) -> Value {
-        let symbol = lettered(base, letter);
+        self.length_at(lettered(base, letter), says, given)
+    }
+
+    /// A length as told, with its symbol.
+    fn length_at(&mut self, symbol: Symbol, says: &str, given: &Told<Given>) -> Value {
         let id = format!("size.{}", symbol.plain().to_lowercase().replace('_', "-"));
         let value = self.input(
             id,
@@ -123,16 +127,12 @@ impl Builder<'_> {
                 },
                 ThroatRule::UnequalLegs { gap, .. },
             ) => {
-                let base =
-                    self.length_of("h", &format!("{letter}1"), "Leg on the base part", on_base);
-                let attached = self.length_of(
-                    "h",
-                    &format!("{letter}2"),
-                    "Leg on the attached part",
-                    on_attached,
-                );
-                env.bind("h_1", base);
-                env.bind("h_2", attached);
+                // Indices of the parts: 1 attached, 2 base.
+                let symbol = |part: &str| lettered("h", letter).with(part);
+                let base = self.length_at(symbol("2"), "Leg on the base part", on_base);
+                let attached = self.length_at(symbol("1"), "Leg on the attached part", on_attached);
+                env.bind("h_1", attached);
+                env.bind("h_2", base);
                 legs = vec![base, attached];
                 let one = self.worked_leg(spec, *gap, letter, &mut env, "h_1");
                 let two = self.worked_leg(spec, *gap, letter, &mut env, "h_2");

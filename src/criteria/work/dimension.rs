@@ -27,13 +27,13 @@ impl Desk<'_, '_> {
             }
             (RunField::LegBase, SizeSpec::Unequal { on_base, .. }) => Ok(self.told(
                 "leg-base",
-                Symbol::of("h", &["b"]),
+                Symbol::of("h", &["2"]),
                 "leg on the base part",
                 on_base,
             )),
             (RunField::LegAttached, SizeSpec::Unequal { on_attached, .. }) => Ok(self.told(
                 "leg-attached",
-                Symbol::of("h", &["a"]),
+                Symbol::of("h", &["1"]),
                 "leg on the attached part",
                 on_attached,
             )),

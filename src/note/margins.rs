@@ -6,7 +6,7 @@ use super::doc::{Align, Column, Text};
 use super::loads::{CASES_IN_NOTE, CaseValues};
 use super::pictures::{DEMAND, STRESSES};
 use super::stress::{CaseTerms, Spot};
-use super::text::{capital, count, piece, plain, slug, strong, symbol};
+use super::text::{capital, piece, plain, slug, strong, symbol};
 use super::write::NoteError;
 use crate::criteria::{
     Asked, From, Governing, Ground, LimitOutcome, Margin, Side, Turn, Worked, partner, work,
@@ -562,10 +562,11 @@ impl Builder<'_> {
                 "Least margin of each case, the {CASES_IN_NOTE} that rank first of {total}; all stand in cases.csv"
             )
         } else {
-            format!(
-                "Least margin of each of {}, computed at every check point",
-                count(total, "case", "cases")
-            )
+            let cases = match total {
+                1 => "the case".to_owned(),
+                _ => format!("each of the {total} cases"),
+            };
+            format!("Least margin of {cases}, computed at every check point")
         };
         if let Some(level) = level {
             caption.push_str(&format!("; level {level}"));

@@ -77,7 +77,16 @@ pub fn text_width(text: &str, cut: Cut) -> f64 {
         let glyph = ttf.glyph_index(c)?;
         Some(f64::from(ttf.glyph_hor_advance(glyph)?) / em)
     };
-    text.chars().map(|c| advance(c).unwrap_or(1.0)).sum()
+    let seen = text.chars().filter(|c| !takes_no_room(*c));
+    seen.map(|c| advance(c).unwrap_or(1.0)).sum()
+}
+
+/// Whether a character only says where a line may break.
+const fn takes_no_room(c: char) -> bool {
+    matches!(
+        c,
+        '\u{ad}' | '\u{200b}'..='\u{200d}' | '\u{2060}' | '\u{feff}'
+    )
 }
 
 /// Whether the note can print the character as itself, without reordering its neighbours.
@@ -86,7 +95,8 @@ pub fn text_width(text: &str, cut: Cut) -> f64 {
 #[must_use]
 pub fn prints(c: char) -> bool {
     match c {
-        '\n' | '\r' | '\t' | '\u{ad}' | '\u{200b}'..='\u{200d}' | '\u{2060}' | '\u{feff}' => true,
+        '\n' | '\r' | '\t' => true,
+        c if takes_no_room(c) => true,
         '\u{200e}' | '\u{200f}' | '\u{202a}'..='\u{202e}' | '\u{2066}'..='\u{2069}' => false,
         c if c.is_control() => false,
         c => covered(c, FAMILIES[0]) || covered(c, FAMILIES[2]),

@@ -17,8 +17,6 @@ use crate::weld::V3;
 pub(super) const SAME: f64 = 0.25;
 /// Half of the cross at the foot of a load (mm).
 const FOOT: f64 = 0.9;
-/// A dimension in space longer than this many times the group's size is broken.
-const LONGEST_LINE: f64 = 1.5;
 /// An origin further outside the group than this part of its size is not drawn.
 const ORIGIN_REACH: f64 = 0.6;
 
@@ -171,7 +169,11 @@ impl<'a> Sheet<'a> {
                 ..bare.clone()
             };
             for (load, spot) in self.scene.loads.iter().zip(&self.spots) {
-                draw_load(&mut self.canvas, &self.view, load, *spot, self.centre);
+                let mut load = load.clone();
+                if self.tells(&load) {
+                    load.distance.clear();
+                }
+                draw_load(&mut self.canvas, &self.view, &load, *spot, self.centre);
             }
             self.vectors();
             self.origin();
@@ -272,6 +274,9 @@ impl<'a> Sheet<'a> {
 
     fn dimension(&mut self, dimension: &Dimension) {
         let mut placed = vec![self.placed(dimension, (dimension.from, dimension.to))];
+        if placed[0].astray() {
+            return;
+        }
         // To a point drawn nearer only its own line leads.
         let alike = dimension.alike.iter();
         let alike = alike.map(|pair| self.placed(dimension, *pair));
@@ -299,6 +304,17 @@ impl<'a> Sheet<'a> {
         }
     }
 
+    /// Whether a dimension in space tells where a load stands.
+    fn tells(&self, load: &Load) -> bool {
+        let to_load = |dimension: &&Dimension| {
+            (dimension.to - load.at).norm() < 1e-9 * (1.0 + load.at.norm())
+                && !self
+                    .placed(dimension, (dimension.from, dimension.to))
+                    .astray()
+        };
+        !self.view.flat && self.scene.dimensions.iter().any(|d| to_load(&d))
+    }
+
     fn is_load(&self, p: &V3) -> bool {
         let near = |load: &Load| (load.at - p).norm() < 1e-9 * (1.0 + p.norm());
         self.scene.loads.iter().any(near)
@@ -310,7 +326,7 @@ impl<'a> Sheet<'a> {
         let found = [found(&from), found(&to)];
         let told = found.map(|s| s.at);
         let mut ends = told;
-        let mut broken = found.iter().any(|s| s.broken);
+        let broken = found.iter().any(|s| s.broken);
         let centroid_only = self
             .scene
             .centroid
@@ -328,7 +344,7 @@ impl<'a> Sheet<'a> {
         if !self.view.flat {
             let axis = dimension.axis;
             let along = (to[axis.index()] - from[axis.index()]) * self.view.scale;
-            (ends, broken, from_end) = self.squared(axis, along, ends, broken);
+            (ends, from_end) = self.squared(axis, along, ends, broken);
         }
         Placed {
             axis: dimension.axis,
@@ -345,25 +361,23 @@ impl<'a> Sheet<'a> {
     }
 
     /// In space, both ends are brought onto one line along the axis, so that the line's length is
-    /// the distance measured; a thin line shows where the second end came from. A line much longer
-    /// than the group is broken.
+    /// the distance measured; a thin line shows where the second end came from. To a point drawn
+    /// nearer the line reaches as far as the point does.
     fn squared(
         &self,
         axis: Axis,
         along: f64,
         ends: [P2; 2],
         broken: bool,
-    ) -> ([P2; 2], bool, Option<P2>) {
-        let longest = LONGEST_LINE * self.group.size().norm().max(10.0);
-        // To a point drawn nearer, a line reaches as far as the point does.
-        let reach = (ends[1] - ends[0]).dot(&self.view.direction(axis));
-        let (shown, broken) = match broken {
-            true => (reach, true),
-            false => (along.clamp(-longest, longest), along.abs() > longest),
+    ) -> ([P2; 2], Option<P2>) {
+        let d = self.view.direction(axis);
+        let shown = match broken {
+            true => (ends[1] - ends[0]).dot(&d),
+            false => along,
         };
-        let second = ends[0] + self.view.direction(axis) * shown;
+        let second = ends[0] + d * shown;
         let from_end = ((second - ends[1]).norm() > 0.5).then_some(ends[1]);
-        ([ends[0], second], broken, from_end)
+        ([ends[0], second], from_end)
     }
 }
 

@@ -52,6 +52,13 @@ pub(super) struct Placed {
     pub(super) from_end: Option<P2>,
 }
 
+impl Placed {
+    /// Whether its line would lead past a load that is drawn nearer, and so show it elsewhere.
+    pub(super) fn astray(&self) -> bool {
+        self.broken && self.from_end.is_some()
+    }
+}
+
 /// A way of setting the dimension line off.
 #[derive(Clone, Copy)]
 struct Way {

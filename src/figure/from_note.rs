@@ -39,11 +39,7 @@ pub fn scene(sketch: &Sketch) -> Scene {
         origin: Some(V3::zeros()),
         axes: sketch.axes.clone(),
         centroid: Some(sketch.centroid),
-        loads: sketch
-            .load
-            .iter()
-            .map(|of| load(of, sketch.raised))
-            .collect(),
+        loads: sketch.load.iter().map(load).collect(),
         governing: sketch.governing.as_ref().map(|(at, label)| Governing {
             at: *at,
             label: label.clone(),
@@ -121,8 +117,8 @@ pub fn draw_picture(picture: &Picture, fonts: &dyn TextWidth) -> Drawing {
     }
 }
 
-/// A load; where it stands over the group, its height is dimensioned and its distance goes unsaid.
-fn load(load: &SketchLoad, raised: bool) -> Load {
+/// A load; its distance is said where no dimension tells its place.
+fn load(load: &SketchLoad) -> Load {
     let parts = |values: &[(f64, String); 3]| {
         Axis::ALL
             .into_iter()
@@ -142,10 +138,6 @@ fn load(load: &SketchLoad, raised: bool) -> Load {
         aside: load.aside.clone(),
         force: parts(&load.force),
         moment: parts(&load.moment),
-        distance: if raised {
-            String::new()
-        } else {
-            load.distance.clone()
-        },
+        distance: load.distance.clone(),
     }
 }

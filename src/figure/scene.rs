@@ -137,8 +137,8 @@ pub struct Load {
     pub force: Vec<Component>,
     /// Moment components; one of size 0 is not drawn.
     pub moment: Vec<Component>,
-    /// Text beside the broken lead line if the point stands too far out to be drawn in place,
-    /// such as `2400 from C`; empty for none.
+    /// Text beside the broken lead line if the point stands too far out to be drawn in place and, in
+    /// space, no dimension tells its place, such as `2400 from C`; empty for none.
     pub distance: String,
 }
 

@@ -128,7 +128,7 @@ impl Builder<'_> {
         let frame = &self.joint.frame;
         let mut text = vec![piece(&format!(
             "The origin is the {}",
-            frame.origin.value.trim_end_matches('.')
+            without_article(frame.origin.value.trim_end_matches('.'))
         ))];
         let mut parted = ";";
         for (axis, words) in super::points::AXES.iter().zip(&frame.axes) {
@@ -531,4 +531,9 @@ fn direction_words(direction: crate::weld::V3) -> String {
         part(direction.y),
         part(direction.z)
     )
+}
+
+/// Words that follow an article, without their own.
+fn without_article(words: &str) -> &str {
+    words.strip_prefix("the ").unwrap_or(words)
 }

@@ -119,7 +119,7 @@ impl Standing {
         .into_iter()
         .flatten()
         .collect();
-        let one = (all == 0 || held == 1) && (self.limits.1 == 0 || self.limits.0 == 1);
+        let one = (all <= 1 || held == 1) && (self.limits.1 <= 1 || self.limits.0 == 1);
         let verb = if one && parts.len() == 1 {
             "holds"
         } else {

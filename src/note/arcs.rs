@@ -284,7 +284,7 @@ impl Builder<'_> {
         let trimmed = self.is_trimmed();
         let cut = |sign: &str, end: &str| {
             if trimmed {
-                format!(" {sign} {end}/R*(1 rad)")
+                format!(" {sign} (180 deg)*{end}/(pi*R)")
             } else {
                 String::new()
             }

@@ -4,7 +4,8 @@
 //! second digest covers the words, so that an editorial change can be told from a technical one.
 
 use crate::formula::{Kind, Ledger};
-use crate::joint::Joint;
+use crate::joint::{Joint, Part};
+use crate::source::Told;
 use sha2::{Digest, Sha256};
 use std::fmt::Write;
 
@@ -61,11 +62,21 @@ impl Identity {
                 case.says.as_ref().map_or("", |says| says.value.as_str())
             );
         }
-        for line in sheets.iter().chain(results) {
+        let facts = facts(joint);
+        for line in facts.iter().chain(sheets).chain(results) {
             let _ = writeln!(technical, "{line}");
         }
-        for text in [&joint.title.value, &joint.frame.origin.value] {
-            let _ = writeln!(words, "{text}");
+        let titles = [
+            Some(&joint.title),
+            joint.item.as_ref(),
+            joint.purpose.as_ref(),
+        ];
+        for text in titles.into_iter().chain([Some(&joint.frame.origin)]) {
+            let _ = writeln!(words, "{}", told(text));
+        }
+        for change in &joint.changes {
+            let (issue, date) = (&change.revision.value, change.date.value);
+            let _ = writeln!(words, "{issue}|{date}|{}", change.says.value);
         }
         for assumption in &joint.assumptions {
             let _ = writeln!(words, "{}", assumption.says.value);
@@ -90,6 +101,89 @@ impl Identity {
     pub fn printed_words(&self) -> String {
         grouped(&self.words)
     }
+}
+
+/// What the inputs say beside their numbers: drawing, directions, materials and sources, toes and ends,
+/// frames, checks, exclusions, open assumptions.
+fn facts(joint: &Joint) -> Vec<String> {
+    let runs = &joint.weld.runs;
+    let joined = |part: &&Part| {
+        let mut names = runs.iter().flat_map(|run| &run.joins);
+        names.any(|name| name.value == part.name.value)
+    };
+    let mut facts = vec![format!("drawing|{}", told(joint.drawing.as_ref()))];
+    facts.extend(
+        joint
+            .frame
+            .axes
+            .iter()
+            .map(|axis| format!("axis|{}", told(axis.as_ref()))),
+    );
+    facts.extend(joint.parts.iter().filter(joined).map(|part| {
+        let (name, material) = (&part.name.value, &part.material.value);
+        let (more, source) = (pairs(&part.more), told(part.source.as_ref()));
+        format!(
+            "part|{name}|{material}|{more}|{source}|{}",
+            part.to_be_verified
+        )
+    }));
+    facts.extend(joint.filler.iter().map(|filler| {
+        let (name, more) = (&filler.name.value, pairs(&filler.more));
+        let source = told(filler.source.as_ref());
+        format!("filler|{name}|{more}|{source}|{}", filler.to_be_verified)
+    }));
+    facts.extend(runs.iter().map(|run| {
+        let joins = run.joins.each_ref().map(|name| name.value.as_str());
+        let toe = run.toe.as_ref().map(|toe| toe.value);
+        let ends = run
+            .ends
+            .each_ref()
+            .map(|end| end.as_ref().map(|end| end.value));
+        let record = run
+            .penetration
+            .as_ref()
+            .map(|(_, record)| record.value.as_str());
+        let both = run.both_sides.is_some();
+        format!(
+            "run|{}|{joins:?}|{toe:?}|{ends:?}|{both}|{record:?}",
+            run.name.value
+        )
+    }));
+    let frames = joint
+        .loads
+        .cases
+        .iter()
+        .filter_map(|case| case.frame.as_ref());
+    facts.extend(frames.map(|frame| {
+        let axes = frame.axes.each_ref().map(|axis| axis.values());
+        format!(
+            "frame|{}|{:?}|{axes:?}",
+            frame.name.value,
+            frame.origin.values()
+        )
+    }));
+    facts.extend(joint.checks.iter().map(|check| {
+        let (clause, values) = (&check.clause.value, pairs(&check.values));
+        let source = told(check.source.as_ref());
+        format!("check|{clause}|{values}|{source}|{}", check.to_be_verified)
+    }));
+    let excluded = joint.excluded.iter();
+    facts.extend(excluded.map(|entry| format!("excluded|{}|{}", entry.path.value, entry.by.value)));
+    let assumptions = joint.assumptions.iter();
+    facts.extend(assumptions.map(|entry| format!("open|{}", entry.to_be_verified)));
+    facts
+}
+
+/// A text, empty where it is not told.
+fn told(text: Option<&Told<String>>) -> &str {
+    text.map_or("", |text| text.value.as_str())
+}
+
+/// Names with their values as typed.
+fn pairs(values: &[(Told<String>, Told<String>)]) -> String {
+    let each = values.iter();
+    let each = each.map(|(name, value)| format!("{}={};", name.value, value.value));
+    each.collect()
 }
 
 /// The SHA-256 of a text (FIPS 180-4) in hexadecimal.

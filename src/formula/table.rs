@@ -84,7 +84,7 @@ impl Table {
         Problem::OutsideTable {
             key,
             table: self.name.clone(),
-            covers: covers.join("; "),
+            covers: covers.join(", "),
         }
     }
 

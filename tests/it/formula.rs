@@ -213,7 +213,7 @@ fn a_lookup_prints_its_row_and_refuses_outside() {
     };
     let fault = ledger.step(draft, &env).unwrap_err().to_string();
     assert!(
-        fault.contains("20 is outside the table `w_least`, which covers up to 6; over 6 up to 13"),
+        fault.contains("20 is outside the table `w_least`, which covers up to 6, over 6 up to 13"),
         "{fault}"
     );
 }

@@ -92,6 +92,15 @@ impl Resolved {
     }
 }
 
+/// A word that a check tells.
+#[derive(Clone, Debug)]
+pub(in crate::criteria) struct ToldWord {
+    /// The word in a sentence, with its source.
+    pub(in crate::criteria) says: String,
+    /// What of it is to be verified.
+    pub(in crate::criteria) open: Option<String>,
+}
+
 /// One check of a joint with its sheet.
 #[derive(Clone, Copy, Debug)]
 pub(in crate::criteria) struct Asking<'a> {
@@ -212,6 +221,27 @@ impl Asking<'_> {
             origin: Origin::Input(raw.place.clone()),
             mark,
         }))))
+    }
+
+    /// A word that the check tells for a need, such as a grade in place of the material's.
+    pub(in crate::criteria) fn told_word(&self, name: &str) -> Option<ToldWord> {
+        let need = self.sheet.need(name)?;
+        if need.kind.dim().is_some() {
+            return None;
+        }
+        let (_, raw) = self.spec.values.iter().find(|(key, _)| key.value == name)?;
+        let what = format!("{name} of the check {}", self.sheet.name.value);
+        let open = match &self.spec.source {
+            _ if self.spec.to_be_verified => Some(what),
+            Some(_) => None,
+            None => Some(format!("{what}: no source given")),
+        };
+        let source = self.spec.source.as_ref();
+        let source = source.map_or(String::new(), |source| format!(" ({})", source.value));
+        Some(ToldWord {
+            says: format!("{name} {} as told{source}", raw.value),
+            open,
+        })
     }
 
     /// What is to be verified of a value of the check: an allowable or a factor without a source,

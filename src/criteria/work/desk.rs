@@ -4,7 +4,7 @@ use super::{AGREES, WorkError};
 use crate::criteria::assess::Ground;
 use crate::criteria::from::{From, PointField, RunField};
 use crate::criteria::outcome::Asked;
-use crate::criteria::resolve::{Asking, Resolved, Sourced, Turn};
+use crate::criteria::resolve::{Asking, Resolved, Sourced, ToldWord, Turn};
 use crate::criteria::sheet::{Need, Sheet};
 use crate::criteria::state::{Site, fill, partner};
 use crate::formula::{Bound, Draft, Env, Ledger, Origin, Symbol, Value};
@@ -92,15 +92,32 @@ impl<'a, 'g> Desk<'a, 'g> {
         for used in step.node.names() {
             self.bind(used)?;
         }
+        let mut says = step.says.clone();
+        let used = step.node.names();
+        let told: Vec<ToldWord> = used
+            .into_iter()
+            .filter_map(|used| self.asking.told_word(used))
+            .collect();
+        for word in &told {
+            says.push_str(&format!(", {}", word.says));
+        }
         let draft = Draft {
             id: format!("{}.{name}", self.prefix),
             symbol: step.symbol.clone(),
-            says: step.says.clone(),
+            says,
             formula: &step.formula.value,
             origin: self.cited(),
             dim: Some(step.dim),
         };
         let value = self.step(draft)?;
+        for open in told.into_iter().filter_map(|word| word.open) {
+            let mark = &mut self.ledger.get_mut(value).mark;
+            *mark = Some(match mark.take() {
+                Some(known) if !known.contains(&open) => format!("{known}; {open}"),
+                Some(known) => known,
+                None => open,
+            });
+        }
         self.env.bind(name, value);
         Ok(())
     }

@@ -253,6 +253,10 @@ impl<'a> Fields<'a> {
     }
 
     fn unknown(&self, key: &Told<String>, node: &Node) -> Diagnostic {
+        let cut = super::item::cut_at_comma(&key.value, &key.place);
+        if let Some(fault) = cut.filter(|_| node.value == super::Value::Null) {
+            return fault;
+        }
         let message = format!("`{}` is no key of {}", key.value, self.table.what);
         let mut fault = Diagnostic::error("unknown-key", message, &key.place);
         if let Some(meant) = self.unparted(&key.value, node) {
@@ -266,7 +270,11 @@ impl<'a> Fields<'a> {
         if node.value == super::Value::Null && self.unparted(&key.value, node).is_none() {
             fault = fault.help("if it is part of a text: a comma inside `{ }` ends a text, so quote the whole text");
         }
-        fault.help(format!("allowed here: {}", listed(&self.names())))
+        let others = match self.table.free {
+            Some(_) => ", and the names that clause sheets ask for",
+            None => "",
+        };
+        fault.help(format!("allowed here: {}{others}", listed(&self.names())))
     }
 
     /// The key that a text begins with which YAML took for a key as a whole: `fillet:6`, `fillet = 6`.

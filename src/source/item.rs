@@ -238,6 +238,9 @@ impl<'a> Item<'a> {
     }
 
     fn empty<T>(&self) -> Option<T> {
+        if let Some(fault) = cut_at_comma(self.name, self.place()) {
+            return self.faults.refuse(fault);
+        }
         self.refuse_with(
             "empty-value",
             format!("`{}` has no value", self.name),
@@ -321,4 +324,19 @@ pub(super) fn listed(words: &[&str]) -> String {
         .map(|word| format!("`{word}`"))
         .collect::<Vec<_>>()
         .join(", ")
+}
+
+/// The fault of a key that is the second part of a number, which a decimal comma in braces cut in two.
+pub(super) fn cut_at_comma(key: &str, place: &Place) -> Option<Diagnostic> {
+    let before = place.file.text.get(..place.start)?.strip_suffix(',')?;
+    let digits = |c: char| c.is_ascii_digit();
+    let whole = &before[before.trim_end_matches(digits).len()..];
+    if whole.is_empty() || !key.starts_with(digits) {
+        return None;
+    }
+    let number = format!("{whole},{key}");
+    let point = number.replace(',', ".");
+    let message = format!("`{number}` has a decimal comma");
+    let fault = Diagnostic::error("decimal-comma", message, place);
+    Some(fault.help(format!("decimals take a point, as in `{point}`")))
 }

@@ -447,7 +447,7 @@ fn examples_look_as_their_keys_say() {
 }
 
 /// Fixtures whose faults a schema cannot see, and why.
-const UNSEEN: [(&str, &str); 45] = [
+const UNSEEN: [(&str, &str); 46] = [
     ("left-handed.yaml", "what the words mean"),
     (
         "decimal-comma-component.yaml",
@@ -461,6 +461,10 @@ const UNSEEN: [(&str, &str); 45] = [
     ("wrong-count-trailing.yaml", "the text itself"),
     ("wrong-count-mixed.yaml", "points against each other"),
     ("unknown-unit-case.yaml", "units"),
+    (
+        "out-of-range-coordinate.yaml",
+        "its bound is in another unit in each set",
+    ),
     ("out-of-range-further.yaml", "a free value is text"),
     ("missing-level-once.yaml", "the case or `loads` may tell it"),
     ("name-taken-check.yaml", "two entries against each other"),

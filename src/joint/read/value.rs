@@ -254,7 +254,7 @@ fn triple(item: Item<'_>, items: &[Item<'_>], dim: Dim, set: UnitSet) -> Option<
     refuse_odd_commas(item, items)?;
     let read: Vec<Option<GivenAt>> = items
         .iter()
-        .map(|part| read_quantity(*part, dim, set))
+        .map(|part| near_enough(*part, read_quantity(*part, dim, set)?, set))
         .collect();
     let mut parts = [zero(dim), zero(dim), zero(dim)];
     for (part, given) in parts.iter_mut().zip(read) {
@@ -264,6 +264,26 @@ fn triple(item: Item<'_>, items: &[Item<'_>], dim: Dim, set: UnitSet) -> Option<
         parts,
         place: item.place().clone(),
     })
+}
+
+/// Refuses a coordinate that no joint has: a kilometre or more off.
+fn near_enough(item: Item<'_>, given: GivenAt, set: UnitSet) -> Option<GivenAt> {
+    let kilometre = match set {
+        UnitSet::NewtonMillimetre | UnitSet::KilonewtonMillimetre => 1e6,
+        UnitSet::NewtonMetre => 1e3,
+        UnitSet::PoundInch | UnitSet::KipInch => 1e6 / 25.4,
+    };
+    if given.value.dim != Dim::LENGTH || given.value.value.abs() < kilometre {
+        return Some(given);
+    }
+    item.refuse_with(
+        "out-of-range",
+        format!(
+            "the coordinate {} is a kilometre or more",
+            given.value.text()
+        ),
+        "write where the joint is, in the frame of the joint",
+    )
 }
 
 /// Refuses a list whose commas show that a decimal comma or a lost component made it what it is:

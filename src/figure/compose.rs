@@ -160,6 +160,12 @@ impl<'a> Sheet<'a> {
     /// Loads and dimensions. Where a dimension's thin lines meet an arrow, both are drawn again with
     /// the arrows off those lines; the try in which the fewest meet stands.
     fn measured(&mut self) {
+        let mut loads = self.scene.loads.clone();
+        for load in &mut loads {
+            if self.tells(load) {
+                load.distance.clear();
+            }
+        }
         let bare = self.canvas.clone();
         let mut best: Option<(usize, Canvas<'a>)> = None;
         let mut foreseen = Vec::new();
@@ -168,12 +174,8 @@ impl<'a> Sheet<'a> {
                 foreseen,
                 ..bare.clone()
             };
-            for (load, spot) in self.scene.loads.iter().zip(&self.spots) {
-                let mut load = load.clone();
-                if self.tells(&load) {
-                    load.distance.clear();
-                }
-                draw_load(&mut self.canvas, &self.view, &load, *spot, self.centre);
+            for (load, spot) in loads.iter().zip(&self.spots) {
+                draw_load(&mut self.canvas, &self.view, load, *spot, self.centre);
             }
             self.vectors();
             self.origin();
@@ -307,7 +309,7 @@ impl<'a> Sheet<'a> {
     /// Whether a dimension in space tells where a load stands.
     fn tells(&self, load: &Load) -> bool {
         let to_load = |dimension: &&Dimension| {
-            (dimension.to - load.at).norm() < 1e-9 * (1.0 + load.at.norm())
+            stands_at(load, &dimension.to)
                 && !self
                     .placed(dimension, (dimension.from, dimension.to))
                     .astray()
@@ -316,8 +318,7 @@ impl<'a> Sheet<'a> {
     }
 
     fn is_load(&self, p: &V3) -> bool {
-        let near = |load: &Load| (load.at - p).norm() < 1e-9 * (1.0 + p.norm());
-        self.scene.loads.iter().any(near)
+        self.scene.loads.iter().any(|load| stands_at(load, p))
     }
 
     /// A dimension between two of the points that it may be drawn between.
@@ -379,6 +380,11 @@ impl<'a> Sheet<'a> {
         let from_end = ((second - ends[1]).norm() > 0.5).then_some(ends[1]);
         ([ends[0], second], from_end)
     }
+}
+
+/// Whether a load stands at a point.
+fn stands_at(load: &Load, p: &V3) -> bool {
+    (load.at - p).norm() < 1e-9 * (1.0 + p.norm())
 }
 
 /// Bounds of the runs on the sheet; a point at the origin for a group without runs.

@@ -443,9 +443,9 @@ impl Cell<'_, '_> {
             let words = self.canvas.words(vec![Span::new(text, style)]);
             words.size()[0] <= CELL[0] - 2.0
         };
+        let mark = list_mark(items).to_string();
         let mut lines = vec![head.to_owned()];
         for (index, item) in items.iter().enumerate() {
-            let mark = list_mark(items).to_string();
             let comma = if index + 1 < items.len() { &mark } else { "" };
             let line = lines.len() - 1;
             let space = if index == 0 { "" } else { " " };

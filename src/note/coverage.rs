@@ -3,21 +3,20 @@
 use super::builder::Builder;
 use super::calculation::{Calculation, Outcome};
 use super::text::{capital, plain, slug, strong};
-use super::words::{path_names, words};
+use super::words::{path_name, path_names};
 use crate::criteria::FailurePath;
 
 /// Failure paths: checked, excluded by the user, or not covered by this note.
 pub(super) fn coverage(b: &mut Builder<'_>, calculation: &Calculation<'_>) {
     b.part("coverage", "Failure paths");
     let mut rows = Vec::new();
-    for (word, name) in ordered_paths() {
+    for (word, path) in FailurePath::WORDS {
         let mut by: Vec<String> = Vec::new();
         let mut fails = false;
         let mut without: Vec<String> = Vec::new();
         for outcome in &calculation.outcomes {
-            let covers = |paths: &[FailurePath]| paths.iter().any(|path| path.word() == word);
             match outcome {
-                Outcome::Assessed(asked) if covers(&asked.sheet.covers) => {
+                Outcome::Assessed(asked) if asked.sheet.covers.contains(&path) => {
                     by.push(asked.sheet.name.value.clone());
                     fails |= asked
                         .strength
@@ -25,7 +24,7 @@ pub(super) fn coverage(b: &mut Builder<'_>, calculation: &Calculation<'_>) {
                         .any(|strength| !strength.governing.margin.holds());
                     fails |= asked.limits.iter().any(|limit| !limit.holds);
                 }
-                Outcome::Refused(refusal) if covers(&refusal.covers) => {
+                Outcome::Refused(refusal) if refusal.covers.contains(&path) => {
                     without.push(refusal.clause.clone());
                 }
                 Outcome::Assessed(_) | Outcome::Refused(_) => {}
@@ -50,12 +49,12 @@ pub(super) fn coverage(b: &mut Builder<'_>, calculation: &Calculation<'_>) {
             ),
         };
         let cells = vec![
-            super::builder::Cell::Text(plain(&capital(&name))),
+            super::builder::Cell::Text(plain(&capital(&path_name(path)))),
             super::builder::Cell::Text(state),
             super::builder::Cell::Text(plain(&detail)),
         ];
         rows.push(super::builder::Line {
-            id: format!("path.{}", slug(&word)),
+            id: format!("path.{}", slug(word)),
             cells,
             strong: false,
         });
@@ -74,23 +73,6 @@ pub(super) fn coverage(b: &mut Builder<'_>, calculation: &Calculation<'_>) {
         rows,
         foot: None,
     });
-}
-
-/// Failure paths in the order of the sheets' words.
-fn ordered_paths() -> Vec<(String, String)> {
-    FailurePath::WORDS
-        .iter()
-        .map(|(word, _)| {
-            (
-                (*word).to_owned(),
-                words()
-                    .paths
-                    .get(*word)
-                    .cloned()
-                    .unwrap_or_else(|| (*word).to_owned()),
-            )
-        })
-        .collect()
 }
 
 /// The failure paths that the note does not cover, and those that the user excludes.

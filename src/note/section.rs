@@ -63,14 +63,6 @@ pub fn list_mark(names: &[String]) -> char {
     }
 }
 
-/// The paths that are planes through the weld or the parts.
-fn strength_planes(paths: &[FailurePath]) -> Vec<FailurePath> {
-    let planes = paths.iter().copied();
-    planes
-        .filter(|path| *path != FailurePath::SizeAndLength)
-        .collect()
-}
-
 impl SectionShape {
     pub(super) fn words(&self) -> String {
         match self {
@@ -170,6 +162,8 @@ impl Builder<'_> {
         }
         planes.sort_unstable();
         planes.dedup();
+        // Limits on size are no plane through the weld or the parts.
+        planes.retain(|path| *path != FailurePath::SizeAndLength);
         WeldSection {
             runs: Vec::new(),
             parts: [0, 1].map(|at| part(at).name.value.clone()),
@@ -186,7 +180,7 @@ impl Builder<'_> {
             gap: spec.gap.as_ref().map(|gap| bare(gap.value.text())),
             both: spec.both_sides.is_some() || partner(self.runs, index).is_some(),
             throat,
-            checked: path_names(&strength_planes(&planes)),
+            checked: path_names(&planes),
             planes,
         }
     }

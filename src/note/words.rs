@@ -36,13 +36,19 @@ pub(super) fn path_names(paths: &[FailurePath]) -> Vec<String> {
         let is_pair = |pair: &&Pair| pair.of[0] == path.word() && Some(pair.of[1].as_str()) == next;
         let pair = words.pairs.iter().find(is_pair);
         rest = &after[usize::from(pair.is_some())..];
-        names.push(match (pair, words.paths.get(path.word())) {
-            (Some(pair), _) => pair.together.clone(),
-            (None, Some(name)) => name.clone(),
-            (None, None) => path.word().to_owned(),
-        });
+        names.push(pair.map_or_else(|| path_name(*path), |pair| pair.together.clone()));
     }
     names
+}
+
+/// A failure path as the note names it.
+pub(super) fn path_name(path: FailurePath) -> String {
+    let word = path.word();
+    words()
+        .paths
+        .get(word)
+        .map_or(word, String::as_str)
+        .to_owned()
 }
 
 /// The words, read once.

@@ -213,10 +213,7 @@ impl Asking<'_> {
         Ok(Some(Resolved::One(Box::new(Sourced {
             id: format!("check.{}.{}", self.index + 1, slug(name)),
             symbol: need.symbol.clone(),
-            says: match &self.spec.source {
-                Some(source) => format!("{} ({})", need.says, source.value),
-                None => need.says.clone(),
-            },
+            says: self.with_source(&need.says),
             given,
             origin: Origin::Input(raw.place.clone()),
             mark,
@@ -230,18 +227,29 @@ impl Asking<'_> {
             return None;
         }
         let (_, raw) = self.spec.values.iter().find(|(key, _)| key.value == name)?;
+        Some(ToldWord {
+            says: self.with_source(&format!("{name} {} as told", raw.value)),
+            open: self.open(name),
+        })
+    }
+
+    /// Words with the source that the check gives, if it does.
+    fn with_source(&self, says: &str) -> String {
+        match &self.spec.source {
+            Some(source) => format!("{says} ({})", source.value),
+            None => says.to_owned(),
+        }
+    }
+
+    /// What is to be verified of a value of the check that has no default: said to be so, or without
+    /// a source.
+    fn open(&self, name: &str) -> Option<String> {
         let what = format!("{name} of the check {}", self.sheet.name.value);
-        let open = match &self.spec.source {
+        match &self.spec.source {
             _ if self.spec.to_be_verified => Some(what),
             Some(_) => None,
             None => Some(format!("{what}: no source given")),
-        };
-        let source = self.spec.source.as_ref();
-        let source = source.map_or(String::new(), |source| format!(" ({})", source.value));
-        Some(ToldWord {
-            says: format!("{name} {} as told{source}", raw.value),
-            open,
-        })
+        }
     }
 
     /// What is to be verified of a value of the check: an allowable or a factor without a source,
@@ -252,12 +260,12 @@ impl Asking<'_> {
         name: &str,
         given: &Given,
     ) -> Result<Option<String>, Diagnostic> {
-        let what = format!("{name} of the check {}", self.sheet.name.value);
-        if self.spec.to_be_verified {
-            return Ok(Some(what));
-        }
+        let open = self.open(name);
         let matters = given.dim == Dim::STRESS || need.role.is_some();
-        if self.spec.source.is_some() || !matters {
+        if open.is_none() || self.spec.to_be_verified {
+            return Ok(open);
+        }
+        if !matters {
             return Ok(None);
         }
         let default = self
@@ -266,7 +274,7 @@ impl Asking<'_> {
             .and_then(Resolved::value);
         let is_default =
             default.is_some_and(|default| (default - given.value).abs() <= 1e-12 * default.abs());
-        Ok((!is_default).then(|| format!("{what}: no source given")))
+        Ok(open.filter(|_| !is_default))
     }
 
     /// The value that the sheet states for this printing set.

@@ -89,17 +89,14 @@ impl<'a, 'g> Desk<'a, 'g> {
         let Some(step) = self.sheet.step(name) else {
             return Err(WorkError::Unbound(name.to_owned()));
         };
+        let mut says = step.says.clone();
+        let mut told: Vec<ToldWord> = Vec::new();
         for used in step.node.names() {
             self.bind(used)?;
-        }
-        let mut says = step.says.clone();
-        let used = step.node.names();
-        let told: Vec<ToldWord> = used
-            .into_iter()
-            .filter_map(|used| self.asking.told_word(used))
-            .collect();
-        for word in &told {
-            says.push_str(&format!(", {}", word.says));
+            if let Some(word) = self.asking.told_word(used) {
+                says.push_str(&format!(", {}", word.says));
+                told.push(word);
+            }
         }
         let draft = Draft {
             id: format!("{}.{name}", self.prefix),

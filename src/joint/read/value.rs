@@ -268,12 +268,9 @@ fn triple(item: Item<'_>, items: &[Item<'_>], dim: Dim, set: UnitSet) -> Option<
 
 /// Refuses a coordinate that no joint has: a kilometre or more off.
 fn near_enough(item: Item<'_>, given: GivenAt, set: UnitSet) -> Option<GivenAt> {
-    let kilometre = match set {
-        UnitSet::NewtonMillimetre | UnitSet::KilonewtonMillimetre => 1e6,
-        UnitSet::NewtonMetre => 1e3,
-        UnitSet::PoundInch | UnitSet::KipInch => 1e6 / 25.4,
-    };
-    if given.value.dim != Dim::LENGTH || given.value.value.abs() < kilometre {
+    let is_far = |kilometre: Given| given.value.value.abs() >= kilometre.value;
+    let is_length = given.value.dim == Dim::LENGTH;
+    if !(is_length && Given::parse("1000 m", Dim::LENGTH, set).is_ok_and(is_far)) {
         return Some(given);
     }
     item.refuse_with(
